@@ -1,0 +1,63 @@
+/* The schedule: the whole drive's inputs as one table of straight segments. Internal.
+ *
+ * Steps (traces, idles, holds, soaks, with repeats) are joined end to end; whatever depends on nothing but
+ * the trace is worked out here once: engine heat, engine speed, air pressure, distance. Between rows every
+ * channel is linear in time; two rows at the same time are a jump (restart the integrator there). */
+#ifndef SP_DRIVE_SCHEDULE_H
+#define SP_DRIVE_SCHEDULE_H
+
+#include "swirlpot/part.h"
+
+/* Continuous channels. */
+enum sp_channel_in {
+    SP_IN_SPEED,        /* m/s over the road */
+    SP_IN_AIR_SPEED,    /* m/s through the air: speed + wind */
+    SP_IN_WAKE,         /* share of dynamic pressure left */
+    SP_IN_AMBIENT,      /* K */
+    SP_IN_PRESSURE,     /* Pa */
+    SP_IN_HEAT_GAS,     /* W */
+    SP_IN_HEAT_FRICTION,/* W */
+    SP_IN_HEAT_SLOPE,   /* W/W: heat per further brake power */
+    SP_IN_ENGINE_SPEED, /* rev/s */
+    SP_IN_POWER,        /* W brake */
+    SP_IN_MEASURED,     /* K, measured coolant; NAN when there is none */
+    SP_INPUTS
+};
+
+/* What holds over a whole segment. */
+enum { SP_FLAG_ENGINE = 1,   /* the engine runs */
+       SP_FLAG_PUMP = 2,     /* an electric pump is allowed to run (engine on, or within its run-on) */
+       SP_FLAG_FAN = 4 };    /* a fan is allowed to run (engine on, or within its run-on) */
+
+struct sp_schedule {
+    size_t rows;
+    double *time;              /* s, not falling */
+    double *distance;          /* m since the start, exact for the linear speeds */
+    double *channel[SP_INPUTS];
+    unsigned char *flags;      /* of the segment that begins at the row */
+    unsigned short *step;      /* index of the drive step the row belongs to */
+    struct sp_mark *mark;      /* texts by row, from the traces' mark columns */
+    size_t marks;
+    bool power_from_road;      /* power came from the road-load model somewhere */
+    bool measured;             /* some trace holds measured coolant */
+    /* Work over the drive [J], for the check that is printed when power came from road load. */
+    struct { double wheel, kinetic, potential, drag, rolling, brakes; } work;
+    struct sp_trace_repairs repairs;
+    size_t rows_merged;        /* rows of traces that were merged away */
+};
+
+/* Reads the traces and builds the schedule. Everything that is missing (no power and no road load, no
+ * engine speed and no gears) is a complaint that says what would be enough. */
+enum sp_status sp_schedule_build(struct sp_units *u, const struct sp_design *d, struct sp_schedule *out,
+                                 struct sp_complaints *complaints, struct sp_complaints *cautions);
+void sp_schedule_free(struct sp_schedule *s);
+
+/* Inputs at time t within segment k (rows k and k+1): linear. */
+struct sp_inputs {
+    double in[SP_INPUTS];
+    double distance;
+    unsigned flags;
+};
+void sp_schedule_at(const struct sp_schedule *s, size_t k, double t, struct sp_inputs *out);
+
+#endif
