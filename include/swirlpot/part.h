@@ -143,10 +143,10 @@ struct sp_inlet {
     double screen;    /* loss coefficient of mesh on inlet head */
 };
 
-enum sp_diffuser_kind { SP_DIFFUSER_GIVEN, SP_DIFFUSER_SUDDEN, SP_DIFFUSER_CONICAL };
+enum sp_diffuser_law { SP_DIFFUSER_GIVEN, SP_DIFFUSER_SUDDEN, SP_DIFFUSER_CONICAL };
 
-struct sp_diffuser {
-    enum sp_diffuser_kind kind;
+struct sp_diffuser_design {
+    enum sp_diffuser_law kind;
     double loss;       /* on inlet head, when given */
     double length;     /* m */
     bool core_damping; /* the core's resistance damps the stall (DA 3.4 proposal) */
@@ -210,7 +210,7 @@ struct sp_exit {
 
 struct sp_duct_design {
     struct sp_inlet inlet;
-    struct sp_diffuser diffuser;
+    struct sp_diffuser_design diffuser;
     struct sp_core core;
     struct sp_fan fan;
     struct sp_exit exit;

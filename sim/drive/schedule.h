@@ -2,7 +2,8 @@
  *
  * Steps (traces, idles, holds, soaks, with repeats) are joined end to end; whatever depends on nothing but
  * the trace is worked out here once: engine heat, engine speed, air pressure, distance. Between rows every
- * channel is linear in time; two rows at the same time are a jump (restart the integrator there). */
+ * channel is linear in time; two rows at the same time are a jump (restart the integrator there).
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_SCHEDULE_H
 #define SP_DRIVE_SCHEDULE_H
 

@@ -70,7 +70,8 @@ struct sp_moist sp_moist_air(double T, double p, double humidity)
     double e = humidity > 0.0 ? humidity * sp_vapour_saturation(T) : 0.0;
     if (e > 0.5 * p) e = 0.5 * p;
     double x = vapour_fraction(e, p);
-    return (struct sp_moist){(1.0 - x) * SP_R_DRY + x * SP_R_VAPOUR, (1.0 - x) * SP_CP_DRY + x * SP_CP_VAPOUR};
+    return (struct sp_moist){(1.0 - x) * SP_R_DRY + x * SP_R_VAPOUR,
+                             (1.0 - x) * SP_CP_DRY + x * SP_CP_VAPOUR};
 }
 
 double sp_air_density(double T, double p, double humidity)

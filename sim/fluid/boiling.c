@@ -10,7 +10,7 @@
 static const double ln10 = 2.302585092994045684;
 static const double antoine_b = 1668.21;
 static const double antoine_zero = SP_ZERO_C - 228.0; /* K, pole of the Antoine form */
-static const double ln_antoine = 7.96682 * 2.302585092994045684 + 4.892770207520361; /* + ln(133.3224 Pa) */
+static const double ln_antoine = 7.96682 * 2.302585092994045684 + 4.892770255077688; /* + ln(133.3224 Pa) */
 
 static double water_pressure(double T)
 {

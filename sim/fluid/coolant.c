@@ -15,7 +15,8 @@ static double fit_x(const struct sp_coolant *c, double T)
 static double polynomial(const double *a, double x)
 {
     double sum = a[SP_COOLANT_TERMS - 1];
-    for (int i = SP_COOLANT_TERMS - 2; i >= 0; i--) sum = sum * x + a[i];
+    for (int i = SP_COOLANT_TERMS - 2; i >= 0; i--)
+        sum = sum * x + a[i];
     return sum;
 }
 
@@ -47,7 +48,8 @@ double sp_coolant_prandtl(const struct sp_coolant *c, double T)
 double sp_coolant_enthalpy(const struct sp_coolant *c, double T)
 {
     double x = fit_x(c, T), sum = 0.0;
-    for (int i = SP_COOLANT_TERMS - 1; i >= 0; i--) sum = sum * x + c->cp[i] / (i + 1);
+    for (int i = SP_COOLANT_TERMS - 1; i >= 0; i--)
+        sum = sum * x + c->cp[i] / (i + 1);
     double outside = (T - SP_ZERO_C) - 100.0 * x; /* K beyond the range, where cp is held */
     return 100.0 * x * sum + outside * polynomial(c->cp, x);
 }

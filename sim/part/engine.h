@@ -1,4 +1,5 @@
-/* Engine heat: what goes into the jacket's metal, from power, fuel or air; motoring friction. Internal. */
+/* Engine heat: what goes into the jacket's metal, from power, fuel or air; motoring friction. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_ENGINE_H
 #define SP_PART_ENGINE_H
 
@@ -30,6 +31,15 @@ void sp_engine_law_free(struct sp_engine_law *law);
  * speed is overrun with the fuel cut, faded in over a band of speed and power so that the heat has no
  * jump; idle follows the law at power 0, or idle_heat when given. */
 struct sp_engine_heat sp_engine_heat(const struct sp_engine_law *law, const struct sp_engine_row *row);
+
+/* Engine speed [rev/s] that goes with a brake power P [W] where neither a column nor gears tell it:
+ * rated_speed (0.25 m + 0.55 P/rated_power), between idle and rated speed, with m rising from 0 to 1
+ * between standstill and 3 m/s over the road. An assumption of this program; the schedule cautions. */
+double sp_engine_assumed_speed(const struct sp_engine *e, double power, double road_speed);
+
+/* Brake power [W] from fuel flow [kg/s] at N [rev/s]: the Willans line turned round, not below what
+ * motoring takes. */
+double sp_engine_power_from_fuel(const struct sp_engine *e, double fuel_flow, double speed);
 
 /* Share of the gas-side heat that a metal at T [K] still takes: (Tg - T)/(Tg - Tref), 0 above Tg; 1 when
  * gas_temperature is NAN. */

@@ -1,4 +1,5 @@
-/* Road load: power from speed, grade and acceleration; gears. Internal. */
+/* Road load: power from speed, grade and acceleration; gears. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_ROAD_H
 #define SP_PART_ROAD_H
 

@@ -1,0 +1,150 @@
+/* schedule_parts.h - the schedule while it is being built. Internal to schedule*.c.
+ *
+ * schedule.c joins the steps, schedule_trace.c makes rows of a trace, schedule_engine.c says what the
+ * engine does at a row, schedule_merge.c coarsens rows, schedule_run_on.c sets what runs on after a stop,
+ * schedule_rows.c holds rows.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
+#ifndef SP_DRIVE_SCHEDULE_PARTS_H
+#define SP_DRIVE_SCHEDULE_PARTS_H
+
+#include "drive/schedule.h"
+#include "part/engine.h"
+
+enum { SP_SCHEDULE_ROWS = 20000000 }; /* most rows of a drive: 3 GB */
+
+/* ---- rows ---------------------------------------------------------------------------------------- */
+
+/* A schedule that grows; `table.distance` stays NULL until the end, the flags hold SP_FLAG_ENGINE only. */
+struct sp_rows {
+    struct sp_schedule table;
+    size_t room, mark_room;
+};
+
+struct sp_row {
+    double time;
+    double in[SP_INPUTS];
+    unsigned char flags;
+};
+
+/* All return false when memory ran out or there are too many rows. */
+bool sp_rows_reserve(struct sp_rows *r, size_t rows);
+bool sp_rows_push(struct sp_rows *r, const struct sp_row *row, unsigned short step);
+bool sp_rows_mark(struct sp_rows *r, size_t row, const char *text);
+
+/* Puts `from` behind what `to` holds, in time too. Where the last row of `to` and the first of `from` agree
+ * in all channels and flags they become one. */
+bool sp_rows_append(struct sp_rows *to, const struct sp_rows *from);
+
+/* A double row at time `at` (within segment k, or at its begin) for each entry, which are sorted. */
+struct sp_row_insertion { size_t segment; double at; };
+bool sp_rows_insert(struct sp_rows *r, const struct sp_row_insertion *insertion, size_t count);
+
+/* Row `from` becomes row `to`. */
+void sp_rows_move(struct sp_schedule *s, size_t from, size_t to);
+
+/* ---- merging -------------------------------------------------------------------------------------- */
+
+/* Takes a step's rows one by one and puts the merged ones into `to`. See schedule_merge.c. */
+struct sp_merge_span {
+    bool open;         /* holds at least one segment */
+    size_t segments;
+    double begin, end;
+    double first[SP_INPUTS], last[SP_INPUTS];
+    double area[SP_INPUTS], moment[SP_INPUTS]; /* integrals of f and of f (t - begin) */
+    double least[SP_INPUTS], most[SP_INPUTS];
+};
+
+struct sp_merge {
+    struct sp_rows *to;
+    double width;             /* s; 0: nothing is merged */
+    unsigned short step;
+    const struct sp_mark *mark; /* of the source, by source row */
+    size_t marks, next_mark;
+    bool begun;               /* a stretch is going on */
+    struct sp_row last;       /* the row pushed last */
+    struct sp_merge_span before, now; /* the last span that could be closed, and the growing one */
+    double sum[SP_INPUTS], weight;    /* of the node at the left end of `before` */
+    double least[SP_INPUTS], most[SP_INPUTS];
+    struct sp_row node;       /* that node's row as pushed */
+    size_t node_source;       /* its source row, for the marks */
+    bool node_marked;
+    size_t pushed;
+    bool failed;
+};
+
+void sp_merge_begin(struct sp_merge *m, struct sp_rows *to, double width, unsigned short step,
+                    const struct sp_mark *mark, size_t marks);
+/* `source` is the row's number in the trace. A row at which a mark begins stays where it is. */
+void sp_merge_push(struct sp_merge *m, const struct sp_row *row, size_t source);
+/* Ends a continuous stretch: a jump follows, or nothing. */
+void sp_merge_break(struct sp_merge *m);
+
+/* Drops rows that lie on the straight line between their neighbours within 1e-9 of each channel's range. */
+void sp_rows_thin(struct sp_rows *r);
+
+/* ---- the engine at a row ----------------------------------------------------------------------------- */
+
+/* Where power comes from, in order of preference. */
+enum sp_power_source {
+    SP_POWER_COLUMN, SP_POWER_TORQUE, SP_POWER_FUEL, SP_POWER_AIR, SP_POWER_THROTTLE, SP_POWER_ROAD
+};
+enum sp_speed_source { SP_ENGINE_COLUMN, SP_ENGINE_GEAR, SP_ENGINE_SHIFTED, SP_ENGINE_ASSUMED };
+
+/* What is known at one instant; NAN where nothing. */
+struct sp_moment {
+    double speed, air_speed, acceleration, grade; /* acceleration and grade: road load only */
+    double density;
+    double power, torque, engine_speed, fuel_flow, air_flow, throttle, gear;
+};
+
+struct sp_engine_sources {
+    const struct sp_design *design;
+    const struct sp_engine_law *law;
+    enum sp_power_source power;
+    enum sp_speed_source speed;
+};
+
+/* Wheel power of the road load by its parts, W: rolling, climbing, drag, speeding up; and what the brakes
+ * take of it. */
+struct sp_wheel_power { double rolling, climb, drag, inertia, brakes; };
+
+/* Fills power, engine speed and heat of a row. `wheel` is filled when power comes from the road; may be NULL. */
+void sp_engine_row_fill(const struct sp_engine_sources *s, const struct sp_moment *at, double in[SP_INPUTS],
+                        struct sp_wheel_power *wheel);
+
+/* True when the body holds what the road load needs. */
+bool sp_road_load_known(const struct sp_body *b);
+
+double sp_density_of(const struct sp_design *d, double ambient, double pressure);
+
+/* ---- the parts ---------------------------------------------------------------------------------------- */
+
+/* The whole build. */
+struct sp_scheduling {
+    struct sp_units *units;
+    const struct sp_design *design;
+    struct sp_engine_law *law;
+    struct sp_rows rows;
+    struct sp_complaints *complaints, *cautions;
+    bool failed;
+    double datum;    /* altitude [m] at which air.pressure holds in the traces' own count; NAN: none seen yet */
+    double base;     /* m: altitude of air.pressure in the standard atmosphere */
+    double pressure; /* Pa, at the end of what is built so far */
+    bool cautioned_speed, cautioned_throttle, cautioned_flow;
+};
+
+void sp_schedule_fault(struct sp_scheduling *b, size_t step, const char *key, const char *found,
+                       const char *expected);
+void sp_schedule_caution(struct sp_scheduling *b, size_t step, const char *found, const char *expected);
+void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const struct sp_engine_sources *s);
+
+/* Reads the trace of a step and puts its rows, merged, into `to` (empty). False when it failed. */
+bool sp_schedule_trace(struct sp_scheduling *b, size_t step, struct sp_rows *to);
+
+/* Sets the flags of pump and fan over the whole drive. False: no memory. */
+bool sp_schedule_run_on(struct sp_rows *r, const struct sp_design *d);
+
+/* Smoothed slope of altitude over distance along the road (a sine), by row. False: no memory. */
+void sp_schedule_slope(size_t rows, const double *distance, const double *altitude, double half, double *slope);
+
+#endif

@@ -1,0 +1,164 @@
+/* How the car's values stand to each other. Values that could not be read are NAN, and nothing is said of
+ * them twice. SPDX-License-Identifier: GPL-3.0-or-later */
+#include "case.h"
+
+#include <math.h>
+#include <stdlib.h>
+#include <string.h>
+
+/* One value that has to be below another. */
+struct order {
+    const char *path;
+    double value, bound;
+    bool equal_allowed;
+    const char *expected;
+};
+
+static void check_order(struct sp_reader *r, const struct order *o)
+{
+    if (isnan(o->value) || isnan(o->bound)) return;
+    if (o->value < o->bound || (o->equal_allowed && o->value <= o->bound)) return;
+    char found[80];
+    snprintf(found, sizeof found, "%.6g against %.6g (SI)", o->value, o->bound);
+    sp_case_fault(r, o->path, found, o->expected, NULL);
+}
+
+static void check_orders(struct sp_reader *r)
+{
+    const struct sp_design *d = r->design;
+    const struct sp_fan *f = &d->duct.fan;
+    const struct order orders[] = {
+        { "car.thermostat.opens", d->thermostat.opens, d->thermostat.full, false, "opens below full" },
+        { "car.engine.idle_speed", d->engine.idle_speed, d->engine.rated_speed, false,
+          "idle_speed below rated_speed" },
+        { "car.tank.air_space", d->tank.air_space, d->tank.volume, false, "air_space below volume" },
+        { "car.duct.fan.hub", f->hub, f->diameter, false, "hub below diameter" },
+        { "car.duct.fan.switch.off", f->off, f->on, false, "off below on" },
+        { "car.duct.fan.proportional.from", f->from, f->to, false, "from below to" },
+    };
+    for (size_t i = 0; i < sizeof orders / sizeof *orders; ++i) check_order(r, &orders[i]);
+}
+
+/* ---- tables ---------------------------------------------------------------------------------------- */
+
+/* First row whose value in `column` is not above that of the row before (times `sign`); 0 if none. */
+static size_t out_of_order(const struct sp_table *t, size_t column, double sign)
+{
+    for (size_t i = 1; i < t->rows; ++i)
+        if (!(sign * t->cell[i * t->columns + column] > sign * t->cell[(i - 1) * t->columns + column])) return i;
+    return 0;
+}
+
+static void check_rising(struct sp_reader *r, const char *path, const struct sp_table *t, size_t column,
+                         double sign, const char *expected)
+{
+    char here[SP_PATH_MAX];
+    size_t bad = t->rows ? out_of_order(t, column, sign) : 0;
+    if (!bad) return;
+    if (t->columns > 1) snprintf(here, sizeof here, "%.200s[%zu][%zu]", path, bad, column);
+    else snprintf(here, sizeof here, "%.200s[%zu]", path, bad);
+    sp_case_fault(r, here, NULL, expected, NULL);
+}
+
+static void check_curve(struct sp_reader *r, const char *path, const struct sp_table *t)
+{
+    if (!t->rows) return;
+    if (t->rows < 2) sp_case_fault(r, path, "one pair", "two pairs or more", NULL);
+    check_rising(r, path, t, 0, 1.0, "flow rising from pair to pair");
+    double last = t->cell[2 * t->rows - 1];
+    if (t->rows > 1 && !(last < t->cell[2 * t->rows - 3]))
+        sp_case_fault(r, path, "pressure that does not fall at the end", "pressure falling with flow at the last pair", NULL);
+    if (!(t->cell[1] > 0.0)) sp_case_fault(r, path, "no pressure at the first pair", "pressure above 0 there", NULL);
+}
+
+static int by_speed_and_power(const void *a, const void *b)
+{
+    const double *x = a, *y = b;
+    if (x[0] != y[0]) return x[0] < y[0] ? -1 : 1;
+    return (x[1] > y[1]) - (x[1] < y[1]);
+}
+
+/* Sorts the heat table by speed, then power, and asks for a full grid. */
+static void check_heat_table(struct sp_reader *r)
+{
+    struct sp_table *t = &r->design->engine.heat_table;
+    const char *path = "car.engine.heat.table";
+    size_t powers = 0;
+    if (!t->rows) return;
+    qsort(t->cell, t->rows, t->columns * sizeof *t->cell, by_speed_and_power);
+    while (powers < t->rows && t->cell[3 * powers] == t->cell[0]) ++powers;
+    bool full = t->rows % powers == 0 && powers > 1 && t->rows > powers;
+    for (size_t i = 0; full && i < t->rows; ++i) {
+        const double *row = &t->cell[3 * i], *first = &t->cell[3 * (i % powers)];
+        const double *head = &t->cell[3 * (i - i % powers)];
+        full = row[1] == first[1] && row[0] == head[0] && (i % powers == 0 || row[1] > row[-2]) &&
+               (i % powers || !i || row[0] > row[-3]);
+    }
+    if (!full)
+        sp_case_fault(r, path, "no full grid", "every engine speed with every power once, two or more of each",
+                      NULL);
+}
+
+/* ---- rooms ----------------------------------------------------------------------------------------- */
+
+static void check_engine(struct sp_reader *r)
+{
+    const struct sp_engine *e = &r->design->engine;
+    bool drive = r->purpose == SP_FOR_DRIVE && sp_case_given(r, "car.engine.heat");
+    if (drive && e->heat_law == SP_HEAT_RATED && !sp_case_given(r, "car.engine.heat.fraction"))
+        sp_case_fault(r, "car.engine.heat.fraction", "nothing",
+                      "a number such as 0.65, the heat to the coolant over brake power at rated power", NULL);
+    if (e->heat_law == SP_HEAT_TABLE && !sp_case_given(r, "car.engine.heat.table"))
+        sp_case_fault(r, "car.engine.heat.table", "nothing", "rows of engine speed, brake power and heat", NULL);
+    check_heat_table(r);
+}
+
+static void check_body(struct sp_reader *r)
+{
+    const struct sp_body *b = &r->design->body;
+    check_rising(r, "car.body.gears", &b->gears, 0, -1.0, "ratios falling from gear to gear");
+    if (b->gears.rows && !sp_case_given(r, "car.body.wheel_radius"))
+        sp_case_fault(r, "car.body.wheel_radius", "nothing", "a length such as \"300 mm\", for gears are given", NULL);
+}
+
+static void check_pump(struct sp_reader *r)
+{
+    const struct sp_pump *p = &r->design->pump;
+    check_curve(r, "car.pump.curve", &p->curve.pairs);
+    if (r->purpose == SP_FOR_DRIVE && !p->electric && sp_case_given(r, "car.pump") &&
+        !sp_case_given(r, "car.pump.speed"))
+        sp_case_fault(r, "car.pump.speed", "nothing",
+                      "a speed of rotation such as \"6900 rpm\", the pump speed for which its curve holds", NULL);
+}
+
+static void check_fan(struct sp_reader *r)
+{
+    const struct sp_fan *f = &r->design->duct.fan;
+    check_curve(r, "car.duct.fan.curve", &f->curve.pairs);
+    if (f->fitted && f->static_basis && !sp_case_given(r, "car.duct.fan.diameter"))
+        sp_case_fault(r, "car.duct.fan.diameter", "nothing",
+                      "a length such as \"305 mm\", for the curve is of static pressure", NULL);
+}
+
+static void check_diffuser(struct sp_reader *r)
+{
+    bool kind = sp_case_given(r, "car.duct.diffuser.kind"), length = sp_case_given(r, "car.duct.diffuser.length");
+    if (kind && sp_case_given(r, "car.duct.diffuser.loss"))
+        sp_case_fault(r, "car.duct.diffuser.kind", "both kind and loss", "one of them", NULL);
+    if (length && !kind)
+        sp_case_fault(r, "car.duct.diffuser.kind", "nothing", "\"conical\", for a length is given", NULL);
+    if (!length && kind && r->design->duct.diffuser.kind == SP_DIFFUSER_CONICAL)
+        sp_case_fault(r, "car.duct.diffuser.length", "nothing", "a length such as \"320 mm\"", NULL);
+}
+
+void sp_case_check(struct sp_reader *r)
+{
+    if (r->no_car) return;
+    check_orders(r);
+    check_body(r);
+    check_engine(r);
+    check_pump(r);
+    check_diffuser(r);
+    check_fan(r);
+    sp_case_check_core(r);
+}

@@ -1,0 +1,65 @@
+/* Keys of the fan.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
+#include "keys_row.h"
+
+static const struct sp_word bases[] = { { "total", 0 }, { "static", 1 }, { NULL, 0 } };
+static const struct sp_word befores[] = { { "core", 1 }, { NULL, 0 } };
+static const struct sp_word controls[] = { { "switch", SP_FAN_SWITCHED },
+    { "proportional", SP_FAN_PROPORTIONAL }, { "always", SP_FAN_ALWAYS }, { "never", SP_FAN_NEVER },
+    { NULL, 0 } };
+static const struct sp_word places[] = { { "engine out", SP_AT_ENGINE_OUT },
+    { "radiator out", SP_AT_RADIATOR_OUT }, { NULL, 0 } };
+static const struct sp_key_column curve_columns[] = { { SP_K_VOLUME_FLOW, "0 m3/s to 100 m3/s" },
+    { SP_K_PRESSURE, "0 Pa to 100 kPa" } };
+
+const struct sp_key sp_keys_fan[] = {
+    { FITTED_GROUP("car.duct.fan", duct.fan.fitted), OPTIONAL,
+      SAYS("fan or fans; absent: none") },
+    { QUANTITY("car.duct.fan.count", NUMBER, duct.fan.count), DEFAULT("1"), RANGE("1 to 20"), .whole = true,
+      SAYS("equal fans side by side"), DEFINITION },
+    { TABLE("car.duct.fan.curve", curve_columns, duct.fan.curve.pairs), REQUIRED, .or_object = true,
+      .type = "table of volume flow and pressure, or an object",
+      SAYS("pressure over flow of one fan at 1.2 kg/m3, as pairs or as `shutoff` and `free_flow` of a "
+           "parabola"), OWN },
+    { QUANTITY("car.duct.fan.curve.shutoff", PRESSURE, duct.fan.curve.shutoff), REQUIRED, WHEN("without pairs"),
+      RANGE("above 0 Pa, at most 100 kPa"), SAYS("pressure at nil flow"), OWN },
+    { QUANTITY("car.duct.fan.curve.free_flow", VOLUME_FLOW, duct.fan.curve.free_flow), REQUIRED,
+      WHEN("without pairs"), RANGE("above 0 m3/s, at most 100 m3/s"), SAYS("flow at nil pressure"), OWN },
+    { WORD("car.duct.fan.basis", bases, BOOL, duct.fan.static_basis), DEFAULT("total"), RANGE("total, static"),
+      SAYS("which pressure the curve holds"), DEFINITION },
+    { WORD("car.duct.fan.before", befores, BOOL, duct.fan.before_core), WHEN("else behind the core"),
+      RANGE("core"), SAYS("the fan stands ahead of the core"), OWN },
+    { QUANTITY("car.duct.fan.diameter", LENGTH, duct.fan.diameter),
+      WHEN("with basis static; else the core's face counts"), RANGE("0.03 m to 3 m"),
+      SAYS("of the blades' tips"), OWN },
+    { QUANTITY("car.duct.fan.hub", LENGTH, duct.fan.hub), RULE(sp_rule_fan_hub, "0.35 of the diameter"),
+      RANGE("0 m to 2.9 m"), SAYS("diameter of the hub"), PRACTICE },
+    { QUANTITY("car.duct.fan.windmill_loss", NUMBER, duct.fan.windmill_loss), DEFAULT("1.2"),
+      RANGE("0 to 100"), SAYS("loss of the freely turning fan on the head in its annulus; locked 3"), PRACTICE },
+    { QUANTITY("car.duct.fan.rated_voltage", VOLTAGE, duct.fan.rated_voltage), DEFAULT("13 V"),
+      RANGE("1 V to 1000 V"), SAYS("voltage for which the curve holds"), PRACTICE },
+    { QUANTITY("car.duct.fan.power", POWER, duct.fan.power),
+      RULE(sp_rule_fan_power, "23 % of it is in the air at the curve's best point"), RANGE("0 W to 200 kW"),
+      SAYS("electrical power of one fan at that voltage"), PRACTICE },
+    { QUANTITY("car.duct.fan.spin_up", TIME, duct.fan.spin_up), DEFAULT("1.5 s"), RANGE("0.05 s to 120 s"),
+      SAYS("time constant of its speed"), PRACTICE },
+    { WORD("car.duct.fan.control", controls, ENUM, duct.fan.law), DEFAULT("switch"),
+      RANGE("switch, proportional, always, never"), SAYS("what makes it run"), PRACTICE },
+    { GROUP("car.duct.fan.switch"), OPTIONAL, SAYS("a thermo-switch") },
+    { QUANTITY("car.duct.fan.switch.on", TEMPERATURE, duct.fan.on), DEFAULT("96 degC"),
+      RANGE("-40 degC to 200 degC"), SAYS("on above"), PRACTICE },
+    { QUANTITY("car.duct.fan.switch.off", TEMPERATURE, duct.fan.off), DEFAULT("91 degC"),
+      RANGE("-40 degC to 200 degC"), SAYS("off below"), PRACTICE },
+    { GROUP("car.duct.fan.proportional"), OPTIONAL, SAYS("speed rising with temperature") },
+    { QUANTITY("car.duct.fan.proportional.from", TEMPERATURE, duct.fan.from), DEFAULT("90 degC"),
+      RANGE("-40 degC to 200 degC"), SAYS("begins to turn"), PRACTICE },
+    { QUANTITY("car.duct.fan.proportional.to", TEMPERATURE, duct.fan.to), DEFAULT("100 degC"),
+      RANGE("-40 degC to 200 degC"), SAYS("full speed"), PRACTICE },
+    { QUANTITY("car.duct.fan.proportional.least", NUMBER, duct.fan.least), DEFAULT("0.33"), RANGE("0 to 1"),
+      SAYS("share of full speed at which it begins"), SOURCE("a maker's service text") },
+    { WORD("car.duct.fan.sensor", places, ENUM, duct.fan.sensor), DEFAULT("engine out"),
+      RANGE("engine out, radiator out"), SAYS("where the temperature is taken that makes it run"), PRACTICE },
+    { QUANTITY("car.duct.fan.run_on", TIME, duct.fan.run_on), DEFAULT("0 s"), RANGE("0 s to 1 d"),
+      SAYS("how long it may run after the engine stops"), DEFINITION },
+    END_OF_KEYS
+};
