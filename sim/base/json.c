@@ -2,11 +2,11 @@
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "base/json.h"
 
+#include "base/file.h"
 #include "base/json_scan.h"
 #include "base/number.h"
 
 #include <cjson/cJSON.h>
-#include <errno.h>
 #include <stdlib.h>
 #include <string.h>
 
@@ -149,8 +149,8 @@ static bool build_inside(struct build *b, const cJSON *item, struct sp_json *nod
 
 /* ---- parsing ------------------------------------------------------------------------------- */
 
-/* cJSON cuts numbers longer than its buffer; as their values come from our own reading, it gets a copy of
- * the text in which such a number is a 0 and blanks. NULL without memory. */
+/* Many a cJSON cuts numbers longer than its buffer of 63 and stumbles over the rest; as the values come from
+ * our own reading, it gets a copy of the text in which such a number is a 0 and blanks. NULL: no memory. */
 static char *shorten_numbers(const char *text, size_t size, const struct sp_json_marks *marks)
 {
     char *out = copy(text, size);
@@ -190,61 +190,14 @@ struct sp_json *sp_json_parse(const char *name, const char *named_by, const char
     return NULL;
 }
 
-/* All bytes of a file, at most FILE_MOST and one more; NULL with `why` set. */
-static char *slurp(FILE *file, size_t *size, int *why)
-{
-    size_t room = 0, length = 0;
-    char *text = NULL;
-    do {
-        char *more;
-        room = room ? 2 * room : 65536;
-        if (room > (size_t)FILE_MOST + 1) room = (size_t)FILE_MOST + 1;
-        more = realloc(text, room);
-        if (!more) {
-            *why = ENOMEM;
-            free(text);
-            return NULL;
-        }
-        text = more;
-        errno = 0;
-        length += fread(text + length, 1, room - length, file);
-        if (ferror(file)) {
-            *why = errno ? errno : EIO;
-            free(text);
-            return NULL;
-        }
-    } while (length == room && length <= FILE_MOST);
-    *size = length;
-    return text;
-}
-
-static struct sp_json *complain_unread(const char *file, const char *named_by, int why,
-                                       struct sp_complaints *complaints)
-{
-    struct sp_place place = {file, 0, NULL, named_by};
-    char reason[120] = "", found[160];
-    if (strerror_r(why, reason, sizeof reason) != 0) snprintf(reason, sizeof reason, "error %d", why);
-    snprintf(found, sizeof found, "no file that can be read (%s)", reason);
-    sp_complain(complaints, &place, found, "a JSON file", NULL);
-    return NULL;
-}
-
 struct sp_json *sp_json_read(const char *file, const char *named_by, struct sp_complaints *complaints)
 {
     struct sp_place place = {file, 0, NULL, named_by};
-    struct sp_json *tree = NULL;
-    size_t size = 0;
-    int why = 0;
-    FILE *from = fopen(file, "rb");
+    struct sp_json *tree;
+    size_t size;
     char *text;
-    if (!from) return complain_unread(file, named_by, errno, complaints);
-    text = slurp(from, &size, &why);
-    fclose(from);
-    if (!text) return complain_unread(file, named_by, why, complaints);
-    if (size > FILE_MOST)
-        sp_complain(complaints, &place, "more than 64 MB", "a JSON file of at most 64 MB", NULL);
-    else
-        tree = sp_json_parse(file, named_by, text, size, complaints);
+    if (!sp_file_read(&place, FILE_MOST, &text, &size, complaints)) return NULL;
+    tree = sp_json_parse(file, named_by, text, size, complaints);
     free(text);
     return tree;
 }

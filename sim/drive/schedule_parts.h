@@ -36,7 +36,10 @@ bool sp_rows_mark(struct sp_rows *r, size_t row, const char *text);
 bool sp_rows_append(struct sp_rows *to, const struct sp_rows *from);
 
 /* A double row at time `at` (within segment k, or at its begin) for each entry, which are sorted. */
-struct sp_row_insertion { size_t segment; double at; };
+struct sp_row_insertion {
+    size_t segment;
+    double at;
+};
 bool sp_rows_insert(struct sp_rows *r, const struct sp_row_insertion *insertion, size_t count);
 
 /* Row `from` becomes row `to`. */
@@ -46,9 +49,9 @@ void sp_rows_move(struct sp_schedule *s, size_t from, size_t to);
 
 /* Takes a step's rows one by one and puts the merged ones into `to`. See schedule_merge.c. */
 struct sp_merge_span {
-    bool open;         /* holds at least one segment */
-    size_t segments;
-    double begin, end;
+    size_t segments;   /* 0: nothing in it */
+    double begin, end; /* s */
+    size_t source;     /* source row at its end */
     double first[SP_INPUTS], last[SP_INPUTS];
     double area[SP_INPUTS], moment[SP_INPUTS]; /* integrals of f and of f (t - begin) */
     double least[SP_INPUTS], most[SP_INPUTS];
@@ -56,18 +59,17 @@ struct sp_merge_span {
 
 struct sp_merge {
     struct sp_rows *to;
-    double width;             /* s; 0: nothing is merged */
+    double width; /* s; 0: nothing is merged */
     unsigned short step;
     const struct sp_mark *mark; /* of the source, by source row */
-    size_t marks, next_mark;
-    bool begun;               /* a stretch is going on */
-    struct sp_row last;       /* the row pushed last */
-    struct sp_merge_span before, now; /* the last span that could be closed, and the growing one */
-    double sum[SP_INPUTS], weight;    /* of the node at the left end of `before` */
-    double least[SP_INPUTS], most[SP_INPUTS];
-    struct sp_row node;       /* that node's row as pushed */
-    size_t node_source;       /* its source row, for the marks */
-    bool node_marked;
+    size_t marks, next_mark, scan_mark;
+    bool begun;                       /* a stretch is going on */
+    unsigned char flags;              /* of the stretch */
+    struct sp_merge_span before, now; /* the last span, kept open, and the growing one */
+    struct {                          /* the node at the left end of `before`, or of `now` */
+        double time, sum[SP_INPUTS], weight, value[SP_INPUTS], least[SP_INPUTS], most[SP_INPUTS];
+        size_t source;
+    } node;
     size_t pushed;
     bool failed;
 };
@@ -86,7 +88,12 @@ void sp_rows_thin(struct sp_rows *r);
 
 /* Where power comes from, in order of preference. */
 enum sp_power_source {
-    SP_POWER_COLUMN, SP_POWER_TORQUE, SP_POWER_FUEL, SP_POWER_AIR, SP_POWER_THROTTLE, SP_POWER_ROAD
+    SP_POWER_COLUMN,
+    SP_POWER_TORQUE,
+    SP_POWER_FUEL,
+    SP_POWER_AIR,
+    SP_POWER_THROTTLE,
+    SP_POWER_ROAD
 };
 enum sp_speed_source { SP_ENGINE_COLUMN, SP_ENGINE_GEAR, SP_ENGINE_SHIFTED, SP_ENGINE_ASSUMED };
 
@@ -106,9 +113,12 @@ struct sp_engine_sources {
 
 /* Wheel power of the road load by its parts, W: rolling, climbing, drag, speeding up; and what the brakes
  * take of it. */
-struct sp_wheel_power { double rolling, climb, drag, inertia, brakes; };
+struct sp_wheel_power {
+    double rolling, climb, drag, inertia, brakes;
+};
 
-/* Fills power, engine speed and heat of a row. `wheel` is filled when power comes from the road; may be NULL. */
+/* Fills power, engine speed and heat of a row. `wheel` is filled when power comes from the road; may be NULL.
+ */
 void sp_engine_row_fill(const struct sp_engine_sources *s, const struct sp_moment *at, double in[SP_INPUTS],
                         struct sp_wheel_power *wheel);
 
@@ -127,9 +137,10 @@ struct sp_scheduling {
     struct sp_rows rows;
     struct sp_complaints *complaints, *cautions;
     bool failed;
-    double datum;    /* altitude [m] at which air.pressure holds in the traces' own count; NAN: none seen yet */
-    double base;     /* m: altitude of air.pressure in the standard atmosphere */
-    double pressure; /* Pa, at the end of what is built so far */
+    double datum; /* altitude [m] at which air.pressure holds in the traces' own count; NAN: none seen yet */
+    double base, base_pressure; /* m, Pa: where air.pressure belongs in the standard atmosphere */
+    double pressure;            /* Pa, at the end of what is built so far */
+    double work_done;           /* J put into the wheels by the engine, what the sum of work is judged by */
     bool cautioned_speed, cautioned_throttle, cautioned_flow;
 };
 
@@ -144,7 +155,13 @@ bool sp_schedule_trace(struct sp_scheduling *b, size_t step, struct sp_rows *to)
 /* Sets the flags of pump and fan over the whole drive. False: no memory. */
 bool sp_schedule_run_on(struct sp_rows *r, const struct sp_design *d);
 
-/* Smoothed slope of altitude over distance along the road (a sine), by row. False: no memory. */
-void sp_schedule_slope(size_t rows, const double *distance, const double *altitude, double half, double *slope);
+/* Slope of altitude over distance along the road (a sine), by row: the mean over `half` metres to either
+ * side, cut off at the ends of the trace. `distance` does not fall. */
+void sp_schedule_slope(size_t rows, const double *distance, const double *altitude, double half,
+                       double *slope);
+
+/* Acceleration as the difference over the two neighbours, one-sided at ends and jumps: with trapezoids over
+ * the rows its work is then exactly the change of kinetic energy, however uneven the rows. */
+void sp_schedule_acceleration(size_t rows, const double *time, const double *speed, double *acceleration);
 
 #endif

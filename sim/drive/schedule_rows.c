@@ -28,7 +28,8 @@ bool sp_rows_reserve(struct sp_rows *r, size_t rows)
     size_t room = r->room + r->room / 2 + 16;
     if (room < rows) room = rows;
     bool fine = grow_doubles(&s->time, room);
-    for (int c = 0; c < SP_INPUTS; c++) fine = fine && grow_doubles(&s->channel[c], room);
+    for (int c = 0; c < SP_INPUTS; c++)
+        fine = fine && grow_doubles(&s->channel[c], room);
     void *flags = s->flags, *step = s->step;
     fine = fine && grow(&flags, room, sizeof *s->flags);
     fine = fine && grow(&step, room, sizeof *s->step);
@@ -43,7 +44,8 @@ bool sp_rows_push(struct sp_rows *r, const struct sp_row *row, unsigned short st
     struct sp_schedule *s = &r->table;
     if (!sp_rows_reserve(r, s->rows + 1)) return false;
     s->time[s->rows] = row->time;
-    for (int c = 0; c < SP_INPUTS; c++) s->channel[c][s->rows] = row->in[c];
+    for (int c = 0; c < SP_INPUTS; c++)
+        s->channel[c][s->rows] = row->in[c];
     s->flags[s->rows] = row->flags;
     s->step[s->rows] = step;
     s->rows++;
@@ -92,7 +94,8 @@ bool sp_rows_append(struct sp_rows *to, const struct sp_rows *from)
     size_t at = joined ? a->rows - 1 : a->rows;
     double shift = a->rows > 0 ? a->time[a->rows - 1] - b->time[0] : 0.0;
     if (!sp_rows_reserve(to, at + b->rows)) return false;
-    for (size_t i = joined ? 1 : 0; i < b->rows; i++) a->time[at + i] = b->time[i] + shift;
+    for (size_t i = joined ? 1 : 0; i < b->rows; i++)
+        a->time[at + i] = b->time[i] + shift;
     if (!joined && at > 0) a->time[at] = a->time[at - 1]; /* equal, whatever the rounding */
     for (int c = 0; c < SP_INPUTS; c++)
         memcpy(a->channel[c] + at, b->channel[c], b->rows * sizeof *b->channel[c]);
@@ -108,7 +111,8 @@ void sp_rows_move(struct sp_schedule *s, size_t from, size_t to)
 {
     if (from == to) return;
     s->time[to] = s->time[from];
-    for (int c = 0; c < SP_INPUTS; c++) s->channel[c][to] = s->channel[c][from];
+    for (int c = 0; c < SP_INPUTS; c++)
+        s->channel[c][to] = s->channel[c][from];
     s->flags[to] = s->flags[from];
     s->step[to] = s->step[from];
 }
@@ -118,13 +122,14 @@ static double between(double a, double b, double share)
     return a + share * (b - a);
 }
 
-/* Row `to` becomes the state at time `at` between rows `low` and `high` (which may be `to` itself: done last). */
+/* Row `to` becomes the state at time `at` between rows `low` and `high` (which may be `to` itself: done
+ * last). */
 static void interpolate(struct sp_schedule *s, size_t low, size_t high, double at, size_t to)
 {
     double h = s->time[high] - s->time[low], share = h > 0.0 ? (at - s->time[low]) / h : 0.0;
     for (int c = 0; c < SP_INPUTS; c++)
-        s->channel[c][to] = share > 0.0 ? between(s->channel[c][low], s->channel[c][high], share)
-                                        : s->channel[c][low];
+        s->channel[c][to] =
+            share > 0.0 ? between(s->channel[c][low], s->channel[c][high], share) : s->channel[c][low];
     s->flags[to] = s->flags[low];
     s->step[to] = s->step[low];
     s->time[to] = at;
@@ -136,7 +141,8 @@ bool sp_rows_insert(struct sp_rows *r, const struct sp_row_insertion *insertion,
 {
     struct sp_schedule *s = &r->table;
     size_t more = 0, mark = s->marks;
-    for (size_t i = 0; i < count; i++) more += s->time[insertion[i].segment] == insertion[i].at ? 1 : 2;
+    for (size_t i = 0; i < count; i++)
+        more += s->time[insertion[i].segment] == insertion[i].at ? 1 : 2;
     if (!sp_rows_reserve(r, s->rows + more)) return false;
     size_t next = s->rows; /* first old row that is already in its new place */
     s->rows += more;
@@ -146,7 +152,8 @@ bool sp_rows_insert(struct sp_rows *r, const struct sp_row_insertion *insertion,
         while (next > k + 1) {
             next--;
             sp_rows_move(s, next, next + more);
-            for (; mark > 0 && s->mark[mark - 1].row == next; mark--) s->mark[mark - 1].row += more;
+            for (; mark > 0 && s->mark[mark - 1].row == next; mark--)
+                s->mark[mark - 1].row += more;
         }
         size_t upper = k + 1 + more; /* the end of the segment, or the pair put in before it */
         if (begin) {

@@ -22,7 +22,7 @@ static char *from_latin1(const char *s, size_t n)
     for (size_t i = 0; i < n; i++) {
         unsigned char c = (unsigned char)s[i];
         if (c < 0x80) {
-            *to++ = (char)c;
+            *to++ = (char)(c ? c : '?');
         } else {
             *to++ = (char)(0xC0 | c >> 6);
             *to++ = (char)(0x80 | (c & 0x3F));
@@ -59,7 +59,7 @@ static void undo_double(char *s)
 
 static bool blank(char c)
 {
-    return (unsigned char)c <= ' ' || c == 0x7F;
+    return (c > 0 && c <= ' ') || c == 0x7F;
 }
 
 char *sp_trace_text_clean(const char *s, size_t n)
@@ -73,7 +73,7 @@ char *sp_trace_text_clean(const char *s, size_t n)
         memcpy(out, s, n);
         out[n] = '\0';
         for (size_t i = 0; i < n; i++)
-            if (out[i] == '\0') out[i] = ' ';
+            if (out[i] == '\0') out[i] = '?';
         undo_double(out);
     }
     for (char *p = out; p && *p; p++)

@@ -10,7 +10,7 @@
 bool sp_trace_text_is_utf8(const char *s, size_t n);
 
 /* A copy fit to be compared and printed: blanks at both ends trimmed, control characters made blanks,
- * doubly encoded UTF-8 decoded once, anything that is not UTF-8 read as Latin-1. NULL: no memory. */
+ * NUL made '?', doubly encoded UTF-8 decoded once, what is not UTF-8 read as Latin-1. NULL: no memory. */
 char *sp_trace_text_clean(const char *s, size_t n);
 
 /* Lines ended by \n, \r\n or \r within the bytes. */

@@ -7,7 +7,7 @@
 
 static bool lacks_memory(struct sp_reader *r)
 {
-    struct sp_place at = { .file = r->name };
+    struct sp_place at = {.file = r->name};
     sp_complain(r->complaints, &at, "too little memory", "memory enough for the case", NULL);
     return false;
 }
@@ -19,7 +19,7 @@ static bool faulty(const struct sp_reader *r)
 
 bool sp_case_open(struct sp_reader *r, const char *text, size_t size, char *const *set, size_t sets)
 {
-    struct sp_place at = { .file = r->name };
+    struct sp_place at = {.file = r->name};
     if (!r->units) {
         sp_complain(r->complaints, &at, "no unit data", "the data files of UDUNITS-2 in their place", NULL);
         return false;
@@ -50,7 +50,7 @@ void sp_case_close(struct sp_reader *r)
 static struct sp_design *read_all(struct sp_reader *r, const char *text, size_t size, char *const *set,
                                   size_t sets, struct sp_complaints *to)
 {
-    struct sp_complaints own = { 0 }, unused = { 0 };
+    struct sp_complaints own = {0}, unused = {0};
     struct sp_design *design = NULL;
     r->complaints = &own;
     if (!r->cautions) r->cautions = &unused;
@@ -61,7 +61,7 @@ static struct sp_design *read_all(struct sp_reader *r, const char *text, size_t 
     sp_case_close(r);
     for (size_t i = 0; i < own.count; ++i) {
         const struct sp_complaint *c = &own.list[i];
-        struct sp_place at = { c->file, c->line, c->path, c->named_by };
+        struct sp_place at = {c->file, c->line, c->path, c->named_by};
         sp_complain(to, &at, c->found, c->expected, c->hint);
     }
     if (to) to->dropped += own.dropped;
@@ -74,7 +74,7 @@ struct sp_design *sp_case_read(struct sp_units *u, const char *file, char *const
                                enum sp_purpose purpose, struct sp_complaints *complaints,
                                struct sp_complaints *cautions)
 {
-    struct sp_reader r = { .units = u, .name = file, .purpose = purpose, .cautions = cautions };
+    struct sp_reader r = {.units = u, .name = file, .purpose = purpose, .cautions = cautions};
     return read_all(&r, NULL, 0, set, sets, complaints);
 }
 
@@ -82,6 +82,6 @@ struct sp_design *sp_case_parse(struct sp_units *u, const char *name, const char
                                 char *const *set, size_t sets, enum sp_purpose purpose,
                                 struct sp_complaints *complaints, struct sp_complaints *cautions)
 {
-    struct sp_reader r = { .units = u, .name = name, .purpose = purpose, .cautions = cautions };
+    struct sp_reader r = {.units = u, .name = name, .purpose = purpose, .cautions = cautions};
     return read_all(&r, text ? text : "", size, set, sets, complaints);
 }

@@ -13,9 +13,9 @@ struct sp_reader {
     struct sp_units *units;
     const char *name; /* the case's file, for complaints and as the base of relative paths */
     enum sp_purpose purpose;
-    bool no_files;    /* a car given as a path is refused: for fuzzers */
+    bool no_files;        /* a car given as a path is refused: for fuzzers */
     struct sp_json *tree; /* case, car and overrides merged */
-    bool no_car;      /* the car could not be had: nothing is said of its keys */
+    bool no_car;          /* the car could not be had: nothing is said of its keys */
     bool no_memory;
     struct sp_design *design;
     struct sp_complaints *complaints, *cautions;
@@ -24,16 +24,18 @@ struct sp_reader {
 /* Reads, or parses `text` when it is not NULL, and leaves tree and design in the reader. False: complaints
  * say why. `r` comes zeroed but for units, name, purpose, no_files, complaints and cautions. */
 bool sp_case_open(struct sp_reader *r, const char *text, size_t size, char *const *set, size_t sets);
+/* Writes all inputs of an opened reader, as text or as one JSON document. */
+void sp_case_show_all(struct sp_reader *r, FILE *to, bool json);
 /* Frees what the reader holds; the design too, unless it was taken away. */
 void sp_case_close(struct sp_reader *r);
 
 /* ---- steps of it ----------------------------------------------------------------------------------- */
 
 bool sp_case_load(struct sp_reader *r, const char *text, size_t size, char *const *set, size_t sets);
-void sp_case_walk(struct sp_reader *r);  /* unknown keys, objects where objects belong */
-void sp_case_fill(struct sp_reader *r);  /* values and plain defaults into the design */
+void sp_case_walk(struct sp_reader *r);   /* unknown keys, objects where objects belong */
+void sp_case_fill(struct sp_reader *r);   /* values and plain defaults into the design */
 void sp_case_settle(struct sp_reader *r); /* which laws hold; then defaults by rule; then what follows */
-void sp_case_check(struct sp_reader *r); /* how values stand to each other: car */
+void sp_case_check(struct sp_reader *r);  /* how values stand to each other: car */
 void sp_case_check_core(struct sp_reader *r);
 void sp_case_check_drive(struct sp_reader *r);
 void sp_case_doubt(struct sp_reader *r); /* cautions */
@@ -77,8 +79,8 @@ double sp_key_double(const struct sp_key *row, const struct sp_design *d, size_t
 /* Keeps one number as the row says. */
 void sp_key_store(const struct sp_key *row, void *to, double value);
 /* Reads a node into its place; complains and leaves the place as it is when it will not do. */
-void sp_case_value(struct sp_reader *r, const struct sp_key *row, const struct sp_json *node, const char *path,
-                   void *to);
+void sp_case_value(struct sp_reader *r, const struct sp_key *row, const struct sp_json *node,
+                   const char *path, void *to);
 void sp_case_columns(struct sp_reader *r, const struct sp_json *node, const char *path, struct sp_step *step);
 
 #endif

@@ -28,15 +28,16 @@ static void check_orders(struct sp_reader *r)
     const struct sp_design *d = r->design;
     const struct sp_fan *f = &d->duct.fan;
     const struct order orders[] = {
-        { "car.thermostat.opens", d->thermostat.opens, d->thermostat.full, false, "opens below full" },
-        { "car.engine.idle_speed", d->engine.idle_speed, d->engine.rated_speed, false,
-          "idle_speed below rated_speed" },
-        { "car.tank.air_space", d->tank.air_space, d->tank.volume, false, "air_space below volume" },
-        { "car.duct.fan.hub", f->hub, f->diameter, false, "hub below diameter" },
-        { "car.duct.fan.switch.off", f->off, f->on, false, "off below on" },
-        { "car.duct.fan.proportional.from", f->from, f->to, false, "from below to" },
+        {"car.thermostat.opens", d->thermostat.opens, d->thermostat.full, false, "opens below full"},
+        {"car.engine.idle_speed", d->engine.idle_speed, d->engine.rated_speed, false,
+         "idle_speed below rated_speed"},
+        {"car.tank.air_space", d->tank.air_space, d->tank.volume, false, "air_space below volume"},
+        {"car.duct.fan.hub", f->hub, f->diameter, false, "hub below diameter"},
+        {"car.duct.fan.switch.off", f->off, f->on, false, "off below on"},
+        {"car.duct.fan.proportional.from", f->from, f->to, false, "from below to"},
     };
-    for (size_t i = 0; i < sizeof orders / sizeof *orders; ++i) check_order(r, &orders[i]);
+    for (size_t i = 0; i < sizeof orders / sizeof *orders; ++i)
+        check_order(r, &orders[i]);
 }
 
 /* ---- tables ---------------------------------------------------------------------------------------- */
@@ -45,7 +46,8 @@ static void check_orders(struct sp_reader *r)
 static size_t out_of_order(const struct sp_table *t, size_t column, double sign)
 {
     for (size_t i = 1; i < t->rows; ++i)
-        if (!(sign * t->cell[i * t->columns + column] > sign * t->cell[(i - 1) * t->columns + column])) return i;
+        if (!(sign * t->cell[i * t->columns + column] > sign * t->cell[(i - 1) * t->columns + column]))
+            return i;
     return 0;
 }
 
@@ -55,8 +57,10 @@ static void check_rising(struct sp_reader *r, const char *path, const struct sp_
     char here[SP_PATH_MAX];
     size_t bad = t->rows ? out_of_order(t, column, sign) : 0;
     if (!bad) return;
-    if (t->columns > 1) snprintf(here, sizeof here, "%.200s[%zu][%zu]", path, bad, column);
-    else snprintf(here, sizeof here, "%.200s[%zu]", path, bad);
+    if (t->columns > 1)
+        snprintf(here, sizeof here, "%.200s[%zu][%zu]", path, bad, column);
+    else
+        snprintf(here, sizeof here, "%.200s[%zu]", path, bad);
     sp_case_fault(r, here, NULL, expected, NULL);
 }
 
@@ -67,8 +71,10 @@ static void check_curve(struct sp_reader *r, const char *path, const struct sp_t
     check_rising(r, path, t, 0, 1.0, "flow rising from pair to pair");
     double last = t->cell[2 * t->rows - 1];
     if (t->rows > 1 && !(last < t->cell[2 * t->rows - 3]))
-        sp_case_fault(r, path, "pressure that does not fall at the end", "pressure falling with flow at the last pair", NULL);
-    if (!(t->cell[1] > 0.0)) sp_case_fault(r, path, "no pressure at the first pair", "pressure above 0 there", NULL);
+        sp_case_fault(r, path, "pressure that does not fall at the end",
+                      "pressure falling with flow at the last pair", NULL);
+    if (!(t->cell[1] > 0.0))
+        sp_case_fault(r, path, "no pressure at the first pair", "pressure above 0 there", NULL);
 }
 
 static int by_speed_and_power(const void *a, const void *b)
@@ -86,7 +92,8 @@ static void check_heat_table(struct sp_reader *r)
     size_t powers = 0;
     if (!t->rows) return;
     qsort(t->cell, t->rows, t->columns * sizeof *t->cell, by_speed_and_power);
-    while (powers < t->rows && t->cell[3 * powers] == t->cell[0]) ++powers;
+    while (powers < t->rows && t->cell[3 * powers] == t->cell[0])
+        ++powers;
     bool full = t->rows % powers == 0 && powers > 1 && t->rows > powers;
     for (size_t i = 0; full && i < t->rows; ++i) {
         const double *row = &t->cell[3 * i], *first = &t->cell[3 * (i % powers)];
@@ -95,8 +102,8 @@ static void check_heat_table(struct sp_reader *r)
                (i % powers || !i || row[0] > row[-3]);
     }
     if (!full)
-        sp_case_fault(r, path, "no full grid", "every engine speed with every power once, two or more of each",
-                      NULL);
+        sp_case_fault(r, path, "no full grid",
+                      "every engine speed with every power once, two or more of each", NULL);
 }
 
 /* ---- rooms ----------------------------------------------------------------------------------------- */
@@ -109,7 +116,8 @@ static void check_engine(struct sp_reader *r)
         sp_case_fault(r, "car.engine.heat.fraction", "nothing",
                       "a number such as 0.65, the heat to the coolant over brake power at rated power", NULL);
     if (e->heat_law == SP_HEAT_TABLE && !sp_case_given(r, "car.engine.heat.table"))
-        sp_case_fault(r, "car.engine.heat.table", "nothing", "rows of engine speed, brake power and heat", NULL);
+        sp_case_fault(r, "car.engine.heat.table", "nothing", "rows of engine speed, brake power and heat",
+                      NULL);
     check_heat_table(r);
 }
 
@@ -118,7 +126,8 @@ static void check_body(struct sp_reader *r)
     const struct sp_body *b = &r->design->body;
     check_rising(r, "car.body.gears", &b->gears, 0, -1.0, "ratios falling from gear to gear");
     if (b->gears.rows && !sp_case_given(r, "car.body.wheel_radius"))
-        sp_case_fault(r, "car.body.wheel_radius", "nothing", "a length such as \"300 mm\", for gears are given", NULL);
+        sp_case_fault(r, "car.body.wheel_radius", "nothing",
+                      "a length such as \"300 mm\", for gears are given", NULL);
 }
 
 static void check_pump(struct sp_reader *r)
@@ -128,7 +137,8 @@ static void check_pump(struct sp_reader *r)
     if (r->purpose == SP_FOR_DRIVE && !p->electric && sp_case_given(r, "car.pump") &&
         !sp_case_given(r, "car.pump.speed"))
         sp_case_fault(r, "car.pump.speed", "nothing",
-                      "a speed of rotation such as \"6900 rpm\", the pump speed for which its curve holds", NULL);
+                      "a speed of rotation such as \"6900 rpm\", the pump speed for which its curve holds",
+                      NULL);
 }
 
 static void check_fan(struct sp_reader *r)
@@ -142,7 +152,8 @@ static void check_fan(struct sp_reader *r)
 
 static void check_diffuser(struct sp_reader *r)
 {
-    bool kind = sp_case_given(r, "car.duct.diffuser.kind"), length = sp_case_given(r, "car.duct.diffuser.length");
+    bool kind = sp_case_given(r, "car.duct.diffuser.kind"),
+         length = sp_case_given(r, "car.duct.diffuser.length");
     if (kind && sp_case_given(r, "car.duct.diffuser.loss"))
         sp_case_fault(r, "car.duct.diffuser.kind", "both kind and loss", "one of them", NULL);
     if (length && !kind)

@@ -34,14 +34,18 @@ static void fault(struct sp_reader *r, const struct sp_json *at, size_t i, const
 /* Keys that mean nothing in a step of another kind. */
 static void check_strays(struct sp_reader *r, const struct sp_json *node, size_t i, enum sp_step_kind kind)
 {
-    static const struct { const char *key; enum sp_step_kind kind; const char *with; } owners[] = {
-        { "speed", SP_STEP_HOLD, "no such key but with hold" },
-        { "power", SP_STEP_HOLD, "no such key but with hold" },
-        { "engine_speed", SP_STEP_HOLD, "no such key but with hold" },
-        { "grade", SP_STEP_HOLD, "no such key but with hold" },
-        { "smooth", SP_STEP_TRACE, "no such key but with trace" },
-        { "columns", SP_STEP_TRACE, "no such key but with trace" },
-        { "layout", SP_STEP_TRACE, "no such key but with trace" },
+    static const struct {
+        const char *key;
+        enum sp_step_kind kind;
+        const char *with;
+    } owners[] = {
+        {"speed", SP_STEP_HOLD, "no such key but with hold"},
+        {"power", SP_STEP_HOLD, "no such key but with hold"},
+        {"engine_speed", SP_STEP_HOLD, "no such key but with hold"},
+        {"grade", SP_STEP_HOLD, "no such key but with hold"},
+        {"smooth", SP_STEP_TRACE, "no such key but with trace"},
+        {"columns", SP_STEP_TRACE, "no such key but with trace"},
+        {"layout", SP_STEP_TRACE, "no such key but with trace"},
     };
     for (size_t k = 0; k < sizeof owners / sizeof *owners; ++k) {
         const struct sp_json *stray = member(node, owners[k].key);
@@ -51,8 +55,8 @@ static void check_strays(struct sp_reader *r, const struct sp_json *node, size_t
 
 static void check_step(struct sp_reader *r, const struct sp_json *node, size_t i)
 {
-    static const char *const kinds[] = { [SP_STEP_TRACE] = "trace", [SP_STEP_IDLE] = "idle",
-        [SP_STEP_HOLD] = "hold", [SP_STEP_SOAK] = "soak" };
+    static const char *const kinds[] = {
+        [SP_STEP_TRACE] = "trace", [SP_STEP_IDLE] = "idle", [SP_STEP_HOLD] = "hold", [SP_STEP_SOAK] = "soak"};
     struct sp_step *step = &r->design->step[i];
     int n = 0;
     for (int k = 0; k < 4; ++k) {

@@ -46,7 +46,8 @@ static void check_unit(struct sp_reader *r, const struct sp_json *node, const ch
     double scale, offset;
     char why[300];
     if (node->type != SP_JSON_STRING) return;
-    if (c == SP_COL_MARK) sp_case_fault_at(r, node, path, NULL, "no unit, for marks are text", NULL);
+    if (c == SP_COL_MARK)
+        sp_case_fault_at(r, node, path, NULL, "no unit, for marks are text", NULL);
     else if (!sp_unit_scale(r->units, sp_column_kind(c), node->text, &scale, &offset, why, sizeof why))
         sp_case_fault_at(r, node, path, NULL, why, NULL);
 }
@@ -81,8 +82,12 @@ void sp_case_columns(struct sp_reader *r, const struct sp_json *node, const char
         enum sp_column c;
         char here[SP_PATH_MAX];
         snprintf(here, sizeof here, "%.120s.%.100s", path, m->key);
-        if (!column_of(m->key, &c)) unknown(r, m, here);
-        else if (m->type == SP_JSON_OBJECT) read_mapping(r, m, here, c, &step->format);
-        else step->format.column[c].heading = text_of(r, m, here, "the heading in the file, or an object with name and unit");
+        if (!column_of(m->key, &c))
+            unknown(r, m, here);
+        else if (m->type == SP_JSON_OBJECT)
+            read_mapping(r, m, here, c, &step->format);
+        else
+            step->format.column[c].heading =
+                text_of(r, m, here, "the heading in the file, or an object with name and unit");
     }
 }

@@ -23,19 +23,22 @@ static void doubt_duct(struct sp_reader *r)
     double face = d->core.width * d->core.height;
     bool fan = d->fan.fitted;
     const struct doubt list[] = {
-        { d->inlet.area > face, "car.duct.inlet.area", NULL, "an inlet smaller than the core's face, as a rule" },
-        { d->exit.area < 0.1 * face, "car.duct.exit.area", NULL, "an exit of more than a tenth of the core's face, as a rule" },
-        { d->inlet.area < 0.05 * face, "car.duct.inlet.area", NULL, "an inlet of more than a twentieth of the core's face, as a rule" },
-        { fan && d->fan.diameter > 1.2 * fmin(d->core.width, d->core.height), "car.duct.fan.diameter", NULL,
-          "a fan that fits upon the core" },
-        { fan && d->fan.law == SP_FAN_SWITCHED && d->fan.on > r->design->limits.coolant, "car.duct.fan.switch.on",
-          NULL, "a switch that closes below the limit of the coolant" },
-        { fan && d->fan.law == SP_FAN_PROPORTIONAL && d->fan.from > r->design->limits.coolant,
-          "car.duct.fan.proportional.from", NULL, "a fan that starts below the limit of the coolant" },
-        { fan && d->fan.law != SP_FAN_SWITCHED && sp_case_given(r, "car.duct.fan.switch"), "car.duct.fan.switch",
-          NULL, "no switch with this control; it is not used" },
-        { fan && d->fan.law != SP_FAN_PROPORTIONAL && sp_case_given(r, "car.duct.fan.proportional"),
-          "car.duct.fan.proportional", NULL, "control \"proportional\" with it; it is not used" },
+        {d->inlet.area > face, "car.duct.inlet.area", NULL,
+         "an inlet smaller than the core's face, as a rule"},
+        {d->exit.area < 0.1 * face, "car.duct.exit.area", NULL,
+         "an exit of more than a tenth of the core's face, as a rule"},
+        {d->inlet.area < 0.05 * face, "car.duct.inlet.area", NULL,
+         "an inlet of more than a twentieth of the core's face, as a rule"},
+        {fan && d->fan.diameter > 1.2 * fmin(d->core.width, d->core.height), "car.duct.fan.diameter", NULL,
+         "a fan that fits upon the core"},
+        {fan && d->fan.law == SP_FAN_SWITCHED && d->fan.on > r->design->limits.coolant,
+         "car.duct.fan.switch.on", NULL, "a switch that closes below the limit of the coolant"},
+        {fan && d->fan.law == SP_FAN_PROPORTIONAL && d->fan.from > r->design->limits.coolant,
+         "car.duct.fan.proportional.from", NULL, "a fan that starts below the limit of the coolant"},
+        {fan && d->fan.law != SP_FAN_SWITCHED && sp_case_given(r, "car.duct.fan.switch"),
+         "car.duct.fan.switch", NULL, "no switch with this control; it is not used"},
+        {fan && d->fan.law != SP_FAN_PROPORTIONAL && sp_case_given(r, "car.duct.fan.proportional"),
+         "car.duct.fan.proportional", NULL, "control \"proportional\" with it; it is not used"},
     };
     say(r, list, sizeof list / sizeof *list);
 }
@@ -46,21 +49,22 @@ static void doubt_engine(struct sp_reader *r)
     const struct sp_engine *e = &d->engine;
     double mean_pressure = 2.0 * e->rated_power / (e->displacement * e->rated_speed);
     const struct doubt list[] = {
-        { mean_pressure > 40e5 || mean_pressure < 2e5, "car.engine.rated_power", NULL,
-          "a mean effective pressure of 2 bar to 40 bar from rated power, speed and displacement" },
-        { e->heat_fraction > 1.1 || e->heat_fraction < 0.2, "car.engine.heat.fraction", NULL,
-          "0.2 to 1.1, as a rule" },
-        { e->heat_law != SP_HEAT_TABLE && e->heat_table.rows, "car.engine.heat.table", "a table",
-          "law \"table\" with it; it is not used" },
-        { e->heat_law == SP_HEAT_TABLE && sp_case_given(r, "car.engine.heat.fraction"), "car.engine.heat.fraction",
-          NULL, "no fraction with law \"table\"; it is not used" },
-        { !d->thermostat.none && d->thermostat.opens > d->limits.coolant, "car.thermostat.opens", NULL,
-          "a thermostat that opens below the limit of the coolant" },
-        { !d->pump.electric && sp_case_given(r, "car.pump.run_on"), "car.pump.run_on", NULL,
-          "an electric pump with it; a belt has no run-on" },
-        { d->start.coolant > d->limits.coolant, "start.coolant", NULL, "a start below the limit of the coolant" },
-        { d->start.coolant > sp_coolant_boiling(&d->coolant.fluid, d->air.pressure + fmax(d->tank.cap, 0.0)),
-          "start.coolant", NULL, "a start below boiling" },
+        {mean_pressure > 40e5 || mean_pressure < 2e5, "car.engine.rated_power", NULL,
+         "a mean effective pressure of 2 bar to 40 bar from rated power, speed and displacement"},
+        {e->heat_fraction > 1.1 || e->heat_fraction < 0.2, "car.engine.heat.fraction", NULL,
+         "0.2 to 1.1, as a rule"},
+        {e->heat_law != SP_HEAT_TABLE && e->heat_table.rows, "car.engine.heat.table", "a table",
+         "law \"table\" with it; it is not used"},
+        {e->heat_law == SP_HEAT_TABLE && sp_case_given(r, "car.engine.heat.fraction"),
+         "car.engine.heat.fraction", NULL, "no fraction with law \"table\"; it is not used"},
+        {!d->thermostat.none && d->thermostat.opens > d->limits.coolant, "car.thermostat.opens", NULL,
+         "a thermostat that opens below the limit of the coolant"},
+        {!d->pump.electric && sp_case_given(r, "car.pump.run_on"), "car.pump.run_on", NULL,
+         "an electric pump with it; a belt has no run-on"},
+        {d->start.coolant > d->limits.coolant, "start.coolant", NULL,
+         "a start below the limit of the coolant"},
+        {d->start.coolant > sp_coolant_boiling(&d->coolant.fluid, d->air.pressure + fmax(d->tank.cap, 0.0)),
+         "start.coolant", NULL, "a start below boiling"},
     };
     say(r, list, sizeof list / sizeof *list);
 }

@@ -29,8 +29,10 @@ static void group_expected(const struct sp_reader *r, const struct sp_key *group
 static void missing(struct sp_reader *r, const struct sp_key *row, const char *path)
 {
     char expected[400];
-    if (row->shape == SP_SHAPE_GROUP) group_expected(r, row, expected, sizeof expected);
-    else sp_key_expected(row, expected, sizeof expected);
+    if (row->shape == SP_SHAPE_GROUP)
+        group_expected(r, row, expected, sizeof expected);
+    else
+        sp_key_expected(row, expected, sizeof expected);
     sp_case_fault(r, path, "nothing", expected, NULL);
 }
 
@@ -72,9 +74,11 @@ static void set_default(struct sp_reader *r, const struct sp_key *row, void *to)
         default_three(r, row, to);
         return;
     }
-    if (row->shape == SP_SHAPE_WORD) sp_word_value(row, row->fallback, &value);
+    if (row->shape == SP_SHAPE_WORD)
+        sp_word_value(row, row->fallback, &value);
     else if (row->shape == SP_SHAPE_QUANTITY &&
-             !sp_quantity_read(r->units, row->kind, row->fallback, &value, why, sizeof why)) value = NAN;
+             !sp_quantity_read(r->units, row->kind, row->fallback, &value, why, sizeof why))
+        value = NAN;
     sp_key_store(row, to, value);
 }
 
@@ -104,9 +108,12 @@ static void fill_row(struct sp_reader *r, const struct sp_key *row)
         return;
     }
     if (row->or_object && node && node->type == SP_JSON_OBJECT) return;
-    if (node) sp_case_value(r, row, node, row->path, to);
-    else if (needed(r, row) && group_there(r, row)) missing(r, row, row->path);
-    else set_default(r, row, to);
+    if (node)
+        sp_case_value(r, row, node, row->path, to);
+    else if (needed(r, row) && group_there(r, row))
+        missing(r, row, row->path);
+    else
+        set_default(r, row, to);
 }
 
 static void fill_step(struct sp_reader *r, const struct sp_json *node, size_t i)
@@ -119,9 +126,12 @@ static void fill_step(struct sp_reader *r, const struct sp_json *node, size_t i)
         const struct sp_json *value = sp_case_node(node, rest);
         char path[SP_PATH_MAX];
         snprintf(path, sizeof path, "drive[%zu].%s", i, rest);
-        if (!value) set_default(r, row, sp_key_place(row, r->design, i));
-        else if (row->shape == SP_SHAPE_COLUMNS) sp_case_columns(r, value, path, &r->design->step[i]);
-        else sp_case_value(r, row, value, path, sp_key_place(row, r->design, i));
+        if (!value)
+            set_default(r, row, sp_key_place(row, r->design, i));
+        else if (row->shape == SP_SHAPE_COLUMNS)
+            sp_case_columns(r, value, path, &r->design->step[i]);
+        else
+            sp_case_value(r, row, value, path, sp_key_place(row, r->design, i));
     }
 }
 
@@ -130,7 +140,8 @@ static void fill_steps(struct sp_reader *r)
     const struct sp_json *drive = sp_json_member(r->tree, "drive");
     size_t n = 0, i = 0;
     if (!drive || drive->type != SP_JSON_ARRAY) return;
-    for (const struct sp_json *c = drive->child; c; c = c->next) ++n;
+    for (const struct sp_json *c = drive->child; c; c = c->next)
+        ++n;
     if (!n) {
         sp_case_fault(r, "drive", "an empty list", "at least one step", NULL);
         return;
@@ -142,7 +153,8 @@ static void fill_steps(struct sp_reader *r)
         return;
     }
     r->design->steps = n;
-    for (const struct sp_json *c = drive->child; c; c = c->next, ++i) fill_step(r, c, i);
+    for (const struct sp_json *c = drive->child; c; c = c->next, ++i)
+        fill_step(r, c, i);
 }
 
 static bool passed_over(const struct sp_reader *r, const struct sp_key *row)
@@ -158,8 +170,10 @@ void sp_case_fill(struct sp_reader *r)
         if (!sp_key_of_step(row)) blank(row, sp_key_place(row, r->design, 0));
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
         if (passed_over(r, row)) continue;
-        if (row->shape == SP_SHAPE_GROUP) fill_group(r, row);
-        else fill_row(r, row);
+        if (row->shape == SP_SHAPE_GROUP)
+            fill_group(r, row);
+        else
+            fill_row(r, row);
     }
     fill_steps(r);
 }

@@ -43,7 +43,8 @@ void sp_design_free(struct sp_design *d)
     if (!d) return;
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i)
         if (!sp_key_of_step(row)) free_row(row, (char *)d);
-    for (size_t i = 0; i < d->steps; ++i) free_step(&d->step[i]);
+    for (size_t i = 0; i < d->steps; ++i)
+        free_step(&d->step[i]);
     free(d->step);
     free(d->file);
     free(d);

@@ -8,7 +8,8 @@
 static struct sp_json *nth(const struct sp_json *array, size_t index)
 {
     struct sp_json *node = array && array->type == SP_JSON_ARRAY ? array->child : NULL;
-    while (node && index--) node = node->next;
+    while (node && index--)
+        node = node->next;
     return node;
 }
 
@@ -70,8 +71,10 @@ static void complain(struct sp_reader *r, struct sp_complaints *to, const struct
                      const char *hint)
 {
     const char *file = above && above->file ? above->file : r->name;
-    struct sp_place at = { .file = file, .line = above ? above->line : 0, .path = as_in_file(r, file, path),
-        .named_by = above ? above->named_by : NULL };
+    struct sp_place at = {.file = file,
+                          .line = above ? above->line : 0,
+                          .path = as_in_file(r, file, path),
+                          .named_by = above ? above->named_by : NULL};
     char text[300];
     sp_json_describe(node, text, sizeof text);
     sp_complain(to, &at, found ? found : text, expected, hint);

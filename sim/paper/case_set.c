@@ -49,7 +49,7 @@ static bool complain(struct sp_reader *r, const char *text, const char *path, co
 {
     char label[LABEL_MAX];
     label_of(text, label, sizeof label);
-    struct sp_place at = { .file = label, .path = path };
+    struct sp_place at = {.file = label, .path = path};
     sp_complain(r->complaints, &at, found, expected, hint);
     return false;
 }
@@ -79,9 +79,11 @@ static bool known(struct sp_reader *r, const char *text, const char *shown, cons
         memcpy(group, pattern, length + 1);
         if (inside) continue; /* within a table's rows, or a trace's columns */
         if (part.is_index) {
-            if (row->shape == SP_SHAPE_STEPS) snprintf(pattern + length, sizeof pattern - length, "[]");
-            else inside = row->shape == SP_SHAPE_TABLE || row->shape == SP_SHAPE_LIST ||
-                          row->shape == SP_SHAPE_MATRIX || row->shape == SP_SHAPE_THREE;
+            if (row->shape == SP_SHAPE_STEPS)
+                snprintf(pattern + length, sizeof pattern - length, "[]");
+            else
+                inside = row->shape == SP_SHAPE_TABLE || row->shape == SP_SHAPE_LIST ||
+                         row->shape == SP_SHAPE_MATRIX || row->shape == SP_SHAPE_THREE;
             if (!inside && row->shape != SP_SHAPE_STEPS)
                 return complain(r, text, shown, "an index", "a key that holds no list to have none", NULL);
             row = sp_key_find(pattern);
@@ -93,7 +95,8 @@ static bool known(struct sp_reader *r, const char *text, const char *shown, cons
         if (!row) return unknown(r, text, shown, group, part.name);
         inside = row->shape == SP_SHAPE_COLUMNS;
     }
-    return !bad || complain(r, text, shown, "no path", "keys with points between, such as duct.exit.area", NULL);
+    return !bad ||
+           complain(r, text, shown, "no path", "keys with points between, such as duct.exit.area", NULL);
 }
 
 bool sp_setting_read(struct sp_reader *r, const char *text, struct sp_setting *out)
@@ -134,11 +137,14 @@ static struct sp_json **element(struct sp_reader *r, const struct sp_setting *s,
         return NULL;
     }
     struct sp_json **link = &array->child;
-    for (; *link && n < index; ++n) link = &(*link)->next;
+    for (; *link && n < index; ++n)
+        link = &(*link)->next;
     if (*link) return link;
     snprintf(found, sizeof found, "index %zu", index);
-    if (n) snprintf(expected, sizeof expected, "an index of 0 to %zu", n - 1);
-    else snprintf(expected, sizeof expected, "no index, for the list is empty");
+    if (n)
+        snprintf(expected, sizeof expected, "an index of 0 to %zu", n - 1);
+    else
+        snprintf(expected, sizeof expected, "no index, for the list is empty");
     snprintf(path, sizeof path, "%.*s", (int)strcspn(s->text, "="), s->text);
     complain(r, s->text, path, found, expected, NULL);
     return NULL;
@@ -174,8 +180,8 @@ static struct sp_json *down(struct sp_reader *r, const struct sp_setting *s, str
 }
 
 /* Puts the value at the last part of the path; takes it over. */
-static void put(struct sp_reader *r, const struct sp_setting *s, struct sp_json *node, const struct part *part,
-                struct sp_json *value)
+static void put(struct sp_reader *r, const struct sp_setting *s, struct sp_json *node,
+                const struct part *part, struct sp_json *value)
 {
     if (part->is_index) {
         struct sp_json **link = element(r, s, node, part->index), *old = link ? *link : NULL;

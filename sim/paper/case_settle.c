@@ -10,13 +10,20 @@ static void settle_core(struct sp_reader *r)
 {
     struct sp_core *c = &r->design->duct.core;
     bool fins = sp_case_given(r, "car.duct.core.fins") && sp_case_given(r, "car.duct.core.tubes");
-    if (!sp_case_given(r, "car.duct.core.pressure_drop")) c->drop_law = SP_DROP_FINS;
-    else if (sp_case_given(r, "car.duct.core.pressure_drop.coefficient")) c->drop_law = SP_DROP_COEFFICIENT;
-    else if (sp_case_given(r, "car.duct.core.pressure_drop.table")) c->drop_law = SP_DROP_TABLE;
-    else c->drop_law = SP_DROP_LINEAR;
-    if (!sp_case_given(r, "car.duct.core.heat")) c->heat_law = fins ? SP_CORE_FINS : SP_CORE_NO_HEAT;
-    else if (sp_case_given(r, "car.duct.core.heat.rejection")) c->heat_law = SP_CORE_MAKER;
-    else c->heat_law = SP_CORE_POWER;
+    if (!sp_case_given(r, "car.duct.core.pressure_drop"))
+        c->drop_law = SP_DROP_FINS;
+    else if (sp_case_given(r, "car.duct.core.pressure_drop.coefficient"))
+        c->drop_law = SP_DROP_COEFFICIENT;
+    else if (sp_case_given(r, "car.duct.core.pressure_drop.table"))
+        c->drop_law = SP_DROP_TABLE;
+    else
+        c->drop_law = SP_DROP_LINEAR;
+    if (!sp_case_given(r, "car.duct.core.heat"))
+        c->heat_law = fins ? SP_CORE_FINS : SP_CORE_NO_HEAT;
+    else if (sp_case_given(r, "car.duct.core.heat.rejection"))
+        c->heat_law = SP_CORE_MAKER;
+    else
+        c->heat_law = SP_CORE_POWER;
 }
 
 /* A default by rule that comes out of range speaks of odd values elsewhere. */
@@ -26,7 +33,8 @@ static void judge(struct sp_reader *r, const struct sp_key *row, double value)
     char found[200];
     if (isnan(value) || !sp_range_read(r->units, row->kind, row->range, &range)) return;
     if (sp_range_holds(&range, value)) return;
-    snprintf(found, sizeof found, "%.6g %s, by the default \"%.100s\"", value, sp_kind_si(row->kind), row->fallback);
+    snprintf(found, sizeof found, "%.6g %s, by the default \"%.100s\"", value, sp_kind_si(row->kind),
+             row->fallback);
     sp_case_fault(r, row->path, found, row->range, NULL);
 }
 
@@ -44,8 +52,10 @@ static void apply_rules(struct sp_reader *r)
 static void settle_air(struct sp_reader *r)
 {
     struct sp_air_design *air = &r->design->air;
-    if (sp_case_given(r, "air.pressure")) air->altitude = NAN;
-    else air->pressure = sp_isa_pressure(air->altitude);
+    if (sp_case_given(r, "air.pressure"))
+        air->altitude = NAN;
+    else
+        air->pressure = sp_isa_pressure(air->altitude);
 }
 
 static void settle_coolant(struct sp_reader *r)
@@ -58,7 +68,8 @@ static void settle_coolant(struct sp_reader *r)
     }
     if (!sp_coolant_mix(c->kind, c->share, &c->fluid))
         sp_case_fault(r, "car.coolant.glycol", NULL,
-                      c->kind == SP_PROPYLENE_GLYCOL ? "0 % to 50 %, with propylene glycol" : "0 % to 60 %", NULL);
+                      c->kind == SP_PROPYLENE_GLYCOL ? "0 % to 50 %, with propylene glycol" : "0 % to 60 %",
+                      NULL);
 }
 
 /* Traces lie where the case says, seen from the case. */

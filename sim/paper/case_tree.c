@@ -22,8 +22,10 @@ static struct sp_json *take(struct sp_json *object, const char *key)
 
 static bool refuse(struct sp_reader *r, const struct sp_json *node, const char *found, const char *expected)
 {
-    struct sp_place at = { .file = node->file, .line = node->line, .path = node->key ? node->key : NULL,
-        .named_by = node->named_by };
+    struct sp_place at = {.file = node->file,
+                          .line = node->line,
+                          .path = node->key ? node->key : NULL,
+                          .named_by = node->named_by};
     char text[300];
     sp_json_describe(node, text, sizeof text);
     sp_complain(r->complaints, &at, found ? found : text, expected, NULL);
@@ -40,8 +42,9 @@ static struct sp_json *car_of(struct sp_reader *r, const struct sp_json *name, c
         return NULL;
     }
     if (r->no_files || depth >= CARS_MAX) {
-        refuse(r, name, NULL, r->no_files ? "an object, for no files are read here"
-                                          : "no more than 8 cars that name each other");
+        refuse(r, name, NULL,
+               r->no_files ? "an object, for no files are read here"
+                           : "no more than 8 cars that name each other");
         return NULL;
     }
     char *file = sp_path_join(namer, name->text);
@@ -106,7 +109,7 @@ static void apply(struct sp_reader *r, char *const *set, size_t sets, bool of_ca
 {
     for (size_t i = 0; i < sets; ++i) {
         struct sp_setting s;
-        struct sp_complaints aside = { 0 }, *to = r->complaints;
+        struct sp_complaints aside = {0}, *to = r->complaints;
         if (of_car) r->complaints = &aside; /* what is wrong with it is said once, in the second round */
         bool fine = sp_setting_read(r, set[i], &s);
         r->complaints = to;

@@ -49,12 +49,18 @@ void sp_key_store(const struct sp_key *row, void *to, double value)
 void sp_key_expected(const struct sp_key *row, char *out, size_t size)
 {
     const char *also = row->or_none ? ", or \"none\"" : "";
-    if (row->shape == SP_SHAPE_QUANTITY && row->whole) snprintf(out, size, "a whole number");
-    else if (row->shape == SP_SHAPE_QUANTITY) snprintf(out, size, "%s%s", sp_kind_sample(row->kind), also);
-    else if (row->shape == SP_SHAPE_WORD) snprintf(out, size, "%s%s", strchr(row->range, ',') ? "one of " : "", row->range);
-    else if (row->shape == SP_SHAPE_FLAG || row->shape == SP_SHAPE_THREE) snprintf(out, size, "%s", sp_key_type(row));
-    else if (row->shape == SP_SHAPE_GROUP && row->or_none) snprintf(out, size, "an object, or \"none\"");
-    else snprintf(out, size, "%s %s", strchr("aeiou", *sp_key_type(row)) ? "an" : "a", sp_key_type(row));
+    if (row->shape == SP_SHAPE_QUANTITY && row->whole)
+        snprintf(out, size, "a whole number");
+    else if (row->shape == SP_SHAPE_QUANTITY)
+        snprintf(out, size, "%s%s", sp_kind_sample(row->kind), also);
+    else if (row->shape == SP_SHAPE_WORD)
+        snprintf(out, size, "%s%s", strchr(row->range, ',') ? "one of " : "", row->range);
+    else if (row->shape == SP_SHAPE_FLAG || row->shape == SP_SHAPE_THREE)
+        snprintf(out, size, "%s", sp_key_type(row));
+    else if (row->shape == SP_SHAPE_GROUP && row->or_none)
+        snprintf(out, size, "an object, or \"none\"");
+    else
+        snprintf(out, size, "%s %s", strchr("aeiou", *sp_key_type(row)) ? "an" : "a", sp_key_type(row));
 }
 
 /* ---- one number ------------------------------------------------------------------------------------ */
@@ -80,8 +86,8 @@ static bool read_text(struct sp_reader *r, const struct want *w, const struct sp
 }
 
 /* Reads and judges one number. */
-static bool read_number(struct sp_reader *r, const struct want *w, const struct sp_json *node, const char *path,
-                        double *out)
+static bool read_number(struct sp_reader *r, const struct want *w, const struct sp_json *node,
+                        const char *path, double *out)
 {
     struct sp_range range;
     char expected[200];
@@ -105,7 +111,7 @@ static bool read_number(struct sp_reader *r, const struct want *w, const struct 
 static void read_quantity(struct sp_reader *r, const struct sp_key *row, const struct sp_json *node,
                           const char *path, void *to)
 {
-    struct want w = { row->kind, row->range, row->or_volume, row->whole };
+    struct want w = {row->kind, row->range, row->or_volume, row->whole};
     double value;
     if (row->or_none && node->type == SP_JSON_STRING && !strcmp(node->text, "none")) {
         sp_key_store(row, to, NAN);
@@ -119,7 +125,8 @@ static void read_quantity(struct sp_reader *r, const struct sp_key *row, const s
 static size_t count(const struct sp_json *array)
 {
     size_t n = 0;
-    for (const struct sp_json *c = array->child; c; c = c->next) ++n;
+    for (const struct sp_json *c = array->child; c; c = c->next)
+        ++n;
     return n;
 }
 
@@ -151,13 +158,13 @@ static bool make_table(struct sp_reader *r, struct sp_table *t, size_t rows, siz
 static void drop_table(struct sp_table *t)
 {
     free(t->cell);
-    *t = (struct sp_table){ 0 };
+    *t = (struct sp_table){0};
 }
 
 static void read_list(struct sp_reader *r, const struct sp_key *row, const struct sp_json *node,
                       const char *path, struct sp_table *t)
 {
-    struct want w = { row->kind, row->range, row->or_volume, row->whole };
+    struct want w = {row->kind, row->range, row->or_volume, row->whole};
     size_t n = list_size(r, row, node, path), i = 0;
     bool fine = true;
     if (!n || !make_table(r, t, n, 1)) return;
@@ -183,10 +190,10 @@ static bool read_row(struct sp_reader *r, const struct sp_key *row, const struct
         return false;
     }
     for (const struct sp_json *c = node->child; c; c = c->next, ++j) {
-        struct want w = { row->kind, row->range, false, false };
+        struct want w = {row->kind, row->range, false, false};
         char here[SP_PATH_MAX];
         snprintf(here, sizeof here, "%.200s[%zu]", path, j);
-        if (row->columns) w = (struct want){ row->columns[j].kind, row->columns[j].range, false, false };
+        if (row->columns) w = (struct want){row->columns[j].kind, row->columns[j].range, false, false};
         fine = read_number(r, &w, c, here, &cell[j]) && fine;
     }
     return fine;
@@ -200,7 +207,8 @@ static void read_table(struct sp_reader *r, const struct sp_key *row, const stru
     if (!n) return;
     if (!width && node->child->type == SP_JSON_ARRAY) width = count(node->child);
     if (!width || width > SP_ROWS_MAX || n * width > 65536) {
-        sp_case_fault_at(r, node->child, path, NULL, "rows, each a list of numbers, 65536 in all at most", NULL);
+        sp_case_fault_at(r, node->child, path, NULL, "rows, each a list of numbers, 65536 in all at most",
+                         NULL);
         return;
     }
     if (!make_table(r, t, n, width)) return;
@@ -261,11 +269,12 @@ static void read_flag(struct sp_reader *r, const struct sp_key *row, const struc
 {
     if (node->type == SP_JSON_TRUE || node->type == SP_JSON_FALSE)
         sp_key_store(row, to, node->type == SP_JSON_TRUE);
-    else sp_case_fault_at(r, node, path, NULL, "true or false", NULL);
+    else
+        sp_case_fault_at(r, node, path, NULL, "true or false", NULL);
 }
 
-void sp_case_value(struct sp_reader *r, const struct sp_key *row, const struct sp_json *node, const char *path,
-                   void *to)
+void sp_case_value(struct sp_reader *r, const struct sp_key *row, const struct sp_json *node,
+                   const char *path, void *to)
 {
     if (node->type == SP_JSON_NULL) {
         char expected[300];
@@ -274,16 +283,29 @@ void sp_case_value(struct sp_reader *r, const struct sp_key *row, const struct s
         return;
     }
     switch (row->shape) {
-    case SP_SHAPE_QUANTITY: read_quantity(r, row, node, path, to); break;
-    case SP_SHAPE_WORD: read_word(r, row, node, path, to); break;
-    case SP_SHAPE_FLAG: read_flag(r, row, node, path, to); break;
+    case SP_SHAPE_QUANTITY:
+        read_quantity(r, row, node, path, to);
+        break;
+    case SP_SHAPE_WORD:
+        read_word(r, row, node, path, to);
+        break;
+    case SP_SHAPE_FLAG:
+        read_flag(r, row, node, path, to);
+        break;
     case SP_SHAPE_TEXT:
         if (row->keep != SP_KEEP_NOTHING) read_string(r, row, node, path, to);
         break;
-    case SP_SHAPE_LIST: read_list(r, row, node, path, to); break;
-    case SP_SHAPE_THREE: read_three(r, row, node, path, to); break;
+    case SP_SHAPE_LIST:
+        read_list(r, row, node, path, to);
+        break;
+    case SP_SHAPE_THREE:
+        read_three(r, row, node, path, to);
+        break;
     case SP_SHAPE_TABLE:
-    case SP_SHAPE_MATRIX: read_table(r, row, node, path, to); break;
-    default: break;
+    case SP_SHAPE_MATRIX:
+        read_table(r, row, node, path, to);
+        break;
+    default:
+        break;
     }
 }

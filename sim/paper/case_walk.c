@@ -4,7 +4,8 @@
 
 #include <string.h>
 
-static void walk_object(struct sp_reader *r, const struct sp_json *node, const char *pattern, const char *path);
+static void walk_object(struct sp_reader *r, const struct sp_json *node, const char *pattern,
+                        const char *path);
 
 static void unknown(struct sp_reader *r, const struct sp_json *node, const char *pattern, const char *path)
 {
@@ -25,8 +26,10 @@ static void walk_steps(struct sp_reader *r, const struct sp_json *node, const ch
     for (const struct sp_json *step = node->child; step && i < SP_STEPS_MAX; step = step->next, ++i) {
         char here[SP_PATH_MAX];
         snprintf(here, sizeof here, "%.200s[%zu]", path, i);
-        if (step->type == SP_JSON_OBJECT) walk_object(r, step, "drive[]", here);
-        else sp_case_fault_at(r, step, here, NULL, "an object: a step of the drive", NULL);
+        if (step->type == SP_JSON_OBJECT)
+            walk_object(r, step, "drive[]", here);
+        else
+            sp_case_fault_at(r, step, here, NULL, "an object: a step of the drive", NULL);
     }
     if (i == SP_STEPS_MAX) sp_case_fault(r, path, "too many steps", "at most 9999 steps", NULL);
 }
@@ -45,17 +48,22 @@ static void walk_group(struct sp_reader *r, const struct sp_key *row, const stru
     sp_case_fault_at(r, node, path, NULL, expected, NULL);
 }
 
-static void walk_object(struct sp_reader *r, const struct sp_json *node, const char *pattern, const char *path)
+static void walk_object(struct sp_reader *r, const struct sp_json *node, const char *pattern,
+                        const char *path)
 {
     for (const struct sp_json *child = node->child; child; child = child->next) {
         char here[SP_PATH_MAX], kind[SP_PATH_MAX];
         snprintf(here, sizeof here, "%.120s%s%.120s", path, *path ? "." : "", child->key);
         snprintf(kind, sizeof kind, "%.120s%s%.120s", pattern, *pattern ? "." : "", child->key);
         const struct sp_key *row = strpbrk(child->key, ".[") ? NULL : sp_key_find(kind);
-        if (!row) unknown(r, child, pattern, here);
-        else if (row->shape == SP_SHAPE_GROUP) walk_group(r, row, child, here);
-        else if (row->shape == SP_SHAPE_STEPS) walk_steps(r, child, here);
-        else if (row->or_object && child->type == SP_JSON_OBJECT) walk_object(r, child, kind, here);
+        if (!row)
+            unknown(r, child, pattern, here);
+        else if (row->shape == SP_SHAPE_GROUP)
+            walk_group(r, row, child, here);
+        else if (row->shape == SP_SHAPE_STEPS)
+            walk_steps(r, child, here);
+        else if (row->or_object && child->type == SP_JSON_OBJECT)
+            walk_object(r, child, kind, here);
     }
 }
 

@@ -7,8 +7,9 @@
 #include <string.h>
 
 /* The order matters: a rule may use what stands in an earlier table. */
-static const struct sp_key *const tables[] = { sp_keys_case, sp_keys_drive, sp_keys_body, sp_keys_engine,
-    sp_keys_circuit, sp_keys_duct, sp_keys_core, sp_keys_fan, sp_keys_tank };
+static const struct sp_key *const tables[] = {sp_keys_case,   sp_keys_drive,   sp_keys_body,
+                                              sp_keys_engine, sp_keys_circuit, sp_keys_duct,
+                                              sp_keys_core,   sp_keys_fan,     sp_keys_tank};
 enum { TABLES = sizeof tables / sizeof *tables };
 
 const struct sp_key *sp_key_row(size_t i)
@@ -65,7 +66,8 @@ static size_t least(size_t a, size_t b, size_t c)
 size_t sp_edit_distance(const char *a, const char *b)
 {
     size_t row[LONGEST_KEY + 1], na = strnlen(a, LONGEST_KEY), nb = strnlen(b, LONGEST_KEY);
-    for (size_t j = 0; j <= nb; ++j) row[j] = j;
+    for (size_t j = 0; j <= nb; ++j)
+        row[j] = j;
     for (size_t i = 1; i <= na; ++i) {
         size_t corner = row[0];
         row[0] = i;
@@ -107,13 +109,16 @@ static bool bound(struct sp_units *u, enum sp_kind kind, const char *from, size_
 bool sp_range_read(struct sp_units *u, enum sp_kind kind, const char *text, struct sp_range *out)
 {
     const char *cut;
-    *out = (struct sp_range){ 0 };
+    *out = (struct sp_range){0};
     out->low_open = !strncmp(text, "above ", 6);
     if (out->low_open) text += 6;
     size_t gap = 0;
-    if ((cut = strstr(text, ", at most ")) != NULL) gap = 10;
-    else if ((cut = strstr(text, ", below ")) != NULL) gap = 8;
-    else if ((cut = strstr(text, " to ")) != NULL) gap = 4;
+    if ((cut = strstr(text, ", at most ")) != NULL)
+        gap = 10;
+    else if ((cut = strstr(text, ", below ")) != NULL)
+        gap = 8;
+    else if ((cut = strstr(text, " to ")) != NULL)
+        gap = 4;
     if (!cut) return false;
     out->high_open = gap == 8;
     return bound(u, kind, text, (size_t)(cut - text), &out->low) &&
@@ -146,11 +151,16 @@ const char *sp_key_type(const struct sp_key *row)
 {
     if (row->type) return row->type;
     switch (row->shape) {
-    case SP_SHAPE_QUANTITY: return row->whole ? "whole number" : sp_kind_name(row->kind);
-    case SP_SHAPE_WORD: return "word";
-    case SP_SHAPE_FLAG: return "true or false";
-    case SP_SHAPE_TEXT: return "text";
-    default: return "object";
+    case SP_SHAPE_QUANTITY:
+        return row->whole ? "whole number" : sp_kind_name(row->kind);
+    case SP_SHAPE_WORD:
+        return "word";
+    case SP_SHAPE_FLAG:
+        return "true or false";
+    case SP_SHAPE_TEXT:
+        return "text";
+    default:
+        return "object";
     }
 }
 
@@ -171,7 +181,8 @@ static bool has_unit(const struct sp_key *row)
 size_t sp_key_count(void)
 {
     size_t n = 0;
-    while (sp_key_row(n)) ++n;
+    while (sp_key_row(n))
+        ++n;
     return n;
 }
 
@@ -179,9 +190,13 @@ bool sp_key_at(size_t i, struct sp_key_info *out)
 {
     const struct sp_key *row = sp_key_row(i);
     if (!row) return false;
-    *out = (struct sp_key_info){ .path = row->path, .type = sp_key_type(row),
-        .unit = has_unit(row) ? sp_kind_si(row->kind) : "", .fallback = row->fallback,
-        .need = sp_key_need(row), .range = row->range ? row->range : "", .meaning = row->meaning,
-        .basis = row->basis ? row->basis : "" };
+    *out = (struct sp_key_info){.path = row->path,
+                                .type = sp_key_type(row),
+                                .unit = has_unit(row) ? sp_kind_si(row->kind) : "",
+                                .fallback = row->fallback,
+                                .need = sp_key_need(row),
+                                .range = row->range ? row->range : "",
+                                .meaning = row->meaning,
+                                .basis = row->basis ? row->basis : ""};
     return true;
 }

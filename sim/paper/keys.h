@@ -14,11 +14,11 @@ enum sp_shape {
     SP_SHAPE_WORD,     /* one word out of a list */
     SP_SHAPE_FLAG,     /* true or false */
     SP_SHAPE_TEXT,
-    SP_SHAPE_LIST,    /* numbers of one kind */
-    SP_SHAPE_THREE,   /* three coefficients of a polynomial in 1000 rev/min */
-    SP_SHAPE_TABLE,   /* rows, each column of its own kind */
-    SP_SHAPE_MATRIX,  /* rows of numbers of one kind */
-    SP_SHAPE_COLUMNS  /* which heading of a trace is which of our columns */
+    SP_SHAPE_LIST,   /* numbers of one kind */
+    SP_SHAPE_THREE,  /* three coefficients of a polynomial in 1000 rev/min */
+    SP_SHAPE_TABLE,  /* rows, each column of its own kind */
+    SP_SHAPE_MATRIX, /* rows of numbers of one kind */
+    SP_SHAPE_COLUMNS /* which heading of a trace is which of our columns */
 };
 
 /* How the value is kept at its place in the design. */
@@ -42,19 +42,19 @@ struct sp_key {
     enum sp_shape shape;
     enum sp_kind kind;
     enum sp_keep keep;
-    size_t at;             /* offset in struct sp_design, or in struct sp_step for drive[] */
+    size_t at; /* offset in struct sp_design, or in struct sp_step for drive[] */
     enum sp_need need;
-    const char *when;      /* when it is needed, in words; NULL: as `need` says */
-    const char *fallback;  /* default as text; with `rule`: the rule in words */
+    const char *when;                          /* when it is needed, in words; NULL: as `need` says */
+    const char *fallback;                      /* default as text; with `rule`: the rule in words */
     double (*rule)(const struct sp_design *d); /* default worked out from other values */
-    const char *range;     /* "0 m to 3 m", "above 0 m2, at most 10 m2"; the words of a word list */
-    const struct sp_word *words;         /* ended by a NULL text */
+    const char *range;           /* "0 m to 3 m", "above 0 m2, at most 10 m2"; the words of a word list */
+    const struct sp_word *words; /* ended by a NULL text */
     const struct sp_key_column *columns; /* of a table */
     size_t width;                        /* number of columns */
-    bool or_none;   /* the word "none" is allowed */
-    bool or_object; /* a table that may also be an object with keys of its own */
-    bool or_volume; /* a mass flow that may also be given as a volume flow, of 50/50 glycol at 90 degC */
-    bool whole;     /* whole numbers only */
+    bool or_none;                        /* the word "none" is allowed */
+    bool or_object;                      /* a table that may also be an object with keys of its own */
+    bool or_volume;   /* a mass flow that may also be given as a volume flow, of 50/50 glycol at 90 degC */
+    bool whole;       /* whole numbers only */
     const char *type; /* what it is, in words, where kind does not say it */
     const char *meaning, *basis;
 };

@@ -51,7 +51,8 @@ static double best_power(const struct sp_curve_design *c)
 {
     double best = NAN;
     if (!c->pairs.rows) return c->shutoff * c->free_flow * 2.0 / (3.0 * sqrt(3.0));
-    for (size_t i = 0; i < c->pairs.rows; ++i) best = fmax(best, c->pairs.cell[2 * i] * c->pairs.cell[2 * i + 1]);
+    for (size_t i = 0; i < c->pairs.rows; ++i)
+        best = fmax(best, c->pairs.cell[2 * i] * c->pairs.cell[2 * i + 1]);
     return best;
 }
 

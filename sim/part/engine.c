@@ -22,9 +22,9 @@ struct sp_engine_law {
     struct sp_engine engine;
     double rated_heat, rated_fuel; /* W, W */
     double exponent;
-    double idle_extra;             /* W above the law at idle */
-    size_t speeds, powers;         /* the table's grid; 0: none */
-    double *speed, *power, *heat;  /* one block */
+    double idle_extra;            /* W above the law at idle */
+    size_t speeds, powers;        /* the table's grid; 0: none */
+    double *speed, *power, *heat; /* one block */
     gsl_interp2d grid;
 };
 
@@ -55,7 +55,8 @@ static double pressure_power(const double c[3], double displacement, double spee
 
 double sp_engine_fuel_power(const struct sp_engine *e, double power, double speed)
 {
-    double fuel = (power + pressure_power(e->friction_pressure, e->displacement, speed)) / e->indicated_efficiency;
+    double fuel =
+        (power + pressure_power(e->friction_pressure, e->displacement, speed)) / e->indicated_efficiency;
     return fuel < 0.0 ? 0.0 : fuel;
 }
 
@@ -82,14 +83,17 @@ double sp_engine_power_from_fuel(const struct sp_engine *e, double fuel_flow, do
 
 double sp_engine_gas_factor(const struct sp_engine *e, double metal)
 {
-    if (isnan(e->gas_temperature) || isnan(e->gas_reference) || e->gas_temperature <= e->gas_reference) return 1.0;
+    if (isnan(e->gas_temperature) || isnan(e->gas_reference) || e->gas_temperature <= e->gas_reference)
+        return 1.0;
     double factor = (e->gas_temperature - metal) / (e->gas_temperature - e->gas_reference);
     return factor < 0.0 ? 0.0 : factor;
 }
 
 /* ---- the laws over power ----------------------------------------------------------------------- */
 
-struct heat_at { double heat, slope; };
+struct heat_at {
+    double heat, slope;
+};
 
 static struct heat_at rated_law(const struct sp_engine_law *law, double power, double speed)
 {
@@ -109,7 +113,8 @@ static struct heat_at table_law(const struct sp_engine_law *law, double power, d
     double p = held(power, law->power[0], law->power[law->powers - 1]);
     gsl_interp2d_eval_e(&law->grid, law->speed, law->power, law->heat, n, p, NULL, NULL, &at.heat);
     if (p == power)
-        gsl_interp2d_eval_deriv_y_e(&law->grid, law->speed, law->power, law->heat, n, p, NULL, NULL, &at.slope);
+        gsl_interp2d_eval_deriv_y_e(&law->grid, law->speed, law->power, law->heat, n, p, NULL, NULL,
+                                    &at.slope);
     return at;
 }
 
@@ -137,8 +142,8 @@ static double flow_of_law(const struct sp_engine *e, const struct sp_engine_row 
 }
 
 /* Fills in what the row leaves open; false when the engine is off. */
-static bool engine_state(const struct sp_engine *e, const struct sp_engine_row *row, double flow, double *power,
-                         double *speed)
+static bool engine_state(const struct sp_engine *e, const struct sp_engine_row *row, double flow,
+                         double *power, double *speed)
 {
     *power = row->power;
     *speed = row->speed;
@@ -192,7 +197,8 @@ static const char *unusable(const struct sp_engine *e)
     if (!above_zero(e->indicated_efficiency)) return "an indicated efficiency";
     if (!no_less_than_zero(e->overrun_share)) return "a share of motoring work";
     for (int i = 0; i < 3; i++)
-        if (!isfinite(e->friction_pressure[i]) || !isfinite(e->overrun_pressure[i])) return "friction pressures";
+        if (!isfinite(e->friction_pressure[i]) || !isfinite(e->overrun_pressure[i]))
+            return "friction pressures";
     bool flow = e->heat_law == SP_HEAT_FUEL || e->heat_law == SP_HEAT_AIR;
     bool no_fraction = flow && isnan(e->heat_fraction);
     if (!table && !no_fraction && (!no_less_than_zero(e->heat_fraction) || !above_zero(e->heat_exponent)))
@@ -215,7 +221,8 @@ static int by_value(const void *a, const void *b)
 static size_t distinct(const struct sp_table *t, size_t column, double *to)
 {
     size_t n = 0;
-    for (size_t r = 0; r < t->rows; r++) to[r] = t->cell[r * t->columns + column];
+    for (size_t r = 0; r < t->rows; r++)
+        to[r] = t->cell[r * t->columns + column];
     qsort(to, t->rows, sizeof *to, by_value);
     for (size_t r = 0; r < t->rows; r++)
         if (n == 0 || to[r] > to[n - 1]) to[n++] = to[r];
@@ -239,7 +246,8 @@ static bool cells_usable(const struct sp_table *t)
 /* Puts each row in its cell of the grid (speed runs fastest, as GSL has it). False when one is taken. */
 static bool fill_grid(struct sp_engine_law *law, const struct sp_table *t)
 {
-    for (size_t i = 0; i < t->rows; i++) law->heat[i] = NAN;
+    for (size_t i = 0; i < t->rows; i++)
+        law->heat[i] = NAN;
     for (size_t r = 0; r < t->rows; r++) {
         const double *row = t->cell + 3 * r;
         size_t i = place_of(row[0], law->speed, law->speeds) +
@@ -250,12 +258,15 @@ static bool fill_grid(struct sp_engine_law *law, const struct sp_table *t)
     return true;
 }
 
-static bool build_table(struct sp_engine_law *law, const struct sp_place *at, struct sp_complaints *complaints)
+static bool build_table(struct sp_engine_law *law, const struct sp_place *at,
+                        struct sp_complaints *complaints)
 {
     const struct sp_table *t = &law->engine.heat_table;
     if (!cells_usable(t) || t->rows > 1000000) {
-        sp_complain(complaints, at, "a heat table that cannot be used",
-                    "rows of engine speed, brake power and heat, none below zero (overrun has its own friction)", NULL);
+        sp_complain(
+            complaints, at, "a heat table that cannot be used",
+            "rows of engine speed, brake power and heat, none below zero (overrun has its own friction)",
+            NULL);
         return false;
     }
     double *block = malloc((3 * t->rows + 1) * sizeof *block);
@@ -272,13 +283,14 @@ static bool build_table(struct sp_engine_law *law, const struct sp_place *at, st
         char found[128];
         snprintf(found, sizeof found, "a heat table of %zu rows over %zu speeds and %zu powers", t->rows,
                  law->speeds, law->powers);
-        sp_complain(complaints, at, found, "a full grid: at least 2 speeds and 2 powers, each speed with each power once",
-                    NULL);
+        sp_complain(complaints, at, found,
+                    "a full grid: at least 2 speeds and 2 powers, each speed with each power once", NULL);
         return false;
     }
     /* Bilinear keeps no state of its own, so the handle can stand here and needs no allocation. */
     law->grid = (gsl_interp2d){.type = gsl_interp2d_bilinear, .xsize = law->speeds, .ysize = law->powers};
-    return gsl_interp2d_init(&law->grid, law->speed, law->power, law->heat, law->speeds, law->powers) == GSL_SUCCESS;
+    return gsl_interp2d_init(&law->grid, law->speed, law->power, law->heat, law->speeds, law->powers) ==
+           GSL_SUCCESS;
 }
 
 struct sp_engine_law *sp_engine_law_build(const struct sp_engine *e, const struct sp_place *at,
@@ -304,7 +316,8 @@ struct sp_engine_law *sp_engine_law_build(const struct sp_engine *e, const struc
         law->exponent = 1.0;
     }
     if (!(law->rated_fuel > 0.0)) {
-        sp_complain(complaints, at, "a friction that leaves no fuel power at rated power", "a friction above it", NULL);
+        sp_complain(complaints, at, "a friction that leaves no fuel power at rated power",
+                    "a friction above it", NULL);
         sp_engine_law_free(law);
         return NULL;
     }

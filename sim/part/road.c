@@ -27,6 +27,7 @@ double sp_road_engine_speed(const struct sp_body *b, double speed, double idle)
     if (gears == 0 || !b->gears.cell || !(b->wheel_radius > 0.0)) return NAN;
     double wheel = fabs(speed) / (2.0 * acos(-1.0) * b->wheel_radius);
     size_t gear = 0;
-    while (gear + 1 < gears && wheel * b->gears.cell[gear] >= b->shift_speed) gear++;
+    while (gear + 1 < gears && wheel * b->gears.cell[gear] >= b->shift_speed)
+        gear++;
     return fmax(wheel * b->gears.cell[gear], idle);
 }

@@ -263,6 +263,8 @@ static void test_accidents(void **state)
         "5 m10",
         "5 m1.0",
         "5 m0",
+        "5 m s0",
+        "5 m.s^-0",
         "5 m^0",
         "5 m^",
         "5 m^-",

@@ -1,0 +1,148 @@
+/* CVODE behind a narrow door. SPDX-License-Identifier: GPL-3.0-or-later */
+#include "drive/integrate.h"
+
+#include <cvode/cvode.h>
+#include <math.h>
+#include <nvector/nvector_serial.h>
+#include <stdlib.h>
+#include <string.h>
+#include <sunlinsol/sunlinsol_dense.h>
+#include <sunmatrix/sunmatrix_dense.h>
+
+struct sp_integrator {
+    struct sp_problem problem;
+    SUNContext context;
+    void *cvode;
+    N_Vector y, absolute, spare;
+    SUNMatrix matrix;
+    SUNLinearSolver linear;
+    struct sp_integrator_work before; /* counts of restarts past */
+    char trouble[200];
+};
+
+static int rates(realtype t, N_Vector y, N_Vector dydt, void *user)
+{
+    struct sp_integrator *i = user;
+    return i->problem.rates(t, N_VGetArrayPointer(y), N_VGetArrayPointer(dydt), i->problem.context);
+}
+
+static int jacobian(realtype t, N_Vector y, N_Vector fy, SUNMatrix J, void *user, N_Vector a, N_Vector b, N_Vector c)
+{
+    (void)fy, (void)a, (void)b, (void)c;
+    struct sp_integrator *i = user;
+    return i->problem.jacobian(t, N_VGetArrayPointer(y), SUNDenseMatrix_Cols(J), i->problem.context);
+}
+
+static int watch(realtype t, N_Vector y, realtype *g, void *user)
+{
+    struct sp_integrator *i = user;
+    return i->problem.watch(t, N_VGetArrayPointer(y), g, i->problem.context);
+}
+
+static void listen(int code, const char *module, const char *function, char *message, void *user)
+{
+    (void)module, (void)function;
+    struct sp_integrator *i = user;
+    if (code < 0) snprintf(i->trouble, sizeof i->trouble, "%s", message);
+}
+
+static bool open_cvode(struct sp_integrator *i, double t, double relative)
+{
+    sunindextype n = i->problem.states;
+    i->cvode = CVodeCreate(CV_BDF, i->context);
+    return i->cvode && CVodeSetErrHandlerFn(i->cvode, listen, i) == CV_SUCCESS &&
+           CVodeInit(i->cvode, rates, t, i->y) == CV_SUCCESS && CVodeSetUserData(i->cvode, i) == CV_SUCCESS &&
+           CVodeSVtolerances(i->cvode, relative, i->absolute) == CV_SUCCESS &&
+           (i->matrix = SUNDenseMatrix(n, n, i->context)) && (i->linear = SUNLinSol_Dense(i->y, i->matrix, i->context)) &&
+           CVodeSetLinearSolver(i->cvode, i->linear, i->matrix) == CV_SUCCESS &&
+           CVodeSetJacFn(i->cvode, jacobian) == CV_SUCCESS &&
+           CVodeRootInit(i->cvode, i->problem.watches, watch) == CV_SUCCESS &&
+           CVodeSetNoInactiveRootWarn(i->cvode) == CV_SUCCESS && CVodeSetMaxHnilWarns(i->cvode, -1) == CV_SUCCESS &&
+           CVodeSetMaxNumSteps(i->cvode, -1) == CV_SUCCESS;
+}
+
+struct sp_integrator *sp_integrator_open(const struct sp_problem *p, double t, const double *y, double relative,
+                                         const double *absolute)
+{
+    struct sp_integrator *i = calloc(1, sizeof *i);
+    if (!i) return NULL;
+    i->problem = *p;
+    size_t bytes = (size_t)p->states * sizeof *y;
+    bool good = SUNContext_Create(NULL, &i->context) == 0;
+    good = good && (i->y = N_VNew_Serial(p->states, i->context)) && (i->absolute = N_VClone(i->y)) &&
+           (i->spare = N_VClone(i->y));
+    if (good) {
+        memcpy(N_VGetArrayPointer(i->y), y, bytes);
+        memcpy(N_VGetArrayPointer(i->absolute), absolute, bytes);
+        good = open_cvode(i, t, relative);
+    }
+    if (good) return i;
+    sp_integrator_close(i);
+    return NULL;
+}
+
+void sp_integrator_close(struct sp_integrator *i)
+{
+    if (!i) return;
+    if (i->cvode) CVodeFree(&i->cvode);
+    if (i->linear) SUNLinSolFree(i->linear);
+    if (i->matrix) SUNMatDestroy(i->matrix);
+    if (i->y) N_VDestroy(i->y);
+    if (i->absolute) N_VDestroy(i->absolute);
+    if (i->spare) N_VDestroy(i->spare);
+    if (i->context) SUNContext_Free(&i->context);
+    free(i);
+}
+
+static struct sp_integrator_work counts(const struct sp_integrator *i)
+{
+    struct sp_integrator_work w = {0, 0, 0};
+    long extra = 0;
+    CVodeGetNumSteps(i->cvode, &w.steps);
+    CVodeGetNumRhsEvals(i->cvode, &w.rates);
+    CVodeGetNumLinRhsEvals(i->cvode, &extra);
+    CVodeGetNumJacEvals(i->cvode, &w.jacobians);
+    w.rates += extra;
+    return w;
+}
+
+struct sp_integrator_work sp_integrator_work(const struct sp_integrator *i)
+{
+    struct sp_integrator_work w = counts(i);
+    return (struct sp_integrator_work){w.steps + i->before.steps, w.rates + i->before.rates,
+                                       w.jacobians + i->before.jacobians};
+}
+
+bool sp_integrator_restart(struct sp_integrator *i, double t)
+{
+    i->before = sp_integrator_work(i);
+    return CVodeReInit(i->cvode, t, i->y) == CV_SUCCESS;
+}
+
+enum sp_advance sp_integrator_step(struct sp_integrator *i, double end, double *t, int *crossed)
+{
+    if (CVodeSetStopTime(i->cvode, end) != CV_SUCCESS) return SP_ADV_FAILED;
+    switch (CVode(i->cvode, end, i->y, t, CV_ONE_STEP)) {
+    case CV_SUCCESS: return *t >= end ? SP_ADV_END : SP_ADV_STEP;
+    case CV_TSTOP_RETURN: return SP_ADV_END;
+    case CV_ROOT_RETURN: return CVodeGetRootInfo(i->cvode, crossed) == CV_SUCCESS ? SP_ADV_CROSSED : SP_ADV_FAILED;
+    default: return SP_ADV_FAILED;
+    }
+}
+
+double *sp_integrator_state(struct sp_integrator *i)
+{
+    return N_VGetArrayPointer(i->y);
+}
+
+bool sp_integrator_look_back(struct sp_integrator *i, double t, int order, double *out)
+{
+    if (CVodeGetDky(i->cvode, t, order, i->spare) != CV_SUCCESS) return false;
+    memcpy(out, N_VGetArrayPointer(i->spare), (size_t)i->problem.states * sizeof *out);
+    return true;
+}
+
+const char *sp_integrator_trouble(const struct sp_integrator *i)
+{
+    return i->trouble[0] ? i->trouble : "no reason given";
+}

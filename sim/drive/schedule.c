@@ -1,0 +1,291 @@
+/* schedule.c - the steps of a drive joined into one table. SPDX-License-Identifier: GPL-3.0-or-later */
+#include "drive/schedule.h"
+
+#include "drive/schedule_parts.h"
+#include "part/road.h"
+
+#include <math.h>
+#include <stdlib.h>
+
+static const double work_closes = 1e-3; /* of the work the engine does at the wheels */
+
+/* ---- complaints ----------------------------------------------------------------------------------- */
+
+static void say(struct sp_complaints *to, const struct sp_design *d, size_t step, const char *key,
+                const char *found, const char *expected)
+{
+    char path[64];
+    snprintf(path, sizeof path, "drive[%zu]%s%s", step, key ? "." : "", key ? key : "");
+    struct sp_place at = {.file = d->file, .path = path};
+    sp_complain(to, &at, found, expected, NULL);
+}
+
+void sp_schedule_fault(struct sp_scheduling *b, size_t step, const char *key, const char *found,
+                       const char *expected)
+{
+    b->failed = true;
+    say(b->complaints, b->design, step, key, found, expected);
+}
+
+void sp_schedule_caution(struct sp_scheduling *b, size_t step, const char *found, const char *expected)
+{
+    say(b->cautions, b->design, step, NULL, found, expected);
+}
+
+/* Each but once a drive. */
+void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const struct sp_engine_sources *s)
+{
+    enum sp_heat_law law = b->design->engine.heat_law;
+    bool flow = (s->power == SP_POWER_FUEL && law != SP_HEAT_FUEL) ||
+                (s->power == SP_POWER_AIR && law != SP_HEAT_AIR);
+    if (s->speed == SP_ENGINE_ASSUMED && !b->cautioned_speed) {
+        b->cautioned_speed = true;
+        sp_schedule_caution(b, step, "no engine speed and no gears",
+                            "a column engine_speed, or car.body.gears and wheel_radius; taken as "
+                            "(25 % + 55 % of the load) of rated speed, idling at standstill");
+    }
+    if (s->power == SP_POWER_THROTTLE && !b->cautioned_throttle) {
+        b->cautioned_throttle = true;
+        sp_schedule_caution(b, step, "power from throttle only",
+                            "a column power, torque or fuel_flow; taken as throttle times rated power, "
+                            "in proportion to engine speed below rated speed");
+    }
+    if (flow && !b->cautioned_flow) {
+        b->cautioned_flow = true;
+        sp_schedule_caution(b, step, "power from fuel or air flow, and a heat law that goes by power",
+                            "car.engine.heat.law fuel or air; power taken from the Willans line");
+    }
+}
+
+/* ---- steps without a trace --------------------------------------------------------------------------- */
+
+/* A hold's engine. False when it cannot be known. */
+static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, struct sp_schedule *to)
+{
+    const struct sp_design *d = b->design;
+    const struct sp_step *step = &d->step[i];
+    struct sp_engine_sources s = {d, b->law, SP_POWER_COLUMN, SP_ENGINE_COLUMN};
+    if (isnan(step->power) && step->speed != 0.0) {
+        s.power = SP_POWER_ROAD;
+        to->power_from_road = true;
+        if (!sp_road_load_known(&d->body)) {
+            sp_schedule_fault(b, i, "power", "no power",
+                              "a power, or the road load: car.body.mass, frontal_area and drag_coefficient");
+            return false;
+        }
+    }
+    if (isnan(step->engine_speed))
+        s.speed = isnan(sp_road_engine_speed(&d->body, step->speed, d->engine.idle_speed))
+                      ? SP_ENGINE_ASSUMED
+                      : SP_ENGINE_SHIFTED;
+    struct sp_moment at = {.speed = step->speed,
+                           .air_speed = row->in[SP_IN_AIR_SPEED],
+                           .torque = NAN,
+                           .grade = isnan(step->grade) ? 0.0 : step->grade,
+                           .engine_speed = step->engine_speed,
+                           .power = isnan(step->power) ? 0.0 : step->power,
+                           .fuel_flow = NAN,
+                           .air_flow = NAN,
+                           .throttle = NAN,
+                           .gear = NAN,
+                           .density = sp_density_of(d, row->in[SP_IN_AMBIENT], row->in[SP_IN_PRESSURE])};
+    struct sp_wheel_power wheel = {0};
+    sp_schedule_caution_sources(b, i, &s);
+    bool off = step->engine_speed < 0.3 * d->engine.idle_speed;
+    if (!off) sp_engine_row_fill(&s, &at, row->in, &wheel);
+    row->flags = off ? 0 : SP_FLAG_ENGINE;
+    to->work.wheel = (wheel.rolling + wheel.climb + wheel.drag + wheel.brakes) * step->time;
+    to->work.rolling = wheel.rolling * step->time;
+    to->work.potential = wheel.climb * step->time;
+    to->work.drag = wheel.drag * step->time;
+    to->work.brakes = wheel.brakes * step->time;
+    b->work_done += fmax(to->work.wheel, 0.0);
+    return true;
+}
+
+static void idle_engine(struct sp_scheduling *b, struct sp_row *row)
+{
+    struct sp_engine_row engine = {0.0, b->design->engine.idle_speed, NAN, NAN};
+    struct sp_engine_heat heat = sp_engine_heat(b->law, &engine);
+    row->in[SP_IN_ENGINE_SPEED] = engine.speed;
+    row->in[SP_IN_HEAT_GAS] = heat.gas;
+    row->in[SP_IN_HEAT_FRICTION] = heat.friction;
+    row->in[SP_IN_HEAT_SLOPE] = heat.per_power;
+    row->flags = SP_FLAG_ENGINE;
+}
+
+static bool steady_step(struct sp_scheduling *b, size_t i, struct sp_rows *to)
+{
+    const struct sp_step *step = &b->design->step[i];
+    const struct sp_air_design *air = &b->design->air;
+    double speed = step->kind == SP_STEP_HOLD ? step->speed : 0.0;
+    if (!(step->time > 0.0) || isinf(step->time) || !isfinite(speed)) {
+        sp_schedule_fault(b, i, NULL, "a step without a time or a speed",
+                          "a time above 0 s, and with hold a speed");
+        return false;
+    }
+    if (!b->law) return false;
+    struct sp_row row = {.in = {[SP_IN_SPEED] = speed,
+                                [SP_IN_AIR_SPEED] = speed + air->wind,
+                                [SP_IN_WAKE] = 1.0,
+                                [SP_IN_AMBIENT] = air->ambient,
+                                [SP_IN_PRESSURE] = b->pressure,
+                                [SP_IN_MEASURED] = NAN}};
+    if (step->kind == SP_STEP_IDLE) idle_engine(b, &row);
+    if (step->kind == SP_STEP_HOLD && !hold_engine(b, i, &row, &to->table)) return false;
+    for (int c = 0; c < SP_INPUTS; c++)
+        if (c != SP_IN_MEASURED && !isfinite(row.in[c])) {
+            sp_schedule_fault(b, i, NULL, "a step whose power or air is no number", "finite values");
+            return false;
+        }
+    struct sp_row end = row;
+    end.time = step->time;
+    if (sp_rows_push(to, &row, (unsigned short)i) && sp_rows_push(to, &end, (unsigned short)i)) return true;
+    sp_schedule_fault(b, i, NULL, "no memory", "memory for the step");
+    return false;
+}
+
+/* ---- joining ------------------------------------------------------------------------------------------ */
+
+static void add_accounts(struct sp_schedule *to, const struct sp_schedule *from, double repeat)
+{
+    to->work.wheel += repeat * from->work.wheel;
+    to->work.kinetic += repeat * from->work.kinetic;
+    to->work.potential += repeat * from->work.potential;
+    to->work.drag += repeat * from->work.drag;
+    to->work.rolling += repeat * from->work.rolling;
+    to->work.brakes += repeat * from->work.brakes;
+    to->rows_merged += from->rows_merged;
+    to->power_from_road |= from->power_from_road;
+    to->measured |= from->measured;
+}
+
+static void join_step(struct sp_scheduling *b, size_t i, double repeat, const struct sp_rows *step)
+{
+    double rows = (double)b->rows.table.rows + repeat * (double)step->table.rows;
+    if (rows > SP_SCHEDULE_ROWS || !sp_rows_reserve(&b->rows, (size_t)rows)) {
+        char found[96];
+        snprintf(found, sizeof found, "%.9g times %zu rows", repeat, step->table.rows);
+        sp_schedule_fault(
+            b, i, "repeat", found,
+            "a drive of at most 20 million rows that memory can hold: fewer repeats, fewer marks, or a "
+            "longer solver.merge");
+        return;
+    }
+    for (double n = 0.0; n < repeat && !b->failed; n += 1.0)
+        if (!sp_rows_append(&b->rows, step))
+            sp_schedule_fault(b, i, "repeat", "no memory", "memory for the repeats");
+    add_accounts(&b->rows.table, &step->table, repeat);
+}
+
+static void build_step(struct sp_scheduling *b, size_t i)
+{
+    double before = b->work_done, repeat = fmax(floor(b->design->step[i].repeat), 1.0) /* NAN: once */;
+    struct sp_rows step = {0};
+    bool trace = b->design->step[i].kind == SP_STEP_TRACE;
+    bool fine = trace ? sp_schedule_trace(b, i, &step) : steady_step(b, i, &step);
+    b->work_done = before + repeat * (b->work_done - before);
+    if (fine && !b->failed) join_step(b, i, repeat, &step);
+    sp_schedule_free(&step.table);
+}
+
+/* ---- the end ------------------------------------------------------------------------------------------- */
+
+static bool add_distance(struct sp_schedule *s)
+{
+    const double *v = s->channel[SP_IN_SPEED];
+    s->distance = malloc(s->rows * sizeof *s->distance);
+    if (!s->distance) return false;
+    s->distance[0] = 0.0;
+    for (size_t i = 1; i < s->rows; i++)
+        s->distance[i] = s->distance[i - 1] + 0.5 * (v[i - 1] + v[i]) * (s->time[i] - s->time[i - 1]);
+    return true;
+}
+
+static void check_work(struct sp_scheduling *b)
+{
+    const struct sp_schedule *s = &b->rows.table;
+    double spent = s->work.kinetic + s->work.potential + s->work.drag + s->work.rolling + s->work.brakes;
+    double off = s->work.wheel - spent;
+    if (!s->power_from_road || fabs(off) <= work_closes * b->work_done) return;
+    char found[128];
+    snprintf(found, sizeof found,
+             "road load: %.6g J at the wheels against %.6g J in speed, height, drag, rolling "
+             "and brakes",
+             s->work.wheel, spent);
+    struct sp_place at = {.file = b->design->file, .path = "drive"};
+    sp_complain(b->cautions, &at, found,
+                "the two within 0.1 %; rows closer in time, or altitude and speed that agree", NULL);
+}
+
+static void finish(struct sp_scheduling *b)
+{
+    struct sp_place at = {.file = b->design->file, .path = "drive"};
+    if (b->rows.table.rows < 2) {
+        b->failed = true;
+        sp_complain(b->complaints, &at, "no steps", "a drive that takes some time", NULL);
+    } else if (!sp_schedule_run_on(&b->rows, b->design) || !add_distance(&b->rows.table)) {
+        b->failed = true;
+        sp_complain(b->complaints, &at, "more rows than memory holds", "fewer rows, or a longer solver.merge",
+                    NULL);
+    } else {
+        check_work(b);
+    }
+}
+
+enum sp_status sp_schedule_build(struct sp_units *u, const struct sp_design *d, struct sp_schedule *out,
+                                 struct sp_complaints *complaints, struct sp_complaints *cautions)
+{
+    struct sp_scheduling b = {.units = u,
+                              .design = d,
+                              .complaints = complaints,
+                              .cautions = cautions,
+                              .datum = NAN,
+                              .pressure = d->air.pressure};
+    struct sp_place at = {.file = d->file, .path = "car.engine"};
+    *out = (struct sp_schedule){0};
+    b.base = isnan(d->air.altitude) ? sp_isa_altitude(d->air.pressure) : d->air.altitude;
+    if (isnan(b.base)) b.base = 0.0; /* no such standard altitude: ratios go from sea level */
+    b.base_pressure = sp_isa_pressure(b.base);
+    b.law = sp_engine_law_build(&d->engine, &at, complaints);
+    if (!b.law) b.failed = true;
+    if (d->steps > 65535) sp_schedule_fault(&b, 65535, NULL, "more than 65535 steps", "fewer, with repeats");
+    for (size_t i = 0; i < d->steps && d->steps <= 65535; i++)
+        build_step(&b, i);
+    if (!b.failed) finish(&b);
+    sp_engine_law_free(b.law);
+    *out = b.rows.table;
+    if (b.failed) sp_schedule_free(out);
+    return b.failed ? SP_INPUT : SP_OK;
+}
+
+void sp_schedule_free(struct sp_schedule *s)
+{
+    if (!s) return;
+    free(s->time);
+    free(s->distance);
+    for (int c = 0; c < SP_INPUTS; c++)
+        free(s->channel[c]);
+    free(s->flags);
+    free(s->step);
+    for (size_t i = 0; i < s->marks; i++)
+        free(s->mark[i].text);
+    free(s->mark);
+    *s = (struct sp_schedule){0};
+}
+
+/* ---- looking up ------------------------------------------------------------------------------------------
+ */
+
+void sp_schedule_at(const struct sp_schedule *s, size_t k, double t, struct sp_inputs *out)
+{
+    if (k + 1 >= s->rows) k = s->rows - 2;
+    double h = s->time[k + 1] - s->time[k], past = t - s->time[k], share = h > 0.0 ? past / h : 0.0;
+    for (int c = 0; c < SP_INPUTS; c++) {
+        double a = s->channel[c][k], b = s->channel[c][k + 1];
+        out->in[c] = share == 0.0 ? a : share == 1.0 ? b : a + share * (b - a);
+    }
+    double v = s->channel[SP_IN_SPEED][k];
+    out->distance = s->distance[k] + (h > 0.0 ? 0.5 * past * (v + out->in[SP_IN_SPEED]) : 0.0);
+    out->flags = s->flags[k];
+}

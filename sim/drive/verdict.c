@@ -1,0 +1,139 @@
+/* Closing the books of a run: ledger, peaks, verdict. SPDX-License-Identifier: GPL-3.0-or-later */
+#include <math.h>
+#include <stdlib.h>
+
+#include "drive/run.h"
+
+static const double ledger_tolerance = 1e-4;
+
+static size_t row_before(const struct sp_schedule *s, double time)
+{
+    size_t low = 0, high = s->rows - 1;
+    while (high - low > 1) {
+        size_t mid = low + (high - low) / 2;
+        if (s->time[mid] < time || (s->time[mid] == time && s->time[mid + 1] > time)) low = mid;
+        else high = mid;
+    }
+    return low;
+}
+
+const char *sp_schedule_mark(const struct sp_schedule *s, size_t k)
+{
+    const char *text = NULL;
+    for (size_t i = 0; i < s->marks && s->mark[i].row <= k; ++i)
+        text = s->step[s->mark[i].row] == s->step[k] ? s->mark[i].text : NULL;
+    return text;
+}
+
+static struct sp_peak place(const struct sp_run *r, const struct sp_tracked *t)
+{
+    size_t k = row_before(r->schedule, t->time);
+    struct sp_inputs in;
+    sp_schedule_at(r->schedule, k, t->time, &in);
+    return (struct sp_peak){t->best, t->time, in.distance, r->schedule->step[k], sp_schedule_mark(r->schedule, k)};
+}
+
+static void ledger(struct sp_run *r, const double *start, const double *end)
+{
+    struct sp_result *out = r->result;
+    out->ledger.in = end[SP_Y_HEAT_IN];
+    out->ledger.out_air = end[SP_Y_HEAT_AIR];
+    out->ledger.out_skin = end[SP_Y_HEAT_SKIN];
+    out->ledger.stored = sp_circuit_heat_held(r->circuit, end) - sp_circuit_heat_held(r->circuit, start);
+    double turned = fmax(fmax(fabs(out->ledger.in), fabs(out->ledger.out_air + out->ledger.out_skin)),
+                         fmax(fabs(out->ledger.stored), 1.0));
+    out->ledger.error = (out->ledger.in - out->ledger.out_air - out->ledger.out_skin - out->ledger.stored) / turned;
+}
+
+/* A limit with its key, the room left to it and when it was first broken. */
+struct limit { const char *key; double left; enum sp_event_kind broken; };
+
+static double first_event(const struct sp_result *r, enum sp_event_kind kind)
+{
+    for (size_t i = 0; i < r->events; ++i)
+        if (r->event[i].kind == kind) return r->event[i].time;
+    return INFINITY;
+}
+
+static void judge(struct sp_run *r)
+{
+    struct sp_result *out = r->result;
+    const struct sp_limits *l = &r->drive->design->limits;
+    const struct limit all[] = {{"limits.coolant", l->coolant - out->coolant.value, SP_EV_COOLANT_OVER},
+                                {"limits.gauge", l->gauge - out->gauge.value, SP_EV_GAUGE_OVER},
+                                {"limits.metal", l->metal - out->metal.value, SP_EV_METAL_OVER},
+                                {"limits.boil_margin", out->boil_margin.value - l->boil_margin, SP_EV_BOIL_MARGIN_UNDER}};
+    double least = INFINITY, earliest = INFINITY;
+    out->survives = true;
+    for (size_t i = 0; i < sizeof all / sizeof all[0]; ++i) {
+        if (!isfinite(all[i].left)) continue;
+        bool broken = all[i].left < 0.0;
+        double when = broken ? first_event(out, all[i].broken) : INFINITY;
+        if (broken ? (out->survives || when < earliest) : (out->survives && all[i].left < least)) {
+            out->limit = all[i].key;
+            least = all[i].left;
+            earliest = when;
+        }
+        if (broken) out->survives = false;
+    }
+    out->margin = all[0].left;
+}
+
+static int by_time(const void *a, const void *b)
+{
+    const struct sp_event *x = a, *y = b;
+    return (x->time > y->time) - (x->time < y->time);
+}
+
+/* The peak joins the list at its place; insertion keeps the order of what happens at one instant. */
+static void order_events(struct sp_result *r)
+{
+    for (size_t i = 1; i < r->events; ++i) {
+        struct sp_event e = r->event[i];
+        size_t j = i;
+        for (; j > 0 && by_time(&r->event[j - 1], &e) > 0; --j) r->event[j] = r->event[j - 1];
+        r->event[j] = e;
+    }
+}
+
+enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_complaints *complaints)
+{
+    struct sp_result *out = r->result;
+    const double *end = sp_integrator_state(r->integrator);
+    const struct sp_schedule *s = r->schedule;
+    out->duration = s->time[s->rows - 1];
+    out->distance = s->distance[s->rows - 1];
+    if (r->fan_runs) out->fan.on += out->duration - r->fan_since;
+    if (r->high[SP_W_COOLANT]) out->time_over_limit += out->duration - r->over_since;
+    if (r->high[SP_W_FULL]) out->time_above_band += out->duration - r->full_since;
+    out->coolant = place(r, &r->coolant);
+    out->gauge = place(r, &r->gauge);
+    out->metal = place(r, &r->metal);
+    out->tank_pressure = place(r, &r->pressure);
+    out->boil_margin = place(r, &r->margin);
+    out->boil_margin.value = -out->boil_margin.value;
+    out->over_ambient = r->over_ambient.best;
+    out->fan.energy = end[SP_Y_FAN_ENERGY];
+    out->drag.energy = end[SP_Y_DRAG_WORK];
+    out->drag.mean_coefficient = end[SP_Y_HEAD_WORK] > 0.0
+        ? end[SP_Y_DRAG_WORK] / (r->drive->design->body.frontal_area * end[SP_Y_HEAD_WORK]) : NAN;
+    out->liquid_lost = end[SP_Y_LOST];
+    struct sp_measured_score score = sp_measured_score(&r->measured);
+    out->measured.rms = score.rms;
+    out->measured.warmup_rms = score.warmup_rms;
+    out->measured.time_to_85 = score.time_to_85;
+    out->measured.measured_time_to_85 = score.logged_time_to_85;
+    out->measured.none_rms = score.none_rms;
+    out->measured.none_warmup_rms = score.none_warmup_rms;
+    sp_run_event(r, SP_EV_PEAK, out->coolant.time, out->coolant.value);
+    order_events(out);
+    ledger(r, start, end);
+    judge(r);
+    if (fabs(out->ledger.error) <= ledger_tolerance && !r->lost_event) return out->survives ? SP_OK : SP_NOT;
+    char found[80];
+    snprintf(found, sizeof found, "a ledger that is out by %.2g of the heat turned over", out->ledger.error);
+    struct sp_place at = {.file = r->drive->design->file};
+    sp_complain(complaints, &at, r->lost_event ? "no memory" : found,
+                r->lost_event ? "room for the events" : "heat in = heat out + heat stored to 1e-4; try solver.tolerance", NULL);
+    return SP_NUMERICS;
+}
