@@ -103,14 +103,21 @@ double sp_circuit_heat_held(const struct sp_circuit *c, const double *y)
     return sum;
 }
 
+/* Boiling point with the pressure held inside the range of the vapour curve: beyond 5 MPa nothing is a
+ * cooling system any more, and the margin is far below nil by then. */
+static double boiling(const struct sp_coolant *f, double pressure)
+{
+    return sp_coolant_boiling(f, fmin(fmax(pressure, 1.0e3), 4.99e6));
+}
+
 double sp_circuit_boil_margin(const struct sp_circuit *c, const double *y, const struct sp_coupling *k, double tank)
 {
     const struct sp_coolant *f = &c->design->coolant.fluid;
     const struct sp_layout *l = &c->layout;
-    double outlet = sp_coolant_boiling(f, tank + k->loop.rise - k->loop.jacket_drop) - y[SP_Y_JACKET];
+    double outlet = boiling(f, tank + k->loop.rise - k->loop.jacket_drop) - y[SP_Y_JACKET];
     /* Into the pump comes the mix of radiator, bypass and tank, at tank pressure. */
     double all = k->mass_pump, mixed = y[SP_Y_JACKET];
     if (all > 0.0)
         mixed = (k->mass_radiator * y[l->wall - 1] + k->mass_bypass * y[SP_Y_JACKET] + k->mass_bleed * y[SP_Y_TANK]) / all;
-    return fmin(outlet, sp_coolant_boiling(f, tank) - mixed);
+    return fmin(outlet, boiling(f, tank) - mixed);
 }

@@ -3,6 +3,7 @@
 #include "drive/run.h"
 
 #include <math.h>
+#include <stdint.h>
 #include <stdlib.h>
 #include <string.h>
 

@@ -22,7 +22,9 @@ static int close_units(void **state)
     return 0;
 }
 
-#define EACH_ROW(row) const struct sp_key *row; for (size_t i_ = 0; (row = sp_key_row(i_)) != NULL; ++i_)
+#define EACH_ROW(row)                                                                                        \
+    const struct sp_key *row;                                                                                \
+    for (size_t i_ = 0; (row = sp_key_row(i_)) != NULL; ++i_)
 
 static void paths_are_unique_and_have_a_group(void **state)
 {
@@ -66,13 +68,15 @@ static void defaults_lie_in_their_ranges(void **state)
         struct sp_range range;
         char why[300];
         double x;
-        if (row->shape != SP_SHAPE_QUANTITY && row->shape != SP_SHAPE_LIST && row->shape != SP_SHAPE_MATRIX) continue;
+        if (row->shape != SP_SHAPE_QUANTITY && row->shape != SP_SHAPE_LIST && row->shape != SP_SHAPE_MATRIX)
+            continue;
         if (!row->range || !sp_range_read(units, row->kind, row->range, &range) || !(range.low < range.high))
             fail_msg("%s: range \"%s\"", row->path, row->range ? row->range : "");
         if (!row->fallback || row->rule) continue;
         if (!sp_quantity_read(units, row->kind, row->fallback, &x, why, sizeof why))
             fail_msg("%s: default \"%s\" (%s)", row->path, row->fallback, why);
-        if (!sp_range_holds(&range, x)) fail_msg("%s: default %s not in %s", row->path, row->fallback, row->range);
+        if (!sp_range_holds(&range, x))
+            fail_msg("%s: default %s not in %s", row->path, row->fallback, row->range);
     }
 }
 
@@ -98,7 +102,8 @@ static void words_are_told(void **state)
         double value;
         if (row->shape != SP_SHAPE_WORD) continue;
         for (const struct sp_word *w = row->words; w->text; ++w)
-            if (strlen(w->text) > 1 && !strstr(row->range, w->text)) fail_msg("%s: %s untold", row->path, w->text);
+            if (strlen(w->text) > 1 && !strstr(row->range, w->text))
+                fail_msg("%s: %s untold", row->path, w->text);
         if (row->fallback && !sp_word_value(row, row->fallback, &value))
             fail_msg("%s: default %s is no word", row->path, row->fallback);
         assert_false(sp_word_value(row, "", &value));
@@ -114,10 +119,14 @@ static size_t width_of(const struct sp_key *row)
         return sizeof(struct sp_table);
     switch (row->keep) {
     case SP_KEEP_INT:
-    case SP_KEEP_ENUM: return sizeof(int);
-    case SP_KEEP_CHAR: return 1;
-    case SP_KEEP_BOOL: return sizeof(bool);
-    default: return sizeof(double);
+    case SP_KEEP_ENUM:
+        return sizeof(int);
+    case SP_KEEP_CHAR:
+        return 1;
+    case SP_KEEP_BOOL:
+        return sizeof(bool);
+    default:
+        return sizeof(double);
     }
 }
 
@@ -138,8 +147,10 @@ static void places_do_not_overlap(void **state)
         assert_true(a->at + width_of(a) <= size);
         for (size_t j = i + 1; sp_key_row(j); ++j) {
             const struct sp_key *b = sp_key_row(j);
-            if (b->keep == SP_KEEP_NOTHING || sp_key_of_step(a) != sp_key_of_step(b) || may_share(a, b)) continue;
-            if (a->at < b->at + width_of(b) && b->at < a->at + width_of(a)) fail_msg("%s and %s", a->path, b->path);
+            if (b->keep == SP_KEEP_NOTHING || sp_key_of_step(a) != sp_key_of_step(b) || may_share(a, b))
+                continue;
+            if (a->at < b->at + width_of(b) && b->at < a->at + width_of(a))
+                fail_msg("%s and %s", a->path, b->path);
         }
     }
 }

@@ -179,26 +179,9 @@ static void stops_at(const char *text, const char *rest)
 
 static void test_grammar(void **state)
 {
-    static const char *const none[] = {"",
-                                       "+",
-                                       "-",
-                                       ".",
-                                       ".5",
-                                       "-.5",
-                                       "e5",
-                                       "inf",
-                                       "nan",
-                                       "-inf",
-                                       "NAN",
-                                       " 1",
-                                       "\t1",
-                                       "+-1",
-                                       "--1",
-                                       "x",
-                                       "\xc2\xa0"
-                                       "1",
-                                       "1e400",
-                                       "-1e309"};
+    static const char *const none[] = {"",    "+",   "-",          ".",     ".5",    "-.5", "e5",
+                                       "inf", "nan", "-inf",       "NAN",   " 1",    "\t1", "+-1",
+                                       "--1", "x",   "\xc2\xa0 1", "1e400", "-1e309"};
     (void)state;
     for (size_t i = 0; i < sizeof none / sizeof *none; i++) stops_at(none[i], NULL);
     stops_at("0x10", "x10");

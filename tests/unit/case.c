@@ -1,0 +1,774 @@
+/* Reading cases: values, defaults, overrides, and every complaint with its place.
+ * Expected numbers are exact conversions (definitions of the units) or worked out beside them.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
+#include "swirlpot/paper.h"
+#include "check.h"
+
+#include <stdlib.h>
+#include <string.h>
+#include <sys/stat.h>
+#include <unistd.h>
+
+static struct sp_units *units;
+static char folder[] = "/tmp/swirlpot-case-XXXXXX";
+
+static int begin(void **state)
+{
+    (void)state;
+    units = sp_units_open();
+    return units && mkdtemp(folder) ? 0 : 1;
+}
+
+static int end(void **state)
+{
+    (void)state;
+    sp_units_close(units);
+    char command[100];
+    snprintf(command, sizeof command, "rm -r %s", folder);
+    return system(command) == 0 ? 0 : 1;
+}
+
+/* ---- cases ----------------------------------------------------------------------------------------- */
+
+#define AIR           "\"air\": {\"ambient\": \"33 degC\", \"altitude\": \"240 m\", \"humidity\": \"45 %\"}"
+#define INLET         "\"inlet\": {\"area\": \"450 cm2\"}"
+#define EXIT          "\"exit\": {\"area\": \"600 cm2\"}"
+#define CORE_START    "\"core\": {\"width\": \"480 mm\", \"height\": \"340 mm\", \"depth\": \"42 mm\", "
+#define DUCT_OF(core) "\"duct\": {" INLET ", " CORE_START core "}, " EXIT "}"
+#define COEFFICIENT   "\"pressure_drop\": {\"coefficient\": 8}"
+#define FINS                                                                                                 \
+    "\"fins\": {\"pitch\": \"1.9 mm\", \"louvre_pitch\": \"1.4 mm\", \"louvre_angle\": \"23 deg\"}, "        \
+    "\"tubes\": {\"pitch\": \"10 mm\", \"height\": \"2 mm\"}"
+#define DUCT_CASE "{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}}"
+#define CAR                                                                                                  \
+    "{\"body\": {\"frontal_area\": \"1.6 m2\"},\n"                                                           \
+    "\"engine\": {\"displacement\": \"2 l\", \"rated_power\": \"190 kW\", \"rated_speed\": \"7000 rpm\",\n"  \
+    "\"heat\": {\"fraction\": 0.5}},\n"                                                                      \
+    "\"pump\": {\"curve\": {\"shutoff\": \"120 kPa\", \"free_flow\": \"200 l/min\"}, \"speed\": \"6900 "     \
+    "rpm\"},\n" DUCT_OF(FINS) "}"
+#define REST                                                                                                 \
+    ", \"drive\": [{\"idle\": \"5 min\"}, {\"trace\": \"a/b.csv\", \"repeat\": 3}, "                         \
+    "{\"hold\": \"90 s\", \"speed\": \"60 km/h\", \"power\": \"12 kW\"}, {\"soak\": \"8 min\"}], "           \
+    "\"limits\": {\"coolant\": \"110 degC\"}}"
+#define DRIVE_CASE "{" AIR ", \"car\": " CAR REST
+
+struct result {
+    struct sp_design *design;
+    struct sp_complaints complaints, cautions;
+};
+
+static struct result parse_set(const char *text, enum sp_purpose purpose, char *const *set, size_t sets)
+{
+    struct result r = {0};
+    r.design = sp_case_parse(units, "dir/c.json", text, strlen(text), set, sets, purpose, &r.complaints,
+                             &r.cautions);
+    if ((r.design != NULL) != (r.complaints.count == 0)) fail_msg("design and complaints disagree");
+    return r;
+}
+
+static void drop(struct result *r)
+{
+    sp_design_free(r->design);
+    sp_complaints_free(&r->complaints);
+    sp_complaints_free(&r->cautions);
+}
+
+static struct result must_set(const char *text, enum sp_purpose purpose, char *const *set, size_t sets)
+{
+    struct result r = parse_set(text, purpose, set, sets);
+    if (!r.design) {
+        sp_complaints_print(&r.complaints, false, stderr);
+        fail();
+    }
+    return r;
+}
+
+static struct result must(const char *text, enum sp_purpose purpose)
+{
+    return must_set(text, purpose, NULL, 0);
+}
+
+static bool has(const struct sp_complaints *c, const char *file, long line, const char *path,
+                const char *found, const char *expected)
+{
+    for (size_t i = 0; i < c->count; ++i) {
+        const struct sp_complaint *k = &c->list[i];
+        if ((!file || !strcmp(k->file, file)) && (!line || k->line == line) &&
+            (!path || (k->path && !strcmp(k->path, path))) && (!found || strstr(k->found, found)) &&
+            (!expected || strstr(k->expected, expected)))
+            return true;
+    }
+    return false;
+}
+
+static void refused_at(const char *text, enum sp_purpose purpose, char *const *set, size_t sets,
+                       const char *path, const char *found, const char *expected, int source)
+{
+    struct result r = parse_set(text, purpose, set, sets);
+    if (r.design || r.complaints.count != 1 || !has(&r.complaints, NULL, 0, path, found, expected)) {
+        print_error("at line %d: want one complaint, %s: %s; %s\n", source, path, found ? found : "",
+                    expected ? expected : "");
+        sp_complaints_print(&r.complaints, false, stderr);
+        fail();
+    }
+    drop(&r);
+}
+/* One complaint, at that path. */
+#define refused(text, path, found, expected)                                                                 \
+    refused_at(text, SP_FOR_DUCT, NULL, 0, path, found, expected, __LINE__)
+#define set_refused(value, path, found, expected)                                                            \
+    refused_at(DRIVE_CASE, SP_FOR_DRIVE, (char *const[]){(char *)(size_t)(value)}, 1, path, found, expected, \
+               __LINE__)
+
+/* ---- values ---------------------------------------------------------------------------------------- */
+
+static void duct_case_in_si(void **state)
+{
+    (void)state;
+    struct result r = must(DUCT_CASE, SP_FOR_DUCT);
+    const struct sp_design *d = r.design;
+    check_close(d->air.ambient, 306.15, 1e-14, 0.0);
+    check_close(d->air.altitude, 240.0, 1e-14, 0.0);
+    check_close(d->air.humidity, 0.45, 1e-14, 0.0);
+    /* US Standard Atmosphere 1976 with the geopotential height of 240 m, 239.990939 m:
+     * 101325 (1 - 0.0065 H/288.15)^5.2558797, worked out by hand. */
+    check_close(d->air.pressure, 98472.6, 2e-5, 0.0);
+    check_close(d->duct.inlet.area, 0.045, 1e-14, 0.0);
+    check_close(d->duct.inlet.recovery, 1.0, 0.0, 0.0);
+    check_close(d->duct.inlet.lip_loss, 1.0, 0.0, 0.0);
+    check_close(d->duct.core.coefficient, 8.0, 0.0, 0.0);
+    check_close(d->duct.core.free_area_ratio, 1.0, 0.0, 0.0);
+    check_close(d->duct.exit.loss, 0.0, 0.0, 0.0);
+    assert_int_equal(d->duct.core.drop_law, SP_DROP_COEFFICIENT);
+    assert_int_equal(d->duct.core.heat_law, SP_CORE_NO_HEAT);
+    assert_int_equal(d->duct.diffuser.kind, SP_DIFFUSER_GIVEN);
+    assert_false(d->duct.fan.fitted);
+    assert_string_equal(d->file, "dir/c.json");
+    drop(&r);
+}
+
+static void drive_case_in_si(void **state)
+{
+    (void)state;
+    struct result r = must(DRIVE_CASE, SP_FOR_DRIVE);
+    const struct sp_design *d = r.design;
+    assert_int_equal(d->steps, 4);
+    assert_int_equal(d->step[0].kind, SP_STEP_IDLE);
+    check_close(d->step[0].time, 300.0, 1e-14, 0.0);
+    check_close(d->step[0].repeat, 1.0, 0.0, 0.0);
+    assert_int_equal(d->step[1].kind, SP_STEP_TRACE);
+    assert_string_equal(d->step[1].trace, "dir/a/b.csv");
+    check_close(d->step[1].repeat, 3.0, 0.0, 0.0);
+    check_close(d->step[1].format.longest_gap, 30.0, 0.0, 0.0);
+    assert_int_equal(d->step[2].kind, SP_STEP_HOLD);
+    check_close(d->step[2].speed, 60.0 / 3.6, 1e-14, 0.0);
+    check_close(d->step[2].power, 12e3, 1e-14, 0.0);
+    assert_true(isnan(d->step[2].engine_speed));
+    assert_int_equal(d->step[3].kind, SP_STEP_SOAK);
+    check_close(d->limits.coolant, 383.15, 1e-14, 0.0);
+    assert_true(isnan(d->limits.boil_margin) && isnan(d->limits.gauge));
+    check_close(d->start.coolant, 306.15, 1e-14, 0.0); /* as ambient */
+    assert_true(isnan(d->start.metal));
+    assert_false(d->thermostat.none);
+    drop(&r);
+}
+
+/* Defaults by rule, worked out by hand for 2 l. */
+static void defaults_by_rule(void **state)
+{
+    (void)state;
+    struct result r = must(DRIVE_CASE, SP_FOR_DRIVE);
+    const struct sp_design *d = r.design;
+    check_close(d->engine.metal_capacity, 60e3, 1e-12, 0.0);
+    check_close(d->engine.coolant_volume, 2.5e-3, 1e-12, 0.0);
+    check_close(d->engine.conductance, 2500.0, 1e-12, 0.0);
+    check_close(d->engine.conductance_flow, 120e-3 / 60.0, 1e-12, 0.0);
+    check_close(d->thermostat.full - d->thermostat.opens, 12.0, 1e-12, 0.0);
+    check_close(d->coolant.share, 0.5, 0.0, 0.0);
+    check_close(d->duct.core.louvre_length, 6.8e-3, 1e-12, 0.0);
+    /* 6.8544 l of core: 0.33 kg/l and 2.5 kg of tanks at 0.34/0.4 of the height, at 900 J/kgK */
+    check_close(d->duct.core.metal_capacity, 900.0 * (0.33 * 6.8544 + 2.5 * 0.85), 1e-12, 0.0);
+    check_close(d->duct.core.coolant_volume, 1e-3 * (0.13 * 6.8544 + 1.3 * 0.85), 1e-12, 0.0);
+    /* parabola: most power at Q0/sqrt 3, 0.3849 dp0 Q0 */
+    check_close(d->pump.power, 0.38490018 * 120e3 * 0.2 / 60.0 / 0.32, 1e-8, 0.0);
+    check_close(d->tank.volume, 2.0 * d->tank.air_space, 1e-12, 0.0);
+    assert_true(isnan(d->duct.core.free_area_ratio) && isnan(d->duct.core.drop.flow));
+    assert_int_equal(d->duct.core.heat_law, SP_CORE_FINS);
+    /* friction: 1.55 bar + 0.046 bar N^2, N in 1000 rev/min: at 6000 rpm 3.206 bar (practice: 3.2) */
+    const double *p = d->engine.friction_pressure;
+    check_close(p[0] + p[1] * 100.0 + p[2] * 1e4, 3.206e5, 1e-12, 0.0);
+    /* Barnes-Moss at 3000 rpm: 1.870 bar (published form, engine-and-coolant check) */
+    p = d->engine.overrun_pressure;
+    check_close(p[0] + p[1] * 50.0 + p[2] * 2500.0, 1.870e5, 1e-12, 0.0);
+    drop(&r);
+}
+
+static void lips_thermostat_fan(void **state)
+{
+    (void)state;
+    struct result r = must_set(DUCT_CASE, SP_FOR_DUCT,
+                               (char *const[]){(char[]){"duct.inlet.lip=folded"}, (char[]){"thermostat=none"},
+                                               (char[]){"duct.fan={\"curve\": [[\"0 m3/s\", \"160 Pa\"], "
+                                                        "[\"0.63 m3/s\", \"0 Pa\"]], \"before\": \"core\","
+                                                        "\"diameter\": \"305 mm\"}"}},
+                               3);
+    check_close(r.design->duct.inlet.lip_loss, 0.3, 0.0, 0.0);
+    assert_true(r.design->thermostat.none);
+    assert_true(r.design->duct.fan.fitted && r.design->duct.fan.before_core);
+    assert_int_equal(r.design->duct.fan.curve.pairs.rows, 2);
+    check_close(r.design->duct.fan.curve.pairs.cell[2], 0.63, 1e-14, 0.0);
+    assert_true(isnan(r.design->duct.fan.curve.shutoff));
+    check_close(r.design->duct.fan.hub, 0.35 * 0.305, 1e-12, 0.0);
+    drop(&r);
+    r = must_set(
+        DUCT_CASE, SP_FOR_DUCT,
+        (char *const[]){(char[]){"duct.inlet={\"area\": \"1 m2\", \"lip\": \"folded\", \"lip_loss\": 0.7}"}},
+        1);
+    check_close(r.design->duct.inlet.lip_loss, 0.7, 0.0, 0.0); /* the number wins over the word */
+    drop(&r);
+}
+
+static void core_laws(void **state)
+{
+    (void)state;
+    struct result r =
+        must("{" AIR ", \"car\": {" DUCT_OF("\"pressure_drop\": {\"linear\": \"60 Pa.s/m\", "
+                                            "\"quadratic\": \"12 Pa.s2/m2\", \"at_density\": \"1.1 kg/m3\", "
+                                            "\"at_temperature\": \"20 degC\"}") "}}",
+             SP_FOR_DUCT);
+    assert_int_equal(r.design->duct.core.drop_law, SP_DROP_LINEAR);
+    check_close(r.design->duct.core.linear, 60.0, 0.0, 0.0);
+    check_close(r.design->duct.core.at_density, 1.1, 0.0, 0.0);
+    check_close(r.design->duct.core.at_temperature, 293.15, 1e-14, 0.0);
+    drop(&r);
+    r = must("{" AIR ", \"car\": {" DUCT_OF(
+                 "\"pressure_drop\": {\"table\": [[\"2 m/s\", \"35 Pa\"], [\"4 m/s\", \"100 Pa\"]]}, "
+                 "\"heat\": {\"face_velocity\": [\"2 m/s\", \"4 m/s\"], \"coolant_flow\": [\"60 l/min\", "
+                 "\"1.5 kg/s\"], "
+                 "\"rejection\": [[\"500 W/K\", \"60 kW/100K\"], [\"700 W/K\", \"900 W/K\"]]}") "}}",
+             SP_FOR_DUCT);
+    const struct sp_core *c = &r.design->duct.core;
+    assert_int_equal(c->drop_law, SP_DROP_TABLE);
+    assert_int_equal(c->heat_law, SP_CORE_MAKER);
+    assert_true(isnan(c->at_temperature));
+    check_close(c->drop_table.cell[3], 100.0, 0.0, 0.0);
+    check_close(c->heat_flow.cell[0], 1.03095, 1e-12,
+                0.0); /* a litre a second of 50/50 at 90 degC, ASHRAE's table */
+    check_close(c->heat_per_kelvin.cell[1], 600.0, 1e-12, 0.0);
+    drop(&r);
+}
+
+/* ---- overrides ------------------------------------------------------------------------------------- */
+
+static void settings(void **state)
+{
+    (void)state;
+    struct result r =
+        must_set(DRIVE_CASE, SP_FOR_DRIVE,
+                 (char *const[]){(char[]){"duct.exit.area=450 cm2"},
+                                 (char[]){"car.duct.inlet.area=\"300 cm2\""}, (char[]){"drive[1].repeat=7"},
+                                 (char[]){"limits.boil_margin=8 K"}, (char[]){"start.coolant=0 degC"},
+                                 (char[]){"title=a=b"}, (char[]){"drive[1].layout.delimiter=;"}},
+                 7);
+    check_close(r.design->duct.exit.area, 0.045, 1e-14, 0.0);
+    check_close(r.design->duct.inlet.area, 0.03, 1e-14, 0.0);
+    check_close(r.design->step[1].repeat, 7.0, 0.0, 0.0);
+    check_close(r.design->limits.boil_margin, 8.0, 0.0, 0.0);
+    check_close(r.design->start.coolant, 273.15, 1e-14, 0.0);
+    assert_string_equal(r.design->title, "a=b");
+    assert_int_equal(r.design->step[1].format.delimiter, ';');
+    drop(&r);
+}
+
+static void pressure_drops_altitude(void **state)
+{
+    (void)state;
+    struct result r = must_set(DUCT_CASE, SP_FOR_DUCT, (char *const[]){(char[]){"air.pressure=80 kPa"}}, 1);
+    check_close(r.design->air.pressure, 80e3, 1e-14, 0.0);
+    assert_true(isnan(r.design->air.altitude));
+    drop(&r);
+    r = must_set(DUCT_CASE, SP_FOR_DUCT,
+                 (char *const[]){(char[]){"air.pressure=80 kPa"}, (char[]){"air.altitude=0 m"}}, 2);
+    check_close(r.design->air.pressure, 101325.0, 1e-9, 0.0);
+    drop(&r);
+}
+
+static void bad_settings(void **state)
+{
+    (void)state;
+    set_refused("duct.exit.aera=3", "duct.exit.aera", "an unknown key", NULL);
+    set_refused("duct.exit.area=450 cm", "duct.exit.area", "450 cm", "an area");
+    set_refused("car.duct.exit.area=450 cm", "car.duct.exit.area", "450 cm", "an area");
+    set_refused("duct.exit.area=3", "duct.exit.area", "3", "an area");
+    set_refused("drive[4].repeat=2", "drive[4].repeat", "index 4", "0 to 3");
+    set_refused("drive[1].repeat=0", "drive[1].repeat", "0", "1 to 100000");
+    set_refused("drive[1].repeat=1.5", "drive[1].repeat", "1.5", "whole");
+    set_refused("drive.repeat=2", "drive.repeat", "an unknown key", NULL);
+    set_refused("limits.coolant=null", "limits.coolant", "null", "temperature");
+    set_refused("air.ambient=NaN degC", "air.ambient", "NaN", NULL);
+    set_refused("air.ambient=33 C", "air.ambient", "33 C", NULL);
+    set_refused("limits.boil_margin=8 degC", "limits.boil_margin", "8 degC", NULL);
+    set_refused("pump.curve[0]=3", "pump.curve[0]", "an object", "list");
+    set_refused("nothing", NULL, "no path", "PATH=VALUE");
+    set_refused("=3", NULL, "no path", "PATH=VALUE");
+    set_refused("air..ambient=3", "air..ambient", NULL, NULL);
+    set_refused("drive[=3", "drive[", NULL, NULL);
+    set_refused("drive[99999999999999999999]=3", NULL, NULL, NULL);
+    set_refused("[0]=3", "[0]", NULL, NULL);
+    struct result r = parse_set(DUCT_CASE, SP_FOR_DUCT, (char *const[]){(char[]){"duct.exit.aera=3"}}, 1);
+    assert_string_equal(r.complaints.list[0].file, "--set duct.exit.aera=3");
+    assert_string_equal(r.complaints.list[0].hint, "nearest known key is \"area\"");
+    drop(&r);
+}
+
+/* ---- files ----------------------------------------------------------------------------------------- */
+
+static const char *write_file(const char *name, const char *text)
+{
+    static char path[200];
+    snprintf(path, sizeof path, "%s/%s", folder, name);
+    FILE *f = fopen(path, "wb");
+    assert_non_null(f);
+    fputs(text, f);
+    fclose(f);
+    return path;
+}
+
+static struct result read_file(const char *name, char *const *set, size_t sets)
+{
+    struct result r = {0};
+    char path[200];
+    snprintf(path, sizeof path, "%s/%s", folder, name);
+    r.design = sp_case_read(units, path, set, sets, SP_FOR_DUCT, &r.complaints, &r.cautions);
+    return r;
+}
+
+static void cars_in_files(void **state)
+{
+    (void)state;
+    char path[200];
+    snprintf(path, sizeof path, "%s/sub", folder);
+    assert_int_equal(mkdir(path, 0777), 0);
+    write_file("sub/base.json", "{" DUCT_OF(COEFFICIENT) "}");
+    write_file("sub/car.json", "{\"from\": \"base.json\", \"duct\": {\"exit\": {\"loss\": 1.7}}}");
+    write_file("case.json", "{" AIR ", \"car\": \"sub/car.json\"}");
+    struct result r = read_file("case.json", NULL, 0);
+    assert_non_null(r.design);
+    check_close(r.design->duct.exit.loss, 1.7, 0.0, 0.0);
+    check_close(r.design->duct.exit.area, 0.06, 1e-14, 0.0);
+    drop(&r);
+    r = read_file("case.json", (char *const[]){(char[]){"duct.exit.area=1 m2"}}, 1);
+    assert_non_null(r.design);
+    check_close(r.design->duct.exit.area, 1.0, 1e-14, 0.0);
+    drop(&r);
+    write_file("over.json",
+               "{" AIR
+               ", \"car\": {\"from\": \"sub/car.json\", \"duct\": {\"exit\": {\"area\": \"2 m2\"}}}}");
+    r = read_file("over.json", NULL, 0);
+    assert_non_null(r.design);
+    check_close(r.design->duct.exit.area, 2.0, 1e-14, 0.0);
+    check_close(r.design->duct.exit.loss, 1.7, 0.0, 0.0);
+    drop(&r);
+    r = read_file("case.json", (char *const[]){(char[]){"car=sub/base.json"}}, 1);
+    assert_non_null(r.design);
+    check_close(r.design->duct.exit.loss, 0.0, 0.0, 0.0);
+    drop(&r);
+}
+
+static void faults_in_cars(void **state)
+{
+    (void)state;
+    char car[200], path[200];
+    snprintf(car, sizeof car, "%s/bad.json", folder);
+    snprintf(path, sizeof path, "%s/names.json", folder);
+    write_file("bad.json", "{\n\"duct\": {\n\"inlet\": {\"aera\": \"1 m2\",\n\"area\": \"450 m\"}, " EXIT
+                           ",\n" CORE_START COEFFICIENT "}}}");
+    write_file("names.json", "{" AIR ",\n \"car\": \"bad.json\",\n \"limit\": {}}");
+    struct result r = read_file("names.json", NULL, 0);
+    assert_null(r.design);
+    assert_int_equal(r.complaints.count, 3);
+    assert_true(has(&r.complaints, car, 3, "duct.inlet.aera", "an unknown key", NULL));
+    assert_true(has(&r.complaints, car, 4, "duct.inlet.area", "450 m", "an area"));
+    assert_true(has(&r.complaints, path, 3, "limit", "an unknown key", NULL));
+    for (size_t i = 0; i < 3; ++i)
+        if (!strcmp(r.complaints.list[i].file, car)) assert_string_equal(r.complaints.list[i].named_by, path);
+    drop(&r);
+    write_file("bad.json", "{\n\"duct\": {\n");
+    write_file("names.json", "{" AIR ",\n \"car\": \"bad.json\"}");
+    r = read_file("names.json", NULL, 0);
+    assert_int_equal(r.complaints.count, 1); /* a syntax fault stands alone */
+    assert_string_equal(r.complaints.list[0].file, car);
+    assert_string_equal(r.complaints.list[0].named_by, path);
+    drop(&r);
+    write_file("bad.json", "[]");
+    r = read_file("names.json", NULL, 0);
+    assert_int_equal(r.complaints.count, 1);
+    assert_true(has(&r.complaints, car, 1, NULL, "an array", "an object"));
+    drop(&r);
+    write_file("names.json", "{" AIR ", \"car\": \"nowhere.json\"}");
+    r = read_file("names.json", (char *const[]){(char[]){"duct.exit.area=1 m2"}}, 1);
+    assert_int_equal(r.complaints.count, 1);
+    assert_string_equal(r.complaints.list[0].named_by, path);
+    drop(&r);
+}
+
+static void cars_that_name_each_other(void **state)
+{
+    (void)state;
+    write_file("loop.json", "{\"from\": \"loop.json\"}");
+    write_file("round.json", "{" AIR ", \"car\": \"loop.json\"}");
+    struct result r = read_file("round.json", NULL, 0);
+    assert_int_equal(r.complaints.count, 1);
+    assert_true(has(&r.complaints, NULL, 0, "from", NULL, "no more than 8 cars"));
+    drop(&r);
+    r = read_file("absent.json", NULL, 0);
+    assert_null(r.design);
+    assert_int_equal(r.complaints.count, 1);
+    drop(&r);
+}
+
+/* ---- complaints ------------------------------------------------------------------------------------ */
+
+static void what_is_missing(void **state)
+{
+    (void)state;
+    refused("{" AIR "}", "car", "nothing", "object");
+    refused("{\"car\": {" DUCT_OF(COEFFICIENT) "}}", "air", "nothing", "ambient");
+    refused("{\"air\": {}, \"car\": {" DUCT_OF(COEFFICIENT) "}}", "air.ambient", "nothing", "temperature");
+    refused("{" AIR ", \"car\": {}}", "car.duct", "nothing", "inlet");
+    refused("{" AIR ", \"car\": {\"duct\": {" INLET ", " CORE_START COEFFICIENT "}}}}", "car.duct.exit",
+            "nothing", "area");
+    refused("{" AIR ", \"car\": {" DUCT_OF("\"cells\": 4") "}}", "car.duct.core.pressure_drop", "nothing",
+            "coefficient");
+    refused("{" AIR ", \"car\": {" DUCT_OF("\"pressure_drop\": {}") "}}", "car.duct.core.pressure_drop",
+            "no law", NULL);
+    refused("{" AIR ", \"car\": 3}", "car", "3", NULL);
+    refused("[]", NULL, "an array", "an object");
+    refused("{", NULL, NULL, NULL);
+    refused("", NULL, NULL, NULL);
+    struct result r = parse_set(DUCT_CASE, SP_FOR_DRIVE, NULL, 0);
+    assert_true(
+        has(&r.complaints, NULL, 0, "car.engine", "nothing", "displacement, rated_power, rated_speed, heat"));
+    assert_true(has(&r.complaints, NULL, 0, "car.pump", "nothing", "curve"));
+    assert_true(has(&r.complaints, NULL, 0, "car.body", "nothing", "frontal_area"));
+    assert_true(has(&r.complaints, NULL, 0, "drive", "nothing", NULL));
+    assert_true(has(&r.complaints, NULL, 0, "limits", "nothing", NULL));
+    assert_true(has(&r.complaints, NULL, 0, "car.duct.core.heat", "nothing", NULL));
+    assert_int_equal(r.complaints.count, 6);
+    drop(&r);
+}
+
+static void what_does_not_belong(void **state)
+{
+    (void)state;
+    refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}, \"title\": null}", "title", "null", "a text");
+    refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"engine\": null}}", "car.engine", "null",
+            "an object");
+    refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT ", \"fins\": 7") "}}", "car.duct.core.fins", "7",
+            "an object");
+    refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"a.b[0]\": 1}}", "car.a.b[0]", "an unknown key",
+            NULL);
+    refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"thermostat\": \"stuck\"}}", "car.thermostat",
+            "stuck", "none");
+    refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"\": 1}}", "car.", "an unknown key", NULL);
+    refused("{\"car\": {" DUCT_OF(COEFFICIENT) "}, \"air\": {\"ambient\": 33}}", "air.ambient", "33",
+            "temperature");
+    refused("{\"car\": {" DUCT_OF(COEFFICIENT) "}, \"air\": {\"ambient\": \"33 degC\", \"pressure\": \"1 "
+                                               "bar\", \"altitude\": \"0 m\"}}",
+            "air.pressure", "both", "one");
+    refused("{\"car\": {" DUCT_OF(COEFFICIENT) "}, \"air\": {\"ambient\": \"120 degC\"}}", "air.ambient",
+            "120 degC", "-60 degC to 70 degC");
+}
+
+static void cores_that_will_not_do(void **state)
+{
+    (void)state;
+#define CORE_CASE(core) "{" AIR ", \"car\": {" DUCT_OF(core) "}}"
+    refused(CORE_CASE("\"pressure_drop\": {\"linear\": \"60 Pa.s/m\"}"),
+            "car.duct.core.pressure_drop.quadratic", "nothing", NULL);
+    refused(CORE_CASE("\"pressure_drop\": {\"coefficient\": 8, \"table\": [[\"1 m/s\", \"1 Pa\"]]}"),
+            "car.duct.core.pressure_drop", "more than one law", NULL);
+    refused(CORE_CASE("\"pressure_drop\": {\"table\": [[\"2 m/s\", \"30 Pa\"], [\"3 m/s\", \"30 Pa\"]]}"),
+            "car.duct.core.pressure_drop.table[1]", NULL, "rising");
+    refused(CORE_CASE("\"pressure_drop\": {\"table\": []}"), "car.duct.core.pressure_drop.table",
+            "an empty list", NULL);
+    refused(CORE_CASE("\"pressure_drop\": {\"table\": [[\"2 m/s\"]]}"),
+            "car.duct.core.pressure_drop.table[0]", "a row of 1", "a row of 2");
+    refused(CORE_CASE("\"pressure_drop\": {\"table\": [[\"2 Pa\", \"2 Pa\"]]}"),
+            "car.duct.core.pressure_drop.table[0][0]", "2 Pa", "speed");
+    refused(CORE_CASE("\"pressure_drop\": {\"coefficient\": -1}"), "car.duct.core.pressure_drop.coefficient",
+            "-1", "0 to");
+    refused(
+        CORE_CASE(
+            "\"fins\": {\"pitch\": \"1.9 mm\", \"louvre_pitch\": \"1.4 mm\", \"louvre_angle\": \"23 deg\"}"),
+        "car.duct.core.tubes", "nothing", NULL);
+    refused(CORE_CASE(COEFFICIENT ", \"tubes\": {\"pitch\": \"2 mm\", \"height\": \"2 mm\"}"),
+            "car.duct.core.tubes.height", NULL, NULL);
+    refused(CORE_CASE(COEFFICIENT ", \"heat\": {}"), "car.duct.core.heat", "neither", NULL);
+    refused(CORE_CASE(COEFFICIENT
+                      ", \"heat\": {\"air_conductance\": \"1 kW/K\", \"at_face_velocity\": \"5 m/s\", "
+                      "\"coolant_conductance\": \"3 kW/K\"}"),
+            "car.duct.core.heat.at_coolant_flow", "nothing", NULL);
+    refused(CORE_CASE(COEFFICIENT
+                      ", \"heat\": {\"face_velocity\": [\"2 m/s\"], \"coolant_flow\": [\"1 kg/s\"], "
+                      "\"rejection\": [[\"1 kW/K\", \"2 kW/K\"]]}"),
+            "car.duct.core.heat.rejection", "1 rows of 2", "1 rows of 1");
+    refused(
+        CORE_CASE(COEFFICIENT
+                  ", \"heat\": {\"face_velocity\": [\"2 m/s\", \"2 m/s\"], \"coolant_flow\": [\"1 kg/s\"], "
+                  "\"rejection\": [[\"1 kW/K\"], [\"2 kW/K\"]]}"),
+        "car.duct.core.heat.face_velocity[1]", NULL, "rises");
+}
+
+static void fans_that_will_not_do(void **state)
+{
+    (void)state;
+#define FAN_SET(rest) "duct.fan={\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}, " rest "}"
+    set_refused(FAN_SET("\"diameter\": \"300 mm\", \"hub\": \"300 mm\""), "duct.fan.hub", NULL,
+                "below diameter");
+    set_refused(FAN_SET("\"switch\": {\"on\": \"90 degC\", \"off\": \"90 degC\"}"), "duct.fan.switch.off",
+                NULL, "below on");
+    set_refused(FAN_SET("\"basis\": \"static\""), "duct.fan.diameter", "nothing", NULL);
+    set_refused(FAN_SET("\"before\": \"engine\""), "duct.fan.before", "engine", "core");
+    set_refused("duct.fan={\"diameter\": \"300 mm\"}", "duct.fan.curve", "nothing", "table");
+    set_refused("duct.fan={\"curve\": {\"shutoff\": \"1 Pa\"}}", "duct.fan.curve.free_flow", "nothing",
+                "volume flow");
+    set_refused("duct.fan={\"curve\": [[\"0 m3/s\", \"9 Pa\"], [\"0 m3/s\", \"8 Pa\"]]}",
+                "duct.fan.curve[1][0]", NULL, "rising");
+    set_refused("duct.fan={\"curve\": [[\"0 m3/s\", \"9 Pa\"], [\"1 m3/s\", \"9 Pa\"]]}", "duct.fan.curve",
+                NULL, "falling");
+    set_refused("duct.fan={\"curve\": [[\"1 m3/s\", \"9 Pa\"]]}", "duct.fan.curve", "one pair", NULL);
+}
+
+static void circuits_that_will_not_do(void **state)
+{
+    (void)state;
+    set_refused("thermostat={\"opens\": \"90 degC\", \"full\": \"90 degC\"}", "thermostat.opens", NULL,
+                "below full");
+    set_refused("coolant={\"kind\": \"propylene glycol\", \"glycol\": \"55 %\"}", "coolant.glycol", "55 %",
+                "50 %");
+    set_refused("coolant={\"kind\": \"water\", \"glycol\": \"30 %\"}", "coolant.glycol", "30 %", "0 %");
+    set_refused("coolant.glycol=70 %", "coolant.glycol", "70 %", "60 %");
+    set_refused("tank={\"volume\": \"1 l\", \"air_space\": \"1 l\"}", "tank.air_space", NULL, "below volume");
+    set_refused("pump={\"curve\": {\"shutoff\": \"1 bar\", \"free_flow\": \"100 l/min\"}}", "pump.speed",
+                "nothing", "rotation");
+    set_refused("engine.heat={\"law\": \"rated\"}", "engine.heat.fraction", "nothing", NULL);
+    set_refused("engine.heat={\"law\": \"table\"}", "engine.heat.table", "nothing", NULL);
+    set_refused("engine.heat={\"law\": \"table\", \"table\": [[\"1000 rpm\", \"1 kW\", \"1 kW\"], [\"1000 "
+                "rpm\", \"2 kW\", \"1 kW\"], "
+                "[\"2000 rpm\", \"1 kW\", \"1 kW\"]]}",
+                "engine.heat.table", "no full grid", NULL);
+    set_refused("engine.idle_speed=1 Hz", "engine.idle_speed", "1 Hz", "100 rpm");
+    set_refused(
+        "engine={\"displacement\": \"2 l\", \"rated_power\": \"90 kW\", \"rated_speed\": \"600 rpm\", "
+        "\"heat\": {\"fraction\": 0.6}}",
+        "engine.idle_speed", NULL, "below rated_speed");
+    set_refused("engine.friction=[\"1 bar\", \"0 bar\"]", "engine.friction", "a row of 2", "a row of 3");
+    set_refused("body={\"frontal_area\": \"2 m2\", \"wheel_radius\": \"30 cm\", \"gears\": [3, 4]}",
+                "body.gears[1]", "4", "falling");
+    set_refused("body.gears=[4, 3]", NULL, "nothing", "a length");
+    set_refused("engine.displacement=3 ml", NULL, "by the default", NULL);
+    struct result r = must_set(DRIVE_CASE, SP_FOR_DRIVE, (char *const[]){(char[]){"coolant.kind=water"}}, 1);
+    check_close(r.design->coolant.share, 0.0, 0.0, 0.0);
+    drop(&r);
+}
+
+static void steps_that_will_not_do(void **state)
+{
+    (void)state;
+    set_refused("drive[0].soak=3 s", "drive[0]", "more than one kind", NULL);
+    set_refused("drive[0]={\"repeat\": 3}", "drive[0]", "no kind", NULL);
+    set_refused("drive[0]={}", "drive[0]", "no kind", NULL);
+    set_refused("drive[0]=3", "drive[0]", "3", "an object");
+    set_refused("drive=[]", "drive", "an empty list", NULL);
+    set_refused("drive={}", "drive", "an object", "a list");
+    set_refused("drive[0].speed=3 km/h", "drive[0].speed", NULL, "hold");
+    set_refused("drive[0].columns={}", "drive[0].columns", NULL, "trace");
+    set_refused("drive[2]={\"hold\": \"3 s\"}", "drive[2].speed", "nothing", NULL);
+    set_refused("drive[0].idle=0 s", "drive[0].idle", "0 s", "above 0 s");
+    set_refused("drive[0].idle=5", "drive[0].idle", "5", "time");
+    set_refused("drive[1].trace=\"\"", "drive[1].trace", "\"\"", NULL);
+    set_refused("drive[1].layout={\"delimiter\": \",\", \"decimal\": \"comma\"}", "drive[1].layout", NULL,
+                NULL);
+    set_refused("drive[1].layout.delimiter=pipe", "drive[1].layout.delimiter", "pipe", "semicolon");
+    set_refused("drive[1].layout.skip_lines=1001", "drive[1].layout.skip_lines", "1001", "0 to 1000");
+    set_refused("drive[1].layout.repair=yes", "drive[1].layout.repair", "yes", "true or false");
+    set_refused("drive[1].columns={\"sped\": \"v\"}", "drive[1].columns.sped", "an unknown key", NULL);
+    set_refused("drive[1].columns={\"speed\": {\"name\": \"v\", \"unit\": \"kW\"}}",
+                "drive[1].columns.speed.unit", "kW", "speed");
+    set_refused("drive[1].columns={\"speed\": {\"unit\": \"km/h\"}}", "drive[1].columns.speed", "no name",
+                NULL);
+    set_refused("limits={}", "limits", "no limit", "at least one");
+}
+
+static void columns_are_kept(void **state)
+{
+    (void)state;
+    struct result r =
+        must_set(DRIVE_CASE, SP_FOR_DRIVE,
+                 (char *const[]){(char[]){"drive[1].columns={\"speed\": {\"name\": \"Vehicle Speed\", "
+                                          "\"unit\": \"km/h\"}, \"gear\": \"Gang\"}"},
+                                 (char[]){"drive[1].layout={\"decimal\": \"comma\", \"delimiter\": \"tab\", "
+                                          "\"blanks\": \"hold\", \"repair\": true, "
+                                          "\"skip_lines\": 2, \"longest_gap\": \"2 min\"}"}},
+                 2);
+    const struct sp_trace_format *f = &r.design->step[1].format;
+    assert_string_equal(f->column[SP_COL_SPEED].heading, "Vehicle Speed");
+    assert_string_equal(f->column[SP_COL_SPEED].unit, "km/h");
+    assert_string_equal(f->column[SP_COL_GEAR].heading, "Gang");
+    assert_null(f->column[SP_COL_GEAR].unit);
+    assert_null(f->column[SP_COL_TIME].heading);
+    assert_int_equal(f->decimal, ',');
+    assert_int_equal(f->delimiter, '\t');
+    assert_int_equal(f->blank, SP_BLANK_HOLD);
+    assert_true(f->repair && !f->clock);
+    assert_int_equal(f->skip_lines, 2);
+    check_close(f->longest_gap, 120.0, 0.0, 0.0);
+    drop(&r);
+}
+
+static void heat_tables_are_sorted(void **state)
+{
+    (void)state;
+    struct result r = must_set(
+        DRIVE_CASE, SP_FOR_DRIVE,
+        (char *const[]){(char[]){"engine.heat={\"law\": \"table\", \"table\": [[\"2000 rpm\", \"2 kW\", \"4 "
+                                 "kW\"], [\"1000 rpm\", \"1 kW\", \"1 kW\"], "
+                                 "[\"2000 rpm\", \"1 kW\", \"3 kW\"], [\"1000 rpm\", \"2 kW\", \"2 kW\"]]}"}},
+        1);
+    for (size_t i = 0; i < 4; ++i)
+        check_close(r.design->engine.heat_table.cell[3 * i + 2], 1e3 * (double)(i + 1), 1e-12, 0.0);
+    drop(&r);
+}
+
+/* ---- showing, starting, examples ------------------------------------------------------------------- */
+
+static void shown(void **state)
+{
+    (void)state;
+    struct sp_complaints c = {0};
+    char *text = NULL;
+    size_t size = 0;
+    FILE *to = open_memstream(&text, &size);
+    const char *path = write_file("shown.json", DRIVE_CASE);
+    assert_int_equal(sp_case_show(units, path, (char *const[]){(char[]){"air.wind=3 m/s"}}, 1, to, &c),
+                     SP_OK);
+    fclose(to);
+    assert_non_null(strstr(text, "45 % = 0.45 "));
+    assert_non_null(strstr(text, "3 m/s = 3 m/s  (--set air.wind=3 m/s)"));
+    assert_non_null(strstr(text, "85 degC = 358.15 K  (default, common practice)"));
+    assert_non_null(strstr(text, "drive[2].power"));
+    free(text);
+    to = open_memstream(&text, &size);
+    assert_int_equal(sp_case_show_json(units, path, (char *const[]){(char[]){"air.wind=3 km"}}, 1, to, &c),
+                     SP_INPUT);
+    fclose(to);
+    assert_int_equal(size, 0);
+    assert_int_equal(c.count, 1);
+    free(text);
+    sp_complaints_free(&c);
+}
+
+static struct sp_design *read_example(const char *path)
+{
+    struct sp_complaints c = {0}, cautions = {0};
+    struct sp_design *d = sp_case_read(units, path, NULL, 0, SP_FOR_DRIVE, &c, &cautions);
+    if (!d || cautions.count) {
+        sp_complaints_print(&c, false, stderr);
+        sp_complaints_print(&cautions, true, stderr);
+        fail_msg("%s", path);
+    }
+    sp_complaints_free(&c);
+    sp_complaints_free(&cautions);
+    return d;
+}
+
+/* A started case reads without complaint or caution for cars of all sizes; nothing is overwritten. */
+static void started(void **state)
+{
+    (void)state;
+    const struct sp_starter s[] = {
+        {230.0, 0.6e-3, 60e3}, {620.0, 2e-3, 190e3}, {1250.0, 3e-3, 350e3}, {1100.0, 1.4e-3, 70e3}};
+    for (size_t i = 0; i < 4; ++i) {
+        struct sp_complaints c = {0};
+        char dir[150], path[200];
+        snprintf(dir, sizeof dir, "%s/new%zu", folder, i);
+        snprintf(path, sizeof path, "%s/case.json", dir);
+        if (sp_case_new(&s[i], dir, &c) != SP_OK) {
+            sp_complaints_print(&c, false, stderr);
+            fail();
+        }
+        struct sp_design *d = read_example(path);
+        check_close(d->body.mass, s[i].mass, 1e-6, 0.0);
+        check_close(d->engine.rated_power, s[i].rated_power, 1e-6, 0.0);
+        sp_design_free(d);
+        assert_int_equal(sp_case_new(&s[i], dir, &c), SP_INPUT);
+        assert_int_equal(c.count, 3);
+        sp_complaints_free(&c);
+    }
+    struct sp_complaints c = {0};
+    assert_int_equal(sp_case_new(&(struct sp_starter){NAN, -1.0, INFINITY}, folder, &c), SP_INPUT);
+    assert_int_equal(c.count, 3);
+    sp_complaints_free(&c);
+    assert_int_equal(sp_case_new(&s[0], "/dev/null/x", &c), SP_INPUT);
+    sp_complaints_free(&c);
+}
+
+static void examples_read(void **state)
+{
+    (void)state;
+    struct sp_design *d = read_example(SP_SOURCE_DIR "/docs/examples/harrowmoor.json");
+    assert_int_equal(d->steps, 3);
+    assert_true(access(d->step[1].trace, R_OK) == 0);
+    check_close(d->air.ambient, 306.15, 1e-14, 0.0);
+    sp_design_free(d);
+    d = read_example(SP_SOURCE_DIR "/docs/examples/nedc.json");
+    assert_true(access(d->step[0].trace, R_OK) == 0);
+    sp_design_free(d);
+}
+
+static void doubts(void **state)
+{
+    (void)state;
+    struct result r =
+        must_set(DRIVE_CASE, SP_FOR_DRIVE,
+                 (char *const[]){(char[]){"duct.exit.area=40 cm2"}, (char[]){"thermostat.opens=112 degC"},
+                                 (char[]){"engine.rated_power=1000 kW"}},
+                 3);
+    assert_int_equal(r.cautions.count, 3);
+    assert_true(has(&r.cautions, NULL, 0, "duct.exit.area", "40 cm2", NULL));
+    drop(&r);
+    r = must(DRIVE_CASE, SP_FOR_DRIVE);
+    assert_int_equal(r.cautions.count, 0);
+    drop(&r);
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(duct_case_in_si),
+        cmocka_unit_test(drive_case_in_si),
+        cmocka_unit_test(defaults_by_rule),
+        cmocka_unit_test(lips_thermostat_fan),
+        cmocka_unit_test(core_laws),
+        cmocka_unit_test(settings),
+        cmocka_unit_test(pressure_drops_altitude),
+        cmocka_unit_test(bad_settings),
+        cmocka_unit_test(cars_in_files),
+        cmocka_unit_test(faults_in_cars),
+        cmocka_unit_test(cars_that_name_each_other),
+        cmocka_unit_test(what_is_missing),
+        cmocka_unit_test(what_does_not_belong),
+        cmocka_unit_test(cores_that_will_not_do),
+        cmocka_unit_test(fans_that_will_not_do),
+        cmocka_unit_test(circuits_that_will_not_do),
+        cmocka_unit_test(steps_that_will_not_do),
+        cmocka_unit_test(columns_are_kept),
+        cmocka_unit_test(heat_tables_are_sorted),
+        cmocka_unit_test(shown),
+        cmocka_unit_test(started),
+        cmocka_unit_test(examples_read),
+        cmocka_unit_test(doubts),
+    };
+    return cmocka_run_group_tests(tests, begin, end);
+}
