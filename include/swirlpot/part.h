@@ -236,7 +236,7 @@ enum sp_step_kind { SP_STEP_TRACE, SP_STEP_IDLE, SP_STEP_HOLD, SP_STEP_SOAK };
 
 struct sp_step {
     enum sp_step_kind kind;
-    char *trace;                    /* path as given, SP_STEP_TRACE */
+    char *trace;                    /* path to open: the case's own text, from where the case stands */
     double time;                    /* s, the other kinds */
     double speed, power, engine_speed, grade; /* hold; power NAN: from road load */
     double repeat;                  /* times, 1.. */

@@ -11,40 +11,44 @@
 
 /* Continuous channels. */
 enum sp_channel_in {
-    SP_IN_SPEED,        /* m/s over the road */
-    SP_IN_AIR_SPEED,    /* m/s through the air: speed + wind */
-    SP_IN_WAKE,         /* share of dynamic pressure left */
-    SP_IN_AMBIENT,      /* K */
-    SP_IN_PRESSURE,     /* Pa */
-    SP_IN_HEAT_GAS,     /* W */
-    SP_IN_HEAT_FRICTION,/* W */
-    SP_IN_HEAT_SLOPE,   /* W/W: heat per further brake power */
-    SP_IN_ENGINE_SPEED, /* rev/s */
-    SP_IN_POWER,        /* W brake */
-    SP_IN_MEASURED,     /* K, measured coolant; NAN when there is none */
+    SP_IN_SPEED,         /* m/s over the road */
+    SP_IN_AIR_SPEED,     /* m/s through the air: speed + wind */
+    SP_IN_WAKE,          /* share of dynamic pressure left */
+    SP_IN_AMBIENT,       /* K */
+    SP_IN_PRESSURE,      /* Pa */
+    SP_IN_HEAT_GAS,      /* W */
+    SP_IN_HEAT_FRICTION, /* W */
+    SP_IN_HEAT_SLOPE,    /* W/W: heat per further brake power */
+    SP_IN_ENGINE_SPEED,  /* rev/s */
+    SP_IN_POWER,         /* W brake */
+    SP_IN_MEASURED,      /* K, measured coolant; NAN when there is none */
     SP_INPUTS
 };
 
 /* What holds over a whole segment. */
-enum { SP_FLAG_ENGINE = 1,   /* the engine runs */
-       SP_FLAG_PUMP = 2,     /* an electric pump is allowed to run (engine on, or within its run-on) */
-       SP_FLAG_FAN = 4 };    /* a fan is allowed to run (engine on, or within its run-on) */
+enum {
+    SP_FLAG_ENGINE = 1, /* the engine runs */
+    SP_FLAG_PUMP = 2,   /* an electric pump is allowed to run (engine on, or within its run-on) */
+    SP_FLAG_FAN = 4
+}; /* a fan is allowed to run (engine on, or within its run-on) */
 
 struct sp_schedule {
     size_t rows;
-    double *time;              /* s, not falling */
-    double *distance;          /* m since the start, exact for the linear speeds */
+    double *time;     /* s, not falling */
+    double *distance; /* m since the start, exact for the linear speeds */
     double *channel[SP_INPUTS];
-    unsigned char *flags;      /* of the segment that begins at the row */
-    unsigned short *step;      /* index of the drive step the row belongs to */
-    struct sp_mark *mark;      /* texts by row, from the traces' mark columns */
+    unsigned char *flags; /* of the segment that begins at the row */
+    unsigned short *step; /* index of the drive step the row belongs to */
+    struct sp_mark *mark; /* texts by row, from the traces' mark columns */
     size_t marks;
-    bool power_from_road;      /* power came from the road-load model somewhere */
-    bool measured;             /* some trace holds measured coolant */
+    bool power_from_road; /* power came from the road-load model somewhere */
+    bool measured;        /* some trace holds measured coolant */
     /* Work over the drive [J], for the check that is printed when power came from road load. */
-    struct { double wheel, kinetic, potential, drag, rolling, brakes; } work;
+    struct {
+        double wheel, kinetic, potential, drag, rolling, brakes;
+    } work;
     struct sp_trace_repairs repairs;
-    size_t rows_merged;        /* rows of traces that were merged away */
+    size_t rows_merged; /* rows of traces that were merged away */
 };
 
 /* Reads the traces and builds the schedule. Everything that is missing (no power and no road load, no

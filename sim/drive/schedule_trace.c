@@ -27,18 +27,6 @@ struct deriving {
 
 /* ---- reading -------------------------------------------------------------------------------------- */
 
-/* The path as the case gives it, from where the case stands. malloc'd, NULL without memory. */
-static char *path_of(const struct sp_design *d, const char *trace)
-{
-    const char *slash = d->file && trace[0] != '/' ? strrchr(d->file, '/') : NULL;
-    size_t folder = slash ? (size_t)(slash - d->file) + 1 : 0, size = strlen(trace) + 1;
-    char *path = malloc(folder + size);
-    if (!path) return NULL;
-    if (folder) memcpy(path, d->file, folder);
-    memcpy(path + folder, trace, size);
-    return path;
-}
-
 static bool read_trace(struct deriving *v)
 {
     const struct sp_design *d = v->b->design;
@@ -47,14 +35,8 @@ static bool read_trace(struct deriving *v)
         sp_schedule_fault(v->b, v->step, "trace", "no path", "the path of a trace");
         return false;
     }
-    char *path = path_of(d, step->trace);
-    if (!path) {
-        sp_schedule_fault(v->b, v->step, "trace", "no memory", "memory for the path");
-        return false;
-    }
     enum sp_status status =
-        sp_trace_read(v->b->units, path, d->file, &step->format, &v->trace, v->b->complaints);
-    free(path);
+        sp_trace_read(v->b->units, step->trace, d->file, &step->format, &v->trace, v->b->complaints);
     if (status != SP_OK) {
         v->b->failed = true;
         return false;

@@ -102,7 +102,8 @@ double sp_rule_free_area(const struct sp_design *d)
 
 double sp_rule_louvre_length(const struct sp_design *d)
 {
-    return 0.85 * (d->duct.core.tube_pitch - d->duct.core.tube_height);
+    double gap = d->duct.core.tube_pitch - d->duct.core.tube_height;
+    return gap > 0.0 ? 0.85 * gap : (double)NAN; /* tubes that touch are complained of elsewhere */
 }
 
 static double core_volume(const struct sp_core *c)

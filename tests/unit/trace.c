@@ -203,6 +203,8 @@ static void order_of_time(void **state)
     refused("time [s],speed [m/s]\n5,1\n5,1\n", NULL, 1, 0, "time [s]", "no two rows apart");
     struct sp_trace_format f = {.longest_gap = 0.5};
     refused("time [s],speed [m/s]\n0,1\n0.5,1\n1.1,1\n", &f, 1, 4, "time [s]", "at most 0.5 s");
+    f.longest_gap = 1e12; /* subtracting the first time may round three into one */
+    refused("time [s],speed [m/s]\n-1e11,1\n0,1\n1e-7,1\n2e-7,1\n", &f, 1, 5, "time [s]", "too close");
     struct reading r = read_text("time [s],speed [m/s]\n0,1\n1,1\n1,2\n31,2\n31,2\n", NULL); /* jumps */
     check_column(&r, SP_COL_TIME, 5, WANT(0, 1, 1, 31, 31));
     check_column(&r, SP_COL_SPEED, 5, WANT(1, 1, 2, 2, 2));
@@ -242,6 +244,12 @@ static void repaired_and_counted(void **state)
     assert_string_equal(r.t.mark[1].text, "c");
     done(&r);
     refused("time [s],speed [m/s]\n9000,1\n1,2\n2,2\n3,2\n4,2\n9001,1\n", &f, 1, 0, "time [s]", "more than half");
+    /* but a true gap stays, and the late row is the one that goes */
+    r = read_text("time [s],speed [m/s]\n0,1\n1,2\n90000,3\n100,4\n90001,5\n", &f);
+    check_column(&r, SP_COL_TIME, 4, WANT(0, 1, 90000, 90001));
+    assert_int_equal(r.t.repairs.gaps, 1);
+    assert_int_equal(r.t.repairs.backward_dropped, 1);
+    done(&r);
 }
 
 static void blanks_held(void **state)
@@ -274,8 +282,13 @@ static void mapped_logger(void **state)
     refused("a\nb\nZeit;v GPS;T_W\xE4sser\nh;km/h;\n23:59:58;1.000,5;90\n23:60:00;1;90\n24:00:00;1;90\n", &f, 2, 6, "Zeit",
             "hh:mm:ss");
     refused("a\nb\nZeit;vGPS;T_W\xE4sser\nh;km/h;\n1:00:00;1;90\n1:00:01;1;90\n", &f, 1, 3, "speed", "vGPS");
+    refused("a\nb\nZeit;v GPS;T_W\xE4sser\nh;km/h;\n1:00:00;1.000;90\n1:00:01;1;90\n", &f, 1, 5, "v GPS", "1.000");
     f.delimiter = ',';
     refused("a", &f, 1, 0, "decimal", "delimiter");
+    struct sp_trace_format days = {.clock = true, .longest_gap = 9 * 3600.0};
+    r = read_text("time,speed [m/s]\n20:00:00,1\n4:00:00,1\n12:00:00,1\n20:00:00,1\n4:00:00,1\n", &days);
+    check_column(&r, SP_COL_TIME, 5, WANT(0, 28800, 57600, 86400, 115200));
+    done(&r);
 }
 
 /* With any mapping, headings that are not ours are none of our business, and a heading may be named
@@ -287,7 +300,7 @@ static void mapping_rules(void **state)
     f.column[SP_COL_TIME].heading = "ENGINE_RUN_TIME";
     f.column[SP_COL_TIME].unit = "s";
     f.column[SP_COL_SPEED].heading = "Speed";
-    struct reading r = read_text("ENGINE_RUN_TIME (),Speed (kph),gear,other [x],note\n0.0, 36,2,x,\n1.0, 72,3,,y,\n", &f);
+    struct reading r = read_text("ENGINE_RUN_TIME (),Speed (kph),gear,other [x],note,\n0.0, 36,2,x,,1\n1.0, 72,3,,y,2,\n", &f);
     check_column(&r, SP_COL_SPEED, 2, WANT(10, 20));
     check_column(&r, SP_COL_GEAR, 2, WANT(2, 3));
     done(&r);
@@ -310,6 +323,14 @@ static void whole_seconds_and_doubles(void **state)
     check_column(&r, SP_COL_SPEED, 6, WANT(1, 2, 2, 3, 4, 5));
     assert_int_equal(r.t.repairs.doubles_dropped, 1);
     done(&r);
+    /* no doubles: another mark; a first value that happens to be 0 */
+    f.blank = SP_BLANK_HOLD;
+    r = read_text("time [s],speed [m/s],gear,mark\n0,0,,a\n0,0,0,a\n0,0,0,b\n0,0,0,b\n1,0,0,b\n", &f);
+    check_column(&r, SP_COL_TIME, 4, WANT(0, 1 / 3.0, 2 / 3.0, 1));
+    assert_int_equal(r.t.repairs.doubles_dropped, 1);
+    assert_int_equal(r.t.mark[1].row, 2);
+    done(&r);
+    f.blank = SP_BLANK_REFUSE;
     refused("time [s],speed [m/s]\n0,1\n0.5,2\n1,2\n", &f, 1, 3, "time [s]", "whole seconds");
     refused("time [s],speed [m/s]\n0,1\n1,2\n0,2\n", &f, 1, 4, "time [s]", "a step back");
 }
@@ -330,6 +351,9 @@ static void derived_speed(void **state)
     r = read_text("time [s],distance [m]\n0,0\n1,1\n2,200\n3,201\n", &f);
     check_column(&r, SP_COL_SPEED, 4, WANT(1, 1, 1, 1));
     assert_int_equal(r.t.repairs.range_held, 1);
+    done(&r);
+    r = read_text("time [s],distance [m]\n0,0\n1,1\n1,2\n3,3\n", &f);
+    check_column(&r, SP_COL_SPEED, 4, WANT(1, 1, 0.5, 0.5));
     done(&r);
 }
 

@@ -1,0 +1,148 @@
+/* Fuzzing the case reader.
+ *
+ * The first byte chooses the purpose and whether the text up to the first line break is a --set. No files
+ * are read. Held against every row of the key tables: a design comes with no complaint, no design with one
+ * or more; each number of a design is finite and in its declared range, or NAN where the key was not given
+ * and has no default. What `show` writes of it is one JSON document. Run:
+ *     fuzz_case tests/fuzz/corpus/case
+ * SPDX-License-Identifier: GPL-3.0-or-later */
+#include "paper/case.h"
+
+#include <math.h>
+#include <stdint.h>
+#include <stdlib.h>
+#include <string.h>
+
+int LLVMFuzzerTestOneInput(const uint8_t *data, size_t size);
+
+static struct sp_units *units;
+
+static void is_in_range(const struct sp_key *row, const char *range_text, enum sp_kind kind, double x)
+{
+    struct sp_range range;
+    if (!sp_range_read(units, kind, range_text, &range)) abort();
+    if (isfinite(x) && sp_range_holds(&range, x)) return;
+    fprintf(stderr, "%s is %.17g\n", row->path, x);
+    abort();
+}
+
+static void check_number(const struct sp_reader *r, const struct sp_key *row, const char *path, size_t step)
+{
+    double x = sp_key_double(row, r->design, step);
+    const struct sp_json *node = sp_case_node(r->tree, path);
+    bool must = node || (row->fallback && !row->rule);
+    if (row->or_none && node && node->type == SP_JSON_STRING && !strcmp(node->text, "none")) {
+        if (!isnan(x)) abort();
+        return;
+    }
+    if (!strcmp(row->path, "air.altitude") && sp_case_given(r, "air.pressure")) must = false;
+    if (must || !isnan(x)) is_in_range(row, row->range, row->kind, x);
+    if (row->whole && floor(x) != x) abort();
+}
+
+static void check_table(const struct sp_key *row, const void *at)
+{
+    struct sp_table t;
+    memcpy(&t, at, sizeof t);
+    for (size_t i = 0; i < t.rows * t.columns; ++i)
+        if (row->columns)
+            is_in_range(row, row->columns[i % t.columns].range, row->columns[i % t.columns].kind, t.cell[i]);
+        else
+            is_in_range(row, row->range, row->kind, t.cell[i]);
+}
+
+static void check_word(const struct sp_key *row, const void *at)
+{
+    unsigned word;
+    bool known = false;
+    if (row->keep != SP_KEEP_ENUM) return;
+    memcpy(&word, at, sizeof word);
+    for (const struct sp_word *w = row->words; w->text; ++w)
+        known = known || w->value == word;
+    if (!known && word) abort();
+}
+
+static void check_row(const struct sp_reader *r, const struct sp_key *row, size_t step)
+{
+    char path[SP_PATH_MAX];
+    const void *at = sp_key_place(row, r->design, step);
+    if (sp_key_of_step(row))
+        snprintf(path, sizeof path, "drive[%zu].%s", step, row->path + strlen("drive[]."));
+    else
+        snprintf(path, sizeof path, "%s", row->path);
+    if (row->shape == SP_SHAPE_QUANTITY)
+        check_number(r, row, path, step);
+    else if (row->shape == SP_SHAPE_WORD)
+        check_word(row, at);
+    else if (row->shape == SP_SHAPE_TABLE || row->shape == SP_SHAPE_LIST || row->shape == SP_SHAPE_MATRIX)
+        check_table(row, at);
+}
+
+static void check_design(const struct sp_reader *r)
+{
+    const struct sp_key *row;
+    for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i)
+        for (size_t k = 0; k < (sp_key_of_step(row) ? r->design->steps : 1); ++k)
+            check_row(r, row, k);
+    if (!isfinite(r->design->coolant.fluid.density[0]) || r->design->coolant.fluid.density[0] < 900.0)
+        abort();
+    if (r->purpose == SP_FOR_DRIVE && !r->design->steps) abort();
+}
+
+static void check_shown(struct sp_reader *r)
+{
+    struct sp_complaints none = {0};
+    char *text = NULL;
+    size_t size = 0;
+    FILE *to = open_memstream(&text, &size);
+    if (!to) abort();
+    sp_case_show_all(r, to, true);
+    fclose(to);
+    struct sp_json *tree = sp_json_parse("shown", NULL, text, size, &none);
+    if (!tree) {
+        sp_complaints_print(&none, false, stderr);
+        fprintf(stderr, "%s\n", text);
+        abort();
+    }
+    sp_json_free(tree);
+    free(text);
+    to = open_memstream(&text, &size);
+    if (!to) abort();
+    sp_case_show_all(r, to, false);
+    fclose(to);
+    free(text);
+}
+
+int LLVMFuzzerTestOneInput(const uint8_t *data, size_t size)
+{
+    struct sp_complaints complaints = {0}, cautions = {0};
+    if (!units) units = sp_units_open();
+    if (!units || !size) return 0;
+    struct sp_reader r = {.units = units,
+                          .name = "case.json",
+                          .no_files = true,
+                          .complaints = &complaints,
+                          .cautions = &cautions,
+                          .purpose = data[0] & 1 ? SP_FOR_DRIVE : SP_FOR_DUCT};
+    const char *text = (const char *)data + 1;
+    size_t length = size - 1;
+    const char *end = data[0] & 2 ? memchr(text, '\n', length) : NULL;
+    char *set = NULL;
+    if (end) {
+        set = strndup(text, (size_t)(end - text));
+        if (!set) return 0;
+        length -= (size_t)(end - text) + 1;
+        text = end + 1;
+    }
+    bool fine = sp_case_open(&r, text, length, &set, set ? 1 : 0);
+    if (fine != (complaints.count + complaints.dropped == 0)) abort();
+    if (fine) {
+        check_design(&r);
+        check_shown(&r);
+    }
+    sp_case_close(&r);
+    sp_complaints_free(&complaints);
+    sp_complaints_free(&cautions);
+    free(set);
+    return 0;
+}
