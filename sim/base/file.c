@@ -29,8 +29,8 @@ bool sp_file_open(struct sp_file_in *in, const struct sp_place *at, struct sp_co
     if (in->fd < 0 || fstat(in->fd, &is) != 0) {
         complain(at, errno, "a file that can be read", complaints);
     } else if (!S_ISREG(is.st_mode)) {
-        sp_complain(complaints, at, S_ISDIR(is.st_mode) ? "a directory" : "a device or a pipe", "a plain file",
-                    NULL);
+        sp_complain(complaints, at, S_ISDIR(is.st_mode) ? "a directory" : "a device or a pipe",
+                    "a plain file", NULL);
     } else {
         return true;
     }
@@ -135,7 +135,8 @@ bool sp_file_begin(struct sp_file_out *out, const char *path, struct sp_complain
     *out = (struct sp_file_out){NULL, NULL, NULL};
     if (stat(path, &is) == 0 && !S_ISREG(is.st_mode)) {
         sp_complain(complaints, &(struct sp_place){.file = path},
-                    S_ISDIR(is.st_mode) ? "a directory" : "a device or a pipe", "a plain file to write", NULL);
+                    S_ISDIR(is.st_mode) ? "a directory" : "a device or a pipe", "a plain file to write",
+                    NULL);
         return false;
     }
     out->path = malloc(strlen(path) + 1);

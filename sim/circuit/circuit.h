@@ -74,11 +74,13 @@ double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs
 void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
                       const double *y, const struct sp_coupling *k, double *dydt);
 
-/* Jacobian by columns, jac[j][i] = d f_i / d y_j: differences of the rates with the coupling held, plus the
- * coupling's own differences along its five signals. `work` holds 3 * layout.count doubles. */
+/* Jacobian by columns, jac[j][i] = d f_i / d y_j with the mean wall and mean core coolant of the coupling
+ * held, and the effect of these two means, wall[i] and core[i]. Differences of the rates with the coupling
+ * held, and of the coupling along its five signals. `work` holds 3 * layout.count doubles. */
 enum sp_status sp_circuit_jacobian(const struct sp_circuit *c, const struct sp_inputs *in,
                                    const struct sp_modes *modes, const double *y,
-                                   const struct sp_guesses *guesses, double **jac, double *work);
+                                   const struct sp_guesses *guesses, double **jac, double *wall, double *core,
+                                   double *work);
 
 /* Heat held [J] by coolant and metals, from 0 degC. */
 double sp_circuit_heat_held(const struct sp_circuit *c, const double *y);

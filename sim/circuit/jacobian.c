@@ -23,16 +23,10 @@ static bool feeds_back(int j)
     return j < SP_Y_FEEDBACK || j >= SP_Y_CHAIN;
 }
 
-/* Adds the effect of one signal, whose weight in each of `count` states from `first` on is 1/count. */
-static void spread(double **jac, const double *with, const double *base, double step, int first, int count, int n)
-{
-    for (int j = first; j < first + count; ++j)
-        for (int i = 0; i < n; ++i) jac[j][i] += (with[i] - base[i]) / (step * count);
-}
-
 enum sp_status sp_circuit_jacobian(const struct sp_circuit *c, const struct sp_inputs *in,
                                    const struct sp_modes *modes, const double *y,
-                                   const struct sp_guesses *guesses, double **jac, double *work)
+                                   const struct sp_guesses *guesses, double **jac, double *wall, double *core,
+                                   double *work)
 {
     const struct sp_layout *l = &c->layout;
     int n = l->count;
@@ -56,21 +50,24 @@ enum sp_status sp_circuit_jacobian(const struct sp_circuit *c, const struct sp_i
         for (int i = 0; i < n; ++i) jac[j][i] = (with[i] - base[i]) / step;
     }
 
-    const struct { size_t offset; int first, count; double step; } signal[SP_SIGNALS] = {
-        {offsetof(struct sp_signals, wall), l->wall, l->cells, kelvin_step},
-        {offsetof(struct sp_signals, fan), SP_Y_FAN, 1, 1e-4},
-        {offsetof(struct sp_signals, wax), SP_Y_WAX, 1, kelvin_step},
-        {offsetof(struct sp_signals, jacket), SP_Y_JACKET, 1, kelvin_step},
-        {offsetof(struct sp_signals, core), l->core, l->cells, kelvin_step}};
-    for (int i = 0; i < SP_SIGNALS; ++i) {
+    /* A signal that is one state adds to that state's column; the two means have columns of their own. */
+    const struct { size_t offset; double *column, step; } signal[SP_SIGNALS] = {
+        {offsetof(struct sp_signals, wall), wall, kelvin_step},
+        {offsetof(struct sp_signals, core), core, kelvin_step},
+        {offsetof(struct sp_signals, fan), jac[SP_Y_FAN], 1e-4},
+        {offsetof(struct sp_signals, wax), jac[SP_Y_WAX], kelvin_step},
+        {offsetof(struct sp_signals, jacket), jac[SP_Y_JACKET], kelvin_step}};
+    memset(wall, 0, (size_t)n * sizeof *wall);
+    memset(core, 0, (size_t)n * sizeof *core);
+    for (int s_i = 0; s_i < SP_SIGNALS; ++s_i) {
         struct sp_signals changed = s;
         struct sp_guesses from = near;
         struct sp_coupling other;
-        *(double *)((char *)&changed + signal[i].offset) += signal[i].step;
+        *(double *)((char *)&changed + signal[s_i].offset) += signal[s_i].step;
         status = sp_circuit_couple(c, in, modes, &changed, &from, &other);
         if (status) return status;
         sp_circuit_rates(c, in, modes, y, &other, with);
-        spread(jac, with, base, signal[i].step, signal[i].first, signal[i].count, n);
+        for (int i = 0; i < n; ++i) signal[s_i].column[i] += (with[i] - base[i]) / signal[s_i].step;
     }
     return SP_OK;
 }

@@ -6,8 +6,8 @@
 #include <nvector/nvector_serial.h>
 #include <stdlib.h>
 #include <string.h>
-#include <sunlinsol/sunlinsol_dense.h>
-#include <sunmatrix/sunmatrix_dense.h>
+#include <sundials/sundials_linearsolver.h>
+#include <sundials/sundials_matrix.h>
 
 struct sp_integrator {
     struct sp_problem problem;
@@ -30,7 +30,7 @@ static int jacobian(realtype t, N_Vector y, N_Vector fy, SUNMatrix J, void *user
 {
     (void)fy, (void)a, (void)b, (void)c;
     struct sp_integrator *i = user;
-    return i->problem.jacobian(t, N_VGetArrayPointer(y), SUNDenseMatrix_Cols(J), i->problem.context);
+    return i->problem.jacobian(t, N_VGetArrayPointer(y), J->content, i->problem.context);
 }
 
 static int watch(realtype t, N_Vector y, realtype *g, void *user)
@@ -46,14 +46,120 @@ static void listen(int code, const char *module, const char *function, char *mes
     if (code < 0) snprintf(i->trouble, sizeof i->trouble, "%s", message);
 }
 
+/* ---- the arrow as SUNDIALS sees it ------------------------------------------------------------------- */
+
+static SUNMatrix matrix_of(struct sp_layout layout, SUNContext context);
+
+static SUNMatrix_ID matrix_id(SUNMatrix A)
+{
+    (void)A;
+    return SUNMATRIX_CUSTOM;
+}
+
+static SUNMatrix matrix_clone(SUNMatrix A)
+{
+    return matrix_of(((struct sp_arrow *)A->content)->layout, A->sunctx);
+}
+
+static void matrix_destroy(SUNMatrix A)
+{
+    sp_arrow_close(A->content);
+    free(A->content);
+    A->content = NULL;
+    SUNMatFreeEmpty(A);
+}
+
+static int matrix_zero(SUNMatrix A)
+{
+    struct sp_arrow *a = A->content;
+    memset(a->entry, 0, (size_t)a->entries * sizeof *a->entry);
+    return SUNMAT_SUCCESS;
+}
+
+static int matrix_copy(SUNMatrix A, SUNMatrix B)
+{
+    struct sp_arrow *a = A->content, *b = B->content;
+    memcpy(b->entry, a->entry, (size_t)a->entries * sizeof *a->entry);
+    return SUNMAT_SUCCESS;
+}
+
+static int matrix_scale_add(realtype c, SUNMatrix A)
+{
+    sp_arrow_scale_add(A->content, c);
+    return SUNMAT_SUCCESS;
+}
+
+static SUNMatrix matrix_of(struct sp_layout layout, SUNContext context)
+{
+    SUNMatrix A = SUNMatNewEmpty(context);
+    struct sp_arrow *a = malloc(sizeof *a);
+    if (!A || !a || !sp_arrow_open(layout, a)) {
+        free(a);
+        if (A) SUNMatFreeEmpty(A);
+        return NULL;
+    }
+    A->content = a;
+    A->ops->getid = matrix_id;
+    A->ops->clone = matrix_clone;
+    A->ops->destroy = matrix_destroy;
+    A->ops->zero = matrix_zero;
+    A->ops->copy = matrix_copy;
+    A->ops->scaleaddi = matrix_scale_add;
+    return A;
+}
+
+static SUNLinearSolver_Type solver_type(SUNLinearSolver S)
+{
+    (void)S;
+    return SUNLINEARSOLVER_DIRECT;
+}
+
+static int solver_setup(SUNLinearSolver S, SUNMatrix A)
+{
+    return sp_arrow_factor(A->content, S->content) ? SUNLS_SUCCESS : SUNLS_LUFACT_FAIL;
+}
+
+static int solver_solve(SUNLinearSolver S, SUNMatrix A, N_Vector x, N_Vector b, realtype tolerance)
+{
+    (void)tolerance;
+    sp_arrow_solve(A->content, S->content, N_VGetArrayPointer(b), N_VGetArrayPointer(x));
+    return SUNLS_SUCCESS;
+}
+
+static int solver_free(SUNLinearSolver S)
+{
+    free(S->content);
+    S->content = NULL;
+    SUNLinSolFreeEmpty(S);
+    return SUNLS_SUCCESS;
+}
+
+static SUNLinearSolver solver_new(SUNContext context)
+{
+    SUNLinearSolver S = SUNLinSolNewEmpty(context);
+    struct sp_arrow_factor *f = malloc(sizeof *f);
+    if (!S || !f) {
+        free(f);
+        if (S) SUNLinSolFreeEmpty(S);
+        return NULL;
+    }
+    S->content = f;
+    S->ops->gettype = solver_type;
+    S->ops->setup = solver_setup;
+    S->ops->solve = solver_solve;
+    S->ops->free = solver_free;
+    return S;
+}
+
+/* ---- opening and stepping ------------------------------------------------------------------------------ */
+
 static bool open_cvode(struct sp_integrator *i, double t, double relative)
 {
-    sunindextype n = i->problem.states;
     i->cvode = CVodeCreate(CV_BDF, i->context);
     return i->cvode && CVodeSetErrHandlerFn(i->cvode, listen, i) == CV_SUCCESS &&
            CVodeInit(i->cvode, rates, t, i->y) == CV_SUCCESS && CVodeSetUserData(i->cvode, i) == CV_SUCCESS &&
            CVodeSVtolerances(i->cvode, relative, i->absolute) == CV_SUCCESS &&
-           (i->matrix = SUNDenseMatrix(n, n, i->context)) && (i->linear = SUNLinSol_Dense(i->y, i->matrix, i->context)) &&
+           (i->matrix = matrix_of(i->problem.layout, i->context)) && (i->linear = solver_new(i->context)) &&
            CVodeSetLinearSolver(i->cvode, i->linear, i->matrix) == CV_SUCCESS &&
            CVodeSetJacFn(i->cvode, jacobian) == CV_SUCCESS &&
            CVodeRootInit(i->cvode, i->problem.watches, watch) == CV_SUCCESS &&
@@ -67,9 +173,9 @@ struct sp_integrator *sp_integrator_open(const struct sp_problem *p, double t, c
     struct sp_integrator *i = calloc(1, sizeof *i);
     if (!i) return NULL;
     i->problem = *p;
-    size_t bytes = (size_t)p->states * sizeof *y;
+    size_t bytes = (size_t)p->layout.count * sizeof *y;
     bool good = SUNContext_Create(NULL, &i->context) == 0;
-    good = good && (i->y = N_VNew_Serial(p->states, i->context)) && (i->absolute = N_VClone(i->y)) &&
+    good = good && (i->y = N_VNew_Serial(p->layout.count, i->context)) && (i->absolute = N_VClone(i->y)) &&
            (i->spare = N_VClone(i->y));
     if (good) {
         memcpy(N_VGetArrayPointer(i->y), y, bytes);
@@ -138,7 +244,7 @@ double *sp_integrator_state(struct sp_integrator *i)
 bool sp_integrator_look_back(struct sp_integrator *i, double t, int order, double *out)
 {
     if (CVodeGetDky(i->cvode, t, order, i->spare) != CV_SUCCESS) return false;
-    memcpy(out, N_VGetArrayPointer(i->spare), (size_t)i->problem.states * sizeof *out);
+    memcpy(out, N_VGetArrayPointer(i->spare), (size_t)i->problem.layout.count * sizeof *out);
     return true;
 }
 

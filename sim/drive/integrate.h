@@ -5,20 +5,21 @@
 #ifndef SP_DRIVE_INTEGRATE_H
 #define SP_DRIVE_INTEGRATE_H
 
-#include "swirlpot/base.h"
+#include "circuit/arrow.h"
 
 /* What is integrated. Callbacks return 0, +1 (try a smaller step) or -1 (give up). */
 struct sp_problem {
     void *context;
-    int states, watches;
+    struct sp_layout layout; /* of the states */
+    int watches;
     int (*rates)(double t, const double *y, double *dydt, void *context);
-    int (*jacobian)(double t, const double *y, double **column, void *context);
+    int (*jacobian)(double t, const double *y, struct sp_arrow *out, void *context);
     int (*watch)(double t, const double *y, double *g, void *context);
 };
 
 struct sp_integrator;
 
-/* Starts at t with y (length `states`); absolute tolerances one a state. NULL when memory fails. */
+/* Starts at t with y; absolute tolerances one a state. NULL when memory fails. */
 struct sp_integrator *sp_integrator_open(const struct sp_problem *p, double t, const double *y, double relative,
                                          const double *absolute);
 void sp_integrator_close(struct sp_integrator *i);

@@ -36,13 +36,17 @@ static int rates(double t, const double *y, double *dydt, void *context)
     return 0;
 }
 
-static int jacobian(double t, const double *y, double **column, void *context)
+static int jacobian(double t, const double *y, struct sp_arrow *out, void *context)
 {
     struct sp_run *r = context;
     struct sp_inputs in;
+    int n = r->circuit->layout.count;
     if (!sensible(r, y)) return 1;
     sp_schedule_at(r->schedule, r->segment, t, &in);
-    return sp_circuit_jacobian(r->circuit, &in, &r->modes, y, &r->guesses, column, r->scratch) ? -1 : 0;
+    double *wall = r->means, *core = r->means + n;
+    if (sp_circuit_jacobian(r->circuit, &in, &r->modes, y, &r->guesses, r->column, wall, core, r->scratch)) return -1;
+    sp_arrow_fill(out, r->column, wall, core);
+    return 0;
 }
 
 static int look(struct sp_run *r, double t, const double *y, struct sp_watched *out)
@@ -312,6 +316,12 @@ static void set_tolerances(const struct sp_run *r, double tolerance, const doubl
 static bool open_run(struct sp_run *r, double tolerance, double *start)
 {
     const struct sp_layout *l = &r->circuit->layout;
+    int n = l->count;
+    r->absolute = start + n;
+    r->before = start + 2 * n;
+    r->means = start + 3 * n;
+    r->scratch = start + 5 * n;
+    for (int j = 0; j < n; ++j) r->column[j] = start + (8 + j) * n;
     const double nothing = -INFINITY;
     r->coolant.best = r->gauge.best = r->metal.best = r->margin.best = nothing;
     r->pressure.best = r->over_ambient.best = nothing;
@@ -321,7 +331,7 @@ static bool open_run(struct sp_run *r, double tolerance, double *start)
     sp_schedule_at(r->schedule, 0, r->schedule->time[0], &in);
     sp_circuit_start(r->circuit, &in, start);
     set_tolerances(r, tolerance, start, r->absolute);
-    struct sp_problem p = {r, l->count, SP_WATCHES, rates, jacobian, watch};
+    struct sp_problem p = {r, *l, SP_WATCHES, rates, jacobian, watch};
     r->integrator = sp_integrator_open(&p, 0.0, start, tolerance, r->absolute);
     return r->integrator != NULL;
 }
@@ -345,23 +355,21 @@ enum sp_status sp_drive_run(const struct sp_drive *drive, const struct sp_run_op
                        .interval = options->interval > 0.0 ? options->interval : 1.0, .sink = options->sink};
     double tolerance = options->tolerance > 0.0 ? options->tolerance : drive->design->solver.tolerance;
     memset(out, 0, sizeof *out);
-    double *room = calloc(6 * n, sizeof *room);
-    r.absolute = room;
-    r.before = room + n;
-    r.scratch = room + 2 * n;
-    double *start = room + 5 * n;
+    double *room = calloc((8 + n) * n, sizeof *room);
+    r.column = calloc(n, sizeof *r.column);
     enum sp_status status = SP_NUMERICS;
-    if (room && open_run(&r, tolerance, start)) {
+    if (room && r.column && open_run(&r, tolerance, room)) {
         status = run_all(&r);
         struct sp_integrator_work w = sp_integrator_work(r.integrator);
         out->work.steps = w.steps;
         out->work.rates = w.rates;
         out->work.jacobians = w.jacobians;
     }
-    if (status == SP_OK) status = sp_run_settle(&r, start, complaints);
+    if (status == SP_OK) status = sp_run_settle(&r, room, complaints);
     else status = fail(&r, status, complaints);
     sp_integrator_close(r.integrator);
     sp_measured_free(&r.measured);
+    free(r.column);
     free(room);
     return status;
 }

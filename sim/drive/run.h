@@ -29,6 +29,7 @@ struct sp_run {
     bool fan_runs;
     double fan_since, over_since, full_since;
     double *absolute, *scratch, *before; /* states; scratch holds three lots */
+    double *means, **column;             /* of the Jacobian */
     double slope_before;
     size_t samples;              /* taken so far */
     double interval;

@@ -7,9 +7,7 @@
 #include <math.h>
 #include <stdlib.h>
 
-static const double work_closes = 1e-3; /* of the work the engine does at the wheels */
-
-/* ---- complaints ----------------------------------------------------------------------------------- */
+/* ---- complaints ------------------------------------------------------------------------------- */
 
 static void say(struct sp_complaints *to, const struct sp_design *d, size_t step, const char *key,
                 const char *found, const char *expected)
@@ -57,7 +55,7 @@ void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const str
     }
 }
 
-/* ---- steps without a trace --------------------------------------------------------------------------- */
+/* ---- steps without a trace -------------------------------------------------------------------- */
 
 /* A hold's engine. False when it cannot be known. */
 static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, struct sp_schedule *to)
@@ -145,7 +143,7 @@ static bool steady_step(struct sp_scheduling *b, size_t i, struct sp_rows *to)
     return false;
 }
 
-/* ---- joining ------------------------------------------------------------------------------------------ */
+/* ---- joining ---------------------------------------------------------------------------------- */
 
 static void add_accounts(struct sp_schedule *to, const struct sp_schedule *from, double repeat)
 {
@@ -189,7 +187,7 @@ static void build_step(struct sp_scheduling *b, size_t i)
     sp_schedule_free(&step.table);
 }
 
-/* ---- the end ------------------------------------------------------------------------------------------- */
+/* ---- the end ---------------------------------------------------------------------------------- */
 
 static bool add_distance(struct sp_schedule *s)
 {
@@ -200,22 +198,6 @@ static bool add_distance(struct sp_schedule *s)
     for (size_t i = 1; i < s->rows; i++)
         s->distance[i] = s->distance[i - 1] + 0.5 * (v[i - 1] + v[i]) * (s->time[i] - s->time[i - 1]);
     return true;
-}
-
-static void check_work(struct sp_scheduling *b)
-{
-    const struct sp_schedule *s = &b->rows.table;
-    double spent = s->work.kinetic + s->work.potential + s->work.drag + s->work.rolling + s->work.brakes;
-    double off = s->work.wheel - spent;
-    if (!s->power_from_road || fabs(off) <= work_closes * b->work_done) return;
-    char found[128];
-    snprintf(found, sizeof found,
-             "road load: %.6g J at the wheels against %.6g J in speed, height, drag, rolling "
-             "and brakes",
-             s->work.wheel, spent);
-    struct sp_place at = {.file = b->design->file, .path = "drive"};
-    sp_complain(b->cautions, &at, found,
-                "the two within 0.1 %; rows closer in time, or altitude and speed that agree", NULL);
 }
 
 static void finish(struct sp_scheduling *b)
@@ -229,7 +211,7 @@ static void finish(struct sp_scheduling *b)
         sp_complain(b->complaints, &at, "more rows than memory holds", "fewer rows, or a longer solver.merge",
                     NULL);
     } else {
-        check_work(b);
+        sp_schedule_check_work(b);
     }
 }
 
@@ -274,8 +256,7 @@ void sp_schedule_free(struct sp_schedule *s)
     *s = (struct sp_schedule){0};
 }
 
-/* ---- looking up ------------------------------------------------------------------------------------------
- */
+/* ---- looking up ------------------------------------------------------------------------------- */
 
 void sp_schedule_at(const struct sp_schedule *s, size_t k, double t, struct sp_inputs *out)
 {

@@ -14,7 +14,7 @@ static const double straight = 1e-9;  /* of a channel's range */
 static const double rounding = 4e-16; /* of its largest value: constants that are not quite */
 static const double slack = 1e-9;     /* s: 0.5 s asked for, 0.49999999999 s found */
 
-/* ---- spans ------------------------------------------------------------------------------------------ */
+/* ---- spans ------------------------------------------------------------------------------------ */
 
 static void range_over(double *least, double *most, double x)
 {
@@ -69,7 +69,7 @@ static void span_join(struct sp_merge_span *a, const struct sp_merge_span *b)
     a->segments += b->segments;
 }
 
-/* ---- nodes ------------------------------------------------------------------------------------------ */
+/* ---- nodes ------------------------------------------------------------------------------------ */
 
 static void node_begin(struct sp_merge *m, double time, const double value[SP_INPUTS], size_t source)
 {
@@ -129,7 +129,7 @@ static void close_span(struct sp_merge *m, struct sp_merge_span *s)
     s->segments = 0;
 }
 
-/* ---- the stream --------------------------------------------------------------------------------------- */
+/* ---- the stream ------------------------------------------------------------------------------- */
 
 void sp_merge_begin(struct sp_merge *m, struct sp_rows *to, double width, unsigned short step,
                     const struct sp_mark *mark, size_t marks)
@@ -197,8 +197,7 @@ void sp_merge_push(struct sp_merge *m, const struct sp_row *row, size_t source)
         end_span(m, false);
 }
 
-/* ---- rows on a straight line ----------------------------------------------------------------------------
- */
+/* ---- rows on a straight line ------------------------------------------------------------------ */
 
 /* From the row kept last, the slopes of each channel that pass all rows since within tolerance. */
 struct cone {

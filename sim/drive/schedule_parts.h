@@ -2,7 +2,7 @@
  *
  * schedule.c joins the steps, schedule_trace.c makes rows of a trace, schedule_engine.c says what the
  * engine does at a row, schedule_merge.c coarsens rows, schedule_run_on.c sets what runs on after a stop,
- * schedule_rows.c holds rows.
+ * schedule_work.c checks the road load's work, schedule_rows.c holds rows.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_SCHEDULE_PARTS_H
 #define SP_DRIVE_SCHEDULE_PARTS_H
@@ -12,7 +12,7 @@
 
 enum { SP_SCHEDULE_ROWS = 20000000 }; /* most rows of a drive: 3 GB */
 
-/* ---- rows ---------------------------------------------------------------------------------------- */
+/* ---- rows ------------------------------------------------------------------------------------- */
 
 /* A schedule that grows; `table.distance` stays NULL until the end, the flags hold SP_FLAG_ENGINE only. */
 struct sp_rows {
@@ -45,7 +45,7 @@ bool sp_rows_insert(struct sp_rows *r, const struct sp_row_insertion *insertion,
 /* Row `from` becomes row `to`. */
 void sp_rows_move(struct sp_schedule *s, size_t from, size_t to);
 
-/* ---- merging -------------------------------------------------------------------------------------- */
+/* ---- merging ---------------------------------------------------------------------------------- */
 
 /* Takes a step's rows one by one and puts the merged ones into `to`. See schedule_merge.c. */
 struct sp_merge_span {
@@ -84,7 +84,7 @@ void sp_merge_break(struct sp_merge *m);
 /* Drops rows that lie on the straight line between their neighbours within 1e-9 of each channel's range. */
 void sp_rows_thin(struct sp_rows *r);
 
-/* ---- the engine at a row ----------------------------------------------------------------------------- */
+/* ---- the engine at a row ---------------------------------------------------------------------- */
 
 /* Where power comes from, in order of preference. */
 enum sp_power_source {
@@ -127,7 +127,7 @@ bool sp_road_load_known(const struct sp_body *b);
 
 double sp_density_of(const struct sp_design *d, double ambient, double pressure);
 
-/* ---- the parts ---------------------------------------------------------------------------------------- */
+/* ---- the parts -------------------------------------------------------------------------------- */
 
 /* The whole build. */
 struct sp_scheduling {
@@ -151,6 +151,13 @@ void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const str
 
 /* Reads the trace of a step and puts its rows, merged, into `to` (empty). False when it failed. */
 bool sp_schedule_trace(struct sp_scheduling *b, size_t step, struct sp_rows *to);
+
+/* Adds what the engine does at the wheels over a segment, by trapezoids as the schedule has it, and what
+ * becomes of it, worked out from speeds, heights and forces instead. `rise` in m; NAN: from the grade. */
+void sp_schedule_add_work(struct sp_scheduling *b, struct sp_schedule *s, const struct sp_row row[2],
+                          const struct sp_wheel_power wheel[2], double rise);
+/* A caution when the two differ by more than 0.1 % of the engine's work at the wheels. */
+void sp_schedule_check_work(struct sp_scheduling *b);
 
 /* Sets the flags of pump and fan over the whole drive. False: no memory. */
 bool sp_schedule_run_on(struct sp_rows *r, const struct sp_design *d);

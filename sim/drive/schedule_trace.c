@@ -25,7 +25,7 @@ struct deriving {
     bool finite;
 };
 
-/* ---- reading -------------------------------------------------------------------------------------- */
+/* ---- reading ---------------------------------------------------------------------------------- */
 
 static bool read_trace(struct deriving *v)
 {
@@ -74,7 +74,7 @@ static void count_repairs(struct deriving *v)
     sp_schedule_caution(v->b, v->step, found, "a trace that needs no repairs");
 }
 
-/* ---- what is known -------------------------------------------------------------------------------- */
+/* ---- what is known ---------------------------------------------------------------------------- */
 
 static bool has(const struct deriving *v, enum sp_column c)
 {
@@ -146,7 +146,7 @@ static void drop_unused(struct deriving *v)
     }
 }
 
-/* ---- what is derived over several rows ---------------------------------------------------------------- */
+/* ---- what is derived over several rows -------------------------------------------------------- */
 
 static bool no_memory(struct deriving *v)
 {
@@ -217,8 +217,7 @@ static bool derive_grade(struct deriving *v)
     return true;
 }
 
-/* ---- one row ---------------------------------------------------------------------------------------------
- */
+/* ---- one row ---------------------------------------------------------------------------------- */
 
 static double value(const struct deriving *v, enum sp_column c, size_t i, double fallback)
 {
@@ -284,39 +283,7 @@ static bool runs(const struct deriving *v, size_t i)
     return !n || (n[i] >= least && n[i + 1] >= least);
 }
 
-/* ---- work
- * --------------------------------------------------------------------------------------------------- */
-
-/* What the engine does at the wheels over a segment, by trapezoids as the schedule has it, against what
- * becomes of it, worked out from speeds, heights and forces instead. */
-static void add_work(struct deriving *v, struct sp_schedule *s, size_t i, const struct sp_row row[2],
-                     const struct sp_wheel_power wheel[2])
-{
-    const struct sp_design *d = v->b->design;
-    const struct sp_body *b = &d->body;
-    double h = row[1].time - row[0].time, v0 = row[0].in[SP_IN_SPEED], v1 = row[1].in[SP_IN_SPEED], engine[2];
-    for (int k = 0; k < 2; k++)
-        engine[k] = wheel[k].rolling + wheel[k].climb + wheel[k].drag + wheel[k].inertia + wheel[k].brakes;
-    s->work.wheel += 0.5 * h * (engine[0] + engine[1]);
-    v->b->work_done += 0.5 * h * (fmax(engine[0], 0.0) + fmax(engine[1], 0.0));
-    s->work.brakes += 0.5 * h * (wheel[0].brakes + wheel[1].brakes);
-    s->work.rolling += 0.5 * h * (wheel[0].rolling + wheel[1].rolling);
-    s->work.kinetic += 0.5 * b->rotating * b->mass * (v1 * v1 - v0 * v0);
-    double middle = 0.5 * (v0 + v1), air = middle + d->air.wind;
-    double density = 0.5 * (sp_density_of(d, row[0].in[SP_IN_AMBIENT], row[0].in[SP_IN_PRESSURE]) +
-                            sp_density_of(d, row[1].in[SP_IN_AMBIENT], row[1].in[SP_IN_PRESSURE]));
-    double drag = 0.5 * density * b->drag_coefficient * b->frontal_area * air * fabs(air) * middle;
-    s->work.drag += h / 6.0 * (wheel[0].drag + 4.0 * drag + wheel[1].drag); /* Simpson: a cubic in time */
-    if (has(v, SP_COL_ALTITUDE)) {
-        const double *z = v->trace.column[SP_COL_ALTITUDE];
-        s->work.potential += b->mass * SP_GRAVITY * (z[i + 1] - z[i]);
-    } else {
-        s->work.potential += 0.5 * h * (wheel[0].climb + wheel[1].climb);
-    }
-}
-
-/* ---- all rows
- * ---------------------------------------------------------------------------------------------- */
+/* ---- all rows --------------------------------------------------------------------------------- */
 
 static void push(struct deriving *v, const struct sp_row *row, size_t i, bool running)
 {
@@ -346,7 +313,10 @@ static void stream_rows(struct deriving *v, struct sp_rows *to)
         row_of(v, i, &row[1], road ? &wheel[1] : NULL);
         bool left = i > 0 && v->time[i - 1] < v->time[i], right = i + 1 < rows && v->time[i] < v->time[i + 1];
         bool ran = left && runs(v, i - 1), will = right && runs(v, i);
-        if (road && ran) add_work(v, &to->table, i - 1, row, wheel);
+        if (road && ran) {
+            const double *z = v->trace.column[SP_COL_ALTITUDE];
+            sp_schedule_add_work(v->b, &to->table, row, wheel, z ? z[i] - z[i - 1] : NAN);
+        }
         if (left) push(v, &row[1], i, ran);
         if (left && (!right || ran != will)) sp_merge_break(&v->merge);
         if (right && (!left || ran != will)) push(v, &row[1], i, will);

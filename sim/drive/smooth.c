@@ -17,9 +17,9 @@ enum { SMALL = 12 }; /* windows of so few rows are summed anew each time */
 struct window {
     const double *t, *y;
     double half_width;
-    size_t low, high;       /* rows low <= i < high are in the sums */
-    double anchor, scale;   /* x = (t - anchor) / scale */
-    double x[5], xy[3];     /* sums of x^k and y x^k */
+    size_t low, high;     /* rows low <= i < high are in the sums */
+    double anchor, scale; /* x = (t - anchor) / scale */
+    double x[5], xy[3];   /* sums of x^k and y x^k */
 };
 
 static void add(struct window *w, size_t i, double sign)
@@ -38,22 +38,28 @@ static void sum_anew(struct window *w, size_t at, size_t low, size_t high)
     w->scale = fmax(w->half_width, fmax(left, right));
     w->low = low;
     w->high = high;
-    for (int k = 0; k < 5; k++) w->x[k] = 0;
-    for (int k = 0; k < 3; k++) w->xy[k] = 0;
-    for (size_t i = low; i < high; i++) add(w, i, 1);
+    for (int k = 0; k < 5; k++)
+        w->x[k] = 0;
+    for (int k = 0; k < 3; k++)
+        w->xy[k] = 0;
+    for (size_t i = low; i < high; i++)
+        add(w, i, 1);
 }
 
 /* Brings the sums to rows low..high about row `at`. */
 static void slide(struct window *w, size_t at, size_t low, size_t high)
 {
     bool overlap = low >= w->low && high >= w->high && low < w->high;
-    if (!overlap || high - low <= SMALL || w->t[at] - w->anchor > w->scale || w->t[high - 1] - w->anchor > 3 * w->scale ||
+    if (!overlap || high - low <= SMALL || w->t[at] - w->anchor > w->scale ||
+        w->t[high - 1] - w->anchor > 3 * w->scale ||
         w->scale > 3 * fmax(w->half_width, w->t[high - 1] - w->t[low])) {
         sum_anew(w, at, low, high);
         return;
     }
-    while (w->high < high) add(w, w->high++, 1);
-    while (w->low < low) add(w, w->low++, -1);
+    while (w->high < high)
+        add(w, w->high++, 1);
+    while (w->low < low)
+        add(w, w->low++, -1);
 }
 
 /* The fit of the sums at time t, with `terms` (1 to 3) at most: value and slope. Solved with polynomials
@@ -89,8 +95,10 @@ static void widen(const struct window *w, size_t at, size_t from, size_t to, siz
     while ((*high - *low < 3 || t[*high - 1] - t[*low] < w->half_width) && (*low > from || *high < to)) {
         bool left = *low > from;
         if (left && *high < to) left = t[at] - t[*low - 1] <= t[*high] - t[at];
-        if (left) --*low;
-        else ++*high;
+        if (left)
+            --*low;
+        else
+            ++*high;
     }
 }
 
@@ -103,8 +111,10 @@ static void smooth_stretch(struct window *w, size_t from, size_t to, double *smo
     size_t near_low = from, near_high = from;
     w->low = w->high = from; /* nothing summed yet */
     for (size_t i = from; i < to; i++) {
-        while (t[i] - t[near_low] > w->half_width) near_low++;
-        while (near_high < to && t[near_high] - t[i] <= w->half_width) near_high++;
+        while (t[i] - t[near_low] > w->half_width)
+            near_low++;
+        while (near_high < to && t[near_high] - t[i] <= w->half_width)
+            near_high++;
         size_t low = near_low, high = near_high;
         widen(w, i, from, to, &low, &high);
         slide(w, i, low, high);
@@ -125,7 +135,8 @@ bool sp_smooth(size_t n, const double *t, const double *y, double half_width, do
     struct window w = {.t = t, .y = y, .half_width = half_width};
     if (!fit_to_smooth(n, t, y, half_width)) return false;
     for (size_t from = 0, to; from < n; from = to) {
-        for (to = from + 1; to < n && t[to] > t[to - 1];) to++;
+        for (to = from + 1; to < n && t[to] > t[to - 1];)
+            to++;
         smooth_stretch(&w, from, to, smooth, slope);
     }
     return true;

@@ -113,7 +113,8 @@ static void complain_syntax(struct feed *f)
         sp_trace_no_memory(r);
         return;
     }
-    r->row_line = r->line + (f->csv.entry_buf ? sp_trace_text_lines((char *)f->csv.entry_buf, f->csv.entry_pos) : 0);
+    r->row_line =
+        r->line + (f->csv.entry_buf ? sp_trace_text_lines((char *)f->csv.entry_buf, f->csv.entry_pos) : 0);
     sp_trace_fault(r, NULL, "a quote within a cell, or text behind a closing quote",
                    "quotes round the whole cell, doubled within", NULL);
     r->stage = SP_STAGE_STOPPED;
@@ -205,8 +206,10 @@ enum sp_status sp_trace_read(struct sp_units *u, const char *file, const char *n
 void sp_trace_free(struct sp_trace *t)
 {
     if (!t) return;
-    for (int c = 0; c < SP_COLUMNS; c++) free(t->column[c]);
-    for (size_t i = 0; i < t->marks; i++) free(t->mark[i].text);
+    for (int c = 0; c < SP_COLUMNS; c++)
+        free(t->column[c]);
+    for (size_t i = 0; i < t->marks; i++)
+        free(t->mark[i].text);
     free(t->mark);
     *t = (struct sp_trace){0};
 }

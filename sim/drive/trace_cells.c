@@ -120,8 +120,10 @@ static void take_number(struct sp_trace_reader *r, const struct sp_cell_rule *ru
     enum sp_column c = (enum sp_column)rule->column;
     double x;
     bool clock = c == SP_COL_TIME && r->format->clock, read;
-    while (n > 0 && s[n - 1] == ' ') s[--n] = '\0'; /* blanks within quotes; others are gone */
-    while (n > 0 && *s == ' ') s++, n--;
+    while (n > 0 && s[n - 1] == ' ')
+        s[--n] = '\0'; /* blanks within quotes; others are gone */
+    while (n > 0 && *s == ' ')
+        s++, n--;
     read = clock ? read_clock(r, s, s + n, &x) : read_number(r, s, n, &x);
     if (!read) {
         r->bad_text |= 1u << c;
@@ -180,8 +182,10 @@ void sp_trace_on_cell(void *text, size_t size, void *data)
     struct sp_trace_reader *r = data;
     r->after_return = false;
     if (r->cell == 0) r->row_line = r->line;
-    if (r->stage == SP_STAGE_ROWS) take_cell(r, text, size);
-    else if (r->stage != SP_STAGE_STOPPED) take_text(r, text, size);
+    if (r->stage == SP_STAGE_ROWS)
+        take_cell(r, text, size);
+    else if (r->stage != SP_STAGE_STOPPED)
+        take_text(r, text, size);
 }
 
 static void lay_out(struct sp_trace_reader *r)
@@ -203,9 +207,12 @@ void sp_trace_on_row(int end, void *data)
 {
     struct sp_trace_reader *r = data;
     if (r->cell > 0) {
-        if (r->stage == SP_STAGE_ROWS) sp_trace_end_row(r);
-        else if (r->stage == SP_STAGE_HEADINGS && r->format->units_row) r->stage = SP_STAGE_UNITS;
-        else if (r->stage != SP_STAGE_STOPPED) lay_out(r);
+        if (r->stage == SP_STAGE_ROWS)
+            sp_trace_end_row(r);
+        else if (r->stage == SP_STAGE_HEADINGS && r->format->units_row)
+            r->stage = SP_STAGE_UNITS;
+        else if (r->stage != SP_STAGE_STOPPED)
+            lay_out(r);
         r->cell = 0;
         r->got = r->bad_text = r->bad_range = 0;
         r->any = r->stray = r->mark_changed = false;

@@ -48,15 +48,18 @@ static void spread_seconds(double *t, size_t rows)
 {
     for (size_t i = 0, n; i < rows; i += n) {
         double second = t[i];
-        for (n = 1; i + n < rows && t[i + n] == second;) n++;
-        for (size_t k = 1; k < n; k++) t[i + k] = second + (double)k / (double)n;
+        for (n = 1; i + n < rows && t[i + n] == second;)
+            n++;
+        for (size_t k = 1; k < n; k++)
+            t[i + k] = second + (double)k / (double)n;
     }
 }
 
 static void start_from_zero(double *t, size_t rows)
 {
     double start = t[0];
-    for (size_t i = 0; i < rows; i++) t[i] -= start;
+    for (size_t i = 0; i < rows; i++)
+        t[i] -= start;
 }
 
 static double *new_column(struct sp_trace_reader *r, enum sp_column c)

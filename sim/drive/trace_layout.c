@@ -38,7 +38,8 @@ bool sp_trace_texts_add(struct sp_trace_texts *to, const char *s, size_t n)
 
 void sp_trace_texts_free(struct sp_trace_texts *t)
 {
-    for (size_t i = 0; i < t->count; i++) free(t->text[i]);
+    for (size_t i = 0; i < t->count; i++)
+        free(t->text[i]);
     free(t->text);
     *t = (struct sp_trace_texts){0};
 }
@@ -46,7 +47,8 @@ void sp_trace_texts_free(struct sp_trace_texts *t)
 void sp_trace_layout_free(struct sp_trace_layout *l)
 {
     free(l->rule);
-    for (int c = 0; c < SP_COLUMNS; c++) free(l->unit[c]);
+    for (int c = 0; c < SP_COLUMNS; c++)
+        free(l->unit[c]);
     *l = (struct sp_trace_layout){0};
 }
 
@@ -73,7 +75,8 @@ static bool name_is(const char *heading, const char *name)
 {
     const char *open = bracket(heading);
     size_t n = open ? (size_t)(open - heading) : strlen(heading);
-    while (n > 0 && heading[n - 1] == ' ') n--;
+    while (n > 0 && heading[n - 1] == ' ')
+        n--;
     return strlen(name) == n && memcmp(heading, name, n) == 0;
 }
 
@@ -134,7 +137,8 @@ static void find_mapped(struct build *b, enum sp_column c)
 static bool find_own(struct build *b, size_t heading)
 {
     for (int c = 0; c < SP_COLUMNS; c++) {
-        if (b->format->column[c].heading || !name_is(b->headings->text[heading], sp_column_name((enum sp_column)c)))
+        if (b->format->column[c].heading ||
+            !name_is(b->headings->text[heading], sp_column_name((enum sp_column)c)))
             continue;
         claim(b, heading, (enum sp_column)c);
         return true;
@@ -148,7 +152,8 @@ static void complain_unknown(struct build *b, const char *heading)
     const char *open = bracket(heading);
     size_t best = 6, n = open ? (size_t)(open - heading) : strlen(heading);
     snprintf(name, sizeof name, "%.*s", (int)(n < 63 ? n : 63), heading);
-    while (*name && name[strlen(name) - 1] == ' ') name[strlen(name) - 1] = '\0';
+    while (*name && name[strlen(name) - 1] == ' ')
+        name[strlen(name) - 1] = '\0';
     for (int c = 0; c < SP_COLUMNS; c++) {
         size_t d = sp_trace_text_distance(name, sp_column_name((enum sp_column)c), best);
         if (d >= best) continue;
@@ -168,8 +173,10 @@ static char *unit_text(const struct build *b, size_t heading, enum sp_column c)
     size_t n;
     if (text) return sp_trace_text_clean(text, strlen(text));
     text = heading < b->units->count ? b->units->text[heading] : "";
-    if (!*text) text = b->headings->text[heading];
-    else if (!bracket(text)) return sp_trace_text_clean(text, strlen(text));
+    if (!*text)
+        text = b->headings->text[heading];
+    else if (!bracket(text))
+        return sp_trace_text_clean(text, strlen(text));
     open = bracket(text);
     n = open ? strlen(open) : 0;
     return n < 2 ? sp_trace_text_clean("", 0) : sp_trace_text_clean(open + 1, n - 2);

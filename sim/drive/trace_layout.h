@@ -25,9 +25,9 @@ struct sp_cell_rule {
 struct sp_trace_layout {
     struct sp_cell_rule *rule; /* one a heading */
     size_t rules;
-    unsigned present;                /* bit c: column c is in the file */
-    const char *label[SP_COLUMNS];   /* the heading in the file, for complaints; owned by the texts */
-    char *unit[SP_COLUMNS];          /* the unit, for complaints; NULL if none */
+    unsigned present;              /* bit c: column c is in the file */
+    const char *label[SP_COLUMNS]; /* the heading in the file, for complaints; owned by the texts */
+    char *unit[SP_COLUMNS];        /* the unit, for complaints; NULL if none */
 };
 
 /* Finds the columns among `headings` by the mapping of `format` and by their own names, and their units

@@ -9,9 +9,9 @@
 #include "drive/trace_layout.h"
 
 enum {
-    SP_TRACE_CELL_SIZE = 65536,  /* bytes; a longer cell is a quote that is never closed */
-    SP_TRACE_CELLS = 4096,       /* cells in the heading line */
-    SP_TRACE_ROWS = 100000000    /* 23 days at 50 Hz */
+    SP_TRACE_CELL_SIZE = 65536, /* bytes; a longer cell is a quote that is never closed */
+    SP_TRACE_CELLS = 4096,      /* cells in the heading line */
+    SP_TRACE_ROWS = 100000000   /* 23 days at 50 Hz */
 };
 
 enum sp_trace_stage { SP_STAGE_HEADINGS, SP_STAGE_UNITS, SP_STAGE_ROWS, SP_STAGE_STOPPED };
@@ -46,7 +46,7 @@ struct sp_trace_reader {
     bool any, stray; /* any cell not blank; a cell that belongs nowhere */
     bool mark_changed;
     double value[SP_COLUMNS];
-    double day;      /* s added to the clock for the midnights passed */
+    double day; /* s added to the clock for the midnights passed */
 
     /* The rows kept. */
     struct sp_trace *out;
@@ -55,7 +55,7 @@ struct sp_trace_reader {
     bool leapt;    /* the last kept row came after a gap */
     struct sp_line_step *step;
     size_t steps, step_room;
-    char *mark_now;  /* the bytes in the mark column of the row before; NULL: blank */
+    char *mark_now; /* the bytes in the mark column of the row before; NULL: blank */
     size_t mark_size;
     char *mark_next; /* a mark that waits for a row to be kept */
     size_t mark_room;

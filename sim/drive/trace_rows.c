@@ -54,8 +54,10 @@ static void drop_placeless(struct sp_trace_reader *r)
 {
     unsigned bit = 1u << r->axis;
     if (!r->format->repair && !((r->bad_text | r->bad_range) & bit)) complain_blank(r, r->axis);
-    if (r->bad_range & bit) r->out->repairs.range_held++;
-    else r->out->repairs.text_held++;
+    if (r->bad_range & bit)
+        r->out->repairs.range_held++;
+    else
+        r->out->repairs.text_held++;
 }
 
 /* Holds what the row does not say, or complains of it. False: the row cannot be kept. */
@@ -69,10 +71,14 @@ static bool fill(struct sp_trace_reader *r, unsigned missing)
     for (int c = 0; c < SP_COL_MARK; c++) {
         unsigned bit = 1u << c;
         if (!(missing & bit)) continue;
-        if (r->bad_text & bit) n->text_held++;
-        else if (r->bad_range & bit) n->range_held++;
-        else if (r->format->blank == SP_BLANK_HOLD) n->cells_held++;
-        else complain_blank(r, (enum sp_column)c);
+        if (r->bad_text & bit)
+            n->text_held++;
+        else if (r->bad_range & bit)
+            n->range_held++;
+        else if (r->format->blank == SP_BLANK_HOLD)
+            n->cells_held++;
+        else
+            complain_blank(r, (enum sp_column)c);
         r->value[c] = r->out->rows ? last_value(r, (enum sp_column)c) : 0;
     }
     return true;
@@ -111,11 +117,12 @@ static void complain_order(struct sp_trace_reader *r, const char *what, double f
 {
     char found[120];
     bool time = r->axis == SP_COL_TIME;
-    snprintf(found, sizeof found, "%s (%.9g %s after %.9g %s)", what, r->value[r->axis], time ? "s" : "m", from,
-             time ? "s" : "m");
+    snprintf(found, sizeof found, "%s (%.9g %s after %.9g %s)", what, r->value[r->axis], time ? "s" : "m",
+             from, time ? "s" : "m");
     sp_trace_fault(r, r->layout.label[r->axis], found,
                    time ? "time that rises, or two rows at one time for a jump"
-                        : "distance that rises, or two rows at one place for a jump", NULL);
+                        : "distance that rises, or two rows at one place for a jump",
+                   NULL);
 }
 
 static bool take_step(struct sp_trace_reader *r, double from)
@@ -139,7 +146,8 @@ static bool in_order(struct sp_trace_reader *r)
     double x = r->value[r->axis];
     bool counter = r->format->whole_seconds && r->axis == SP_COL_TIME, third;
     if (counter && fabs(x - nearbyint(x)) > 1e-6)
-        sp_trace_fault(r, r->layout.label[r->axis], "a fraction of a second", "a counter of whole seconds", NULL);
+        sp_trace_fault(r, r->layout.label[r->axis], "a fraction of a second", "a counter of whole seconds",
+                       NULL);
     if (r->out->rows > 0 && x < axis[r->out->rows - 1] && last_row_is_wild(r)) {
         r->out->rows--;
         r->out->repairs.gaps--;
@@ -176,7 +184,8 @@ static bool note_line(struct sp_trace_reader *r)
 {
     size_t row = r->out->rows;
     long offset = r->row_line - (long)row;
-    while (r->steps > 0 && r->step[r->steps - 1].row >= row) r->steps--;
+    while (r->steps > 0 && r->step[r->steps - 1].row >= row)
+        r->steps--;
     if (r->steps > 0 && r->step[r->steps - 1].offset == offset) return true;
     if (r->steps == r->step_room) {
         size_t room = 2 * r->step_room + 16;
@@ -210,7 +219,8 @@ static bool keep_mark(struct sp_trace_reader *r)
 static void fill_back(struct sp_trace_reader *r, unsigned first)
 {
     for (int c = 0; c < SP_COL_MARK; c++)
-        for (size_t i = 0; first & 1u << c && i < r->out->rows; i++) r->out->column[c][i] = r->value[c];
+        for (size_t i = 0; first & 1u << c && i < r->out->rows; i++)
+            r->out->column[c][i] = r->value[c];
     r->seen |= first;
 }
 
@@ -247,8 +257,10 @@ void sp_trace_end_row(struct sp_trace_reader *r)
     }
     if (missing && !fill(r, missing)) return;
     if (r->format->clock && r->axis == SP_COL_TIME) pass_midnight(r);
-    if (is_double(r)) r->out->repairs.doubles_dropped++;
-    else if (in_order(r)) keep(r);
+    if (is_double(r))
+        r->out->repairs.doubles_dropped++;
+    else if (in_order(r))
+        keep(r);
 }
 
 long sp_trace_line_of(const struct sp_trace_reader *r, size_t row)
@@ -256,8 +268,10 @@ long sp_trace_line_of(const struct sp_trace_reader *r, size_t row)
     size_t low = 0, high = r->steps;
     while (high - low > 1) {
         size_t middle = low + (high - low) / 2;
-        if (r->step[middle].row <= row) low = middle;
-        else high = middle;
+        if (r->step[middle].row <= row)
+            low = middle;
+        else
+            high = middle;
     }
     return r->steps ? (long)row + r->step[low].offset : 0;
 }

@@ -64,8 +64,10 @@ static bool blank(char c)
 
 char *sp_trace_text_clean(const char *s, size_t n)
 {
-    while (n > 0 && blank(s[0])) s++, n--;
-    while (n > 0 && blank(s[n - 1])) n--;
+    while (n > 0 && blank(s[0]))
+        s++, n--;
+    while (n > 0 && blank(s[n - 1]))
+        n--;
     char *out;
     if (!sp_trace_text_is_utf8(s, n)) {
         out = from_latin1(s, n);
@@ -94,7 +96,8 @@ size_t sp_trace_text_distance(const char *a, const char *b, size_t most)
     enum { LONGEST = 64 };
     size_t n = strlen(a), m = strlen(b), row[LONGEST + 1];
     if (n > LONGEST || m > LONGEST) return most;
-    for (size_t j = 0; j <= m; j++) row[j] = j;
+    for (size_t j = 0; j <= m; j++)
+        row[j] = j;
     for (size_t i = 1; i <= n; i++) {
         size_t diagonal = row[0];
         row[0] = i;

@@ -89,7 +89,7 @@ double sp_engine_gas_factor(const struct sp_engine *e, double metal)
     return factor < 0.0 ? 0.0 : factor;
 }
 
-/* ---- the laws over power ----------------------------------------------------------------------- */
+/* ---- the laws over power ---------------------------------------------------------------------- */
 
 struct heat_at {
     double heat, slope;
@@ -130,7 +130,7 @@ static struct heat_at law_over_power(const struct sp_engine_law *law, double pow
     return at;
 }
 
-/* ---- one row ------------------------------------------------------------------------------------- */
+/* ---- one row ---------------------------------------------------------------------------------- */
 
 /* Fuel flow [kg/s] by which the law goes; NAN when the law goes by power, here or always. */
 static double flow_of_law(const struct sp_engine *e, const struct sp_engine_row *row)
@@ -176,7 +176,7 @@ struct sp_engine_heat sp_engine_heat(const struct sp_engine_law *law, const stru
     return out;
 }
 
-/* ---- building --------------------------------------------------------------------------------------- */
+/* ---- building --------------------------------------------------------------------------------- */
 
 static bool above_zero(double x)
 {

@@ -1,7 +1,7 @@
 /* Fuzzing of the trace reader. Two bytes choose the layout ("00": plain), the rest is the file.
  *
- * Nothing may crash, leak or hang; what is accepted must be finite and in order. For plain files a second, much
- * simpler reader below must come to the same rows and, by strtod, to the same numbers.
+ * Nothing may crash, leak or hang; what is accepted must be finite and in order. For plain files a second,
+ * much simpler reader below must come to the same rows and, by strtod, to the same numbers.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "swirlpot/trace.h"
 
@@ -18,14 +18,15 @@ int LLVMFuzzerTestOneInput(const uint8_t *data, size_t size);
 
 enum { MOST_COLUMNS = 64 };
 
-/* A cell at *at: its text without quotes and outer blanks goes to `out`; *end says what ended it: ',' or a line
- * end or 0 for the end of the file. */
+/* A cell at *at: its text without quotes and outer blanks goes to `out`; *end says what ended it: ',' or a
+ * line end or 0 for the end of the file. */
 static void next_cell(const char **at, const char *stop, char *out, char *end)
 {
     const char *p = *at;
     size_t n = 0;
     bool quoted = false;
-    while (p < stop && (*p == ' ' || *p == '\t')) p++;
+    while (p < stop && (*p == ' ' || *p == '\t'))
+        p++;
     if (p < stop && *p == '"') {
         quoted = true;
         for (p++; p < stop && !(*p == '"' && !(p + 1 < stop && p[1] == '"')); p++) {
@@ -36,7 +37,8 @@ static void next_cell(const char **at, const char *stop, char *out, char *end)
     }
     for (; p < stop && *p != ',' && *p != '\n' && *p != '\r'; p++)
         if (!quoted) out[n++] = *p;
-    while (!quoted && n > 0 && (out[n - 1] == ' ' || out[n - 1] == '\t')) n--;
+    while (!quoted && n > 0 && (out[n - 1] == ' ' || out[n - 1] == '\t'))
+        n--;
     out[n] = '\0';
     *end = '\0';
     if (p < stop) *end = *p++;
@@ -55,12 +57,14 @@ static int column_of(struct sp_units *u, const char *heading, double *scale, dou
         *offset = 0;
         if (c == SP_COL_MARK) return c;
         snprintf(text, sizeof text, "%s", first + n);
-        for (size_t k = strlen(text); k > 0 && (unsigned char)text[k - 1] <= ' ';) text[--k] = '\0';
+        for (size_t k = strlen(text); k > 0 && (unsigned char)text[k - 1] <= ' ';)
+            text[--k] = '\0';
         const char *open = strpbrk(text, "[(");
         if (open && strlen(open) > 2) snprintf(unit, sizeof unit, "%.*s", (int)strlen(open) - 2, open + 1);
         const char *from = unit + strspn(unit, " ");
         size_t k = strlen(from);
-        while (k > 0 && from[k - 1] == ' ') k--;
+        while (k > 0 && from[k - 1] == ' ')
+            k--;
         unit[(from - unit) + (ptrdiff_t)k] = '\0';
         if (*from && strcmp(from, "1") != 0 &&
             !sp_unit_scale(u, sp_column_kind((enum sp_column)c), from, scale, offset, why, sizeof why))
@@ -147,9 +151,12 @@ static void check_trace(const struct sp_trace *t)
     const double *time = t->column[SP_COL_TIME], *speed = t->column[SP_COL_SPEED];
     INSIST(t->rows >= 2 && time && speed && time[0] == 0 && time[t->rows - 1] > 0);
     for (int c = 0; c < SP_COLUMNS; c++)
-        for (size_t i = 0; t->column[c] && i < t->rows; i++) INSIST(isfinite(t->column[c][i]));
-    for (size_t i = 1; i < t->rows; i++) INSIST(time[i] >= time[i - 1] && (i < 2 || time[i] > time[i - 2]));
-    for (size_t i = 0; i < t->rows; i++) INSIST(speed[i] >= -5 && speed[i] <= 150);
+        for (size_t i = 0; t->column[c] && i < t->rows; i++)
+            INSIST(isfinite(t->column[c][i]));
+    for (size_t i = 1; i < t->rows; i++)
+        INSIST(time[i] >= time[i - 1] && (i < 2 || time[i] > time[i - 2]));
+    for (size_t i = 0; i < t->rows; i++)
+        INSIST(speed[i] >= -5 && speed[i] <= 150);
     for (size_t i = 0; i < t->marks; i++) {
         INSIST(t->mark[i].row < t->rows && t->mark[i].text[0]);
         INSIST(i == 0 || t->mark[i].row > t->mark[i - 1].row);

@@ -39,19 +39,21 @@ static double distance(const struct sp_trace *t, size_t from, size_t to)
 {
     const double *s = t->column[SP_COL_TIME], *v = t->column[SP_COL_SPEED];
     double sum = 0;
-    for (size_t i = from; i < to; i++) sum += 0.5 * (v[i] + v[i + 1]) * (s[i + 1] - s[i]);
+    for (size_t i = from; i < to; i++)
+        sum += 0.5 * (v[i] + v[i + 1]) * (s[i + 1] - s[i]);
     return sum;
 }
 
 static double highest(const struct sp_trace *t, enum sp_column c)
 {
     double most = -1e300;
-    for (size_t i = 0; i < t->rows; i++) most = fmax(most, t->column[c][i]);
+    for (size_t i = 0; i < t->rows; i++)
+        most = fmax(most, t->column[c][i]);
     return most;
 }
 
-/* UN Regulation No. 83, type I test: urban cycle 195 s, 1.013 km, mean 19 km/h, at most 50; extra-urban 400 s,
- * 6.955 km, mean 62.6 km/h, at most 120, greatest acceleration 0.833 m/s2, deceleration 1.389 m/s2; all
+/* UN Regulation No. 83, type I test: urban cycle 195 s, 1.013 km, mean 19 km/h, at most 50; extra-urban 400
+ * s, 6.955 km, mean 62.6 km/h, at most 120, greatest acceleration 0.833 m/s2, deceleration 1.389 m/s2; all
  * 1180 s, 11.007 km (totals from memory, the same as in any account of the cycle). */
 static void nedc_totals(void **state)
 {
@@ -102,7 +104,8 @@ static void nedc_against_another_table(void **state)
     f.column[SP_COL_TIME].unit = "s";
     f.column[SP_COL_SPEED].heading = "speed_kmh";
     f.column[SP_COL_SPEED].unit = "km/h";
-    struct sp_trace t = read_trace(own, "nedc.csv", NULL), other = read_trace(data_folder(), "cycle_nedc_1hz.csv", &f);
+    struct sp_trace t = read_trace(own, "nedc.csv", NULL),
+                    other = read_trace(data_folder(), "cycle_nedc_1hz.csv", &f);
     assert_int_equal(other.rows, 1181);
     for (size_t i = 1; i < 1181; i++)
         check_close(t.column[SP_COL_SPEED][i], other.column[SP_COL_SPEED][i - 1], 0, 0.0051 / 3.6);
@@ -125,8 +128,8 @@ struct car {
 };
 
 /* Where the engine gives most of its power before, at and after a row, the force at the wheels is what
- * accelerates, climbs, rolls and pushes air: F v = 0.92 P. A row's power is a mean over a second, so at the ends
- * of a pull half a second of part throttle is counted in: the fewer the rows, the looser the check. */
+ * accelerates, climbs, rolls and pushes air: F v = 0.92 P. A row's power is a mean over a second, so at the
+ * ends of a pull half a second of part throttle is counted in: the fewer the rows, the looser the check. */
 static void check_balance(const struct sp_trace *t, const struct car *car, double off)
 {
     const double *v = t->column[SP_COL_SPEED], *p = t->column[SP_COL_POWER], *z = t->column[SP_COL_ALTITUDE];
@@ -136,7 +139,8 @@ static void check_balance(const struct sp_trace *t, const struct car *car, doubl
         if (fmin(p[i - 1], fmin(p[i], p[i + 1])) < 0.6 * car->rated) continue;
         double climb = z ? (z[i + 1] - z[i - 1]) / 2 * car->mass * 9.81 : 0;
         double faster = 1.05 * car->mass * (v[i + 1] * v[i + 1] - v[i - 1] * v[i - 1]) / 4;
-        need += faster + climb + 0.6 * car->area * v[i] * v[i] * v[i] + car->rolling * car->mass * 9.81 * v[i];
+        need +=
+            faster + climb + 0.6 * car->area * v[i] * v[i] * v[i] + car->rolling * car->mass * 9.81 * v[i];
         sum += 0.92 * (0.25 * p[i - 1] + 0.5 * p[i] + 0.25 * p[i + 1]);
         rows++;
     }
@@ -150,7 +154,8 @@ static void harrowmoor_is_a_hill_climb(void **state)
     struct sp_trace t = read_trace(own, "harrowmoor.csv", NULL);
     const struct car climber = {660, 0.90, 0.018, 190e3, 8900 / 60.0};
     size_t finish = row_of(&t, "Finish");
-    double length = distance(&t, 0, finish), rise = t.column[SP_COL_ALTITUDE][finish] - t.column[SP_COL_ALTITUDE][0];
+    double length = distance(&t, 0, finish),
+           rise = t.column[SP_COL_ALTITUDE][finish] - t.column[SP_COL_ALTITUDE][0];
     check_close(t.column[SP_COL_SPEED][0], 0, 0, 1e-12);
     check_close(t.column[SP_COL_SPEED][t.rows - 1], 0, 0, 1e-12);
     check_within(t.column[SP_COL_TIME][finish], 65, 80);
@@ -158,7 +163,7 @@ static void harrowmoor_is_a_hill_climb(void **state)
     check_within(rise / length, 0.070, 0.080);
     check_within(highest(&t, SP_COL_POWER), 150e3, 190e3);
     check_within(highest(&t, SP_COL_ENGINE_SPEED), 100, 8900 / 60.0);
-    assert_int_equal(t.marks, 16); /* start, 14 corners, finish */
+    assert_int_equal(t.marks, 16);        /* start, 14 corners, finish */
     for (size_t i = 1; i < t.rows; i++) { /* 1.35 g is all the tyres hold; up the hill nothing helps */
         double a = t.column[SP_COL_SPEED][i] - t.column[SP_COL_SPEED][i - 1];
         check_within(a, -1.35 * 9.81 - 4, 0.64 * 1.35 * 9.81);

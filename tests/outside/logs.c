@@ -1,10 +1,10 @@
 /* Real logs and published cycles through the trace reader. They lie outside the tree: in the folder that
  * SWIRLPOT_DATA names or in ../shared/data; without it all is skipped.
  *
- * kit: M. Weber, "Automotive OBD-II Dataset", KIT 2023, DOI 10.35097/1130. carobd: repository eron93br/carOBD.
- * accessport: sample in repository stevendaniluk/MotecLogGenerator. Each *_1hz.csv was made from the raw log by
- * another program (last value held at each whole second, or means), so the two readings check each other.
- * SPDX-License-Identifier: GPL-3.0-or-later */
+ * kit: M. Weber, "Automotive OBD-II Dataset", KIT 2023, DOI 10.35097/1130. carobd: repository
+ * eron93br/carOBD. accessport: sample in repository stevendaniluk/MotecLogGenerator. Each *_1hz.csv was made
+ * from the raw log by another program (last value held at each whole second, or means), so the two readings
+ * check each other. SPDX-License-Identifier: GPL-3.0-or-later */
 #include "check.h"
 #include "swirlpot/trace.h"
 
@@ -45,14 +45,16 @@ static double distance(const struct sp_trace *t)
 {
     const double *s = t->column[SP_COL_TIME], *v = t->column[SP_COL_SPEED];
     double sum = 0;
-    for (size_t i = 1; i < t->rows; i++) sum += 0.5 * (v[i] + v[i - 1]) * (s[i] - s[i - 1]);
+    for (size_t i = 1; i < t->rows; i++)
+        sum += 0.5 * (v[i] + v[i - 1]) * (s[i] - s[i - 1]);
     return sum;
 }
 
 static double highest(const struct sp_trace *t, enum sp_column c)
 {
     double most = -1e300;
-    for (size_t i = 0; i < t->rows; i++) most = fmax(most, t->column[c][i]);
+    for (size_t i = 0; i < t->rows; i++)
+        most = fmax(most, t->column[c][i]);
     return most;
 }
 
@@ -94,7 +96,8 @@ static void all_resampled(void **state)
         if (!strstr(e->d_name, "_1hz.csv")) continue;
         struct sp_trace_format f = resampled_format(e->d_name);
         struct sp_trace t = read_log(e->d_name, &f);
-        for (size_t i = 0; i < t.rows; i++) check_close(t.column[SP_COL_TIME][i], (double)i, 0, 1e-9);
+        for (size_t i = 0; i < t.rows; i++)
+            check_close(t.column[SP_COL_TIME][i], (double)i, 0, 1e-9);
         assert_int_equal(t.rows, t.repairs.rows_read);
         if (t.column[SP_COL_COOLANT]) check_within(highest(&t, SP_COL_COOLANT), 273.15 + 60, 273.15 + 115);
         sp_trace_free(&t);
@@ -104,17 +107,22 @@ static void all_resampled(void **state)
     check_within((double)files, 20, 1000);
 }
 
-/* Totals: WLTC 3b 1800 s, 23.266 km, 131.3 km/h (UN GTR 15); UDDS 1369 s, 11.99 km, 91.2 km/h and NEDC 1180 s,
- * 11.0 km, 120 km/h, as published. WLTC 3a 23.194 km, class 2 22.649 km and 123.1 km/h, FTP-75 17.77 km (11.04
- * miles) in 1369 + 600 + 505 s: from memory. */
+/* Totals: WLTC 3b 1800 s, 23.266 km, 131.3 km/h (UN GTR 15); UDDS 1369 s, 11.99 km, 91.2 km/h and NEDC 1180
+ * s, 11.0 km, 120 km/h, as published. WLTC 3a 23.194 km, class 2 22.649 km and 123.1 km/h, FTP-75 17.77 km
+ * (11.04 miles) in 1369 + 600 + 505 s: from memory. */
 static void published_cycles(void **state)
 {
     (void)state;
     if (!data_folder()) skip();
-    static const struct { const char *name; double s, km, kmh, km_off; } at[] = {
-        {"cycle_wltc_class3b_1hz.csv", 1800, 23.266, 131.3, 0.0002}, {"cycle_udds_1hz.csv", 1369, 11.99, 91.2, 0.001},
-        {"cycle_nedc_1hz.csv", 1180, 11.0, 120, 0.005},              {"cycle_wltc_class3a_1hz.csv", 1800, 23.194, 131.3, 0.001},
-        {"cycle_wltc_class2_1hz.csv", 1800, 22.649, 123.1, 0.001},   {"cycle_ftp75_from_udds_1hz.csv", 2474, 17.77, 91.2, 0.003}};
+    static const struct {
+        const char *name;
+        double s, km, kmh, km_off;
+    } at[] = {{"cycle_wltc_class3b_1hz.csv", 1800, 23.266, 131.3, 0.0002},
+              {"cycle_udds_1hz.csv", 1369, 11.99, 91.2, 0.001},
+              {"cycle_nedc_1hz.csv", 1180, 11.0, 120, 0.005},
+              {"cycle_wltc_class3a_1hz.csv", 1800, 23.194, 131.3, 0.001},
+              {"cycle_wltc_class2_1hz.csv", 1800, 22.649, 123.1, 0.001},
+              {"cycle_ftp75_from_udds_1hz.csv", 2474, 17.77, 91.2, 0.003}};
     for (size_t i = 0; i < sizeof at / sizeof *at; i++) {
         struct sp_trace_format f = cycle_format();
         struct sp_trace t = read_log(at[i].name, &f);
@@ -130,13 +138,15 @@ static void check_same_drive(struct sp_trace *raw, const char *resampled, double
 {
     struct sp_trace_format f = resampled_format(resampled);
     struct sp_trace t = read_log(resampled, &f);
-    print_message("%s: raw %zu rows, %.1f s, %.0f m, %.2f K; resampled %.0f s, %.0f m, %.2f K; held %zu, doubles %zu\n",
-                  resampled, raw->rows, duration(raw), distance(raw), highest(raw, SP_COL_COOLANT), duration(&t),
-                  distance(&t), highest(&t, SP_COL_COOLANT), raw->repairs.cells_held, raw->repairs.doubles_dropped);
+    print_message(
+        "%s: raw %zu rows, %.1f s, %.0f m, %.2f K; resampled %.0f s, %.0f m, %.2f K; held %zu, doubles %zu\n",
+        resampled, raw->rows, duration(raw), distance(raw), highest(raw, SP_COL_COOLANT), duration(&t),
+        distance(&t), highest(&t, SP_COL_COOLANT), raw->repairs.cells_held, raw->repairs.doubles_dropped);
     check_close(duration(raw), duration(&t), 0, 2);
     check_close(distance(raw), distance(&t), 0.01, 0);
     check_close(highest(raw, SP_COL_COOLANT), highest(&t, SP_COL_COOLANT), 0, coolant_off);
-    check_close(highest(raw, SP_COL_ENGINE_SPEED), highest(&t, SP_COL_ENGINE_SPEED), 0.06, 0); /* a mean falls short */
+    check_close(highest(raw, SP_COL_ENGINE_SPEED), highest(&t, SP_COL_ENGINE_SPEED), 0.06,
+                0); /* a mean falls short */
     check_close(highest(raw, SP_COL_SPEED), highest(&t, SP_COL_SPEED), 0.03, 0);
     sp_trace_free(&t);
     sp_trace_free(raw);
@@ -151,12 +161,18 @@ static void raw_kit(void **state)
     if (!data_folder()) skip();
     struct sp_trace_format f = {.clock = true, .blank = SP_BLANK_HOLD};
     map(&f, SP_COL_TIME, "Time", NULL);
-    map(&f, SP_COL_COOLANT, "Engine Coolant Temperature [\xC2\xB0" "C]", "degC");
+    map(&f, SP_COL_COOLANT,
+        "Engine Coolant Temperature [\xC2\xB0"
+        "C]",
+        "degC");
     map(&f, SP_COL_ENGINE_SPEED, "Engine RPM [RPM]", "rpm");
     map(&f, SP_COL_SPEED, "Vehicle Speed Sensor", NULL);
     map(&f, SP_COL_AIR_FLOW, "Air Flow Rate from Mass Flow Sensor [g/s]", NULL);
     map(&f, SP_COL_THROTTLE, "Absolute Throttle Position [%]", NULL);
-    map(&f, SP_COL_AMBIENT, "Ambient Air Temperature [\xC2\xB0" "C]", "degC");
+    map(&f, SP_COL_AMBIENT,
+        "Ambient Air Temperature [\xC2\xB0"
+        "C]",
+        "degC");
     struct sp_trace t = read_log("raw/2017-08-07_Seat_Leon_KA_RT_Frei.csv", &f);
     /* the sixth row's first air flow is 0.91 g/s; the rows before take it over, counted */
     check_close(t.column[SP_COL_AIR_FLOW][0], 0.91e-3, 1e-12, 0);

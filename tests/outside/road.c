@@ -50,7 +50,7 @@ static void coast_down(void **state)
     check_close(integral(slowing_time, 120.0, 80.0), 37.613, 0.0, 6e-4);
     check_close(integral(slowing_distance, 120.0, 80.0), 1026.8, 0.0, 0.06);
     check_close(integral(slowing_time, 100.0, 60.0), 49.073, 0.0, 6e-4);
-    check_close(integral(slowing_time, 120.0, 0.0), 198.80, 0.0, 6e-3);
+    check_close(integral(slowing_time, 120.0, 0.0), 198.821, 0.0, 6e-4); /* same closed form, worked by hand */
     double F0 = 161.80973, c = 0.39, m = 1545.0;
     double closed = m / sqrt(F0 * c) * (atan(120.0 / 3.6 * sqrt(c / F0)) - atan(80.0 / 3.6 * sqrt(c / F0)));
     check_close(integral(slowing_time, 120.0, 80.0), closed, 1e-7, 0.0);

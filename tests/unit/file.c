@@ -18,7 +18,8 @@ static int entries(void)
     DIR *d = opendir(folder);
     assert_non_null(d);
     int n = 0;
-    for (struct dirent *e; (e = readdir(d));) n += e->d_name[0] != '.';
+    for (struct dirent *e; (e = readdir(d));)
+        n += e->d_name[0] != '.';
     closedir(d);
     return n;
 }
@@ -140,7 +141,8 @@ static void large_and_binary(void **state)
     size_t n = 1000003, size;
     char *bytes = malloc(n), *text;
     assert_non_null(bytes);
-    for (size_t i = 0; i < n; i++) bytes[i] = (char)(i * i >> 3);
+    for (size_t i = 0; i < n; i++)
+        bytes[i] = (char)(i * i >> 3);
     const char *path = inside("e.bin");
     struct sp_place at = {.file = path};
     assert_true(sp_file_write(path, bytes, n, &c));
@@ -168,8 +170,10 @@ static int drop_folder(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(written_and_read_back), cmocka_unit_test(abandoned_leaves_the_old),
-        cmocka_unit_test(full_disk),             cmocka_unit_test(what_cannot_be),
+        cmocka_unit_test(written_and_read_back),
+        cmocka_unit_test(abandoned_leaves_the_old),
+        cmocka_unit_test(full_disk),
+        cmocka_unit_test(what_cannot_be),
         cmocka_unit_test(large_and_binary),
     };
     return cmocka_run_group_tests(tests, make_folder, drop_folder);

@@ -39,7 +39,8 @@ static void quadratics_are_exact(void **state)
         }
         double half_width[] = {0.3, 1.7, 40};
         for (size_t k = 0; k < 3; k++) {
-            for (size_t i = 0; i < N; i++) y[i] = 30 - 0.7 * (t[i] - 20) + 0.013 * (t[i] - 20) * (t[i] - 20);
+            for (size_t i = 0; i < N; i++)
+                y[i] = 30 - 0.7 * (t[i] - 20) + 0.013 * (t[i] - 20) * (t[i] - 20);
             assert_true(sp_smooth(N, t, y, half_width[k], s, d));
             for (size_t i = 0; i < N; i++) {
                 check_close(s[i], y[i], 1e-9, 1e-8);
@@ -51,13 +52,15 @@ static void quadratics_are_exact(void **state)
 }
 
 /* Weights of the quadratic filter from the tables of Savitzky and Golay, Anal. Chem. 36 (1964), tables I
- * and III (with the known corrections of Steinier et al. 1972 these rows agree): the answer to one row of 1. */
+ * and III (with the known corrections of Steinier et al. 1972 these rows agree): the answer to one row of 1.
+ */
 static void weights_are_the_published(void **state)
 {
     (void)state;
     static const double five[] = {-3, 12, 17, 12, -3}, nine[] = {-21, 14, 39, 54, 59, 54, 39, 14, -21};
     double t[41], y[41], s[41], d[41];
-    for (int i = 0; i < 41; i++) t[i] = 0.1 * i, y[i] = i == 20;
+    for (int i = 0; i < 41; i++)
+        t[i] = 0.1 * i, y[i] = i == 20;
     assert_true(sp_smooth(41, t, y, 0.25, s, d));
     for (int k = -2; k <= 2; k++) {
         check_close(s[20 + k], five[k + 2] / 35, 0, 1e-12);
@@ -79,9 +82,11 @@ static void noise_falls_as_it_must(void **state)
     enum { N = 200000, M = 25 };
     double *t = room(N), *y = room(N), *s = room(N), *d = room(N), m = M, vs = 0, vd = 0;
     uint32_t seed = 1;
-    for (size_t i = 0; i < N; i++) t[i] = 0.02 * (double)i, y[i] = noise(&seed);
+    for (size_t i = 0; i < N; i++)
+        t[i] = 0.02 * (double)i, y[i] = noise(&seed);
     assert_true(sp_smooth(N, t, y, 0.02 * (M + 0.5), s, d));
-    for (size_t i = 100; i < N - 100; i++) vs += s[i] * s[i], vd += d[i] * d[i];
+    for (size_t i = 100; i < N - 100; i++)
+        vs += s[i] * s[i], vd += d[i] * d[i];
     vs /= N - 200, vd /= N - 200;
     check_close(vs, 3 * (3 * m * m + 3 * m - 1) / ((2 * m - 1) * (2 * m + 1) * (2 * m + 3)), 0.05, 0);
     check_close(vd * 0.02 * 0.02, 3 / (m * (m + 1) * (2 * m + 1)), 0.05, 0);
@@ -99,7 +104,8 @@ static void no_shift_in_time(void **state)
         seed = 1664525u * seed + 1013904223u;
         t[i] = t[i - 1] + 0.01 + 0.02 * (seed >> 8) / 16777216.0;
     }
-    for (size_t i = 0; i < N; i++) y[i] = 10 * sin(w * t[i]) + 0.5 * noise(&seed);
+    for (size_t i = 0; i < N; i++)
+        y[i] = 10 * sin(w * t[i]) + 0.5 * noise(&seed);
     assert_true(sp_smooth(N, t, y, 0.5, s, d));
     for (size_t i = 0; i < N; i++) {
         in += (s[i] - 10 * sin(w * t[i])) * sin(w * t[i]) / N * 2;
@@ -136,7 +142,8 @@ static void heaps_give_no_wild_slope(void **state)
     enum { N = 600 };
     double t[N], y[N], s[N], d[N];
     uint32_t seed = 11;
-    for (int i = 0; i < N; i++) t[i] = i / 10 + 1e-5 * (i % 10), y[i] = 20 + 0.1 * noise(&seed);
+    for (int i = 0; i < N; i++)
+        t[i] = i / 10 + 1e-5 * (i % 10), y[i] = 20 + 0.1 * noise(&seed);
     assert_true(sp_smooth(N, t, y, 0.5, s, d));
     for (int i = 0; i < N; i++) {
         check_within(s[i], 19.6, 20.4);
@@ -172,7 +179,8 @@ static void cost_is_linear(void **state)
     (void)state;
     enum { N = 1000000 };
     double *t = room(N), *y = room(N), *s = room(N), *d = room(N);
-    for (size_t i = 0; i < N; i++) t[i] = 1e-6 * (double)i, y[i] = 5 + t[i] * t[i];
+    for (size_t i = 0; i < N; i++)
+        t[i] = 1e-6 * (double)i, y[i] = 5 + t[i] * t[i];
     clock_t begin = clock();
     assert_true(sp_smooth(N, t, y, 0.3, s, d));
     check_within((double)(clock() - begin) / CLOCKS_PER_SEC, 0, 10);
@@ -186,10 +194,14 @@ static void cost_is_linear(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(quadratics_are_exact),   cmocka_unit_test(weights_are_the_published),
-        cmocka_unit_test(noise_falls_as_it_must), cmocka_unit_test(no_shift_in_time),
-        cmocka_unit_test(jumps_stay),             cmocka_unit_test(heaps_give_no_wild_slope),
-        cmocka_unit_test(ends_and_few_rows),      cmocka_unit_test(cost_is_linear),
+        cmocka_unit_test(quadratics_are_exact),
+        cmocka_unit_test(weights_are_the_published),
+        cmocka_unit_test(noise_falls_as_it_must),
+        cmocka_unit_test(no_shift_in_time),
+        cmocka_unit_test(jumps_stay),
+        cmocka_unit_test(heaps_give_no_wild_slope),
+        cmocka_unit_test(ends_and_few_rows),
+        cmocka_unit_test(cost_is_linear),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -22,7 +22,8 @@ static struct reading read_text(const char *text, const struct sp_trace_format *
 {
     static const struct sp_trace_format plain;
     struct reading r = {0};
-    r.status = sp_trace_parse(units, "log.csv", text, strlen(text), "case.json", format ? format : &plain, &r.t, &r.c);
+    r.status = sp_trace_parse(units, "log.csv", text, strlen(text), "case.json", format ? format : &plain,
+                              &r.t, &r.c);
     assert_true((r.status == SP_OK) == (r.c.count == 0));
     if (r.status != SP_OK) {
         assert_int_equal(r.status, SP_INPUT);
@@ -44,7 +45,8 @@ static void check_column(const struct reading *r, enum sp_column c, size_t rows,
     assert_int_equal(r->status, SP_OK);
     assert_int_equal(r->t.rows, rows);
     assert_non_null(r->t.column[c]);
-    for (size_t i = 0; i < rows; i++) check_close(r->t.column[c][i], want[i], 1e-13, 1e-12);
+    for (size_t i = 0; i < rows; i++)
+        check_close(r->t.column[c][i], want[i], 1e-13, 1e-12);
 }
 
 /* Some complaint stands at this line and column (NULL: any) and has these words in found or expected. */
@@ -53,7 +55,8 @@ static void check_complaint(const struct reading *r, long line, const char *path
     for (size_t i = 0; i < r->c.count; i++) {
         const struct sp_complaint *c = &r->c.list[i];
         if (c->line != line || (path && (!c->path || strcmp(c->path, path) != 0))) continue;
-        if (!strstr(c->found, words) && !strstr(c->expected, words) && !(c->hint && strstr(c->hint, words))) continue;
+        if (!strstr(c->found, words) && !strstr(c->expected, words) && !(c->hint && strstr(c->hint, words)))
+            continue;
         assert_string_equal(c->file, "log.csv");
         assert_string_equal(c->named_by, "case.json");
         return;
@@ -73,14 +76,19 @@ static void refused(const char *text, const struct sp_trace_format *format, size
     done(&r);
 }
 
-#define WANT(...) (const double[]){__VA_ARGS__}
+#define WANT(...)                                                                                            \
+    (const double[])                                                                                         \
+    {                                                                                                        \
+        __VA_ARGS__                                                                                          \
+    }
 
 static void plain_file(void **state)
 {
     (void)state;
-    struct reading r = read_text("time [s],speed [km/h],power [kW],engine_speed [rpm],grade [%],mark\n"
-                                 "10,36,50,6000,5,Start\n11.5,72.0,-5e0,3000,-2.5,Start\n13,0,0,0,0,\n14,0,0,0,0,Hairpin\n",
-                                 NULL);
+    struct reading r =
+        read_text("time [s],speed [km/h],power [kW],engine_speed [rpm],grade [%],mark\n"
+                  "10,36,50,6000,5,Start\n11.5,72.0,-5e0,3000,-2.5,Start\n13,0,0,0,0,\n14,0,0,0,0,Hairpin\n",
+                  NULL);
     check_column(&r, SP_COL_TIME, 4, WANT(0, 1.5, 3, 4));
     check_column(&r, SP_COL_SPEED, 4, WANT(10, 20, 0, 0));
     check_column(&r, SP_COL_POWER, 4, WANT(50e3, -5e3, 0, 0));
@@ -100,8 +108,10 @@ static void plain_file(void **state)
 static void units_and_temperatures(void **state)
 {
     (void)state;
-    struct reading r = read_text("time [min],speed [mph],ambient [degC],coolant [degF],fuel_flow [g/s],gear,wake\n"
-                                 "0,60,33,212,2,1,1\n0.5,30,-40,32,0.5,-1,0.7\n", NULL);
+    struct reading r =
+        read_text("time [min],speed [mph],ambient [degC],coolant [degF],fuel_flow [g/s],gear,wake\n"
+                  "0,60,33,212,2,1,1\n0.5,30,-40,32,0.5,-1,0.7\n",
+                  NULL);
     check_column(&r, SP_COL_TIME, 2, WANT(0, 30));
     check_column(&r, SP_COL_SPEED, 2, WANT(26.8224, 13.4112)); /* 1 mile 1609.344 m */
     check_column(&r, SP_COL_AMBIENT, 2, WANT(306.15, 233.15));
@@ -115,7 +125,8 @@ static void units_and_temperatures(void **state)
 static void odd_but_right(void **state)
 {
     (void)state;
-    struct reading r = read_text("\xEF\xBB\xBF\"time [s]\" , speed [m/s],\r\n\r\n 0 ,\" 1.5 \",\r\n,,\r\n\"1\",.5,,,\r\n2,2.", NULL);
+    struct reading r = read_text(
+        "\xEF\xBB\xBF\"time [s]\" , speed [m/s],\r\n\r\n 0 ,\" 1.5 \",\r\n,,\r\n\"1\",.5,,,\r\n2,2.", NULL);
     check_column(&r, SP_COL_TIME, 3, WANT(0, 1, 2));
     check_column(&r, SP_COL_SPEED, 3, WANT(1.5, 0.5, 2));
     done(&r);
@@ -148,7 +159,8 @@ static void headings_refused(void **state)
 static void cells_refused(void **state)
 {
     (void)state;
-    static const char *text[] = {"abc", "NaN", "inf", "-Infinity", "0x10", "1e400", "1,5", "--1", "1e", "1 2", ".", "-", "1.2.3"};
+    static const char *text[] = {"abc", "NaN", "inf", "-Infinity", "0x10", "1e400", "1,5",
+                                 "--1", "1e",  "1 2", ".",         "-",    "1.2.3"};
     char file[200];
     for (size_t i = 0; i < sizeof text / sizeof *text; i++) {
         snprintf(file, sizeof file, "time [s],speed [m/s]\n0,1\n1,\"%s\"\n2,3\n", text[i]);
@@ -165,28 +177,43 @@ static void cells_refused(void **state)
     refused("time [s],speed [m/s],mark\n0,1,\"a\nb\"\n1,x,c\n", NULL, 1, 4, "speed [m/s]", "x");
     refused("\r\ntime [s],speed [m/s]\r\n\r\n0,1\r\n1,x\r\n", NULL, 1, 5, "speed [m/s]", "x");
     /* all faults in one go */
-    refused("time [s],speed [m/s],gear\n0,x,y\n1,1,1\n0.5,900,1\n60,1,z\n", NULL, 6, 4, "time [s]", "a step back");
+    refused("time [s],speed [m/s],gear\n0,x,y\n1,1,1\n0.5,900,1\n60,1,z\n", NULL, 6, 4, "time [s]",
+            "a step back");
 }
 
 static void impossible_values_refused(void **state)
 {
     (void)state;
-    static const struct { const char *heading, *value, *good; } at[] = {
-        {"speed [m/s]", "-5.1", "-5"}, {"speed [m/s]", "150.1", "150"}, {"speed [km/h]", "541", "540"},
-        {"power [MW]", "3.01", "3"}, {"power [kW]", "-1001", "-1000"}, {"engine_speed [rpm]", "24001", "24000"},
-        {"engine_speed [rpm]", "-1", "0"}, {"throttle", "1.06", "1"}, {"throttle [%]", "106", "100"},
-        {"throttle", "-0.06", "-0.05"}, {"grade", "0.61", "0.6"}, {"grade [%]", "-61", "-60"},
-        {"altitude [m]", "-501", "-500"}, {"altitude [m]", "9001", "9000"}, {"ambient [K]", "199", "200"},
-        {"coolant [degC]", "228", "226"}, {"wake", "1.51", "1.5"}, {"wake", "-0.01", "0"},
-        {"fuel_flow [kg/s]", "-0.001", "0"}, {"air_flow [g/s]", "10001", "9999"}};
+    static const struct {
+        const char *heading, *value, *good;
+    } at[] = {{"speed [m/s]", "-5.1", "-5"},
+              {"speed [m/s]", "150.1", "150"},
+              {"speed [km/h]", "541", "540"},
+              {"power [MW]", "3.01", "3"},
+              {"power [kW]", "-1001", "-1000"},
+              {"engine_speed [rpm]", "24001", "24000"},
+              {"engine_speed [rpm]", "-1", "0"},
+              {"throttle", "1.06", "1"},
+              {"throttle [%]", "106", "100"},
+              {"throttle", "-0.06", "-0.05"},
+              {"grade", "0.61", "0.6"},
+              {"grade [%]", "-61", "-60"},
+              {"altitude [m]", "-501", "-500"},
+              {"altitude [m]", "9001", "9000"},
+              {"ambient [K]", "199", "200"},
+              {"coolant [degC]", "228", "226"},
+              {"wake", "1.51", "1.5"},
+              {"wake", "-0.01", "0"},
+              {"fuel_flow [kg/s]", "-0.001", "0"},
+              {"air_flow [g/s]", "10001", "9999"}};
     char text[200];
     for (size_t i = 0; i < sizeof at / sizeof *at; i++) {
         bool speed = strncmp(at[i].heading, "speed", 5) == 0;
-        snprintf(text, sizeof text, "time [s],%s%s\n0,%s%s\n1,%s%s\n", at[i].heading, speed ? "" : ",speed [m/s]",
-                 at[i].good, speed ? "" : ",1", at[i].value, speed ? "" : ",1");
+        snprintf(text, sizeof text, "time [s],%s%s\n0,%s%s\n1,%s%s\n", at[i].heading,
+                 speed ? "" : ",speed [m/s]", at[i].good, speed ? "" : ",1", at[i].value, speed ? "" : ",1");
         refused(text, NULL, 1, 3, at[i].heading, at[i].value);
-        snprintf(text, sizeof text, "time [s],%s%s\n0,%s%s\n1,%s%s\n", at[i].heading, speed ? "" : ",speed [m/s]",
-                 at[i].good, speed ? "" : ",1", at[i].good, speed ? "" : ",1");
+        snprintf(text, sizeof text, "time [s],%s%s\n0,%s%s\n1,%s%s\n", at[i].heading,
+                 speed ? "" : ",speed [m/s]", at[i].good, speed ? "" : ",1", at[i].good, speed ? "" : ",1");
         struct reading r = read_text(text, NULL);
         assert_int_equal(r.status, SP_OK);
         done(&r);
@@ -220,8 +247,10 @@ static void repaired_and_counted(void **state)
 {
     (void)state;
     struct sp_trace_format f = {.repair = true};
-    struct reading r = read_text("time [s],speed [m/s],gear\n0,x,1\n1,2,NaN\n0.5,3,2\n2,900,3\nfour,4,4\n3,4,4\n3,5,5\n3,6,6\n"
-                                 "40,7,7,8\n41,7,7\n", &f);
+    struct reading r = read_text(
+        "time [s],speed [m/s],gear\n0,x,1\n1,2,NaN\n0.5,3,2\n2,900,3\nfour,4,4\n3,4,4\n3,5,5\n3,6,6\n"
+        "40,7,7,8\n41,7,7\n",
+        &f);
     check_column(&r, SP_COL_TIME, 6, WANT(0, 1, 2, 3, 3, 41));
     check_column(&r, SP_COL_SPEED, 6, WANT(2, 2, 2, 4, 5, 7));
     check_column(&r, SP_COL_GEAR, 6, WANT(1, 1, 3, 4, 5, 7));
@@ -243,7 +272,8 @@ static void repaired_and_counted(void **state)
     assert_int_equal(r.t.mark[1].row, 2);
     assert_string_equal(r.t.mark[1].text, "c");
     done(&r);
-    refused("time [s],speed [m/s]\n9000,1\n1,2\n2,2\n3,2\n4,2\n9001,1\n", &f, 1, 0, "time [s]", "more than half");
+    refused("time [s],speed [m/s]\n9000,1\n1,2\n2,2\n3,2\n4,2\n9001,1\n", &f, 1, 0, "time [s]",
+            "more than half");
     /* but a true gap stays, and the late row is the one that goes */
     r = read_text("time [s],speed [m/s]\n0,1\n1,2\n90000,3\n100,4\n90001,5\n", &f);
     check_column(&r, SP_COL_TIME, 4, WANT(0, 1, 90000, 90001));
@@ -268,21 +298,25 @@ static void blanks_held(void **state)
 static void mapped_logger(void **state)
 {
     (void)state;
-    struct sp_trace_format f = {.delimiter = ';', .decimal = ',', .skip_lines = 2, .units_row = true, .clock = true};
+    struct sp_trace_format f = {
+        .delimiter = ';', .decimal = ',', .skip_lines = 2, .units_row = true, .clock = true};
     f.column[SP_COL_TIME].heading = " Zeit ";
     f.column[SP_COL_SPEED].heading = "v GPS";
     f.column[SP_COL_COOLANT].heading = "T_W\xC3\xA4sser";
     f.column[SP_COL_COOLANT].unit = "degC";
-    struct reading r = read_text("Logger;7\r\n\"unclosed\r\nZeit;v GPS;T_W\xC3\x83\xC2\xA4sser;Bla;speed_x\r\nh:m:s;km/h;[K];V;\r\n"
-                                 "23:59:58,500;36,0;90;hm;x\r\n00:00:00,000;\"72,0\";90,5;;\r\n0:00:01;0;91;;\r\n", &f);
+    struct reading r = read_text(
+        "Logger;7\r\n\"unclosed\r\nZeit;v GPS;T_W\xC3\x83\xC2\xA4sser;Bla;speed_x\r\nh:m:s;km/h;[K];V;\r\n"
+        "23:59:58,500;36,0;90;hm;x\r\n00:00:00,000;\"72,0\";90,5;;\r\n0:00:01;0;91;;\r\n",
+        &f);
     check_column(&r, SP_COL_TIME, 3, WANT(0, 1.5, 2.5));
     check_column(&r, SP_COL_SPEED, 3, WANT(10, 20, 0));
     check_column(&r, SP_COL_COOLANT, 3, WANT(363.15, 363.65, 364.15));
     done(&r);
-    refused("a\nb\nZeit;v GPS;T_W\xE4sser\nh;km/h;\n23:59:58;1.000,5;90\n23:60:00;1;90\n24:00:00;1;90\n", &f, 2, 6, "Zeit",
-            "hh:mm:ss");
+    refused("a\nb\nZeit;v GPS;T_W\xE4sser\nh;km/h;\n23:59:58;1.000,5;90\n23:60:00;1;90\n24:00:00;1;90\n", &f,
+            2, 6, "Zeit", "hh:mm:ss");
     refused("a\nb\nZeit;vGPS;T_W\xE4sser\nh;km/h;\n1:00:00;1;90\n1:00:01;1;90\n", &f, 1, 3, "speed", "vGPS");
-    refused("a\nb\nZeit;v GPS;T_W\xE4sser\nh;km/h;\n1:00:00;1.000;90\n1:00:01;1;90\n", &f, 1, 5, "v GPS", "1.000");
+    refused("a\nb\nZeit;v GPS;T_W\xE4sser\nh;km/h;\n1:00:00;1.000;90\n1:00:01;1;90\n", &f, 1, 5, "v GPS",
+            "1.000");
     f.delimiter = ',';
     refused("a", &f, 1, 0, "decimal", "delimiter");
     struct sp_trace_format days = {.clock = true, .longest_gap = 9 * 3600.0};
@@ -300,11 +334,13 @@ static void mapping_rules(void **state)
     f.column[SP_COL_TIME].heading = "ENGINE_RUN_TIME";
     f.column[SP_COL_TIME].unit = "s";
     f.column[SP_COL_SPEED].heading = "Speed";
-    struct reading r = read_text("ENGINE_RUN_TIME (),Speed (kph),gear,other [x],note,\n0.0, 36,2,x,,1\n1.0, 72,3,,y,2,\n", &f);
+    struct reading r = read_text(
+        "ENGINE_RUN_TIME (),Speed (kph),gear,other [x],note,\n0.0, 36,2,x,,1\n1.0, 72,3,,y,2,\n", &f);
     check_column(&r, SP_COL_SPEED, 2, WANT(10, 20));
     check_column(&r, SP_COL_GEAR, 2, WANT(2, 3));
     done(&r);
-    refused("ENGINE_RUN_TIME (),Speed (kph),Speed (m/s)\n0,1,1\n1,1,1\n", &f, 1, 1, "Speed (m/s)", "second column");
+    refused("ENGINE_RUN_TIME (),Speed (kph),Speed (m/s)\n0,1,1\n1,1,1\n", &f, 1, 1, "Speed (m/s)",
+            "second column");
     f.column[SP_COL_WAKE].heading = "Speed";
     refused("ENGINE_RUN_TIME (),Speed (kph)\n0,1\n1,1\n", &f, 1, 1, "Speed (kph)", "mapped to both");
 }
@@ -387,7 +423,9 @@ static void format_refused(void **state)
 static void marks_sanitised(void **state)
 {
     (void)state;
-    struct reading r = read_text("time [s],speed [m/s],mark\n0,1,\"a\tb\nc\"\n1,1,\xE9t\xE9\n2,1,\"  \"\n3,1,\xE9t\xE9\n4,1,\xE9t\xE9\n", NULL);
+    struct reading r = read_text("time [s],speed [m/s],mark\n0,1,\"a\tb\nc\"\n1,1,\xE9t\xE9\n2,1,\"  "
+                                 "\"\n3,1,\xE9t\xE9\n4,1,\xE9t\xE9\n",
+                                 NULL);
     assert_int_equal(r.status, SP_OK);
     assert_int_equal(r.t.marks, 3);
     assert_string_equal(r.t.mark[0].text, "a b c");
@@ -404,7 +442,8 @@ static void floods(void **state)
     char *text = malloc(n + 200000), *p = text;
     assert_non_null(text);
     p += sprintf(p, "time [s],speed [m/s]\n");
-    for (int i = 0; i < 1000; i++) p += sprintf(p, "%d,x\n", i % 10);
+    for (int i = 0; i < 1000; i++)
+        p += sprintf(p, "%d,x\n", i % 10);
     struct reading r = read_text(text, NULL);
     assert_int_equal(r.c.count, SP_COMPLAINTS_MAX);
     assert_int_equal(r.c.dropped, 1000 + 99 - SP_COMPLAINTS_MAX);
@@ -437,7 +476,8 @@ static void files(void **state)
     FILE *out = fdopen(fd, "w");
     assert_non_null(out);
     fputs("time [s],speed [m/s],mark\n", out);
-    for (int i = 0; i < 40000; i++) fprintf(out, "%.2f,%.3f,m%d\n", i * 0.02, 20 + 0.001 * (i % 1000), i / 1000);
+    for (int i = 0; i < 40000; i++)
+        fprintf(out, "%.2f,%.3f,m%d\n", i * 0.02, 20 + 0.001 * (i % 1000), i / 1000);
     fclose(out);
     struct reading r = {0};
     r.status = sp_trace_read(units, name, NULL, &plain, &r.t, &r.c);
@@ -448,7 +488,8 @@ static void files(void **state)
         check_close(r.t.column[SP_COL_TIME][i], i * 0.02, 0, 1e-9);
         check_close(r.t.column[SP_COL_SPEED][i], 20 + 0.001 * (i % 1000), 1e-12, 0);
     }
-    for (size_t i = 0; i < 40; i++) assert_int_equal(r.t.mark[i].row, 1000 * i);
+    for (size_t i = 0; i < 40; i++)
+        assert_int_equal(r.t.mark[i].row, 1000 * i);
     done(&r);
     remove(name);
     static const char *bad[] = {"/nowhere/at/all.csv", "/", "/dev/zero"};
@@ -491,16 +532,16 @@ static int close_units(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(plain_file),          cmocka_unit_test(units_and_temperatures),
-        cmocka_unit_test(odd_but_right),       cmocka_unit_test(headings_refused),
-        cmocka_unit_test(cells_refused),       cmocka_unit_test(impossible_values_refused),
-        cmocka_unit_test(order_of_time),       cmocka_unit_test(repaired_and_counted),
-        cmocka_unit_test(blanks_held),         cmocka_unit_test(mapped_logger),
-        cmocka_unit_test(mapping_rules),       cmocka_unit_test(whole_seconds_and_doubles),
-        cmocka_unit_test(derived_speed),       cmocka_unit_test(derived_time),
-        cmocka_unit_test(format_refused),      cmocka_unit_test(marks_sanitised),
-        cmocka_unit_test(floods),              cmocka_unit_test(locale_does_not_matter),
-        cmocka_unit_test(files),               cmocka_unit_test(names_of_columns),
+        cmocka_unit_test(plain_file),     cmocka_unit_test(units_and_temperatures),
+        cmocka_unit_test(odd_but_right),  cmocka_unit_test(headings_refused),
+        cmocka_unit_test(cells_refused),  cmocka_unit_test(impossible_values_refused),
+        cmocka_unit_test(order_of_time),  cmocka_unit_test(repaired_and_counted),
+        cmocka_unit_test(blanks_held),    cmocka_unit_test(mapped_logger),
+        cmocka_unit_test(mapping_rules),  cmocka_unit_test(whole_seconds_and_doubles),
+        cmocka_unit_test(derived_speed),  cmocka_unit_test(derived_time),
+        cmocka_unit_test(format_refused), cmocka_unit_test(marks_sanitised),
+        cmocka_unit_test(floods),         cmocka_unit_test(locale_does_not_matter),
+        cmocka_unit_test(files),          cmocka_unit_test(names_of_columns),
     };
     return cmocka_run_group_tests(tests, open_units, close_units);
 }

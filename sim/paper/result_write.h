@@ -1,0 +1,42 @@
+/* Pieces all writers share: JSON, one member a line; wrapped text; numbers whatever the locale. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
+#ifndef SP_PAPER_RESULT_WRITE_H
+#define SP_PAPER_RESULT_WRITE_H
+
+#include "swirlpot/base.h"
+
+/* ---- JSON ------------------------------------------------------------------------------------------ */
+
+/* Zeroed but for `to`. Names are plain ASCII and need no escapes. */
+struct sp_writer {
+    FILE *to;
+    int depth;
+    bool inside; /* the object or array at hand has something in it already */
+};
+
+/* `name` NULL: a member of an array, or the document itself. */
+void sp_write_open(struct sp_writer *w, const char *name, char bracket); /* '{' or '[' */
+void sp_write_close(struct sp_writer *w, char bracket);                  /* '}' or ']' */
+void sp_write_number(struct sp_writer *w, const char *name, double x);   /* null when not finite */
+void sp_write_text(struct sp_writer *w, const char *name, const char *text); /* NULL: null */
+void sp_write_bool(struct sp_writer *w, const char *name, bool x);
+
+/* ---- numbers --------------------------------------------------------------------------------------- */
+
+enum { SP_NUMBER_ROOM = 40 };
+
+/* The shortest digits that read back as the same double, or so many digits; always with a point, -0 as 0. */
+void sp_number_shortest(char text[SP_NUMBER_ROOM], double x);
+void sp_number_digits(char text[SP_NUMBER_ROOM], double x, int digits);
+
+/* ---- text ------------------------------------------------------------------------------------------ */
+
+enum { SP_LINE_WIDTH = 80, SP_LABEL_WIDTH = 17 };
+
+/* A label and text after it, wrapped at blanks and indented to the label's width. "" for no label. */
+void sp_say(FILE *to, const char *label, const char *format, ...) __attribute__((format(printf, 3, 4)));
+
+/* Copies text with '?' for what a terminal should not get, cut to `columns` characters with "..". */
+void sp_plain(char *out, size_t size, const char *text, size_t columns);
+
+#endif
