@@ -6,6 +6,7 @@
 #include <string.h>
 
 static const double gas_constant = 8.314462618; /* J/mol K */
+static const double reseat = 5000.0;            /* Pa below its setting at which a cap shuts; common practice */
 static const double least_gas = 2.0e-5;         /* m3 left in a tank that was driven full */
 static const double smallest = 1.0e-5;          /* m3; a cell of no volume would be infinitely fast */
 
@@ -53,15 +54,16 @@ void sp_circuit_free(struct sp_circuit *c)
     memset(c, 0, sizeof *c);
 }
 
-/* What would have gone through the cap on the way to the starting temperature has gone. */
+/* What would have gone through the cap on the way to the starting temperature has gone; the cap has reseated
+ * a little below its setting. */
 static void vent_at_start(const struct sp_circuit *c, const struct sp_inputs *in, double *y)
 {
     const struct sp_tank *t = &c->design->tank;
     struct sp_tank_inputs ti;
     struct sp_tank_state s = sp_circuit_tank(c, in, y, &ti);
-    double most = ti.ambient + t->cap;
-    if (s.pressure <= most) return;
-    double gas = ti.system + t->compliance * t->cap - ti.liquid;
+    if (s.pressure <= ti.ambient + t->cap) return;
+    double most = ti.ambient + t->cap - reseat;
+    double gas = ti.system + t->compliance * (t->cap - reseat) - ti.liquid;
     if (gas < least_gas) {
         y[SP_Y_LOST] = least_gas - gas;
         gas = least_gas;

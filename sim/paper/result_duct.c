@@ -73,7 +73,7 @@ static void print_stations(const struct sp_duct_point *p, FILE *to)
 
 static void print_loss(const char *text, double pascal, double head, FILE *to)
 {
-    fprintf(to, "  %-32s%11.2f", text, tidy(pascal, 0.005));
+    fprintf(to, "  %-38s%11.2f", text, tidy(pascal, 0.005));
     if (head > 0.0) fprintf(to, "%11.1f %%\n", tidy(100.0 * pascal / head, 0.05));
     else fprintf(to, "%11s\n", "-");
 }
@@ -83,7 +83,7 @@ static void print_losses(const struct sp_duct_point *p, FILE *to)
     struct loss loss[LOSSES];
     double head = p->station[0].total_pressure - p->station[0].static_pressure, sum = 0.0;
     list_losses(&p->losses, loss);
-    fprintf(to, "\n  %-32s%11s%13s\n", "where each pascal goes", "Pa", "share of q");
+    fprintf(to, "\n  %-38s%11s%13s\n", "where each pascal goes", "Pa", "share of q");
     for (int i = 0; i < LOSSES; ++i) {
         sum += loss[i].pascal;
         if (loss[i].pascal != 0.0) print_loss(loss[i].text, loss[i].pascal, head, to);

@@ -14,6 +14,8 @@
 #include <string.h>
 
 int LLVMFuzzerTestOneInput(const uint8_t *data, size_t size);
+size_t LLVMFuzzerCustomMutator(uint8_t *data, size_t size, size_t room, unsigned seed);
+size_t LLVMFuzzerMutate(uint8_t *data, size_t size, size_t room);
 
 static struct sp_units *units;
 
@@ -145,4 +147,87 @@ int LLVMFuzzerTestOneInput(const uint8_t *data, size_t size)
     sp_complaints_free(&cautions);
     free(set);
     return 0;
+}
+
+/* ---- mutation that mostly keeps the text a JSON text ------------------------------------------------ */
+
+/* The n-th text in quotes, quotes included; false if there are fewer. */
+static bool literal(const uint8_t *data, size_t size, unsigned n, size_t *from, size_t *to)
+{
+    for (size_t i = 0; i < size; ++i) {
+        size_t start = i;
+        if (data[i] != '"') continue;
+        for (++i; i < size && data[i] != '"'; ++i)
+            if (data[i] == '\\') ++i;
+        if (i >= size) return false;
+        if (n-- == 0) {
+            *from = start;
+            *to = i + 1;
+            return true;
+        }
+    }
+    return false;
+}
+
+static size_t splice(uint8_t *data, size_t size, size_t room, size_t from, size_t to, const void *text,
+                     size_t length)
+{
+    if (size - (to - from) + length > room) return 0;
+    memmove(data + from + length, data + to, size - to);
+    memcpy(data + from, text, length);
+    return size - (to - from) + length;
+}
+
+/* One text in quotes gives way to another of the same file, or to one of these. */
+size_t LLVMFuzzerCustomMutator(uint8_t *data, size_t size, size_t room, unsigned seed)
+{
+    static const char *const pool[] = {"null",
+                                       "[]",
+                                       "{}",
+                                       "0",
+                                       "-1",
+                                       "1e300",
+                                       "\"none\"",
+                                       "\"0 m\"",
+                                       "\"1e-300 m\"",
+                                       "\"1e308 Pa\"",
+                                       "\"3 m\"",
+                                       "\"1e-9 m2\"",
+                                       "\"10 m2\"",
+                                       "\"0 Pa\"",
+                                       "\"1 mm\"",
+                                       "\"60 mm\"",
+                                       "\"0 K\"",
+                                       "\"100 l\"",
+                                       "\"1e-9 l\"",
+                                       "\"0 degC\"",
+                                       "\"99 degC\"",
+                                       "\"100 %\"",
+                                       "\"0.1 %\"",
+                                       "\"1 rpm\"",
+                                       "\"30000 rpm\"",
+                                       "\"3000 kW\"",
+                                       "\"0 kW\"",
+                                       "\"1e-9 kW\"",
+                                       "\"1000 kW/K\"",
+                                       "\"1e-9 W/K\"",
+                                       "\"1e-9 m3/s\"",
+                                       "\"100 m3/s\"",
+                                       "[[\"0 m3/s\", \"1 Pa\"], [\"1 m3/s\", \"0 Pa\"]]",
+                                       "true",
+                                       "1",
+                                       "2",
+                                       "\"static\"",
+                                       "\"water\"",
+                                       "\"table\""};
+    size_t from, to, other, end;
+    unsigned a = seed >> 4 & 0xff, b = seed >> 12 & 0xff;
+    if ((seed & 3) == 0 || !literal(data, size, a, &from, &to)) return LLVMFuzzerMutate(data, size, room);
+    if ((seed & 3) == 1 && literal(data, size, b, &other, &end) && end - other < 300) {
+        uint8_t copy[300];
+        memcpy(copy, data + other, end - other);
+        return splice(data, size, room, from, to, copy, end - other);
+    }
+    const char *text = pool[b % (sizeof pool / sizeof *pool)];
+    return splice(data, size, room, from, to, text, strlen(text));
 }

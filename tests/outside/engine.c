@@ -6,12 +6,20 @@
 
 static struct sp_engine two_litre(double friction)
 {
-    return (struct sp_engine){.displacement = 2.0e-3, .rated_power = 100e3, .rated_speed = 100.0,
-                              .idle_speed = 12.5, .heat_fraction = 0.65, .heat_exponent = 0.85, .idle_heat = NAN,
-                              .indicated_efficiency = 0.40, .heating_value = 42.6e6,
+    return (struct sp_engine){.displacement = 2.0e-3,
+                              .rated_power = 100e3,
+                              .rated_speed = 100.0,
+                              .idle_speed = 12.5,
+                              .heat_fraction = 0.65,
+                              .heat_exponent = 0.85,
+                              .idle_heat = NAN,
+                              .indicated_efficiency = 0.40,
+                              .heating_value = 42.6e6,
                               .friction_pressure = {friction, 0.0, 0.0},
                               .overrun_pressure = {0.97e5, 0.15e5 * 0.06, 0.05e5 * 0.0036},
-                              .overrun_share = 0.5, .gas_temperature = NAN, .gas_reference = NAN};
+                              .overrun_share = 0.5,
+                              .gas_temperature = NAN,
+                              .gas_reference = NAN};
 }
 
 /* Willans line P_f = (p_me + p_me0)/e V_d N/120 (N in 1/min), form of Guzzella & Onder, from memory; 2.0 l,
@@ -20,7 +28,9 @@ static struct sp_engine two_litre(double friction)
 static void willans_table(void **state)
 {
     (void)state;
-    static const struct { double rpm, brake, pme0, fuel, bsfc; } row[] = {
+    static const struct {
+        double rpm, brake, pme0, fuel, bsfc;
+    } row[] = {
         {750, 0.0, 1.6, 5.000, NAN},
         {2000, 2.0, 1.7, 30.833, 390.85},
         {3000, 11.0, 1.9, 161.25, 247.8},
@@ -92,8 +102,10 @@ static void idle_heat_is_plausible(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(willans_table),  cmocka_unit_test(idle_fuel),
-        cmocka_unit_test(barnes_moss),    cmocka_unit_test(heat_over_load),
+        cmocka_unit_test(willans_table),
+        cmocka_unit_test(idle_fuel),
+        cmocka_unit_test(barnes_moss),
+        cmocka_unit_test(heat_over_load),
         cmocka_unit_test(idle_heat_is_plausible),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

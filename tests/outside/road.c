@@ -8,8 +8,12 @@
 
 static struct sp_body test_car(void)
 {
-    return (struct sp_body){.mass = 1500.0, .frontal_area = 1.0, .drag_coefficient = 0.65, .rolling = 0.011,
-                            .rotating = 1.03, .driveline = 1.0};
+    return (struct sp_body){.mass = 1500.0,
+                            .frontal_area = 1.0,
+                            .drag_coefficient = 0.65,
+                            .rolling = 0.011,
+                            .rotating = 1.03,
+                            .driveline = 1.0};
 }
 
 static const double density = 1.2;
@@ -50,7 +54,8 @@ static void coast_down(void **state)
     check_close(integral(slowing_time, 120.0, 80.0), 37.613, 0.0, 6e-4);
     check_close(integral(slowing_distance, 120.0, 80.0), 1026.8, 0.0, 0.06);
     check_close(integral(slowing_time, 100.0, 60.0), 49.073, 0.0, 6e-4);
-    check_close(integral(slowing_time, 120.0, 0.0), 198.821, 0.0, 6e-4); /* same closed form, worked by hand */
+    check_close(integral(slowing_time, 120.0, 0.0), 198.821, 0.0,
+                6e-4); /* same closed form, worked by hand */
     double F0 = 161.80973, c = 0.39, m = 1545.0;
     double closed = m / sqrt(F0 * c) * (atan(120.0 / 3.6 * sqrt(c / F0)) - atan(80.0 / 3.6 * sqrt(c / F0)));
     check_close(integral(slowing_time, 120.0, 80.0), closed, 1e-7, 0.0);
@@ -81,24 +86,35 @@ static void dynamometer_table(void **state)
     check_close(sp_road_power(&b, force, v, 0.0), 7.30e3, 0.0, 6.0);
 }
 
-/* Towing up the Davis Dam grade at 40 mph (grade of SAE J2807): 4500 kg, CdA 3.6 m2, 1.10 kg/m3, rolling 0.010,
- * driveline 0.85, 0.75 of brake power to the coolant. Worked by hand: 3721 N, 66.5 kW at the wheels, 78.3 kW at the
- * crank, 58.7 kW of heat at 6.01 %; 74.3, 87.4 and 65.6 kW at 7 %. */
+/* Towing up the Davis Dam grade at 40 mph (grade of SAE J2807): 4500 kg, CdA 3.6 m2, 1.10 kg/m3, rolling
+ * 0.010, driveline 0.85, 0.75 of brake power to the coolant. Worked by hand: 3721 N, 66.5 kW at the
+ * wheels, 78.3 kW at the crank, 58.7 kW of heat at 6.01 %; 74.3, 87.4 and 65.6 kW at 7 %. */
 static void davis_dam(void **state)
 {
     (void)state;
-    struct sp_body b = {.mass = 4500.0, .frontal_area = 3.6, .drag_coefficient = 1.0, .rolling = 0.010,
-                        .rotating = 1.05, .driveline = 0.85};
-    const double grade[] = {0.0601, 0.07}, wheel[] = {66.5, 74.3}, crank[] = {78.3, 87.4}, heat[] = {58.7, 65.6};
+    struct sp_body b = {.mass = 4500.0,
+                        .frontal_area = 3.6,
+                        .drag_coefficient = 1.0,
+                        .rolling = 0.010,
+                        .rotating = 1.05,
+                        .driveline = 0.85};
+    const double grade[] = {0.0601, 0.07}, wheel[] = {66.5, 74.3}, crank[] = {78.3, 87.4},
+                 heat[] = {58.7, 65.6};
     double v = 40.0 * 0.44704;
     check_close(sp_road_force(&b, v, v, 1.10, grade[0], 0.0), 3721.0, 0.0, 1.0);
     for (int i = 0; i < 2; i++) {
         double force = sp_road_force(&b, v, v, 1.10, grade[i], 0.0), power = sp_road_power(&b, force, v, 0.0);
         check_close(force * v / 1e3, wheel[i], 0.0, 0.051);
         check_close(power / 1e3, crank[i], 0.0, 0.051);
-        struct sp_engine e = {.displacement = 3e-3, .rated_power = power, .rated_speed = 60.0, .idle_speed = 12.0,
-                              .heat_fraction = 0.75, .heat_exponent = 0.85, .idle_heat = NAN,
-                              .indicated_efficiency = 0.4, .friction_pressure = {1.6e5, 0.0, 0.0}};
+        struct sp_engine e = {.displacement = 3e-3,
+                              .rated_power = power,
+                              .rated_speed = 60.0,
+                              .idle_speed = 12.0,
+                              .heat_fraction = 0.75,
+                              .heat_exponent = 0.85,
+                              .idle_heat = NAN,
+                              .indicated_efficiency = 0.4,
+                              .friction_pressure = {1.6e5, 0.0, 0.0}};
         struct sp_complaints c = {0};
         struct sp_engine_law *law = sp_engine_law_build(&e, NULL, &c);
         struct sp_engine_row row = {power, 60.0, NAN, NAN};
@@ -111,8 +127,10 @@ static void davis_dam(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(coast_down), cmocka_unit_test(steady_power),
-        cmocka_unit_test(dynamometer_table), cmocka_unit_test(davis_dam),
+        cmocka_unit_test(coast_down),
+        cmocka_unit_test(steady_power),
+        cmocka_unit_test(dynamometer_table),
+        cmocka_unit_test(davis_dam),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -7,12 +7,22 @@
 
 static struct sp_engine sample(void)
 {
-    return (struct sp_engine){.displacement = 2.0e-3, .rated_power = 100e3, .rated_speed = 100.0,
-                              .idle_speed = 14.0, .heat_fraction = 0.6, .heat_exponent = 0.85, .idle_heat = NAN,
-                              .fuel_share = 0.3, .air_fuel_ratio = 14.7, .heating_value = 42.6e6,
-                              .indicated_efficiency = 0.40, .friction_pressure = {1.55e5, 0.0, 16.6},
-                              .overrun_pressure = {0.97e5, 900.0, 18.0}, .overrun_share = 0.4,
-                              .gas_temperature = 840.0, .gas_reference = 378.0};
+    return (struct sp_engine){.displacement = 2.0e-3,
+                              .rated_power = 100e3,
+                              .rated_speed = 100.0,
+                              .idle_speed = 14.0,
+                              .heat_fraction = 0.6,
+                              .heat_exponent = 0.85,
+                              .idle_heat = NAN,
+                              .fuel_share = 0.3,
+                              .air_fuel_ratio = 14.7,
+                              .heating_value = 42.6e6,
+                              .indicated_efficiency = 0.40,
+                              .friction_pressure = {1.55e5, 0.0, 16.6},
+                              .overrun_pressure = {0.97e5, 900.0, 18.0},
+                              .overrun_share = 0.4,
+                              .gas_temperature = 840.0,
+                              .gas_reference = 378.0};
 }
 
 static struct sp_engine_law *build(const struct sp_engine *e)
@@ -60,7 +70,8 @@ static void off_is_zero(void **state)
 static void no_jumps(void **state)
 {
     (void)state;
-    const double cells[] = {14, 0, 2e3, 14, 50e3, 20e3, 14, 100e3, 50e3, 100, 0, 9e3, 100, 50e3, 40e3, 100, 100e3, 70e3};
+    const double cells[] = {14,  0, 2e3, 14,  50e3, 20e3, 14,  100e3, 50e3,
+                            100, 0, 9e3, 100, 50e3, 40e3, 100, 100e3, 70e3};
     struct sp_engine e = sample();
     for (int variant = 0; variant < 4; variant++) {
         e.heat_law = variant & 1 ? SP_HEAT_TABLE : SP_HEAT_RATED;
@@ -158,8 +169,10 @@ static void table(void **state)
 static void bad_tables(void **state)
 {
     (void)state;
-    double hole[] = {20, 0, 1, 20, 10, 2, 50, 0, 3, 50, 20, 4}, twice[] = {20, 0, 1, 20, 0, 2, 50, 0, 3, 50, 10, 4};
-    double line[] = {20, 0, 1, 20, 10, 2, 20, 20, 3, 20, 30, 4}, below[] = {20, -5, 1, 20, 10, 2, 50, -5, 3, 50, 10, 4};
+    double hole[] = {20, 0, 1, 20, 10, 2, 50, 0, 3, 50, 20, 4},
+           twice[] = {20, 0, 1, 20, 0, 2, 50, 0, 3, 50, 10, 4};
+    double line[] = {20, 0, 1, 20, 10, 2, 20, 20, 3, 20, 30, 4},
+           below[] = {20, -5, 1, 20, 10, 2, 50, -5, 3, 50, 10, 4};
     double nan[] = {20, 0, 1, 20, 10, NAN, 50, 0, 3, 50, 10, 4};
     double *all[] = {hole, twice, line, below, nan};
     struct sp_engine e = sample();
@@ -177,7 +190,8 @@ static void flows(void **state)
     struct sp_engine e = sample();
     e.heat_law = SP_HEAT_FUEL;
     struct sp_engine_law *law = build(&e);
-    struct sp_engine_row row = {50e3, 50.0, 3e-3, NAN}, cut = {NAN, 50.0, 0.0, NAN}, blank = {50e3, 50.0, NAN, 0.04};
+    struct sp_engine_row row = {50e3, 50.0, 3e-3, NAN}, cut = {NAN, 50.0, 0.0, NAN},
+                         blank = {50e3, 50.0, NAN, 0.04};
     check_close(sp_engine_heat(law, &row).gas, 0.3 * 3e-3 * 42.6e6, 1e-12, 0.0);
     check_close(sp_engine_heat(law, &cut).gas, 0.0, 0.0, 0.0);
     check_close(sp_engine_heat(law, &cut).friction, 0.4 * sp_engine_motoring(&e, 50.0), 1e-12, 0.0);
@@ -241,10 +255,17 @@ static void assumed_speed(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(off_is_zero), cmocka_unit_test(no_jumps), cmocka_unit_test(slope_is_the_derivative),
-        cmocka_unit_test(overrun), cmocka_unit_test(given_idle_heat), cmocka_unit_test(table),
-        cmocka_unit_test(bad_tables), cmocka_unit_test(flows), cmocka_unit_test(unusable),
-        cmocka_unit_test(gas_factor), cmocka_unit_test(assumed_speed),
+        cmocka_unit_test(off_is_zero),
+        cmocka_unit_test(no_jumps),
+        cmocka_unit_test(slope_is_the_derivative),
+        cmocka_unit_test(overrun),
+        cmocka_unit_test(given_idle_heat),
+        cmocka_unit_test(table),
+        cmocka_unit_test(bad_tables),
+        cmocka_unit_test(flows),
+        cmocka_unit_test(unusable),
+        cmocka_unit_test(gas_factor),
+        cmocka_unit_test(assumed_speed),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -7,8 +7,14 @@ static double ratios[] = {12.0, 8.0, 5.0};
 
 static struct sp_body sample(void)
 {
-    return (struct sp_body){.mass = 1000.0, .frontal_area = 2.0, .drag_coefficient = 0.3, .rolling = 0.01,
-                            .rotating = 1.05, .driveline = 0.9, .wheel_radius = 0.3, .gears = {3, 1, ratios},
+    return (struct sp_body){.mass = 1000.0,
+                            .frontal_area = 2.0,
+                            .drag_coefficient = 0.3,
+                            .rolling = 0.01,
+                            .rotating = 1.05,
+                            .driveline = 0.9,
+                            .wheel_radius = 0.3,
+                            .gears = {3, 1, ratios},
                             .shift_speed = 90.0};
 }
 
