@@ -46,26 +46,33 @@ static double jacket_conductance(const struct sp_design *d, double flow, double 
     return e->conductance * ratio * sqrt(sqrt(m2 * m2 + s2 * s2));
 }
 
-enum sp_status sp_circuit_couple(const struct sp_circuit *c, const struct sp_inputs *in,
-                                 const struct sp_modes *modes, const struct sp_signals *s,
-                                 struct sp_guesses *guesses, struct sp_coupling *out)
+enum sp_status sp_circuit_split(const struct sp_circuit *c, const struct sp_inputs *in,
+                                const struct sp_modes *modes, const struct sp_signals *s,
+                                struct sp_guess *guess, struct sp_coupling *out)
 {
     const struct sp_design *d = c->design;
-    struct sp_duct_inputs air = duct_inputs(c, in, s);
-    enum sp_status status = sp_duct_solve_from(c->duct, &air, &guesses->duct, &out->duct);
-    if (status) return SP_NUMERICS;
     out->lift = sp_thermostat_lift(
         &d->thermostat, sp_thermostat_effective(&d->thermostat, modes->play, s->wax, modes->held));
     double speed = sp_pump_speed(d, in->in[SP_IN_ENGINE_SPEED], in->flags & SP_FLAG_ENGINE, in->flags & SP_FLAG_PUMP);
-    status = sp_loop_solve(&c->loop, speed, out->lift, s->jacket, s->core, &guesses->loop, &out->loop);
-    if (status) return status;
+    enum sp_status status = sp_loop_solve(&c->loop, speed, out->lift, s->jacket, s->core, guess, &out->loop);
     double rho = sp_coolant_density(&d->coolant.fluid, s->jacket);
     out->mass_pump = rho * out->loop.pump;
     out->mass_radiator = rho * out->loop.radiator;
     out->mass_bypass = rho * out->loop.bypass;
     out->mass_bleed = rho * out->loop.bleed;
-    out->jacket_conductance = jacket_conductance(d, out->loop.pump, s->jacket);
-    out->core_conductance = sp_core_coolant_conductance(&c->duct->core, &d->coolant.fluid, out->mass_radiator, s->core);
+    return status;
+}
+
+enum sp_status sp_circuit_couple(const struct sp_circuit *c, const struct sp_inputs *in,
+                                 const struct sp_modes *modes, const struct sp_signals *s,
+                                 struct sp_guesses *guesses, struct sp_coupling *out)
+{
+    const struct sp_coolant *fluid = &c->design->coolant.fluid;
+    struct sp_duct_inputs air = duct_inputs(c, in, s);
+    if (sp_duct_solve_from(c->duct, &air, &guesses->duct, &out->duct)) return SP_NUMERICS;
+    if (sp_circuit_split(c, in, modes, s, &guesses->loop, out)) return SP_NUMERICS;
+    out->jacket_conductance = jacket_conductance(c->design, out->loop.pump, s->jacket);
+    out->core_conductance = sp_core_coolant_conductance(&c->duct->core, fluid, out->mass_radiator, s->core);
     return SP_OK;
 }
 

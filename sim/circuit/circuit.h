@@ -9,9 +9,9 @@
 #define SP_CIRCUIT_CIRCUIT_H
 
 #include "circuit/duct_solve.h"
+#include "circuit/inputs.h"
 #include "circuit/loop.h"
 #include "circuit/state.h"
-#include "drive/schedule.h"
 #include "part/tank.h"
 #include "part/thermostat.h"
 
@@ -52,7 +52,12 @@ struct sp_guesses { struct sp_guess duct, loop; };
 
 void sp_circuit_signals(const struct sp_circuit *c, const double *y, struct sp_signals *out);
 
-/* SP_NUMERICS when a solver fails. */
+/* The coolant side alone: lift, flows and pressures. Fills only these of *out. */
+enum sp_status sp_circuit_split(const struct sp_circuit *c, const struct sp_inputs *in,
+                                const struct sp_modes *modes, const struct sp_signals *s,
+                                struct sp_guess *guess, struct sp_coupling *out);
+
+/* Both sides. SP_NUMERICS when a solver fails. */
 enum sp_status sp_circuit_couple(const struct sp_circuit *c, const struct sp_inputs *in,
                                  const struct sp_modes *modes, const struct sp_signals *s,
                                  struct sp_guesses *guesses, struct sp_coupling *out);

@@ -52,9 +52,11 @@ static int jacobian(double t, const double *y, struct sp_arrow *out, void *conte
 static int look(struct sp_run *r, double t, const double *y, struct sp_watched *out)
 {
     struct sp_inputs in;
-    struct sp_coupling k;
+    struct sp_signals s;
+    struct sp_coupling k; /* watches look at the coolant only */
     sp_schedule_at(r->schedule, r->segment, t, &in);
-    if (sp_run_couple(r, &in, y, &k)) return -1;
+    sp_circuit_signals(r->circuit, y, &s);
+    if (sp_circuit_split(r->circuit, &in, &r->modes, &s, &r->looking.loop, &k)) return -1;
     sp_watch(r->circuit, &in, &r->modes, y, &k, out);
     return 0;
 }

@@ -4,6 +4,7 @@
 
 #include "drive/integrate.h"
 #include "drive/measured.h"
+#include "drive/schedule.h"
 #include "drive/watch.h"
 
 struct sp_drive {

@@ -7,30 +7,8 @@
 #ifndef SP_DRIVE_SCHEDULE_H
 #define SP_DRIVE_SCHEDULE_H
 
+#include "circuit/inputs.h"
 #include "swirlpot/part.h"
-
-/* Continuous channels. */
-enum sp_channel_in {
-    SP_IN_SPEED,         /* m/s over the road */
-    SP_IN_AIR_SPEED,     /* m/s through the air: speed + wind */
-    SP_IN_WAKE,          /* share of dynamic pressure left */
-    SP_IN_AMBIENT,       /* K */
-    SP_IN_PRESSURE,      /* Pa */
-    SP_IN_HEAT_GAS,      /* W */
-    SP_IN_HEAT_FRICTION, /* W */
-    SP_IN_HEAT_SLOPE,    /* W/W: heat per further brake power */
-    SP_IN_ENGINE_SPEED,  /* rev/s */
-    SP_IN_POWER,         /* W brake */
-    SP_IN_MEASURED,      /* K, measured coolant; NAN when there is none */
-    SP_INPUTS
-};
-
-/* What holds over a whole segment. */
-enum {
-    SP_FLAG_ENGINE = 1, /* the engine runs */
-    SP_FLAG_PUMP = 2,   /* an electric pump is allowed to run (engine on, or within its run-on) */
-    SP_FLAG_FAN = 4
-}; /* a fan is allowed to run (engine on, or within its run-on) */
 
 struct sp_schedule {
     size_t rows;
@@ -58,11 +36,6 @@ enum sp_status sp_schedule_build(struct sp_units *u, const struct sp_design *d, 
 void sp_schedule_free(struct sp_schedule *s);
 
 /* Inputs at time t within segment k (rows k and k+1): linear. */
-struct sp_inputs {
-    double in[SP_INPUTS];
-    double distance;
-    unsigned flags;
-};
 void sp_schedule_at(const struct sp_schedule *s, size_t k, double t, struct sp_inputs *out);
 
 #endif

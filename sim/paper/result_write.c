@@ -111,14 +111,14 @@ static size_t columns_of(const char *text, size_t n)
     return columns;
 }
 
-static void wrap(FILE *to, const char *text, size_t at)
+static void wrap(FILE *to, const char *text, size_t at, size_t indent)
 {
     bool first = true;
     while (*text) {
         size_t n = strcspn(text, " "), columns = columns_of(text, n);
         if (!first && at + 1 + columns > SP_LINE_WIDTH) {
-            fprintf(to, "\n%*s", SP_LABEL_WIDTH, "");
-            at = SP_LABEL_WIDTH;
+            fprintf(to, "\n%*s", (int)indent, "");
+            at = indent;
             first = true;
         }
         if (!first) fputc(' ', to);
@@ -131,15 +131,16 @@ static void wrap(FILE *to, const char *text, size_t at)
     fputc('\n', to);
 }
 
-void sp_say(FILE *to, const char *label, const char *format, ...)
+void sp_say(FILE *to, int indent, const char *label, const char *format, ...)
 {
     char text[2000];
+    size_t length = strlen(label), left = (size_t)indent;
     va_list args;
     va_start(args, format);
     vsnprintf(text, sizeof text, format, args);
     va_end(args);
-    fprintf(to, "%-*s", SP_LABEL_WIDTH, label);
-    wrap(to, text, SP_LABEL_WIDTH);
+    fprintf(to, "%-*s", indent, label);
+    wrap(to, text, length > left ? length : left, left);
 }
 
 void sp_plain(char *out, size_t size, const char *text, size_t columns)

@@ -33,8 +33,9 @@ void sp_number_digits(char text[SP_NUMBER_ROOM], double x, int digits);
 
 enum { SP_LINE_WIDTH = 80, SP_LABEL_WIDTH = 17 };
 
-/* A label and text after it, wrapped at blanks and indented to the label's width. "" for no label. */
-void sp_say(FILE *to, const char *label, const char *format, ...) __attribute__((format(printf, 3, 4)));
+/* A label, then text wrapped at blanks; it begins, and goes on in further lines, at column `indent`. */
+void sp_say(FILE *to, int indent, const char *label, const char *format, ...)
+    __attribute__((format(printf, 4, 5)));
 
 /* Copies text with '?' for what a terminal should not get, cut to `columns` characters with "..". */
 void sp_plain(char *out, size_t size, const char *text, size_t columns);

@@ -1,0 +1,214 @@
+/* The verdict for a person. SPDX-License-Identifier: GPL-3.0-or-later */
+#include <math.h>
+#include <string.h>
+
+#include "result_words.h"
+#include "result_write.h"
+
+struct telling { const struct sp_report *report; bool exact; FILE *to; };
+
+/* One limit: its key, what it is on, where the drive came to and the room left. */
+struct judged { const char *key, *what; double limit, came_to, left; };
+
+enum { LIMITS = 4 };
+
+static void list_limits(const struct sp_report *r, struct judged out[LIMITS])
+{
+    const struct sp_limits *l = &r->design->limits;
+    const struct sp_result *s = r->result;
+    const struct judged all[LIMITS] = {
+        {"limits.coolant", "coolant", l->coolant, s->coolant.value, l->coolant - s->coolant.value},
+        {"limits.gauge", "the gauge", l->gauge, s->gauge.value, l->gauge - s->gauge.value},
+        {"limits.metal", "the metal", l->metal, s->metal.value, l->metal - s->metal.value},
+        {"limits.boil_margin", "boil margin", l->boil_margin, s->boil_margin.value,
+         s->boil_margin.value - l->boil_margin}};
+    memcpy(out, all, sizeof all);
+}
+
+/* ---- first line ------------------------------------------------------------------------------------ */
+
+static void say_headline(const struct telling *t)
+{
+    struct judged all[LIMITS];
+    const struct sp_result *out = t->report->result;
+    const char *verdict = out->survives ? "Survives" : "Overheats";
+    list_limits(t->report, all);
+    for (int i = 0; i < LIMITS; ++i) {
+        const struct judged *j = &all[i];
+        if (!out->limit || strcmp(out->limit, j->key)) continue;
+        struct sp_words left = sp_words_kelvin(j->left, t->exact), came = sp_words_kelvin(j->came_to, t->exact);
+        if (i < LIMITS - 1)
+            sp_say(t->to, 0, "", "%s: %s peaks at %s, %s %s its limit of %s.", verdict, j->what,
+                   sp_words_degrees(j->came_to, t->exact).text, left.text, j->left < 0.0 ? "over" : "under",
+                   sp_words_degrees(j->limit, t->exact).text);
+        else
+            sp_say(t->to, 0, "", "%s: coolant comes %s %s boiling, %s %s than asked for.", verdict, came.text,
+                   j->came_to < 0.0 ? "past" : "near", left.text, j->left < 0.0 ? "less" : "more");
+        return;
+    }
+    sp_say(t->to, 0, "", "%s.", verdict);
+}
+
+static void say_title(const struct telling *t)
+{
+    char title[400];
+    if (!t->report->design->title) return;
+    sp_plain(title, sizeof title, t->report->design->title, SP_LINE_WIDTH);
+    fprintf(t->to, "%s\n", title);
+}
+
+/* ---- temperatures ---------------------------------------------------------------------------------- */
+
+static void say_peak(const struct telling *t, const char *label, const struct sp_peak *p)
+{
+    sp_say(t->to, SP_LABEL_WIDTH, label, "%s %s", sp_words_degrees(p->value, t->exact).text,
+           sp_words_place(t->report->design, p, t->exact).text);
+}
+
+static void say_limits(const struct telling *t)
+{
+    static const char *const name[LIMITS] = {"coolant", "gauge", "metal", "boil margin"};
+    struct judged all[LIMITS];
+    const char *label = "Limits";
+    char missing[80] = "";
+    list_limits(t->report, all);
+    for (int i = 0; i < LIMITS; ++i) {
+        const struct judged *j = &all[i];
+        if (!isfinite(j->limit)) {
+            size_t used = strlen(missing);
+            snprintf(missing + used, sizeof missing - used, "%s%s", used ? ", " : "", name[i]);
+            continue;
+        }
+        struct sp_words limit = i == LIMITS - 1 ? sp_words_kelvin(j->limit, t->exact)
+                                                : sp_words_degrees(j->limit, t->exact);
+        bool binds = t->report->result->limit && !strcmp(t->report->result->limit, j->key);
+        sp_say(t->to, SP_LABEL_WIDTH, label, "%s %s: %s %s%s", name[i], limit.text,
+               sp_words_kelvin(j->left, t->exact).text, j->left < 0.0 ? "beyond it" : "left",
+               binds ? ", the one that binds" : "");
+        label = "";
+    }
+    if (*missing) sp_say(t->to, SP_LABEL_WIDTH, label, "none given for %s", missing);
+}
+
+static void say_boiling(const struct telling *t)
+{
+    const struct sp_peak *p = &t->report->result->boil_margin;
+    sp_say(t->to, SP_LABEL_WIDTH, "Boiling", "%s %s boiling at the worst, %s",
+           sp_words_kelvin(p->value, t->exact).text, p->value < 0.0 ? "past" : "short of",
+           sp_words_place(t->report->design, p, t->exact).text);
+    if (p->value >= 0.0) return;
+    sp_say(t->to, SP_LABEL_WIDTH, "", "Past boiling the heat balance of the liquid goes on: read such "
+           "temperatures as \"it boils\", not as degrees.");
+}
+
+static void say_temperatures(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    say_peak(t, "Coolant peak", &out->coolant);
+    sp_say(t->to, SP_LABEL_WIDTH, "", "at most %s over ambient", sp_words_kelvin(out->over_ambient, t->exact).text);
+    if (out->time_over_limit > 0.0)
+        sp_say(t->to, SP_LABEL_WIDTH, "", "over its limit for %s", sp_words_time(out->time_over_limit, t->exact).text);
+    say_peak(t, "Gauge peak", &out->gauge);
+    say_peak(t, "Metal peak", &out->metal);
+    say_limits(t);
+    say_boiling(t);
+    if (out->liquid_lost > 0.0)
+        sp_say(t->to, SP_LABEL_WIDTH, "Coolant lost", "%.2g l through the cap", out->liquid_lost * 1e3);
+}
+
+/* ---- sums ------------------------------------------------------------------------------------------ */
+
+static void say_fan(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    size_t times = 0;
+    for (size_t i = 0; i < out->events; ++i) times += out->event[i].kind == SP_EV_FAN_ON;
+    if (!t->report->design->duct.fan.fitted)
+        sp_say(t->to, SP_LABEL_WIDTH, "Fan", "none");
+    else if (!times)
+        sp_say(t->to, SP_LABEL_WIDTH, "Fan", "never ran");
+    else
+        sp_say(t->to, SP_LABEL_WIDTH, "Fan", "ran %zu time%s, %s in all, %s of electricity", times,
+               times == 1 ? "" : "s", sp_words_time(out->fan.on, t->exact).text,
+               sp_words_energy(out->fan.energy, t->exact).text);
+}
+
+static void say_heat(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    sp_say(t->to, SP_LABEL_WIDTH, "Heat", "%s in, %s out by the core, %s by skin, %s stored; ledger closes to %.1g",
+           sp_words_energy(out->ledger.in, t->exact).text, sp_words_energy(out->ledger.out_air, t->exact).text,
+           sp_words_energy(out->ledger.out_skin, t->exact).text, sp_words_energy(out->ledger.stored, t->exact).text,
+           fabs(out->ledger.error));
+}
+
+static void say_drag(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    double c = out->drag.mean_coefficient;
+    if (!isfinite(c)) {
+        sp_say(t->to, SP_LABEL_WIDTH, "Cooling drag", "undefined: the car never moves through the air");
+        return;
+    }
+    sp_say(t->to, SP_LABEL_WIDTH, "Cooling drag", "mean coefficient %.*f on %.3g m2, %s over the drive",
+           t->exact ? 6 : 4, c, t->report->design->body.frontal_area,
+           sp_words_energy(out->drag.energy, t->exact).text);
+}
+
+static void say_work(const struct telling *t)
+{
+    struct sp_work w = sp_drive_work(t->report->drive);
+    if (!w.from_road) return;
+    sp_say(t->to, SP_LABEL_WIDTH, "Work", "power comes from the road load: %s at the wheels = %s speed + %s height "
+           "+ %s drag + %s rolling + %s brakes", sp_words_energy(w.wheel, t->exact).text,
+           sp_words_energy(w.kinetic, t->exact).text, sp_words_energy(w.potential, t->exact).text,
+           sp_words_energy(w.drag, t->exact).text, sp_words_energy(w.rolling, t->exact).text,
+           sp_words_energy(w.brakes, t->exact).text);
+}
+
+static void say_measured(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    if (!isfinite(out->measured.rms)) return;
+    sp_say(t->to, SP_LABEL_WIDTH, "Measured", "gauge against the log: %.2f K rms; no model at all, a straight line "
+           "to the set point: %.2f K", out->measured.rms, out->measured.none_rms);
+    if (isfinite(out->measured.warmup_rms))
+        sp_say(t->to, SP_LABEL_WIDTH, "", "over the warm-up %.2f K; no model at all: %.2f K",
+               out->measured.warmup_rms, out->measured.none_warmup_rms);
+    sp_say(t->to, SP_LABEL_WIDTH, "", "85 degC after %s; in the log after %s",
+           sp_words_time(out->measured.time_to_85, t->exact).text,
+           sp_words_time(out->measured.measured_time_to_85, t->exact).text);
+}
+
+static void say_drive(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    sp_say(t->to, SP_LABEL_WIDTH, "Drive", "%s, %s", sp_words_time(out->duration, t->exact).text,
+           sp_words_distance(out->distance, t->exact).text);
+    if (t->report->design->thermostat.none)
+        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "none");
+    else if (out->time_above_band > 0.0)
+        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "fully open for %s: nothing left to regulate with",
+               sp_words_time(out->time_above_band, t->exact).text);
+    else
+        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "regulates all the way, never fully open");
+}
+
+void sp_report_text(const struct sp_report *r, bool exact, FILE *to)
+{
+    const struct telling t = {r, exact, to};
+    say_headline(&t);
+    say_title(&t);
+    fputc('\n', to);
+    say_temperatures(&t);
+    say_drive(&t);
+    say_fan(&t);
+    say_drag(&t);
+    say_heat(&t);
+    say_work(&t);
+    say_measured(&t);
+    sp_report_happenings(r, exact, to);
+    fputc('\n', to);
+    sp_say(to, 0, "", "See the cautions in README.md: a prediction is no substitute for a temperature sensor and "
+           "an alarm.");
+}
