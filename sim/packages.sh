@@ -11,7 +11,7 @@ set -u
 
 build="gcc libc6-dev make cmake libsundials-dev libcjson-dev libgsl-dev libudunits2-dev libcsv-dev"
 tests="libcmocka-dev clang libclang-rt-14-dev valgrind pkg-config
-       python3 python3-scipy python3-iapws python3-fluids"
+       locales python3 python3-scipy python3-iapws python3-fluids"
 lint="clang-tidy cppcheck"
 
 wanted=

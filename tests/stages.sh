@@ -85,16 +85,29 @@ hygiene() {
     done
 }
 
-# fuzz SECONDS: replays each target's corpus, then lets it search; two side by side.
+# fuzz SECONDS: replays each target's corpus, then lets the targets search, as many at a time as there are cores.
 fuzz() {
-    rm -rf "$out/fuzz-logs"
-    mkdir -p "$out/fuzz-logs"
+    seconds=$1 running=0
     for program in "$out"/fuzz/tests/fuzz_*; do
-        target=$(basename "$program")
-        target=${target#fuzz_}
+        target=${program##*/fuzz_}
         tally_script "replay $target" sh tests/fuzz/replay.sh "$program" "tests/fuzz/corpus/$target"
-        echo "$target"
-    done | tee "$out/fuzz-logs/replayed"
+    done
+    for program in "$out"/fuzz/tests/fuzz_*; do
+        target=${program##*/fuzz_}
+        mkdir -p "$out/search/$target"
+        {
+            sh tests/fuzz/search.sh "$program" "tests/fuzz/corpus/$target" "$seconds" "$out/search/$target"
+            echo $? >"$out/search/$target/status"
+        } >"$out/search/$target/log" 2>&1 </dev/null &
+        running=$((running + 1))
+        [ $((running % cores)) -ne 0 ] || wait
+    done
+    wait
+    for program in "$out"/fuzz/tests/fuzz_*; do
+        target=${program##*/fuzz_}
+        tally_script "search $target, $seconds s" sh -c 'cat "$1/log"; exit "$(cat "$1/status")"' - "$out/search/$target"
+        tail -n 1 "$tally_log" | sed 's/^/        /'
+    done
 }
 
 memcheck() { # memcheck LABEL STATUS ARGUMENTS...: the release build's command under valgrind

@@ -26,7 +26,7 @@ tally_sum() { sed -n "$1" "$tally_log" | awk '{ s += $1 } END { print s + 0 }'; 
 tally_cmocka() {
     label=$1
     shift
-    timeout 600 "$@" >"$tally_log" 2>&1 </dev/null
+    timeout "${TALLY_TIMEOUT:-600}" "$@" >"$tally_log" 2>&1 </dev/null
     status=$?
     p=$(tally_sum 's/^\[  PASSED  \] \([0-9]*\) test(s).*/\1/p')
     f=$(tally_sum 's/^\[  FAILED  \] \([0-9]*\) test(s).*/\1/p')

@@ -49,190 +49,16 @@ static int jacobian(double t, const double *y, struct sp_arrow *out, void *conte
     return 0;
 }
 
-static int look(struct sp_run *r, double t, const double *y, struct sp_watched *out)
-{
-    struct sp_inputs in;
-    struct sp_signals s;
-    struct sp_coupling k; /* watches look at the coolant only */
-    sp_schedule_at(r->schedule, r->segment, t, &in);
-    sp_circuit_signals(r->circuit, y, &s);
-    if (sp_circuit_split(r->circuit, &in, &r->modes, &s, &r->looking.loop, &k)) return -1;
-    sp_watch(r->circuit, &in, &r->modes, y, &k, out);
-    return 0;
-}
-
 static int watch(double t, const double *y, double *g, void *context)
 {
     struct sp_run *r = context;
-    if (look(r, t, y, &r->seen)) return -1;
+    if (sp_run_look(r, t, y, &r->seen)) return -1;
     r->seen_at = t;
     memcpy(g, r->seen.g, sizeof r->seen.g);
     return 0;
 }
 
-/* ---- events ------------------------------------------------------------------------------------------- */
-
-void sp_run_event(struct sp_run *r, enum sp_event_kind kind, double time, double coolant)
-{
-    struct sp_result *out = r->result;
-    if (out->events == r->event_room) {
-        size_t room = r->event_room ? 2 * r->event_room : 64;
-        struct sp_event *more = realloc(out->event, room * sizeof *more);
-        if (!more) {
-            r->lost_event = true;
-            return;
-        }
-        out->event = more;
-        r->event_room = room;
-    }
-    struct sp_inputs in;
-    sp_schedule_at(r->schedule, r->segment, time, &in);
-    out->event[out->events++] = (struct sp_event){kind, time, in.distance, coolant, r->schedule->step[r->segment],
-                                                  sp_schedule_mark(r->schedule, r->segment)};
-}
-
-static const double *now(const struct sp_run *r)
-{
-    return sp_integrator_state(r->integrator);
-}
-
-static void note(struct sp_run *r, enum sp_event_kind kind)
-{
-    if (kind != SP_EVENT_KINDS) sp_run_event(r, kind, r->time, now(r)[SP_Y_JACKET]);
-}
-
-/* Whether the controller lets the fan run now; its on-time and its events follow from this alone. */
-static void follow_fan(struct sp_run *r)
-{
-    const struct sp_fan *f = &r->drive->design->duct.fan;
-    bool allowed = f->fitted && (r->schedule->flags[r->segment] & SP_FLAG_FAN);
-    bool asked = f->law == SP_FAN_ALWAYS || (f->law == SP_FAN_SWITCHED && r->modes.fan_on) ||
-                 (f->law == SP_FAN_PROPORTIONAL && r->high[SP_W_FAN]);
-    bool runs = allowed && asked;
-    if (runs == r->fan_runs) return;
-    r->fan_runs = runs;
-    if (runs) r->fan_since = r->time;
-    else r->result->fan.on += r->time - r->fan_since;
-    note(r, runs ? SP_EV_FAN_ON : SP_EV_FAN_OFF);
-}
-
-/* A watch crossed. Returns true when the rates jump, so that the integrator must forget. */
-static bool crossed(struct sp_run *r, int w, bool up)
-{
-    r->high[w] = up;
-    note(r, up ? sp_watch_event[w].rise : sp_watch_event[w].fall);
-    switch (w) {
-    case SP_W_FAN:
-        if (r->drive->design->duct.fan.law != SP_FAN_SWITCHED) return false;
-        if (up == r->modes.fan_on) return false;
-        r->modes.fan_on = up;
-        return r->schedule->flags[r->segment] & SP_FLAG_FAN;
-    case SP_W_PLAY:
-    case SP_W_PLAY_SHUT:
-        sp_watch_turn_play(&r->drive->design->thermostat, now(r)[SP_Y_WAX], w == SP_W_PLAY_SHUT, &r->modes);
-        return false;
-    case SP_W_COOLANT:
-        if (up) r->over_since = r->time;
-        else r->result->time_over_limit += r->time - r->over_since;
-        return false;
-    case SP_W_FULL:
-        if (up) r->full_since = r->time;
-        else r->result->time_above_band += r->time - r->full_since;
-        return false;
-    default: return false;
-    }
-}
-
-/* After a jump of the inputs: a watch may stand on the other side without having crossed. */
-static bool look_again(struct sp_run *r, bool first)
-{
-    struct sp_watched seen;
-    if (look(r, r->time, now(r), &seen)) return false;
-    for (int w = 0; w < SP_WATCHES; ++w) {
-        bool up = seen.g[w] >= 0.0;
-        if (w == SP_W_PLAY || w == SP_W_PLAY_SHUT) r->high[w] = up;
-        else if (first ? up : up != r->high[w]) crossed(r, w, up);
-    }
-    r->seen_at = NAN;
-    return true;
-}
-
-/* ---- peaks and samples ---------------------------------------------------------------------------------- */
-
-static void track(struct sp_tracked *t, double value, double time)
-{
-    if (value > t->best) *t = (struct sp_tracked){value, time};
-}
-
-/* The top of the coolant's curve inside the last step, where its slope changes sign. */
-static void track_summit(struct sp_run *r, double from, double slope)
-{
-    double low = from, high = r->time;
-    if (!(r->slope_before > 0.0 && slope < 0.0)) return;
-    for (int i = 0; i < 40 && high - low > 1e-9 * high; ++i) {
-        double mid = 0.5 * (low + high);
-        if (!sp_integrator_look_back(r->integrator, mid, 1, r->scratch)) return;
-        if (r->scratch[SP_Y_JACKET] > 0.0) low = mid;
-        else high = mid;
-    }
-    if (sp_integrator_look_back(r->integrator, low, 0, r->scratch)) track(&r->coolant, r->scratch[SP_Y_JACKET], low);
-}
-
-static bool track_all(struct sp_run *r)
-{
-    const double *y = now(r);
-    double t = r->time;
-    struct sp_inputs in;
-    sp_schedule_at(r->schedule, r->segment, t, &in);
-    if (r->seen_at != t) {
-        if (look(r, t, y, &r->seen)) return false;
-        r->seen_at = t;
-    }
-    track(&r->coolant, y[SP_Y_JACKET], t);
-    track(&r->gauge, y[SP_Y_GAUGE] + r->drive->design->gauge.offset, t);
-    track(&r->metal, y[SP_Y_METAL], t);
-    track(&r->pressure, r->seen.tank_pressure, t);
-    track(&r->margin, -r->seen.boil_margin, t);
-    track(&r->over_ambient, y[SP_Y_JACKET] - in.in[SP_IN_AMBIENT], t);
-    return true;
-}
-
-static enum sp_status give_sample(struct sp_run *r, double t, const double *y)
-{
-    struct sp_sample sample;
-    enum sp_status status = sp_run_sample(r, r->segment, t, y, &sample);
-    if (status) return status;
-    ++r->samples;
-    double logged = sample.value[SP_CH_MEASURED];
-    if (isfinite(logged) && !sp_measured_add(&r->measured, t, logged, sample.value[SP_CH_GAUGE])) return SP_NUMERICS;
-    return !r->sink || r->sink->row(r->sink->context, &sample) ? SP_OK : SP_INPUT;
-}
-
-/* All samples due up to the time reached; times are multiples of the interval, never sums. */
-static enum sp_status sample_step(struct sp_run *r)
-{
-    if (!r->sink && !r->schedule->measured) return SP_OK;
-    for (;;) {
-        double due = (double)r->samples * r->interval;
-        if (due > r->time) return SP_OK;
-        if (!sp_integrator_look_back(r->integrator, due, 0, r->before)) return SP_NUMERICS;
-        enum sp_status status = give_sample(r, due, r->before);
-        if (status) return status;
-    }
-}
-
 /* ---- stepping ------------------------------------------------------------------------------------------- */
-
-static enum sp_status after_step(struct sp_run *r, double from)
-{
-    enum sp_status status = sample_step(r);
-    if (status) return status;
-    if (!sp_integrator_look_back(r->integrator, r->time, 1, r->scratch)) return SP_NUMERICS;
-    double slope = r->scratch[SP_Y_JACKET];
-    track_summit(r, from, slope);
-    r->slope_before = slope;
-    return track_all(r) ? SP_OK : SP_NUMERICS;
-}
 
 static bool restart(struct sp_run *r)
 {
@@ -240,18 +66,6 @@ static bool restart(struct sp_run *r)
     r->slope_before = 0.0;
     r->seen_at = NAN;
     return sp_integrator_restart(r->integrator, r->time);
-}
-
-/* Handles what crossed, all at one instant. */
-static bool take_crossings(struct sp_run *r, const int *sign)
-{
-    bool jump = false;
-    ++r->result->work.roots;
-    for (int w = 0; w < SP_WATCHES; ++w)
-        if (sign[w]) jump = crossed(r, w, sign[w] > 0) || jump;
-    r->seen_at = NAN;
-    follow_fan(r);
-    return !jump || restart(r);
 }
 
 static enum sp_status run_segment(struct sp_run *r)
@@ -262,21 +76,12 @@ static enum sp_status run_segment(struct sp_run *r)
         double from = r->time;
         enum sp_advance how = sp_integrator_step(r->integrator, end, &r->time, sign);
         if (how == SP_ADV_FAILED) return SP_NUMERICS;
-        enum sp_status status = after_step(r, from);
+        enum sp_status status = sp_run_after_step(r, from);
         if (status) return status;
-        if (how == SP_ADV_CROSSED && !take_crossings(r, sign)) return SP_NUMERICS;
+        if (how == SP_ADV_CROSSED && sp_run_take_crossings(r, sign) && !restart(r)) return SP_NUMERICS;
         if (how == SP_ADV_END) r->time = end;
     }
     return SP_OK;
-}
-
-static void announce(struct sp_run *r, size_t from)
-{
-    const struct sp_schedule *s = r->schedule;
-    size_t to = r->segment;
-    if (from == to || s->step[from] != s->step[to]) note(r, SP_EV_STEP);
-    bool was = from != to && (s->flags[from] & SP_FLAG_ENGINE), is = s->flags[to] & SP_FLAG_ENGINE;
-    if (from == to ? is : was != is) note(r, is ? SP_EV_ENGINE_STARTS : SP_EV_ENGINE_STOPS);
 }
 
 static enum sp_status run_all(struct sp_run *r)
@@ -288,9 +93,9 @@ static enum sp_status run_all(struct sp_run *r)
         bool jump = last == SIZE_MAX || last + 1 != k || s->flags[last] != s->flags[k];
         r->segment = k;
         if (jump) {
-            announce(r, last == SIZE_MAX ? k : last);
-            if (!look_again(r, last == SIZE_MAX) || !track_all(r)) return SP_NUMERICS;
-            follow_fan(r);
+            sp_run_announce(r, last == SIZE_MAX ? k : last);
+            if (!sp_run_look_again(r, last == SIZE_MAX) || !sp_run_track(r)) return SP_NUMERICS;
+            sp_run_follow_fan(r);
             if (last != SIZE_MAX && !restart(r)) return SP_NUMERICS;
         }
         enum sp_status status = run_segment(r);
@@ -300,7 +105,7 @@ static enum sp_status run_all(struct sp_run *r)
     /* The last row is always there, also off the grid of samples. */
     double ended = s->time[s->rows - 1];
     if (!r->sink || (r->samples && (double)(r->samples - 1) * r->interval >= ended)) return SP_OK;
-    return give_sample(r, ended, now(r));
+    return sp_run_give_sample(r, ended, sp_integrator_state(r->integrator));
 }
 
 /* ---- opening and closing ----------------------------------------------------------------------------------- */
@@ -328,10 +133,10 @@ static bool open_run(struct sp_run *r, double tolerance, double *start)
     r->coolant.best = r->gauge.best = r->metal.best = r->margin.best = nothing;
     r->pressure.best = r->over_ambient.best = nothing;
     r->seen_at = NAN;
-    r->modes.play = SP_PLAY_OPENING;
     struct sp_inputs in;
     sp_schedule_at(r->schedule, 0, r->schedule->time[0], &in);
     sp_circuit_start(r->circuit, &in, start);
+    r->modes = (struct sp_modes){.play = SP_PLAY_HELD, .held = start[SP_Y_WAX]}; /* as if it had come up to here */
     set_tolerances(r, tolerance, start, r->absolute);
     struct sp_problem p = {r, *l, SP_WATCHES, rates, jacobian, watch};
     r->integrator = sp_integrator_open(&p, 0.0, start, tolerance, r->absolute);

@@ -47,14 +47,40 @@ struct sp_run {
 /* Solves the coupling at a looked-at state. */
 enum sp_status sp_run_couple(struct sp_run *r, const struct sp_inputs *in, const double *y, struct sp_coupling *k);
 
+/* ---- events: run_events.c ---- */
+
 /* Records an event at `time`. */
 void sp_run_event(struct sp_run *r, enum sp_event_kind kind, double time, double coolant);
 
-/* Mark that holds in segment k, or NULL. */
-const char *sp_schedule_mark(const struct sp_schedule *s, size_t k);
+/* Handles what crossed, all at one instant. True when the rates jump, so that the integrator must forget. */
+bool sp_run_take_crossings(struct sp_run *r, const int *sign);
+
+/* After a jump of the inputs: a watch may stand on the other side without having crossed. */
+bool sp_run_look_again(struct sp_run *r, bool first);
+
+/* Whether the controller lets the fan run now; its on-time and its events follow from this alone. */
+void sp_run_follow_fan(struct sp_run *r);
+
+/* Step and engine events on entering r->segment, having driven segment `from` before. */
+void sp_run_announce(struct sp_run *r, size_t from);
+
+/* ---- peaks and samples: run_track.c, sample.c ---- */
+
+/* The watches at time t with state y. 0, or -1 when the coolant split cannot be solved. */
+int sp_run_look(struct sp_run *r, double t, const double *y, struct sp_watched *out);
+
+/* Peaks at the time reached. */
+bool sp_run_track(struct sp_run *r);
+
+/* Samples and peaks after a step that began at `from`. */
+enum sp_status sp_run_after_step(struct sp_run *r, double from);
+
+enum sp_status sp_run_give_sample(struct sp_run *r, double t, const double *y);
 
 /* A sample of everything at time t with state y, in segment k. */
 enum sp_status sp_run_sample(struct sp_run *r, size_t k, double t, const double *y, struct sp_sample *out);
+
+/* ---- verdict.c ---- */
 
 /* Closes the books: ledger, margins, verdict. SP_NUMERICS when the ledger does not close. */
 enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_complaints *complaints);

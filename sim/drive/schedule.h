@@ -38,4 +38,10 @@ void sp_schedule_free(struct sp_schedule *s);
 /* Inputs at time t within segment k (rows k and k+1): linear. */
 void sp_schedule_at(const struct sp_schedule *s, size_t k, double t, struct sp_inputs *out);
 
+/* The row whose segment holds the time: of two rows at one time the later. */
+size_t sp_schedule_row(const struct sp_schedule *s, double time);
+
+/* Mark that holds in segment k, or NULL. */
+const char *sp_schedule_mark(const struct sp_schedule *s, size_t k);
+
 #endif

@@ -6,28 +6,9 @@
 
 static const double ledger_tolerance = 1e-4;
 
-static size_t row_before(const struct sp_schedule *s, double time)
-{
-    size_t low = 0, high = s->rows - 1;
-    while (high - low > 1) {
-        size_t mid = low + (high - low) / 2;
-        if (s->time[mid] < time || (s->time[mid] == time && s->time[mid + 1] > time)) low = mid;
-        else high = mid;
-    }
-    return low;
-}
-
-const char *sp_schedule_mark(const struct sp_schedule *s, size_t k)
-{
-    const char *text = NULL;
-    for (size_t i = 0; i < s->marks && s->mark[i].row <= k; ++i)
-        text = s->step[s->mark[i].row] == s->step[k] ? s->mark[i].text : NULL;
-    return text;
-}
-
 static struct sp_peak place(const struct sp_run *r, const struct sp_tracked *t)
 {
-    size_t k = row_before(r->schedule, t->time);
+    size_t k = sp_schedule_row(r->schedule, t->time);
     struct sp_inputs in;
     sp_schedule_at(r->schedule, k, t->time, &in);
     return (struct sp_peak){t->best, t->time, in.distance, r->schedule->step[k], sp_schedule_mark(r->schedule, k)};

@@ -379,6 +379,13 @@ static void work_adds_up(void **state)
         assert_true(d.s.work.wheel > 1e5 && d.s.work.brakes > 1e4);
         check_close(d.s.work.wheel, spent, 1e-3, 0.0);
         assert_false(cautioned(&d, "road load"));
+        double wheel = 0.0; /* what the power in the schedule gives at the wheels, or takes from them */
+        for (size_t k = 0; k + 1 < d.s.rows; k++)
+            for (size_t j = k; j < k + 2; j++) {
+                double p = d.s.channel[SP_IN_POWER][j];
+                wheel += 0.5 * (p < 0.0 ? p / 0.9 : p * 0.9) * (d.s.time[k + 1] - d.s.time[k]);
+            }
+        check_close(d.s.work.wheel, wheel, 1e-9, 0.0);
         /* the drag's share, by itself: 0.39 v^3 */
         double drag = 0.0;
         for (double x = 0.0; x < t; x += 0.001)
@@ -386,6 +393,25 @@ static void work_adds_up(void **state)
         if (!(variant & 1)) check_close(d.s.work.drag, 2.0 * drag, 2e-3, 0.0);
         end(&d);
     }
+}
+
+/* From rest to 30 m/s: 1.03 * 1500 kg * 450 m2/s2. */
+static void kinetic_energy(void **state)
+{
+    (void)state;
+    struct drive d;
+    road_load(&d);
+    FILE *f = add_trace(&d, "time [s],speed [m/s]");
+    for (int i = 0; i <= 100; i++)
+        fprintf(f, "%.17g,%.17g\n", 0.1 * i, 0.3 * i);
+    fclose(f);
+    build(&d);
+    check_close(d.s.work.kinetic, 695250.0, 1e-12, 0.0);
+    check_close(d.s.work.rolling, 161.809725 * 150.0, 1e-9, 0.0);
+    check_close(d.s.work.drag, 0.39 * 27.0 / 4.0 * 1e4, 1e-9, 0.0);
+    check_close(d.s.work.brakes, 0.0, 0.0, 1e-6);
+    check_close(at(&d.s, SP_IN_POWER, 5.0), 15.0 * (4635.0 + 161.809725 + 0.39 * 225.0), 1e-9, 0.0);
+    end(&d);
 }
 
 /* Rows so far apart that the sums cannot agree. */
@@ -427,8 +453,7 @@ static void slopes(void **state)
     check_close(power[1], 21.04e3, 1e-3, 0.0);
 }
 
-/* ---- air ------------------------------------------------------------------------------------------------
- */
+/* ---- air -------------------------------------------------------------------------------------- */
 
 /* US Standard Atmosphere 1976: 101325 Pa at 0 m, 89876 Pa at 1000 m, 95461 Pa at 500 m. */
 static void pressure_follows_altitude(void **state)
@@ -468,8 +493,7 @@ static void ambient_and_wake(void **state)
     end(&d);
 }
 
-/* ---- stops ------------------------------------------------------------------------------------------------
- */
+/* ---- stops ------------------------------------------------------------------------------------ */
 
 /* Runs to 10 s, off from 10 to 40 s, runs to 60 s, off to 63 s, runs to 70 s, then a soak of 60 s. */
 static void run_on(void **state)
@@ -532,6 +556,7 @@ static void run_on_edges(void **state)
     build(&d);
     assert_int_equal(flags(&d.s, 1.0), 0);
     assert_int_equal(flags(&d.s, 35.0), SP_FLAG_ENGINE | SP_FLAG_PUMP | SP_FLAG_FAN);
+    assert_int_equal(flags(&d.s, 40.1), SP_FLAG_FAN);
     assert_int_equal(flags(&d.s, 59.9), SP_FLAG_FAN);
     assert_int_equal(flags(&d.s, 60.1), 0);
     check_close(d.s.time[d.s.rows - 1], 100.0, 1e-14, 0.0);
@@ -647,6 +672,26 @@ static void coarse_rows_stay(void **state)
     end(&b);
 }
 
+/* Fine rows that end in a long straight one do not take it into their means. */
+static void long_segments_stay(void **state)
+{
+    (void)state;
+    struct drive d;
+    begin(&d);
+    d.design.solver.merge = 0.5;
+    add_text(&d, "time [s],speed [m/s],power [W],engine_speed "
+                 "[rev/s]\n0,10,0,30\n0.1,14,0,30\n0.2,10,0,30\n0.3,12,0,30\n"
+                 "5,50,0,30\n9,20,0,30");
+    build(&d);
+    check_close(d.s.distance[d.s.rows - 1], 1.2 + 1.2 + 1.1 + 4.7 * 31.0 + 4.0 * 35.0, 1e-12, 0.0);
+    assert_int_equal(d.s.rows, 4);
+    check_close(d.s.time[1], 0.3, 0.0, 1e-12);
+    check_close(at(&d.s, SP_IN_SPEED, 5.0), 50.0, 1e-12, 0.0);
+    check_close(at(&d.s, SP_IN_SPEED, 9.0), 20.0, 1e-12, 0.0);
+    check_close(d.s.channel[SP_IN_SPEED][1], 12.0, 0.01, 0.0);
+    end(&d);
+}
+
 static void straight_rows_go(void **state)
 {
     (void)state;
@@ -668,7 +713,7 @@ static void straight_rows_go(void **state)
     end(&d);
 }
 
-/* Measured coolant that comes and goes is not smeared over the rest, nor lost. */
+/* 50 Hz with cuts and full load, merged to 1 s: heat, friction and work stay. */
 static void energy_of_real_heat(void **state)
 {
     (void)state;
@@ -840,6 +885,7 @@ int main(void)
         cmocka_unit_test(gears_and_assumptions),
         cmocka_unit_test(hold_by_road_load),
         cmocka_unit_test(work_adds_up),
+        cmocka_unit_test(kinetic_energy),
         cmocka_unit_test(work_does_not_add_up),
         cmocka_unit_test(slopes),
         cmocka_unit_test(pressure_follows_altitude),
@@ -849,6 +895,7 @@ int main(void)
         cmocka_unit_test(merging_keeps_integrals),
         cmocka_unit_test(merging_merges),
         cmocka_unit_test(coarse_rows_stay),
+        cmocka_unit_test(long_segments_stay),
         cmocka_unit_test(straight_rows_go),
         cmocka_unit_test(energy_of_real_heat),
         cmocka_unit_test(complaints),
