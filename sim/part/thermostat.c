@@ -5,6 +5,7 @@
 
 double sp_thermostat_effective(const struct sp_thermostat *t, enum sp_play play, double wax, double held)
 {
+    if (!(t->hysteresis > 0.0)) return wax;
     switch (play) {
     case SP_PLAY_OPENING: return wax;
     case SP_PLAY_SHUTTING: return wax + t->hysteresis;
