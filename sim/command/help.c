@@ -34,7 +34,7 @@ void sp_help_verb(const struct sp_verb *verb)
         char form[60];
         if (!strchr(verb->options, o->letter) && o->letter != 'h') continue;
         snprintf(form, sizeof form, "--%s%s%s", o->name, o->argument ? " " : "", o->argument ? o->argument : "");
-        printf("  %c%c%c %-22s %s\n", o->shorthand ? '-' : ' ', o->shorthand ? o->letter : ' ',
+        printf("  %c%c%c %-23s %s\n", o->shorthand ? '-' : ' ', o->shorthand ? o->letter : ' ',
                o->shorthand ? ',' : ' ', form, o->meaning);
     }
     print_status();

@@ -1,11 +1,13 @@
 /* The command: what belongs to the process is set here, the rest is a verb's.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include <errno.h>
+#include <fcntl.h>
 #include <gsl/gsl_errno.h>
 #include <locale.h>
 #include <stdlib.h>
 #include <string.h>
 #include <udunits2.h>
+#include <unistd.h>
 
 #include "verbs.h"
 
@@ -19,9 +21,10 @@ static enum sp_status unknown_verb(const char *word)
     char expected[120];
     for (size_t i = 0; i < VERBS; ++i) known[i] = verb[i]->name;
     const char *near = sp_nearest(word, known, VERBS);
+    if (*word == '-') return sp_usage_fault(word, "an unknown option", "--help, --version, or a verb and its options");
     snprintf(expected, sizeof expected, "run, duct, show or new%s%s%s", near ? "; nearest is '" : "",
              near ? near : "", near ? "'" : "");
-    return sp_usage_fault(word, *word == '-' ? "an unknown option" : "an unknown verb", expected);
+    return sp_usage_fault(word, "an unknown verb", expected);
 }
 
 static enum sp_status run_verb(const struct sp_verb *v, int argc, char **argv)
@@ -42,7 +45,7 @@ static enum sp_status run_verb(const struct sp_verb *v, int argc, char **argv)
 
 static enum sp_status dispatch(int argc, char **argv)
 {
-    if (argc < 2) return sp_usage_fault("swirlpot", "no verb", "run, duct, show or new");
+    if (argc < 2) return sp_usage_fault(NULL, "no verb", "run, duct, show or new");
     const char *word = argv[1];
     bool version = !strcmp(word, "--version");
     if (version || !strcmp(word, "--help") || !strcmp(word, "-h")) {
@@ -67,8 +70,17 @@ static enum sp_status close_output(enum sp_status status)
     return SP_INPUT;
 }
 
+/* A file opened while a standard stream is closed would take its place, and what is printed would end up in
+ * it. Writing to a closed output must fail, so that it is opened for reading. */
+static void hold_standard_streams(void)
+{
+    for (int fd = STDIN_FILENO; fd <= STDERR_FILENO; ++fd)
+        if (fcntl(fd, F_GETFD) == -1) (void)!open("/dev/null", fd == STDERR_FILENO ? O_WRONLY : O_RDONLY);
+}
+
 int main(int argc, char **argv)
 {
+    hold_standard_streams();
     setlocale(LC_NUMERIC, "C");
     gsl_set_error_handler_off();
     ut_set_error_message_handler(ut_ignore);

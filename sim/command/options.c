@@ -7,17 +7,17 @@
 #include <string.h>
 
 static const struct sp_option option[] = {
-    {'s', false, "set", "PATH=VALUE", true, "override a key of the case or car, as duct.exit.area=\"600 cm2\""},
-    {'o', true, "output", "DIR", false, "write result.json, series.csv and events.csv into DIR"},
-    {'e', false, "every", "TIME", false, "time between rows of series.csv; default \"1 s\""},
+    {'s', false, "set", "PATH=VALUE", true, "override a key: --set duct.exit.area=\"600 cm2\""},
+    {'o', true, "output", "DIR", false, "write result.json, series.csv, events.csv"},
+    {'e', false, "every", "TIME", false, "time between rows of series.csv; else \"1 s\""},
     {'x', false, "exact", NULL, false, "more digits instead of whole degrees"},
-    {'v', false, "speed", "SPEED", true, "speed over the road; may be given several times"},
-    {'q', false, "heat", "POWER", false, "heat given to the air in the core; without it the core is cold"},
-    {'f', false, "fan", "on|off", false, "run the fan at its rated speed; default off"},
+    {'v', false, "speed", "SPEED", true, "speed over the road; may stand several times"},
+    {'q', false, "heat", "POWER", false, "heat given to the air; without it: cold core"},
+    {'f', false, "fan", "on|off", false, "fan at its rated speed, or off as by default"},
     {'m', false, "mass", "MASS", false, "mass of the car with driver and fuel"},
     {'d', false, "displacement", "VOLUME", false, "swept volume of the engine"},
     {'p', false, "power", "POWER", false, "rated power of the engine"},
-    {'j', false, "json", NULL, false, "one JSON document on standard output instead of text"},
+    {'j', false, "json", NULL, false, "one JSON document instead of text"},
     {'h', true, "help", NULL, false, "this help"},
 };
 
@@ -174,6 +174,17 @@ static size_t offer(const struct sp_verb *verb, struct option out[OPTIONS + 1], 
     return count;
 }
 
+/* What getopt_long would not take: `word` as it stands, optopt as it left it. */
+static bool refuse(const struct sp_verb *verb, int got, const char *word, const char *last)
+{
+    const char letter[3] = {'-', (char)optopt, '\0'};
+    bool by_name = !strncmp(last, "--", 2);
+    if (got == ':') sp_usage_fault(last, "nothing after it", "a value");
+    else if (optopt && by_name && by_letter(optopt)) sp_usage_fault(last, "a value", "none");
+    else return unknown_option(verb, optopt ? letter : word);
+    return false;
+}
+
 static bool read_options(const struct sp_verb *verb, int argc, char **argv, struct sp_arguments *out)
 {
     struct option offered[OPTIONS + 1];
@@ -185,12 +196,7 @@ static bool read_options(const struct sp_verb *verb, int argc, char **argv, stru
     while ((got = getopt_long(argc, argv, letters, offered, NULL)) != -1) {
         bool apart = optarg && optarg == argv[optind - 1];
         const char *word = argv[optind - (apart ? 2 : 1)];
-        char letter[3] = {'-', (char)optopt, '\0'};
-        if (got == ':') {
-            sp_usage_fault(argv[optind - 1], "nothing after it", "a value");
-            return false;
-        }
-        if (got == '?') return unknown_option(verb, optopt && strncmp(argv[optind - 1], "--", 2) ? letter : word);
+        if (got == ':' || got == '?') return refuse(verb, got, word, argv[optind - 1]);
         if (!written_out(word, by_letter(got)->name)) return unknown_option(verb, word);
         if (!keep(out, got, optarg, word)) return false;
     }

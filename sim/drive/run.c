@@ -54,7 +54,9 @@ static int watch(double t, const double *y, double *g, void *context)
     struct sp_run *r = context;
     if (sp_run_look(r, t, y, &r->seen)) return -1;
     r->seen_at = t;
-    memcpy(g, r->seen.g, sizeof r->seen.g);
+    /* Slow temperatures can stand exactly at nil over many clock ticks, which the root finder takes for an
+     * endless crossing: nil counts as not yet crossed. */
+    for (int w = 0; w < SP_WATCHES; ++w) g[w] = r->seen.g[w] != 0.0 ? r->seen.g[w] : (r->high[w] ? 1e-300 : -1e-300);
     return 0;
 }
 

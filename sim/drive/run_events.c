@@ -59,6 +59,8 @@ static bool crossed(struct sp_run *r, int w, bool up)
     case SP_W_PLAY_SHUT:
         sp_watch_turn_play(&r->drive->design->thermostat, sp_integrator_state(r->integrator)[SP_Y_WAX],
                            w == SP_W_PLAY_SHUT, &r->modes);
+        r->high[SP_W_PLAY] = r->modes.play == SP_PLAY_OPENING;
+        r->high[SP_W_PLAY_SHUT] = r->modes.play == SP_PLAY_HELD;
         return false;
     case SP_W_COOLANT:
         if (up) r->over_since = r->time;

@@ -61,6 +61,7 @@ struct sp_words sp_words_energy(double joules, bool exact)
     int digits = exact ? 9 : 3;
     double amount = fabs(joules);
     /* The limits lie where three digits round over, so that no "1e+03" is ever seen. */
+    if (amount < 1e-3 && !exact) return words("0 J"); /* what is left of sums that cancel */
     if (amount < 999.5) return words("%.*g J", digits, joules + 0.0);
     if (amount < 999.5e3) return words("%.*g kJ", digits, joules / 1e3);
     return amount < 999.5e6 ? words("%.*g MJ", digits, joules / 1e6) : words("%.*g GJ", digits, joules / 1e9);

@@ -470,6 +470,8 @@ static void what_does_not_belong(void **state)
             NULL);
     refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"thermostat\": \"stuck\"}}", "car.thermostat",
             "stuck", "none");
+    refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"duct.exit\": {}}}", "car.duct.exit",
+            "an unknown key", NULL);
     refused("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"\": 1}}", "car.", "an unknown key", NULL);
     refused("{\"car\": {" DUCT_OF(COEFFICIENT) "}, \"air\": {\"ambient\": 33}}", "air.ambient", "33",
             "temperature");
@@ -520,6 +522,23 @@ static void cores_that_will_not_do(void **state)
         "car.duct.core.heat.face_velocity[1]", NULL, "rises");
 }
 
+static void engines_as_told(void **state)
+{
+    (void)state;
+    struct result r =
+        must_set(DRIVE_CASE, SP_FOR_DRIVE,
+                 (char *const[]){(char[]){"engine.friction=[\"1 bar\", \"0.1 bar\", \"0.02 bar\"]"},
+                                 (char[]){"engine.gas_temperature=none"}},
+                 2);
+    const double *p = r.design->engine.friction_pressure;
+    check_close(p[0] + p[1] * 50.0 + p[2] * 2500.0, 1.48e5, 1e-12, 0.0); /* at 3000 rpm: 1 + 0.3 + 0.18 bar */
+    assert_true(isnan(r.design->engine.gas_temperature));
+    drop(&r);
+    r = must(DRIVE_CASE, SP_FOR_DRIVE);
+    check_close(r.design->engine.gas_temperature, 840.0, 0.0, 0.0);
+    drop(&r);
+}
+
 static void fans_that_will_not_do(void **state)
 {
     (void)state;
@@ -547,7 +566,8 @@ static void circuits_that_will_not_do(void **state)
                 "below full");
     set_refused("coolant={\"kind\": \"propylene glycol\", \"glycol\": \"55 %\"}", "coolant.glycol", "55 %",
                 "50 %");
-    set_refused("coolant={\"kind\": \"water\", \"glycol\": \"30 %\"}", "coolant.glycol", "30 %", "0 %");
+    set_refused("coolant={\"kind\": \"water\", \"glycol\": \"30 %\"}", "coolant.glycol", "30 %",
+                "the coolant is water");
     set_refused("coolant.glycol=70 %", "coolant.glycol", "70 %", "60 %");
     set_refused("tank={\"volume\": \"1 l\", \"air_space\": \"1 l\"}", "tank.air_space", NULL, "below volume");
     set_refused("pump={\"curve\": {\"shutoff\": \"1 bar\", \"free_flow\": \"100 l/min\"}}", "pump.speed",
@@ -558,6 +578,13 @@ static void circuits_that_will_not_do(void **state)
                 "rpm\", \"2 kW\", \"1 kW\"], "
                 "[\"2000 rpm\", \"1 kW\", \"1 kW\"]]}",
                 "engine.heat.table", "no full grid", NULL);
+    set_refused("engine.heat={\"law\": \"table\", \"table\": [[\"1000 rpm\", \"1 kW\", \"1 kW\"], [\"1000 "
+                "rpm\", \"1 kW\", \"2 kW\"], "
+                "[\"2000 rpm\", \"1 kW\", \"1 kW\"], [\"2000 rpm\", \"1 kW\", \"2 kW\"]]}",
+                "engine.heat.table", "no full grid", NULL);
+    set_refused("pump.curve=[[\"0 l/min\", \"0 kPa\"], [\"9 l/min\", \"5 kPa\"], [\"10 l/min\", \"4 kPa\"]]",
+                "pump.curve", "no pressure", NULL);
+    set_refused("electrics=none", "electrics", "none", "an object");
     set_refused("engine.idle_speed=1 Hz", "engine.idle_speed", "1 Hz", "100 rpm");
     set_refused(
         "engine={\"displacement\": \"2 l\", \"rated_power\": \"90 kW\", \"rated_speed\": \"600 rpm\", "
@@ -760,6 +787,7 @@ int main(void)
         cmocka_unit_test(what_is_missing),
         cmocka_unit_test(what_does_not_belong),
         cmocka_unit_test(cores_that_will_not_do),
+        cmocka_unit_test(engines_as_told),
         cmocka_unit_test(fans_that_will_not_do),
         cmocka_unit_test(circuits_that_will_not_do),
         cmocka_unit_test(steps_that_will_not_do),
