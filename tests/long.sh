@@ -27,7 +27,10 @@ sh sim/packages.sh build tests lint || exit 2
 comma_locale
 
 say "Build: gcc, release"
-build_release
+build_release || {
+    tally_close
+    exit
+}
 
 say "Lint"
 tally_script clang-tidy sh tests/lint.sh tidy "$out/release"
@@ -56,9 +59,10 @@ for program in "$out"/release/tests/test_*; do
 done
 
 say "Build: fuzzers"
-build_fuzz
-say "Fuzzing, $seconds s a target"
-fuzz "$seconds"
+if build_fuzz; then
+    say "Fuzzing, $seconds s a target"
+    fuzz "$seconds"
+fi
 
 say "Done"
 tally_close

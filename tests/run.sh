@@ -21,7 +21,10 @@ sh sim/packages.sh build tests || exit 2
 comma_locale
 
 say "Build: gcc, release"
-build_release
+build_release || {
+    tally_close
+    exit
+}
 say "Unit and outside tests, gcc release"
 unit_and_outside release
 python_outside release
@@ -37,17 +40,19 @@ say "How the tree and the library are made"
 hygiene release
 
 say "Build: clang, debug, address and undefined-behaviour sanitizers"
-build_sanitize
-say "Unit and outside tests under the sanitizers"
-unit_and_outside sanitize
-python_outside sanitize
-say "Command line under the sanitizers"
-command_line sanitize
+if build_sanitize; then
+    say "Unit and outside tests under the sanitizers"
+    unit_and_outside sanitize
+    python_outside sanitize
+    say "Command line under the sanitizers"
+    command_line sanitize
+fi
 
 say "Build: fuzzers"
-build_fuzz
-say "Fuzzing"
-fuzz 20
+if build_fuzz; then
+    say "Fuzzing"
+    fuzz 20
+fi
 
 say "Valgrind"
 memcheck version 0 --version

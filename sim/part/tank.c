@@ -37,11 +37,12 @@ struct sp_tank_vent sp_tank_vent(const struct sp_tank *t, const struct sp_tank_i
 {
     double out = opening * soft_excess(s->pressure - in->ambient - t->cap);
     double in_flow = opening * soft_excess(in->ambient - t->vacuum - s->pressure);
-    double gas = fmax(s->gas, 0.0), share = gas / (gas + last_gas);
+    double gas = fmax(s->gas, 0.0), full = gas / last_gas;
+    double wet = 1.0 / (1.0 + full * full * full * full); /* liquid in what goes out */
     double left = fmax(liquid_left, 0.0);
     double per_volume = gas > 0.0 ? fmax(in->air, 0.0) / (gas + last_gas) : 0.0;
     return (struct sp_tank_vent){
         .air = out * per_volume - in_flow * in->ambient / (gas_constant * in->temperature),
-        .liquid = out * (1.0 - share) * left / (left + last_gas),
+        .liquid = out * wet * left / (left + last_gas),
     };
 }

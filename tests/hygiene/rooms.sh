@@ -6,9 +6,6 @@
 set -u
 cd "${1:?usage: rooms.sh ROOT}" || exit 2
 
-# Allowed although they look up, each with its reason:
-#   circuit/circuit.h -> drive/schedule.h    struct sp_inputs, what the right-hand side is given, is laid out by
-#                                            the schedule; the circuit calls nothing of the drive.
 # trace.h is the form of a table, without a word of cars; part.h holds its layout in a drive step. So that
 # header counts to the ground floor although the reader lives in drive/. result.h is what paper/ writes.
 grep -rHn '^ *# *include *"' sim include --include='*.c' --include='*.h' | LC_ALL=C sort | awk -F: '
@@ -17,7 +14,6 @@ grep -rHn '^ *# *include *"' sim include --include='*.c' --include='*.h' | LC_AL
         for (i in rooms) floor[rooms[i]] = i + 0
         floor["trace"] = floor["base"]
         floor["result"] = floor["paper"]
-        allowed["sim/circuit/circuit.h drive/schedule.h"] = 1
     }
     {
         file = $1
@@ -42,17 +38,11 @@ grep -rHn '^ *# *include *"' sim include --include='*.c' --include='*.h' | LC_AL
             print file ":" $2 ": no known room: " from " includes " wanted
             bad++
         } else if (floor[to] > floor[from]) {
-            pair = file " " wanted
-            if (pair in allowed) { used[pair] = 1; next }
             print file ":" $2 ": " from " looks up to " wanted
             bad++
         }
     }
     END {
-        for (pair in allowed) if (!(pair in used)) {
-            print "rooms.sh: the exception \"" pair "\" is no longer needed: take it out"
-            bad++
-        }
         if (count < 50) { print "rooms.sh: only " count + 0 " includes seen; is this the root?"; bad++ }
         exit bad > 0
     }'
