@@ -1,0 +1,73 @@
+#!/bin/sh
+# The files of -o: whole or not there, the same bytes each time, told when they cannot be written.
+# SPDX-License-Identifier: GPL-3.0-or-later
+. "$(dirname "$0")/common"
+write_case
+
+want 0 run case.json --json -o one
+for file in result.json series.csv events.csv; do
+    [ -s "one/$file" ] || fail "no $file"
+done
+[ "$(ls -A one | wc -l)" -eq 3 ] || fail "more than three files: $(ls -A one)"
+cmp -s out one/result.json || fail "result.json is not what --json prints"
+cp out wanted
+want 0 run case.json -o two/
+want 0 run case.json -o one
+for file in result.json series.csv events.csv; do
+    cmp -s "one/$file" "two/$file" || fail "$file differs from run to run"
+done
+
+# The series: headings with units, time from 0 to the drive's end, no empty row, a number in each cell.
+head -n 1 one/series.csv | grep -E -q '^time \[s\](,[a-z_]+ \[[^],]*\])+$' || fail "headings: $(head -n 1 one/series.csv)"
+for name in speed power coolant_engine_out coolant_radiator_out metal thermostat_lift coolant_flow air_mass_flow \
+    face_velocity fan_speed tank_pressure boil_margin heat_in heat_out drag; do
+    head -n 1 one/series.csv | grep -q ",$name \[" || fail "no column $name"
+done
+awk -F, 'NR == 1 { n = NF; next }
+    NF != n { print "row " NR " has " NF " cells"; exit 1 }
+    NR == 2 && $1 != "0" { print "begins at " $1; exit 1 }
+    NR > 2 && $1 <= last { print "time falls in row " NR; exit 1 }
+    { last = $1; for (i = 1; i <= NF; ++i) if ($i !~ /^(-?[0-9.]+(e[-+][0-9]+)?)?$/ || $i == "-0") {
+        print "cell " i " of row " NR ": " $i; exit 1 } }
+    END { if (last != "510") { print "ends at " last; exit 1 } }' one/series.csv >why || fail "series: $(cat why)"
+head -n 1 one/events.csv | grep -q '^time \[s\],what,' || fail "headings: $(head -n 1 one/events.csv)"
+grep -q 'coolant peak' one/events.csv || fail "no peak in events.csv"
+[ "$(grep -c '"what"' one/result.json)" -eq "$(($(wc -l <one/events.csv) - 1))" ] ||
+    fail "events.csv and result.json hold other events"
+
+# Off the grid the end is there too.
+want 0 run case.json -o coarse --every "7 s"
+[ "$(tail -n 1 coarse/series.csv | cut -d, -f1)" = 510 ] || fail "the end is missing with --every 7 s"
+[ "$(sed -n 3p coarse/series.csv | cut -d, -f1)" = 7 ] || fail "--every 7 s does not give rows 7 s apart"
+cmp -s coarse/result.json one/result.json || fail "--every changes the result"
+
+# An overheating drive writes its files too; a drive that is refused leaves none.
+want 1 run case.json -o hot --set 'limits.coolant=90 degC'
+grep -q '"verdict": "overheats"' hot/result.json || fail "no verdict in hot/result.json"
+want 2 run case.json -o none --set 'limits.coolant=90 m'
+[ -e none ] && fail "a refused case makes a directory"
+
+# Places that cannot be.
+want 2 run case.json -o nowhere/below
+says err "nowhere/below"
+[ -e nowhere ] && fail "parents are made"
+want 2 run case.json -o case.json
+says err "case.json"
+mkdir taken && mkdir taken/series.csv
+want 2 run case.json -o taken
+says err "taken/series.csv"
+[ -e taken/result.json ] && fail "a result without its series"
+mkdir shut && chmod a-w shut
+if ! touch shut/probe 2>/dev/null; then
+    want 2 run case.json -o shut
+    says err "shut/"
+    want 2 run case.json -o shut/below
+    says err "shut/below"
+else
+    rm -f shut/probe # whoever runs this may write anywhere
+fi
+# What was there before stays when a write fails.
+cp one/result.json before
+want 2 run case.json -o one --set 'air.ambient=nonsense'
+cmp -s before one/result.json || fail "a refused run touched what was there"
+finish

@@ -1,0 +1,85 @@
+#!/bin/sh
+# What run prints: verdict, JSON and nothing else, what --set changes.
+# SPDX-License-Identifier: GPL-3.0-or-later
+. "$(dirname "$0")/common"
+write_case
+
+want 0 run case.json
+head -n 1 out | grep -q '^Survives: .*degC' || fail "first line: $(head -n 1 out)"
+awk 'length($0) > 80 { exit 1 }' out || fail "text wider than 80 columns"
+LC_ALL=C grep -q '[^ -~]' out && fail "not plain ASCII"
+says out "ledger closes to"
+says out "none given for gauge, metal, boil margin"
+says out "README.md"
+sed -n 1,20p out | grep -q '[0-9]\.[0-9]* degC' && fail "temperatures are not whole degrees"
+want 0 run case.json --exact
+says out "degC"
+sed -n 1p out | grep -q '[0-9]\.[0-9]* degC' || fail "--exact gives no more digits"
+
+want 0 run case.json --json
+is_json out
+for name in verdict coolant_degC time_s distance_m step mark margin_K boil_margin_K time_over_limit_s over_ambient_K \
+    heat_in_J heat_out_J heat_stored_J relative_error mean_coefficient energy_J on_s; do
+    [ -n "$(number $name)" ] || fail "no $name in the JSON"
+done
+[ "$(number verdict)" = '"survives"' ] || fail "verdict $(number verdict)"
+[ "$(number mark)" = null ] || fail "a mark where the drive has none: $(number mark)"
+close "margin" "$(number margin_K)" "$(awk -v p="$(number coolant_degC)" 'BEGIN { printf "%.12g", 115 - p }')" 1e-9
+close "duration" "$(number duration_s)" 510 1e-12
+close "distance" "$(number distance_m)" 5500 1e-6
+# In = out + stored, to 1e-4 of the heat turned over.
+close "ledger" "$(number heat_in_J)" "$(awk -v o="$(number heat_out_J)" -v s="$(number heat_stored_J)" \
+    'BEGIN { printf "%.12g", o + s }')" 2e-4
+says out '"title": "A test of \"quotes\""'
+cp out one
+want 0 run --json case.json
+cmp -s out one || fail "the same drive twice gives other bytes"
+
+# Status 1 is a verdict too: JSON on standard output, nothing else there.
+want 1 run case.json --json --set 'limits.coolant=90 degC'
+is_json out
+[ "$(number verdict)" = '"overheats"' ] || fail "verdict $(number verdict)"
+[ "$(number limit)" = '"limits.coolant"' ] || fail "limit $(number limit)"
+says out '"what": "coolant over limit"'
+close "time over limit is positive" "$(awk -v t="$(number time_over_limit_s)" 'BEGIN { print t > 0 }')" 1 0
+want 1 run case.json --set 'limits.coolant=90 degC'
+head -n 1 out | grep -q '^Overheats: ' || fail "first line: $(head -n 1 out)"
+
+# A limit that is not given is undefined, not nil.
+want 0 run case.json --json --set 'limits={"boil_margin": "1 K"}'
+[ "$(number margin_K)" = null ] || fail "a margin to no limit: $(number margin_K)"
+[ "$(number time_over_limit_s)" = null ] || fail "a time over no limit: $(number time_over_limit_s)"
+[ "$(number limit)" = '"limits.boil_margin"' ] || fail "limit $(number limit)"
+
+# A standing car has no drag coefficient.
+want 0 run case.json --json --set 'drive=[{"idle": "2 min"}]'
+[ "$(number mean_coefficient)" = null ] || fail "drag coefficient of a standing car: $(number mean_coefficient)"
+
+# Pressure stands for altitude, whichever is set last.
+want 0 run case.json --json
+cp out one
+want 0 run case.json --json --set 'air.altitude=2000 m'
+cmp -s out one && fail "altitude changes nothing"
+cp out high
+# 79501.425 Pa: US Standard Atmosphere 1976 at 2000 m geometric.
+want 0 run case.json --json --set 'air.pressure=79501.425 Pa'
+close "pressure for altitude" "$(number heat_out_J)" "$(sed -n 's/^ *"heat_out_J": \([^,]*\),$/\1/p' high)" 1e-6
+want 0 run case.json --json --set 'air.pressure=90 kPa' --set 'air.altitude=200 m'
+cmp -s out one || fail "altitude does not drop a pressure set before"
+
+# Other drives by --set.
+want 0 run case.json --json --set 'drive[2].repeat=2'
+close "a step repeated" "$(number duration_s)" 750 1e-12
+
+# A full disk is no success.
+if [ -w /dev/full ]; then
+    for form in "run case.json" "run case.json --json" "show case.json" "duct case.json --speed 30m/s" --help; do
+        # shellcheck disable=SC2086
+        "$command" $form >/dev/full 2>err
+        [ $? -eq 2 ] || fail "a full disk goes unnoticed: $form"
+        says err "standard output"
+    done
+    "$command" run case.json >&- 2>err
+    [ $? -eq 2 ] || fail "a closed output goes unnoticed"
+fi
+finish

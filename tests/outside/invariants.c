@@ -1,0 +1,548 @@
+/* What no car may break, over random designs with fixed seeds: the ledger closes, nothing is NaN, the
+ * numerics hold, mass is kept, total pressure rises only across the fan, and what is made worse never helps.
+ *
+ * SP_DRIVES sets how many drives (500); the drive of seed N is the same whatever the count. SP_FIRST is the
+ * first seed (1). SPDX-License-Identifier: GPL-3.0-or-later */
+#include "fixture.h"
+
+#include <gsl/gsl_rng.h>
+
+enum { STEPS = 3, PAIRS = 5, CONDITIONS = 20 };
+
+static struct fixture fixture;
+static long violations;
+
+/* A random car with what its pointers point at. */
+struct drawn {
+    unsigned long seed;
+    struct sp_design d;
+    struct sp_step step[STEPS];
+    double fan_pairs[2 * PAIRS], drop_pairs[2 * PAIRS];
+};
+
+/* ---- drawing ------------------------------------------------------------------------------------------ */
+
+static double between(gsl_rng *g, double low, double high)
+{
+    return low + (high - low) * gsl_rng_uniform(g);
+}
+
+static double spread(gsl_rng *g, double low, double high) /* even over orders of magnitude */
+{
+    return low * pow(high / low, gsl_rng_uniform(g));
+}
+
+static bool chance(gsl_rng *g, double share)
+{
+    return gsl_rng_uniform(g) < share;
+}
+
+static void draw_air(gsl_rng *g, struct sp_design *d)
+{
+    d->air.ambient = between(g, 243.15, 323.15);
+    d->air.altitude = between(g, 0.0, 5000.0);
+    d->air.pressure = sp_isa_pressure(d->air.altitude);
+    d->air.humidity = gsl_rng_uniform(g);
+    d->air.wind = chance(g, 0.5) ? 0.0 : between(g, -15.0, 15.0);
+}
+
+static void draw_engine(gsl_rng *g, struct sp_design *d)
+{
+    struct sp_engine *e = &d->engine;
+    e->displacement = spread(g, 0.3e-3, 8e-3);
+    e->rated_power = e->displacement * spread(g, 30e6, 150e6);
+    e->rated_speed = between(g, 60.0, 200.0);
+    e->idle_speed = between(g, 10.0, 30.0);
+    e->heat_fraction = between(g, 0.25, 1.0);
+    e->heat_exponent = between(g, 0.6, 1.0);
+    e->gas_temperature = chance(g, 0.3) ? NAN : between(g, 700.0, 1200.0);
+    e->metal_capacity = e->displacement * spread(g, 10e6, 60e6);
+    e->coolant_volume = e->displacement * spread(g, 0.4, 2.0);
+    e->conductance = e->displacement * spread(g, 0.4e6, 3e6);
+    e->conductance_flow = spread(g, 0.5e-3, 5e-3);
+    e->conductance_still = between(g, 0.02, 0.15);
+    e->skin_standing = between(g, 0.0, 40.0);
+    e->skin_moving = e->skin_standing + between(g, 0.0, 80.0);
+    d->electrics.voltage_running = between(g, 12.0, 14.5);
+    d->electrics.alternator_efficiency = between(g, 0.4, 0.9);
+}
+
+static void draw_circuit(gsl_rng *g, struct sp_design *d)
+{
+    enum sp_coolant_kind kind = (enum sp_coolant_kind)gsl_rng_uniform_int(g, 3);
+    double share = kind == SP_WATER ? 0.0 : between(g, 0.05, kind == SP_PROPYLENE_GLYCOL ? 0.5 : 0.6);
+    assert_true(sp_coolant_mix(kind, share, &d->coolant.fluid));
+    d->coolant.kind = kind;
+    d->coolant.share = share;
+    d->pump.electric = chance(g, 0.3);
+    d->pump.curve.shutoff = spread(g, 20e3, 300e3);
+    d->pump.curve.free_flow = spread(g, 0.5e-3, 10e-3);
+    d->pump.speed = d->engine.rated_speed * between(g, 0.8, 1.4);
+    d->pump.ratio = between(g, 0.7, 1.6);
+    d->pump.run_on = chance(g, 0.5) ? between(g, 0.0, 30.0) : 0.0;
+    struct sp_thermostat *t = &d->thermostat;
+    t->none = chance(g, 0.25);
+    t->opens = between(g, 330.0, 370.0);
+    t->full = t->opens + between(g, 3.0, 20.0);
+    t->hysteresis = chance(g, 0.3) ? 0.0 : between(g, 0.5, 8.0);
+    t->lag = spread(g, 1.0, 30.0);
+    t->lag_still = t->lag * between(g, 1.0, 5.0);
+    t->bore = between(g, 0.02, 0.05);
+    t->lift = between(g, 0.003, 0.012);
+    t->leak = chance(g, 0.2) ? 0.0 : spread(g, 1e-3, 0.1);
+    t->bypass_shut = between(g, 0.3, 2.0);
+    struct sp_hoses *h = &d->hoses;
+    h->length_out = between(g, 0.2, 4.0);
+    h->length_back = between(g, 0.2, 4.0);
+    h->bore_out = h->bore_back = between(g, 0.015, 0.05);
+    h->bends = between(g, 0.0, 12.0);
+    h->jacket.drop = spread(g, 5e3, 150e3);
+    h->bypass.drop = spread(g, 5e3, 150e3);
+    h->skin = between(g, 0.0, 20.0);
+    d->tank.air_space = spread(g, 0.1e-3, 2e-3);
+    d->tank.volume = d->tank.air_space * between(g, 1.0, 3.0);
+    d->tank.cap = between(g, 0.0, 3e5);
+    d->tank.compliance = spread(g, 1e-11, 1e-8);
+    d->tank.bleed = chance(g, 0.2) ? 0.0 : between(g, 0.002, 0.1);
+}
+
+/* Rising flows from near nil, falling pressures to nil. */
+static void draw_fan_pairs(gsl_rng *g, struct drawn *x)
+{
+    double flow = between(g, 0.0, 0.1), pressure = between(g, 80.0, 500.0);
+    for (int i = 0; i < PAIRS; ++i) {
+        x->fan_pairs[2 * i] = flow;
+        x->fan_pairs[2 * i + 1] = i == PAIRS - 1 ? 0.0 : pressure;
+        flow += between(g, 0.05, 0.3);
+        pressure *= between(g, 0.4, 1.0);
+    }
+    x->d.duct.fan.curve = (struct sp_curve_design){NAN, NAN, {PAIRS, 2, x->fan_pairs}};
+}
+
+static void draw_fan(gsl_rng *g, struct drawn *x)
+{
+    struct sp_fan *f = &x->d.duct.fan;
+    f->fitted = chance(g, 0.75);
+    f->count = 1.0 + (double)gsl_rng_uniform_int(g, 3);
+    f->curve = (struct sp_curve_design){spread(g, 40.0, 800.0), spread(g, 0.1, 1.8), {0, 0, NULL}};
+    if (chance(g, 0.3)) draw_fan_pairs(g, x);
+    f->diameter = between(g, 0.2, 0.45);
+    f->hub = f->diameter * between(g, 0.2, 0.5);
+    f->static_basis = chance(g, 0.5);
+    f->before_core = chance(g, 0.3);
+    f->windmill_loss = between(g, 0.0, 5.0);
+    f->power = spread(g, 40.0, 1000.0);
+    f->spin_up = spread(g, 0.2, 5.0);
+    f->law = (enum sp_fan_law)gsl_rng_uniform_int(g, 4);
+    f->sensor = chance(g, 0.5) ? SP_AT_ENGINE_OUT : SP_AT_RADIATOR_OUT;
+    f->on = between(g, 330.0, 375.0);
+    f->off = f->on - between(g, 0.5, 12.0);
+    f->from = between(g, 330.0, 370.0);
+    f->to = f->from + between(g, 2.0, 20.0);
+    f->least = gsl_rng_uniform(g);
+    f->run_on = chance(g, 0.5) ? between(g, 0.0, 40.0) : 0.0;
+}
+
+static void draw_drop(gsl_rng *g, struct drawn *x)
+{
+    struct sp_core *c = &x->d.duct.core;
+    c->drop_law = (enum sp_drop_law)gsl_rng_uniform_int(g, 4);
+    c->free_area_ratio = between(g, 0.5, 0.85);
+    c->coefficient = spread(g, 3.0, 60.0);
+    c->linear = between(g, 10.0, 150.0);
+    c->quadratic = between(g, 3.0, 30.0);
+    c->at_density = between(g, 1.0, 1.25);
+    c->at_temperature = chance(g, 0.5) ? NAN : between(g, 280.0, 320.0);
+    double v = 0.0, p = 0.0;
+    for (int i = 0; i < PAIRS; ++i) {
+        double step = between(g, 1.0, 4.0);
+        p += step * between(g, 30.0, 60.0) * (1.0 + i);
+        v += step;
+        x->drop_pairs[2 * i] = v;
+        x->drop_pairs[2 * i + 1] = p;
+    }
+    c->drop_table = (struct sp_table){PAIRS, 2, x->drop_pairs};
+}
+
+static void draw_core(gsl_rng *g, struct drawn *x)
+{
+    struct sp_core *c = &x->d.duct.core;
+    c->width = between(g, 0.2, 0.8);
+    c->height = between(g, 0.15, 0.6);
+    c->depth = between(g, 0.016, 0.07);
+    draw_drop(g, x);
+    c->fin_pitch = between(g, 1.0e-3, 2.5e-3);
+    c->fin_thickness = between(g, 0.05e-3, 0.12e-3);
+    c->louvre_pitch = between(g, 0.8e-3, 2.0e-3);
+    c->louvre_angle = between(g, 0.3, 0.5);
+    c->heat_law = chance(g, 0.5) ? SP_CORE_FINS : SP_CORE_POWER;
+    c->air_conductance = c->width * c->height * spread(g, 1e3, 2e4);
+    c->air_exponent = between(g, 0.3, 0.7);
+    c->at_face_velocity = between(g, 3.0, 10.0);
+    c->heat_at_density = 1.2;
+    c->coolant_conductance = c->air_conductance * spread(g, 1.0, 10.0);
+    c->coolant_exponent = between(g, 0.3, 0.9);
+    c->at_coolant_flow = spread(g, 0.5, 4.0);
+    c->heat_factor = between(g, 0.6, 1.2);
+    c->metal_capacity = spread(g, 0.5e3, 8e3);
+    c->coolant_volume = spread(g, 0.3e-3, 4e-3);
+    c->drop.drop = spread(g, 2e3, 60e3);
+    c->drop.flow = chance(g, 0.5) ? NAN : spread(g, 0.5e-3, 5e-3); /* NAN: from the tubes */
+    c->cells = chance(g, 0.7) ? 10.0 : 1.0 + (double)gsl_rng_uniform_int(g, SP_CELLS_MAX);
+}
+
+static void draw_duct(gsl_rng *g, struct drawn *x)
+{
+    struct sp_duct_design *d = &x->d.duct;
+    draw_core(g, x);
+    double face = d->core.width * d->core.height;
+    d->inlet = (struct sp_inlet){face * spread(g, 0.1, 1.5), gsl_rng_uniform(g), gsl_rng_uniform(g),
+                                 chance(g, 0.5) ? 0.0 : between(g, 0.0, 3.0)};
+    d->diffuser.kind = (enum sp_diffuser_law)gsl_rng_uniform_int(g, 3);
+    d->diffuser.loss = gsl_rng_uniform(g);
+    d->diffuser.length = between(g, 0.05, 0.8);
+    d->diffuser.core_damping = chance(g, 0.5);
+    d->exit = (struct sp_exit){face * spread(g, 0.1, 1.5), between(g, 0.0, 2.0), between(g, -0.6, 0.5),
+                               between(g, 0.0, 1.6)};
+    draw_fan(g, x);
+}
+
+/* 60 s: some going, some standing hot or stopped, some going again. */
+static void draw_steps(gsl_rng *g, struct drawn *x)
+{
+    struct sp_design *d = &x->d;
+    for (int i = 0; i < STEPS; ++i) {
+        double speed = chance(g, 0.2) ? 0.0 : between(g, -2.0, 85.0);
+        double power = chance(g, 0.2) ? 0.0 : between(g, -0.1, 1.1) * d->engine.rated_power;
+        x->step[i] = fixture_hold(20.0, speed, power, between(g, d->engine.idle_speed, d->engine.rated_speed));
+    }
+    if (chance(g, 0.5)) x->step[1].kind = chance(g, 0.5) ? SP_STEP_IDLE : SP_STEP_SOAK;
+    d->step = x->step;
+    d->steps = STEPS;
+    d->start.coolant = chance(g, 0.3) ? d->air.ambient : between(g, 300.0, 385.0);
+    d->start.metal = chance(g, 0.5) ? NAN : d->start.coolant + between(g, 0.0, 40.0);
+    d->start.radiator = chance(g, 0.5) ? NAN : between(g, d->air.ambient, d->start.coolant);
+}
+
+static void draw(unsigned long seed, struct drawn *x)
+{
+    gsl_rng *g = gsl_rng_alloc(gsl_rng_mt19937);
+    assert_non_null(g);
+    gsl_rng_set(g, seed);
+    for (int i = 0; i < 20; ++i) gsl_rng_uniform(g); /* neighbouring seeds begin alike */
+    x->seed = seed;
+    x->d = *fixture.base;
+    draw_air(g, &x->d);
+    draw_engine(g, &x->d);
+    draw_circuit(g, &x->d);
+    draw_duct(g, x);
+    draw_steps(g, x);
+    gsl_rng_free(g);
+}
+
+/* ---- saying ------------------------------------------------------------------------------------------- */
+
+static void show(const struct drawn *x)
+{
+    const struct sp_design *d = &x->d;
+    const struct sp_core *c = &d->duct.core;
+    const struct sp_fan *f = &d->duct.fan;
+    print_error("  air %.6g K %.6g Pa wind %.4g; start %.6g K; engine %.4g W, metal %.4g J/K, jacket %.4g m3\n",
+                d->air.ambient, d->air.pressure, d->air.wind, d->start.coolant, d->engine.rated_power,
+                d->engine.metal_capacity, d->engine.coolant_volume);
+    print_error("  coolant %d %.3g; pump %s %.4g Pa %.4g m3/s; thermostat %s %.5g..%.5g K leak %.3g play %.3g\n",
+                (int)d->coolant.kind, d->coolant.share, d->pump.electric ? "electric" : "belt",
+                d->pump.curve.shutoff, d->pump.curve.free_flow, d->thermostat.none ? "none" : "wax",
+                d->thermostat.opens, d->thermostat.full, d->thermostat.leak, d->thermostat.hysteresis);
+    print_error("  core %.3g x %.3g m, drop law %d, heat law %d, %g cells; inlet %.4g m2 recovery %.3g lip %.3g "
+                "screen %.3g; diffuser %d\n", c->width, c->height, (int)c->drop_law, (int)c->heat_law, c->cells,
+                d->duct.inlet.area, d->duct.inlet.recovery, d->duct.inlet.lip_loss, d->duct.inlet.screen,
+                (int)d->duct.diffuser.kind);
+    print_error("  fan %s x%g law %d, static %d, before %d, pairs %zu; exit %.4g m2 loss %.3g Cp %.3g angle %.3g\n",
+                f->fitted ? "fitted" : "none", f->count, (int)f->law, f->static_basis, f->before_core,
+                f->curve.pairs.rows, d->duct.exit.area, d->duct.exit.loss, d->duct.exit.pressure_coefficient,
+                d->duct.exit.angle);
+    for (size_t i = 0; i < d->steps; ++i)
+        print_error("  step %d: %g s, %.4g m/s, %.5g W, %.4g rev/s\n", (int)d->step[i].kind, d->step[i].time,
+                    d->step[i].speed, d->step[i].power, d->step[i].engine_speed);
+}
+
+#define expect(x, holds, ...)                                                                                  \
+    do {                                                                                                       \
+        if (!(holds) && ++violations <= 10) {                                                                  \
+            print_error("seed %lu: %s is broken: ", (x)->seed, #holds);                                        \
+            print_error(__VA_ARGS__);                                                                          \
+            print_error("\n");                                                                                 \
+            show(x);                                                                                           \
+        }                                                                                                      \
+    } while (0)
+
+static unsigned long setting(const char *name, unsigned long fallback)
+{
+    const char *text = getenv(name);
+    return text ? strtoul(text, NULL, 10) : fallback;
+}
+
+/* ---- drives -------------------------------------------------------------------------------------------- */
+
+static void check_samples(const struct drawn *x, const struct fixture_drive *r)
+{
+    for (size_t i = 0; i < r->series.count; ++i) {
+        const double *v = r->series.row[i].value;
+        for (int c = 0; c < SP_CHANNELS; ++c)
+            if (c != SP_CH_MEASURED)
+                expect(x, isfinite(v[c]), "%s at %g s", sp_channel_at((enum sp_channel)c)->name, v[SP_CH_TIME]);
+        double split = v[SP_CH_RADIATOR_FLOW] + v[SP_CH_BYPASS_FLOW], pump = v[SP_CH_PUMP_FLOW];
+        double kept = (1.0 - x->d.tank.bleed) * pump;
+        expect(x, fabs(split - kept) <= 1e-9 * fabs(pump), "flows at %g s: %g into %g", v[SP_CH_TIME], pump, split);
+        expect(x, pump >= 0.0 && v[SP_CH_RADIATOR_FLOW] >= 0.0, "flow %g at %g s", pump, v[SP_CH_TIME]);
+        expect(x, v[SP_CH_LOST] > -1e-9, "lost %g m3 at %g s", v[SP_CH_LOST], v[SP_CH_TIME]);
+        expect(x, v[SP_CH_LIFT] >= 0.0 && v[SP_CH_LIFT] <= 1.0, "lift %g", v[SP_CH_LIFT]);
+    }
+}
+
+static void check_result(const struct drawn *x, const struct fixture_drive *r)
+{
+    const struct sp_result *s = &r->result;
+    expect(x, r->status == SP_OK || r->status == SP_NOT, "status %d", (int)r->status);
+    if (r->status == SP_NUMERICS || r->status == SP_INPUT) {
+        if (violations <= 10) sp_complaints_print(&r->complaints, false, stderr);
+        return;
+    }
+    expect(x, fabs(s->ledger.error) <= 1e-4, "ledger %g", s->ledger.error);
+    expect(x, r->series.count == 13, "%zu samples", r->series.count);
+    expect(x, s->duration == 60.0, "duration %g", s->duration);
+    expect(x, isfinite(s->coolant.value) && isfinite(s->gauge.value) && isfinite(s->metal.value) &&
+           isfinite(s->boil_margin.value) && isfinite(s->tank_pressure.value) && isfinite(s->over_ambient), "peaks");
+    expect(x, s->fan.on >= 0.0 && s->fan.on <= 60.0 && s->fan.energy >= 0.0, "fan %g s %g J", s->fan.on, s->fan.energy);
+    for (size_t i = 1; i < s->events; ++i)
+        expect(x, s->event[i].time >= s->event[i - 1].time, "order of events %zu", i);
+}
+
+static void random_drives(void **state)
+{
+    (void)state;
+    unsigned long count = setting("SP_DRIVES", 500), first = setting("SP_FIRST", 1);
+    long steps = 0;
+    violations = 0;
+    for (unsigned long i = 0; i < count; ++i) {
+        struct drawn x;
+        draw(first + i, &x);
+        struct fixture_drive r = fixture_run(&fixture, &x.d, 5.0, 0.0);
+        check_result(&x, &r);
+        check_samples(&x, &r);
+        steps += r.result.work.steps;
+        fixture_drop(&r);
+    }
+    print_message("%lu drives of 60 s, %.0f steps each, %ld violations\n", count, (double)steps / (double)count,
+                  violations);
+    assert_int_equal(violations, 0);
+}
+
+/* With the fan and the power fixed. The thermostat must be fixed too: a hotter day warms the wax earlier, and
+ * a valve that opens earlier may well clip the overshoot that its lag would have made. */
+static void hotter_day_never_cooler(void **state)
+{
+    (void)state;
+    unsigned long count = setting("SP_DRIVES", 500) / 4 + 1, first = setting("SP_FIRST", 1);
+    violations = 0;
+    for (unsigned long i = 0; i < count; ++i) {
+        struct drawn x;
+        draw(first + i, &x);
+        x.d.thermostat.none = true;
+        x.d.duct.fan.law = i % 2 ? SP_FAN_ALWAYS : SP_FAN_NEVER;
+        double start = x.d.start.coolant, radiator = x.d.start.radiator;
+        struct fixture_drive cool = fixture_run(&fixture, &x.d, 0.0, 1e-7);
+        x.d.air.ambient += 10.0;
+        x.d.start.coolant = start;
+        x.d.start.radiator = radiator;
+        struct fixture_drive hot = fixture_run(&fixture, &x.d, 0.0, 1e-7);
+        expect(&x, cool.status <= SP_NOT && hot.status <= SP_NOT, "statuses %d, %d", (int)cool.status, (int)hot.status);
+        expect(&x, hot.result.coolant.value >= cool.result.coolant.value - 1e-3, "peak %.6f K, hotter day %.6f K",
+               cool.result.coolant.value, hot.result.coolant.value);
+        fixture_drop(&cool);
+        fixture_drop(&hot);
+    }
+    assert_int_equal(violations, 0);
+}
+
+/* ---- the air path ---------------------------------------------------------------------------------------- */
+
+static struct sp_duct *build(const struct drawn *x)
+{
+    struct sp_complaints c = {0};
+    struct sp_duct *d = sp_duct_build(&x->d.duct, &x->d.coolant.fluid, NULL, &c);
+    sp_complaints_print(&c, false, stderr);
+    sp_complaints_free(&c);
+    assert_non_null(d);
+    return d;
+}
+
+/* Hostile on purpose: tail winds, dead air, altitude, fan at rest and overspeeding, cold walls. */
+static struct sp_duct_inputs condition(gsl_rng *g)
+{
+    struct sp_duct_inputs in = {.speed = chance(g, 0.2) ? 0.0 : between(g, -25.0, 90.0), .fan_speed = 0.0};
+    in.wake = chance(g, 0.2) ? 0.0 : between(g, 0.0, 1.5);
+    in.temperature = between(g, 243.15, 323.15);
+    in.pressure = sp_isa_pressure(between(g, 0.0, 5000.0));
+    struct sp_moist air = sp_moist_air(in.temperature, in.pressure, gsl_rng_uniform(g));
+    in.R = air.R;
+    in.cp = air.cp;
+    if (chance(g, 0.5)) in.fan_speed = between(g, 0.0, 1.2);
+    in.wall = in.temperature + (chance(g, 0.15) ? between(g, -40.0, 0.0) : between(g, 0.0, 120.0));
+    return in;
+}
+
+/* Dynamic pressure and what the openings see of it, from the definitions of the inputs. */
+struct outer { double head, front, back; };
+
+static struct outer outer_of(const struct drawn *x, const struct sp_duct_inputs *in)
+{
+    double rho = in->pressure / (in->R * in->temperature), head = 0.5 * rho * in->speed * in->speed * in->wake;
+    double cosine = cos(x->d.duct.exit.angle);
+    bool ahead = in->speed >= 0.0;
+    return (struct outer){head, ahead ? x->d.duct.inlet.recovery * head : 0.0,
+                          (ahead ? x->d.duct.exit.pressure_coefficient : cosine * cosine) * head};
+}
+
+static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s,
+                            const struct sp_station *st, const struct sp_duct_losses *l)
+{
+    struct outer o = outer_of(x, in);
+    double way = s->mass_flow >= 0.0 ? 1.0 : -1.0;
+    double lost = l->lip + l->screen + l->diffuser + l->core + l->heating + l->exit +
+                  (way > 0.0 ? l->exit_head : 0.0);
+    double left = o.front - o.back - l->fan - way * lost;
+    double size = fabs(o.front) + fabs(o.back) + fabs(l->fan) + lost;
+    expect(x, fabs(left) <= 1e-9 * size, "balance %g Pa of %g, m %g kg/s at %g m/s", left, size, s->mass_flow, in->speed);
+    /* Stations in the order of the flow; between them total pressure falls, but for the fan's own place. */
+    int fan_at = x->d.duct.fan.before_core ? 2 : 3;
+    double give = 1e-9 * in->pressure;
+    for (int i = 1; i < SP_STATIONS - 1; ++i) {
+        double fall = way * (st[i].total_pressure - st[i + 1].total_pressure);
+        if (i == fan_at && l->fan < 0.0 && way > 0.0) continue;
+        expect(x, fall >= -give, "total pressure from %d to %d rises by %g Pa, m %g", i, i + 1, -fall, s->mass_flow);
+    }
+    if (way > 0.0) {
+        double in_front = o.front + in->pressure - st[1].total_pressure;
+        expect(x, in_front >= -give, "total pressure at the inlet");
+        double jet = st[5].static_pressure - in->pressure - o.back;
+        double slack = 1e-9 * in->pressure + 1e-5 * size + 1e-5; /* the floor of the losses near nil flow */
+        expect(x, fabs(jet) <= slack, "pressure of the jet %g Pa", jet);
+    }
+}
+
+static void check_masses(const struct drawn *x, const struct sp_duct_state *s, const struct sp_station *st)
+{
+    double face = x->d.duct.core.width * x->d.duct.core.height;
+    const double area[SP_STATIONS] = {NAN, x->d.duct.inlet.area, face, face, face, x->d.duct.exit.area};
+    for (int i = 1; i < SP_STATIONS; ++i) {
+        double m = st[i].density * st[i].velocity * area[i];
+        expect(x, fabs(m - s->mass_flow) <= 1e-12 * fabs(s->mass_flow), "mass at %d: %g of %g", i, m, s->mass_flow);
+    }
+    const double *all = &st[0].total_pressure;
+    for (size_t i = 0; i < sizeof(struct sp_station) * SP_STATIONS / sizeof *all; ++i)
+        expect(x, isfinite(all[i]), "station value %zu", i);
+}
+
+static void check_heat(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
+{
+    double carried = fabs(s->mass_flow) * in->cp * in->temperature * (s->temperature_ratio - 1.0);
+    expect(x, fabs(carried - s->heat) <= 1e-9 * fabs(s->heat) + 1e-9, "heat %g W carried %g W", s->heat, carried);
+    expect(x, s->effectiveness >= 0.0 && s->effectiveness <= 1.0, "effectiveness %g", s->effectiveness);
+}
+
+static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
+{
+    struct drawn less = *x;
+    less.d.duct.exit.area *= 0.9;
+    struct sp_duct *d = build(&less);
+    struct sp_duct_state small;
+    expect(x, sp_duct_solve(d, in, &small) == SP_OK, "a smaller exit");
+    expect(x, fabs(small.mass_flow) <= fabs(s->mass_flow) * (1.0 + 1e-9) + 1e-12, "smaller exit %g over %g kg/s",
+           small.mass_flow, s->mass_flow);
+    sp_duct_free(d);
+}
+
+/* Hotter core, thinner air: less mass always. The exit's jet is faster where ram drives: there volume flow
+ * squared goes with the temperature ratio over losses that grow more slowly. A fan is a machine of constant
+ * volume and may lose exit speed, so it stands still for that. */
+static void hotter_core(const struct drawn *x, const struct sp_duct *d, const struct sp_duct_inputs *in,
+                        const struct sp_duct_state *s)
+{
+    struct sp_duct_inputs hot = *in;
+    struct sp_duct_state h;
+    hot.wall += 20.0;
+    expect(x, sp_duct_solve(d, &hot, &h) == SP_OK, "a hotter core");
+    if (!(s->mass_flow > 1e-3)) return;
+    expect(x, h.mass_flow < s->mass_flow, "hotter core %.9g kg/s, before %.9g", h.mass_flow, s->mass_flow);
+    if (in->fan_speed > 0.0) return;
+    expect(x, h.exit_velocity > s->exit_velocity, "hotter core %.9g m/s, before %.9g", h.exit_velocity, s->exit_velocity);
+}
+
+/* The answer must not depend on where the search began, here: at the answer of quite another condition. */
+static void same_from_elsewhere(const struct drawn *x, const struct sp_duct *d, const struct sp_duct_inputs *in,
+                                const struct sp_duct_state *s, struct sp_guess *guess)
+{
+    struct sp_duct_state again;
+    expect(x, sp_duct_solve_from(d, in, guess, &again) == SP_OK, "from elsewhere");
+    expect(x, fabs(again.mass_flow - s->mass_flow) <= 1e-9 * fabs(s->mass_flow) + 1e-11,
+           "%.12g kg/s, from elsewhere %.12g", s->mass_flow, again.mass_flow);
+}
+
+static void random_ducts(void **state)
+{
+    (void)state;
+    unsigned long count = setting("SP_DRIVES", 500), first = setting("SP_FIRST", 1);
+    violations = 0;
+    for (unsigned long i = 0; i < count; ++i) {
+        struct drawn x;
+        draw(first + i, &x);
+        gsl_rng *g = gsl_rng_alloc(gsl_rng_mt19937);
+        assert_non_null(g);
+        gsl_rng_set(g, 7 * x.seed + 3);
+        struct sp_duct *d = build(&x);
+        struct sp_guess guess = {0.0, 0.0};
+        for (int k = 0; k < CONDITIONS; ++k) {
+            struct sp_duct_inputs in = condition(g);
+            struct sp_duct_state s;
+            struct sp_station st[SP_STATIONS];
+            struct sp_duct_losses l;
+            enum sp_status status = sp_duct_solve(d, &in, &s);
+            expect(&x, status == SP_OK, "status %d at %g m/s, fan %g", (int)status, in.speed, in.fan_speed);
+            if (status) continue;
+            sp_duct_stations(d, &in, &s, st, &l);
+            check_masses(&x, &s, st);
+            check_pressures(&x, &in, &s, st, &l);
+            check_heat(&x, &in, &s);
+            smaller_exit(&x, &in, &s);
+            hotter_core(&x, d, &in, &s);
+            same_from_elsewhere(&x, d, &in, &s, &guess);
+        }
+        sp_duct_free(d);
+        gsl_rng_free(g);
+    }
+    print_message("%lu ducts, %ld violations\n", count, violations);
+    assert_int_equal(violations, 0);
+}
+
+static int begin(void **state)
+{
+    (void)state;
+    fixture = fixture_open();
+    return 0;
+}
+
+static int end(void **state)
+{
+    (void)state;
+    fixture_close(&fixture);
+    return 0;
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {cmocka_unit_test(random_drives), cmocka_unit_test(hotter_day_never_cooler),
+                                       cmocka_unit_test(random_ducts)};
+    return cmocka_run_group_tests(tests, begin, end);
+}
