@@ -9,6 +9,7 @@ static const double pump_voltage_exponent = 0.9; /* flow over plug voltage; comm
 static const double soft_pressure = 1.0;         /* Pa, below which the bypass answers linearly */
 static const double still = 1e-4;                /* pump speed, over rated, that counts as standing */
 static const double reference_density = 1000.0;
+static const double tight = 1e-6;                /* share of the full opening that a valve without leak still has */
 
 /* What is fixed while one split is sought. */
 struct split {
@@ -32,7 +33,7 @@ static double valve_drop(const struct split *s, double flow)
 {
     const struct sp_thermostat *t = &s->loop->design->thermostat;
     if (t->none) return 0.0;
-    double area = s->loop->valve_full * (s->lift + t->leak * (1.0 - s->lift));
+    double area = s->loop->valve_full * fmax(s->lift + t->leak * (1.0 - s->lift), tight);
     double u = flow / area;
     return 0.5 * s->rho_hot * u * u;
 }

@@ -10,12 +10,13 @@
 struct question {
     double *speed; /* m/s */
     size_t speeds;
-    double heat;   /* W */
+    double heat; /* W */
     bool fan;
     struct sp_complaints complaints, cautions;
 };
 
-static const struct sp_wanted wanted_speed = {"--speed", SP_K_SPEED, -40.0, 200.0, "-40 m/s to 200 m/s, as \"108 km/h\""};
+static const struct sp_wanted wanted_speed = {"--speed", SP_K_SPEED, -40.0, 200.0,
+                                              "-40 m/s to 200 m/s, as \"108 km/h\""};
 static const struct sp_wanted wanted_heat = {"--heat", SP_K_POWER, 0.0, 1e7, "0 W to 10 MW, as \"60 kW\""};
 
 static void complain(struct question *q, const char *option, const char *found, const char *expected)
@@ -38,7 +39,8 @@ static bool read_question(struct sp_units *u, const struct sp_arguments *a, stru
         return false;
     }
     for (size_t i = 0; i < q->speeds; ++i)
-        good = sp_argument_quantity(u, &wanted_speed, a->speeds.list[i], &q->speed[i], &q->complaints) && good;
+        good =
+            sp_argument_quantity(u, &wanted_speed, a->speeds.list[i], &q->speed[i], &q->complaints) && good;
     if (a->heat) good = sp_argument_quantity(u, &wanted_heat, a->heat, &q->heat, &q->complaints) && good;
     q->fan = a->fan && !strcmp(a->fan, "on");
     if (!a->fan || q->fan || !strcmp(a->fan, "off")) return good;
@@ -51,18 +53,21 @@ static enum sp_status solve_all(const struct sp_design *d, const struct sp_duct 
 {
     for (size_t i = 0; i < q->speeds; ++i) {
         char found[80];
-        enum sp_status status = sp_duct_point_solve(duct, &d->air, q->speed[i], q->heat, q->fan ? 1.0 : 0.0, &point[i]);
+        enum sp_status status =
+            sp_duct_point_solve(duct, &d->air, q->speed[i], q->heat, q->fan ? 1.0 : 0.0, &point[i]);
         if (status == SP_OK) continue;
         snprintf(found, sizeof found, "heat at nil flow, speed %.6g m/s", q->speed[i]);
-        if (status == SP_INPUT) complain(q, "--heat", found, "air that moves: a speed, or a fan that runs");
-        else complain(q, "--speed", "no flow that balances the pressures", "a duct that can be solved");
+        if (status == SP_INPUT)
+            complain(q, "--heat", found, "air that moves: a speed, or a fan that runs");
+        else
+            complain(q, "--speed", "no flow that balances the pressures", "a duct that can be solved");
         return status;
     }
     return SP_OK;
 }
 
-static enum sp_status answer(const struct sp_arguments *a, const struct sp_design *d, const struct sp_duct *duct,
-                             struct question *q)
+static enum sp_status answer(const struct sp_arguments *a, const struct sp_design *d,
+                             const struct sp_duct *duct, struct question *q)
 {
     struct sp_duct_point *point = calloc(q->speeds, sizeof *point);
     if (!point) {
@@ -85,10 +90,12 @@ static enum sp_status ask(const struct sp_arguments *a, struct sp_units *u, stru
     struct sp_duct *duct = NULL;
     struct sp_place at = {.file = a->operand, .path = "car.duct"};
     bool good = read_question(u, a, q);
-    struct sp_design *d = sp_case_read(u, a->operand, a->sets.list, a->sets.count, SP_FOR_DUCT, &q->complaints,
-                                       &q->cautions);
-    if (d && good && q->fan && !d->duct.fan.fitted) complain(q, "--fan", "on, but the car has no fan", "car.duct.fan, or off");
-    else if (d && good) duct = sp_duct_build(&d->duct, &d->coolant.fluid, &at, &q->complaints);
+    struct sp_design *d =
+        sp_case_read(u, a->operand, a->sets.list, a->sets.count, SP_FOR_DUCT, &q->complaints, &q->cautions);
+    if (d && good && q->fan && !d->duct.fan.fitted)
+        complain(q, "--fan", "on, but the car has no fan", "car.duct.fan, or off");
+    else if (d && good)
+        duct = sp_duct_build(&d->duct, &d->coolant.fluid, &at, &q->complaints);
     if (duct) status = answer(a, d, duct, q);
     sp_duct_free(duct);
     sp_design_free(d);
@@ -106,7 +113,10 @@ static enum sp_status run(const struct sp_arguments *a)
 }
 
 const struct sp_verb sp_verb_duct = {
-    "duct", "CASE", "vqfsj", "tells what the air does in the duct at given speeds",
+    "duct",
+    "CASE",
+    "vqfsj",
+    "tells what the air does in the duct at given speeds",
     "Solves the air path of the car for each speed: pressures at the stations from\n"
     "free stream to exit, where each pascal goes, mass flow, face velocity and drag.\n"
     "The case needs no more than `air` and `car.duct`.",

@@ -33,7 +33,8 @@ void sp_help_verb(const struct sp_verb *verb)
     for (size_t i = 0; (o = sp_option_at(i)) != NULL; ++i) {
         char form[60];
         if (!strchr(verb->options, o->letter) && o->letter != 'h') continue;
-        snprintf(form, sizeof form, "--%s%s%s", o->name, o->argument ? " " : "", o->argument ? o->argument : "");
+        snprintf(form, sizeof form, "--%s%s%s", o->name, o->argument ? " " : "",
+                 o->argument ? o->argument : "");
         printf("  %c%c%c %-23s %s\n", o->shorthand ? '-' : ' ', o->shorthand ? o->letter : ' ',
                o->shorthand ? ',' : ' ', form, o->meaning);
     }

@@ -19,9 +19,11 @@ static enum sp_status unknown_verb(const char *word)
 {
     const char *known[VERBS];
     char expected[120];
-    for (size_t i = 0; i < VERBS; ++i) known[i] = verb[i]->name;
+    for (size_t i = 0; i < VERBS; ++i)
+        known[i] = verb[i]->name;
     const char *near = sp_nearest(word, known, VERBS);
-    if (*word == '-') return sp_usage_fault(word, "an unknown option", "--help, --version, or a verb and its options");
+    if (*word == '-')
+        return sp_usage_fault(word, "an unknown option", "--help, --version, or a verb and its options");
     snprintf(expected, sizeof expected, "run, duct, show or new%s%s%s", near ? "; nearest is '" : "",
              near ? near : "", near ? "'" : "");
     return sp_usage_fault(word, "an unknown verb", expected);
@@ -50,8 +52,10 @@ static enum sp_status dispatch(int argc, char **argv)
     bool version = !strcmp(word, "--version");
     if (version || !strcmp(word, "--help") || !strcmp(word, "-h")) {
         if (argc > 2) return sp_usage_fault(argv[2], "one operand too many", "nothing behind it");
-        if (version) sp_version_print();
-        else sp_help(verb, VERBS);
+        if (version)
+            sp_version_print();
+        else
+            sp_help(verb, VERBS);
         return SP_OK;
     }
     for (size_t i = 0; i < VERBS; ++i)
@@ -84,5 +88,5 @@ int main(int argc, char **argv)
     setlocale(LC_NUMERIC, "C");
     gsl_set_error_handler_off();
     ut_set_error_message_handler(ut_ignore);
-    return close_output(dispatch(argc, argv));
+    return (int)close_output(dispatch(argc, argv));
 }

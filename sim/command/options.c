@@ -41,7 +41,8 @@ enum sp_status sp_usage_fault(const char *word, const char *what, const char *ex
     return SP_INPUT;
 }
 
-enum sp_status sp_speak(enum sp_status status, struct sp_complaints *complaints, struct sp_complaints *cautions)
+enum sp_status sp_speak(enum sp_status status, struct sp_complaints *complaints,
+                        struct sp_complaints *cautions)
 {
     sp_complaints_print(cautions, true, stderr);
     sp_complaints_print(complaints, false, stderr);
@@ -56,7 +57,8 @@ enum { WORD_MOST = 40 };
 static size_t distance(const char *a, const char *b)
 {
     size_t row[WORD_MOST + 1], n = strlen(b);
-    for (size_t j = 0; j <= n; ++j) row[j] = j;
+    for (size_t j = 0; j <= n; ++j)
+        row[j] = j;
     for (size_t i = 1; *a; ++a, ++i) {
         size_t diagonal = row[0];
         row[0] = i;
@@ -127,18 +129,33 @@ static bool keep_once(const char **to, const char *value, const char *word)
 static bool keep(struct sp_arguments *a, int letter, char *value, const char *word)
 {
     switch (letter) {
-    case 's': return append(&a->sets, value);
-    case 'v': return append(&a->speeds, value);
-    case 'o': return keep_once(&a->directory, value, word);
-    case 'e': return keep_once(&a->every, value, word);
-    case 'q': return keep_once(&a->heat, value, word);
-    case 'f': return keep_once(&a->fan, value, word);
-    case 'm': return keep_once(&a->mass, value, word);
-    case 'd': return keep_once(&a->displacement, value, word);
-    case 'p': return keep_once(&a->power, value, word);
-    case 'j': a->json = true; return true;
-    case 'x': a->exact = true; return true;
-    default: a->help = true; return true;
+    case 's':
+        return append(&a->sets, value);
+    case 'v':
+        return append(&a->speeds, value);
+    case 'o':
+        return keep_once(&a->directory, value, word);
+    case 'e':
+        return keep_once(&a->every, value, word);
+    case 'q':
+        return keep_once(&a->heat, value, word);
+    case 'f':
+        return keep_once(&a->fan, value, word);
+    case 'm':
+        return keep_once(&a->mass, value, word);
+    case 'd':
+        return keep_once(&a->displacement, value, word);
+    case 'p':
+        return keep_once(&a->power, value, word);
+    case 'j':
+        a->json = true;
+        return true;
+    case 'x':
+        a->exact = true;
+        return true;
+    default:
+        a->help = true;
+        return true;
     }
 }
 
@@ -163,8 +180,8 @@ static size_t offer(const struct sp_verb *verb, struct option out[OPTIONS + 1], 
     *letters++ = ':';
     for (size_t i = 0; i < OPTIONS; ++i) {
         if (!takes(verb, &option[i])) continue;
-        out[count++] = (struct option){option[i].name, option[i].argument ? required_argument : no_argument, NULL,
-                                       option[i].letter};
+        out[count++] = (struct option){option[i].name, option[i].argument ? required_argument : no_argument,
+                                       NULL, option[i].letter};
         if (!option[i].shorthand) continue;
         *letters++ = (char)option[i].letter;
         if (option[i].argument) *letters++ = ':';
@@ -179,9 +196,12 @@ static bool refuse(const struct sp_verb *verb, int got, const char *word, const 
 {
     const char letter[3] = {'-', (char)optopt, '\0'};
     bool by_name = !strncmp(last, "--", 2);
-    if (got == ':') sp_usage_fault(last, "nothing after it", "a value");
-    else if (optopt && by_name && by_letter(optopt)) sp_usage_fault(last, "a value", "none");
-    else return unknown_option(verb, optopt ? letter : word);
+    if (got == ':')
+        sp_usage_fault(last, "nothing after it", "a value");
+    else if (optopt && by_name && by_letter(optopt))
+        sp_usage_fault(last, "a value", "none");
+    else
+        return unknown_option(verb, optopt ? letter : word);
     return false;
 }
 
@@ -210,8 +230,10 @@ static bool read_operand(const struct sp_verb *verb, int argc, char **argv, stru
     snprintf(expected, sizeof expected, "swirlpot %s %s", verb->name, verb->operand);
     if (optind < argc) out->operand = argv[optind];
     if (optind + 1 == argc && *out->operand) return true;
-    if (optind < argc && *out->operand) sp_usage_fault(argv[optind + 1], "one operand too many", expected);
-    else sp_usage_fault(verb->name, "no operand", expected);
+    if (optind < argc && *out->operand)
+        sp_usage_fault(argv[optind + 1], "one operand too many", expected);
+    else
+        sp_usage_fault(verb->name, "no operand", expected);
     return false;
 }
 
@@ -248,8 +270,10 @@ bool sp_argument_quantity(struct sp_units *u, const struct sp_wanted *w, const c
     }
     bool read = sp_quantity_read(u, w->kind, text, si, why, sizeof why);
     if (read && *si >= w->least && *si <= w->most) return true;
-    if (read) snprintf(expected, sizeof expected, "%s", w->range);
-    else snprintf(expected, sizeof expected, "%s; %s", why, w->range);
+    if (read)
+        snprintf(expected, sizeof expected, "%s", w->range);
+    else
+        snprintf(expected, sizeof expected, "%s; %s", why, w->range);
     sp_complain(complaints, &at, found, expected, NULL);
     return false;
 }

@@ -7,7 +7,7 @@
 
 /* All options of all verbs; a verb takes those whose letter stands in its list. */
 struct sp_option {
-    int letter;           /* what it is called inside; also the short option where `shorthand` is set */
+    int letter; /* what it is called inside; also the short option where `shorthand` is set */
     bool shorthand;
     const char *name;     /* without dashes */
     const char *argument; /* what its value is called in the help; NULL: takes none */
@@ -18,7 +18,10 @@ struct sp_option {
 const struct sp_option *sp_option_at(size_t i); /* NULL past the last */
 
 /* A list of texts that point into argv. */
-struct sp_texts { char **list; size_t count; };
+struct sp_texts {
+    char **list;
+    size_t count;
+};
 
 /* A command line as understood. Values are NULL where not given. */
 struct sp_arguments {
@@ -47,11 +50,17 @@ enum sp_status sp_usage_fault(const char *word, const char *what, const char *ex
 const char *sp_nearest(const char *word, const char *const *known, size_t count);
 
 /* Reads the value of an option as a quantity within [least, most] of SI; complains otherwise. */
-struct sp_wanted { const char *option; enum sp_kind kind; double least, most; const char *range; };
+struct sp_wanted {
+    const char *option;
+    enum sp_kind kind;
+    double least, most;
+    const char *range;
+};
 bool sp_argument_quantity(struct sp_units *u, const struct sp_wanted *w, const char *text, double *si,
                           struct sp_complaints *complaints);
 
 /* Prints complaints and cautions, frees both, and returns `status`. */
-enum sp_status sp_speak(enum sp_status status, struct sp_complaints *complaints, struct sp_complaints *cautions);
+enum sp_status sp_speak(enum sp_status status, struct sp_complaints *complaints,
+                        struct sp_complaints *cautions);
 
 #endif

@@ -18,7 +18,8 @@ static const struct sp_wanted wanted_every = {"--every", SP_K_TIME, 1e-3, 86400.
 static bool prepare(struct job *j)
 {
     const struct sp_arguments *a = j->arguments;
-    bool good = !a->every || sp_argument_quantity(j->units, &wanted_every, a->every, &j->interval, &j->complaints);
+    bool good =
+        !a->every || sp_argument_quantity(j->units, &wanted_every, a->every, &j->interval, &j->complaints);
     j->design = sp_case_read(j->units, a->operand, a->sets.list, a->sets.count, SP_FOR_DRIVE, &j->complaints,
                              &j->cautions);
     if (!j->design || !good) return false;
@@ -36,15 +37,18 @@ static enum sp_status drive(struct job *j, struct sp_result *result)
     const struct sp_report report = {j->design, j->drive, result};
     struct sp_report_files *files = NULL;
     if (a->directory && !(files = sp_report_files_open(a->directory, &j->complaints))) return SP_INPUT;
-    struct sp_run_options options = {.interval = j->interval, .sink = files ? sp_report_files_sink(files) : NULL};
+    struct sp_run_options options = {.interval = j->interval,
+                                     .sink = files ? sp_report_files_sink(files) : NULL};
     enum sp_status status = sp_drive_run(j->drive, &options, result, &j->complaints);
     if (status != SP_OK && status != SP_NOT) {
         sp_report_files_abandon(files);
         return status;
     }
     if (files && !sp_report_files_finish(files, &report)) return SP_INPUT;
-    if (a->json) sp_report_json(&report, stdout);
-    else sp_report_text(&report, a->exact, stdout);
+    if (a->json)
+        sp_report_json(&report, stdout);
+    else
+        sp_report_text(&report, a->exact, stdout);
     return status;
 }
 
@@ -61,7 +65,10 @@ static enum sp_status run(const struct sp_arguments *a)
 }
 
 const struct sp_verb sp_verb_run = {
-    "run", "CASE", "soejx", "drives a case and tells whether it survives",
+    "run",
+    "CASE",
+    "soejx",
+    "drives a case and tells whether it survives",
     "Drives the case from end to end and says whether the coolant stays within its\n"
     "limits, where and when it was hottest, what happened on the way and what the\n"
     "cooling cost in drag. Status 0: survives; 1: some limit was broken.\n\n"

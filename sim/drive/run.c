@@ -94,8 +94,9 @@ static enum sp_status run_all(struct sp_run *r)
         if (s->time[k + 1] <= s->time[k]) continue; /* a jump: no time passes */
         bool jump = last == SIZE_MAX || last + 1 != k || s->flags[last] != s->flags[k];
         r->segment = k;
+        bool next_step = last != SIZE_MAX && s->step[last] != s->step[k];
+        if (jump || next_step) sp_run_announce(r, last == SIZE_MAX ? k : last);
         if (jump) {
-            sp_run_announce(r, last == SIZE_MAX ? k : last);
             if (!sp_run_look_again(r, last == SIZE_MAX) || !sp_run_track(r)) return SP_NUMERICS;
             sp_run_follow_fan(r);
             if (last != SIZE_MAX && !restart(r)) return SP_NUMERICS;

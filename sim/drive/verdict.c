@@ -106,6 +106,7 @@ enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_co
     out->measured.measured_time_to_85 = score.logged_time_to_85;
     out->measured.none_rms = score.none_rms;
     out->measured.none_warmup_rms = score.none_warmup_rms;
+    r->segment = sp_schedule_row(s, out->coolant.time);
     sp_run_event(r, SP_EV_PEAK, out->coolant.time, out->coolant.value);
     order_events(out);
     ledger(r, start, end);

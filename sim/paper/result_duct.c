@@ -14,9 +14,15 @@ enum sp_status sp_duct_point_solve(const struct sp_duct *duct, const struct sp_a
     struct sp_moist moist = sp_moist_air(air->ambient, air->pressure, air->humidity);
     memset(out, 0, sizeof *out);
     out->speed = speed;
-    out->in = (struct sp_duct_inputs){.speed = speed + air->wind, .wake = 1.0, .temperature = air->ambient,
-                                      .pressure = air->pressure, .R = moist.R, .cp = moist.cp,
-                                      .fan_speed = fan_speed, .heat_given = true, .heat = heat,
+    out->in = (struct sp_duct_inputs){.speed = speed + air->wind,
+                                      .wake = 1.0,
+                                      .temperature = air->ambient,
+                                      .pressure = air->pressure,
+                                      .R = moist.R,
+                                      .cp = moist.cp,
+                                      .fan_speed = fan_speed,
+                                      .heat_given = true,
+                                      .heat = heat,
                                       .wall = air->ambient};
     enum sp_status status = sp_duct_solve(duct, &out->in, &out->state);
     if (status == SP_OK) sp_duct_stations(duct, &out->in, &out->state, out->station, &out->losses);
@@ -33,17 +39,22 @@ static double velocity_ratio(const struct sp_duct_point *p)
 
 enum { LOSSES = 9 };
 
-struct loss { const char *key, *text; double pascal; };
+struct loss {
+    const char *key, *text;
+    double pascal;
+};
 
-static void list_losses(const struct sp_duct_losses *l, struct loss out[LOSSES])
+static void list_losses(const struct sp_duct_point *p, struct loss out[LOSSES])
 {
+    const struct sp_duct_losses *l = &p->losses;
+    double fan = p->state.mass_flow < 0.0 ? -l->fan : l->fan; /* what helps forwards hinders backwards */
     const struct loss all[LOSSES] = {{"unrecovered", "not recovered at the inlet", l->unrecovered},
                                      {"lip", "inlet lip", l->lip},
                                      {"screen", "screen", l->screen},
                                      {"diffuser", "diffuser", l->diffuser},
                                      {"core", "core", l->core},
                                      {"heating", "heating of the air", l->heating},
-                                     {"fan", "fan (a gain counts as minus)", l->fan},
+                                     {"fan", "fan (a gain counts as minus)", fan},
                                      {"exit", "exit", l->exit},
                                      {"exit_head", "head thrown away with the jet", l->exit_head}};
     memcpy(out, all, sizeof all);
@@ -65,8 +76,9 @@ static void print_stations(const struct sp_duct_point *p, FILE *to)
     for (int i = 0; i < SP_STATIONS; ++i) {
         const struct sp_station *s = &p->station[i];
         fprintf(to, "  %d %-15s%11.2f%11.2f%10.4f%13.2f%11.3f\n", i, station_name[i],
-                tidy(s->total_pressure - p->in.pressure, 0.005), tidy(s->static_pressure - p->in.pressure, 0.005),
-                s->density, s->temperature - SP_ZERO_C, tidy(s->velocity, 0.0005));
+                tidy(s->total_pressure - p->in.pressure, 0.005),
+                tidy(s->static_pressure - p->in.pressure, 0.005), s->density, s->temperature - SP_ZERO_C,
+                tidy(s->velocity, 0.0005));
     }
     fprintf(to, "  pressures relative to ambient, %.2f kPa\n", p->in.pressure / 1e3);
 }
@@ -74,15 +86,17 @@ static void print_stations(const struct sp_duct_point *p, FILE *to)
 static void print_loss(const char *text, double pascal, double head, FILE *to)
 {
     fprintf(to, "  %-38s%11.2f", text, tidy(pascal, 0.005));
-    if (head > 0.0) fprintf(to, "%11.1f %%\n", tidy(100.0 * pascal / head, 0.05));
-    else fprintf(to, "%11s\n", "-");
+    if (head > 0.0)
+        fprintf(to, "%11.1f %%\n", tidy(100.0 * pascal / head, 0.05));
+    else
+        fprintf(to, "%11s\n", "-");
 }
 
 static void print_losses(const struct sp_duct_point *p, FILE *to)
 {
     struct loss loss[LOSSES];
     double head = p->station[0].total_pressure - p->station[0].static_pressure, sum = 0.0;
-    list_losses(&p->losses, loss);
+    list_losses(p, loss);
     fprintf(to, "\n  %-38s%11s%13s\n", "where each pascal goes", "Pa", "share of q");
     for (int i = 0; i < LOSSES; ++i) {
         sum += loss[i].pascal;
@@ -101,8 +115,7 @@ static void print_sums(const struct sp_duct_point *p, FILE *to)
     fprintf(to, "  internal drag   %.3f N\n", tidy(p->state.drag, 5e-4));
     if (p->in.fan_speed > 0.0 || p->state.fan_pressure != 0.0)
         fprintf(to, "  fan pressure    %.2f Pa\n", tidy(p->state.fan_pressure, 0.005));
-    if (p->state.diffuser_stalled)
-        fputs("  The diffuser stalls: it opens too fast for its length.\n", to);
+    if (p->state.diffuser_stalled) fputs("  The diffuser stalls: it opens too fast for its length.\n", to);
     if (p->state.mass_flow < 0.0) fputs("  The air flows backwards: in at the exit, out of the inlet.\n", to);
 }
 
@@ -111,8 +124,10 @@ void sp_duct_point_text(const struct sp_duct_point *p, FILE *to)
     fprintf(to, "%.6g m/s (%.6g km/h)", p->speed, p->speed * 3.6);
     if (p->in.speed != p->speed) fprintf(to, ", %.6g m/s through the air", p->in.speed);
     fputs(p->in.fan_speed > 0.0 ? ", fan on" : ", fan off", to);
-    if (p->in.heat > 0.0) fprintf(to, ", %.6g kW to the air\n\n", p->in.heat / 1e3);
-    else fputs(", core cold\n\n", to);
+    if (p->in.heat > 0.0)
+        fprintf(to, ", %.6g kW to the air\n\n", p->in.heat / 1e3);
+    else
+        fputs(", core cold\n\n", to);
     print_stations(p, to);
     print_losses(p, to);
     print_sums(p, to);
@@ -136,7 +151,7 @@ static void write_station(struct sp_writer *w, int i, const struct sp_station *s
 static void write_point(struct sp_writer *w, const struct sp_duct_point *p)
 {
     struct loss loss[LOSSES];
-    list_losses(&p->losses, loss);
+    list_losses(p, loss);
     sp_write_open(w, NULL, '{');
     sp_write_number(w, "speed_m_s", p->speed);
     sp_write_number(w, "air_speed_m_s", p->in.speed);
@@ -151,10 +166,12 @@ static void write_point(struct sp_writer *w, const struct sp_duct_point *p)
     sp_write_number(w, "fan_pressure_Pa", p->state.fan_pressure);
     sp_write_bool(w, "diffuser_stalled", p->state.diffuser_stalled);
     sp_write_open(w, "stations", '[');
-    for (int i = 0; i < SP_STATIONS; ++i) write_station(w, i, &p->station[i]);
+    for (int i = 0; i < SP_STATIONS; ++i)
+        write_station(w, i, &p->station[i]);
     sp_write_close(w, ']');
     sp_write_open(w, "losses_Pa", '{');
-    for (int i = 0; i < LOSSES; ++i) sp_write_number(w, loss[i].key, loss[i].pascal);
+    for (int i = 0; i < LOSSES; ++i)
+        sp_write_number(w, loss[i].key, loss[i].pascal);
     sp_write_close(w, '}');
     sp_write_close(w, '}');
 }
@@ -164,7 +181,8 @@ void sp_duct_points_json(const struct sp_duct_point *p, size_t count, FILE *to)
     struct sp_writer w = {.to = to};
     sp_write_open(&w, NULL, '{');
     sp_write_open(&w, "points", '[');
-    for (size_t i = 0; i < count; ++i) write_point(&w, &p[i]);
+    for (size_t i = 0; i < count; ++i)
+        write_point(&w, &p[i]);
     sp_write_close(&w, ']');
     sp_write_close(&w, '}');
 }

@@ -99,12 +99,14 @@ static bool make_directory(struct sp_report_files *f)
     int error = errno;
     if (error == EEXIST && stat(f->directory, &is) == 0) {
         if (S_ISDIR(is.st_mode)) return true;
-        sp_complain(f->complaints, &at, "something that is no directory", "a directory, or nothing yet", NULL);
+        sp_complain(f->complaints, &at, "something that is no directory", "a directory, or nothing yet",
+                    NULL);
         return false;
     }
     char words[128];
     if (strerror_r(error, words, sizeof words) != 0) snprintf(words, sizeof words, "error %d", error);
-    sp_complain(f->complaints, &at, words, "a place where a directory can be made, in one that is there", NULL);
+    sp_complain(f->complaints, &at, words, "a place where a directory can be made, in one that is there",
+                NULL);
     return false;
 }
 
@@ -129,7 +131,8 @@ static bool begin_file(struct sp_report_files *f, int which, const char *name)
 
 static void let_go(struct sp_report_files *f)
 {
-    for (int i = 0; i < FILES; ++i) sp_file_abandon(&f->file[i]);
+    for (int i = 0; i < FILES; ++i)
+        sp_file_abandon(&f->file[i]);
     free(f->directory);
     free(f);
 }
@@ -137,7 +140,8 @@ static void let_go(struct sp_report_files *f)
 void sp_report_files_abandon(struct sp_report_files *f)
 {
     if (!f) return;
-    for (int i = 0; i < FILES; ++i) sp_file_abandon(&f->file[i]);
+    for (int i = 0; i < FILES; ++i)
+        sp_file_abandon(&f->file[i]);
     if (f->made) rmdir(f->directory); /* stays if someone has put something there */
     let_go(f);
 }
@@ -189,8 +193,11 @@ bool sp_report_files_finish(struct sp_report_files *f, const struct sp_report *r
     sp_report_events(r, f->file[EVENTS].stream);
     sp_report_json(r, f->file[RESULT].stream);
     bool good = all_written(f);
-    for (int i = 0; i < FILES && good; ++i) good = sp_file_commit(&f->file[i], f->complaints);
-    if (good) let_go(f);
-    else sp_report_files_abandon(f);
+    for (int i = 0; i < FILES && good; ++i)
+        good = sp_file_commit(&f->file[i], f->complaints);
+    if (good)
+        let_go(f);
+    else
+        sp_report_files_abandon(f);
     return good;
 }

@@ -5,7 +5,11 @@
 enum { LINES_MOST = 12, RANKS = 5 };
 
 /* A state that begins and ends; the lower the rank, the sooner it gets one of the lines. */
-struct span { enum sp_event_kind begins, ends; const char *text; int rank; };
+struct span {
+    enum sp_event_kind begins, ends;
+    const char *text;
+    int rank;
+};
 
 static const struct span span[] = {
     {SP_EV_BOILING, SP_EV_BOILING_ENDS, "coolant is past boiling", 0},
@@ -23,7 +27,11 @@ static const struct span span[] = {
 enum { SPANS = sizeof span / sizeof span[0], STEP_RANK = 2 };
 
 /* All spells of one span. */
-struct spells { size_t count, first; double total; bool to_the_end; };
+struct spells {
+    size_t count, first;
+    double total;
+    bool to_the_end;
+};
 
 static struct spells count_spells(const struct sp_result *r, const struct span *s)
 {
@@ -45,7 +53,10 @@ static struct spells count_spells(const struct sp_result *r, const struct span *
 }
 
 /* What the list says at one event; rank -1: nothing. */
-struct line { int rank; const struct span *span; };
+struct line {
+    int rank;
+    const struct span *span;
+};
 
 static struct line line_at(const struct sp_result *r, size_t i, const struct spells *spells)
 {
@@ -75,9 +86,12 @@ static void print_line(const struct sp_report *r, size_t i, const struct span *s
     struct sp_words what;
     char front[200];
     int indent = exact ? 46 : 36;
-    if (s) what = spell_text(s, &spells[s - span], exact);
-    else if (e->kind == SP_EV_STEP) what = sp_words_step(r->design, e->step);
-    else snprintf(what.text, sizeof what.text, "%s", sp_event_text(e->kind));
+    if (s)
+        what = spell_text(s, &spells[s - span], exact);
+    else if (e->kind == SP_EV_STEP)
+        what = sp_words_step(r->design, e->step);
+    else
+        snprintf(what.text, sizeof what.text, "%s", sp_event_text(e->kind));
     snprintf(front, sizeof front, exact ? "  %14.40s %11.40s %14.40s" : "  %12.40s %9.40s %8.40s",
              sp_words_time(e->time, exact).text, sp_words_distance(e->distance, exact).text,
              sp_words_degrees(e->coolant, exact).text);
@@ -89,7 +103,8 @@ void sp_report_happenings(const struct sp_report *r, bool exact, FILE *to)
     const struct sp_result *out = r->result;
     struct spells spells[SPANS];
     size_t of_rank[RANKS] = {0}, shown = 0, room[RANKS];
-    for (int s = 0; s < SPANS; ++s) spells[s] = count_spells(out, &span[s]);
+    for (int s = 0; s < SPANS; ++s)
+        spells[s] = count_spells(out, &span[s]);
     for (size_t i = 0; i < out->events; ++i) {
         struct line l = line_at(out, i, spells);
         if (l.rank >= 0) ++of_rank[l.rank];
@@ -106,6 +121,6 @@ void sp_report_happenings(const struct sp_report *r, bool exact, FILE *to)
         print_line(r, i, l.span, spells, exact, to);
     }
     size_t lines = of_rank[0] + of_rank[1] + of_rank[2] + of_rank[3] + of_rank[4];
-    if (lines > shown) fprintf(to, "  and %zu more: all events are in events.csv (-o DIR) and in the JSON\n",
-                               lines - shown);
+    if (lines > shown)
+        fprintf(to, "  and %zu more: all events are in events.csv (-o DIR) and in the JSON\n", lines - shown);
 }

@@ -13,7 +13,8 @@ static void write_place(struct sp_writer *w, const struct sp_peak *p)
     sp_write_text(w, "mark", p->mark);
 }
 
-static void write_peak(struct sp_writer *w, const char *name, const char *key, double value, const struct sp_peak *p)
+static void write_peak(struct sp_writer *w, const char *name, const char *key, double value,
+                       const struct sp_peak *p)
 {
     sp_write_open(w, name, '{');
     sp_write_number(w, key, value);

@@ -5,10 +5,17 @@
 #include "result_words.h"
 #include "result_write.h"
 
-struct telling { const struct sp_report *report; bool exact; FILE *to; };
+struct telling {
+    const struct sp_report *report;
+    bool exact;
+    FILE *to;
+};
 
 /* One limit: its key, what it is on, where the drive came to and the room left. */
-struct judged { const char *key, *what; double limit, came_to, left; };
+struct judged {
+    const char *key, *what;
+    double limit, came_to, left;
+};
 
 enum { LIMITS = 4 };
 
@@ -36,7 +43,8 @@ static void say_headline(const struct telling *t)
     for (int i = 0; i < LIMITS; ++i) {
         const struct judged *j = &all[i];
         if (!out->limit || strcmp(out->limit, j->key)) continue;
-        struct sp_words left = sp_words_kelvin(j->left, t->exact), came = sp_words_kelvin(j->came_to, t->exact);
+        struct sp_words left = sp_words_kelvin(j->left, t->exact),
+                        came = sp_words_kelvin(j->came_to, t->exact);
         if (i < LIMITS - 1)
             sp_say(t->to, 0, "", "%s: %s peaks at %s, %s %s its limit of %s.", verdict, j->what,
                    sp_words_degrees(j->came_to, t->exact).text, left.text, j->left < 0.0 ? "over" : "under",
@@ -79,8 +87,8 @@ static void say_limits(const struct telling *t)
             snprintf(missing + used, sizeof missing - used, "%s%s", used ? ", " : "", name[i]);
             continue;
         }
-        struct sp_words limit = i == LIMITS - 1 ? sp_words_kelvin(j->limit, t->exact)
-                                                : sp_words_degrees(j->limit, t->exact);
+        struct sp_words limit =
+            i == LIMITS - 1 ? sp_words_kelvin(j->limit, t->exact) : sp_words_degrees(j->limit, t->exact);
         bool binds = t->report->result->limit && !strcmp(t->report->result->limit, j->key);
         sp_say(t->to, SP_LABEL_WIDTH, label, "%s %s: %s %s%s", name[i], limit.text,
                sp_words_kelvin(j->left, t->exact).text, j->left < 0.0 ? "beyond it" : "left",
@@ -97,7 +105,8 @@ static void say_boiling(const struct telling *t)
            sp_words_kelvin(p->value, t->exact).text, p->value < 0.0 ? "past" : "short of",
            sp_words_place(t->report->design, p, t->exact).text);
     if (p->value >= 0.0) return;
-    sp_say(t->to, SP_LABEL_WIDTH, "", "Past boiling the heat balance of the liquid goes on: read such "
+    sp_say(t->to, SP_LABEL_WIDTH, "",
+           "Past boiling the heat balance of the liquid goes on: read such "
            "temperatures as \"it boils\", not as degrees.");
 }
 
@@ -105,9 +114,11 @@ static void say_temperatures(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
     say_peak(t, "Coolant peak", &out->coolant);
-    sp_say(t->to, SP_LABEL_WIDTH, "", "at most %s over ambient", sp_words_kelvin(out->over_ambient, t->exact).text);
+    sp_say(t->to, SP_LABEL_WIDTH, "", "at most %s over ambient",
+           sp_words_kelvin(out->over_ambient, t->exact).text);
     if (out->time_over_limit > 0.0)
-        sp_say(t->to, SP_LABEL_WIDTH, "", "over its limit for %s", sp_words_time(out->time_over_limit, t->exact).text);
+        sp_say(t->to, SP_LABEL_WIDTH, "", "over its limit for %s",
+               sp_words_time(out->time_over_limit, t->exact).text);
     say_peak(t, "Gauge peak", &out->gauge);
     say_peak(t, "Metal peak", &out->metal);
     say_limits(t);
@@ -122,7 +133,8 @@ static void say_fan(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
     size_t times = 0;
-    for (size_t i = 0; i < out->events; ++i) times += out->event[i].kind == SP_EV_FAN_ON;
+    for (size_t i = 0; i < out->events; ++i)
+        times += out->event[i].kind == SP_EV_FAN_ON;
     if (!t->report->design->duct.fan.fitted)
         sp_say(t->to, SP_LABEL_WIDTH, "Fan", "none");
     else if (!times)
@@ -136,10 +148,12 @@ static void say_fan(const struct telling *t)
 static void say_heat(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
-    sp_say(t->to, SP_LABEL_WIDTH, "Heat", "%s in, %s out by the core, %s by skin, %s stored; ledger closes to %.1g",
-           sp_words_energy(out->ledger.in, t->exact).text, sp_words_energy(out->ledger.out_air, t->exact).text,
-           sp_words_energy(out->ledger.out_skin, t->exact).text, sp_words_energy(out->ledger.stored, t->exact).text,
-           fabs(out->ledger.error));
+    sp_say(t->to, SP_LABEL_WIDTH, "Heat",
+           "%s in, %s out by the core, %s by skin, %s stored; ledger closes to %.1g",
+           sp_words_energy(out->ledger.in, t->exact).text,
+           sp_words_energy(out->ledger.out_air, t->exact).text,
+           sp_words_energy(out->ledger.out_skin, t->exact).text,
+           sp_words_energy(out->ledger.stored, t->exact).text, fabs(out->ledger.error));
 }
 
 static void say_drag(const struct telling *t)
@@ -159,19 +173,22 @@ static void say_work(const struct telling *t)
 {
     struct sp_work w = sp_drive_work(t->report->drive);
     if (!w.from_road) return;
-    sp_say(t->to, SP_LABEL_WIDTH, "Work", "power comes from the road load: %s at the wheels = %s speed + %s height "
-           "+ %s drag + %s rolling + %s brakes", sp_words_energy(w.wheel, t->exact).text,
-           sp_words_energy(w.kinetic, t->exact).text, sp_words_energy(w.potential, t->exact).text,
-           sp_words_energy(w.drag, t->exact).text, sp_words_energy(w.rolling, t->exact).text,
-           sp_words_energy(w.brakes, t->exact).text);
+    sp_say(t->to, SP_LABEL_WIDTH, "Work",
+           "power comes from the road load: %s at the wheels = %s speed + %s height "
+           "+ %s drag + %s rolling + %s brakes",
+           sp_words_energy(w.wheel, t->exact).text, sp_words_energy(w.kinetic, t->exact).text,
+           sp_words_energy(w.potential, t->exact).text, sp_words_energy(w.drag, t->exact).text,
+           sp_words_energy(w.rolling, t->exact).text, sp_words_energy(w.brakes, t->exact).text);
 }
 
 static void say_measured(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
     if (!isfinite(out->measured.rms)) return;
-    sp_say(t->to, SP_LABEL_WIDTH, "Measured", "gauge against the log: %.2f K rms; no model at all, a straight line "
-           "to the set point: %.2f K", out->measured.rms, out->measured.none_rms);
+    sp_say(t->to, SP_LABEL_WIDTH, "Measured",
+           "gauge against the log: %.2f K rms; no model at all, a straight line "
+           "to the set point: %.2f K",
+           out->measured.rms, out->measured.none_rms);
     if (isfinite(out->measured.warmup_rms))
         sp_say(t->to, SP_LABEL_WIDTH, "", "over the warm-up %.2f K; no model at all: %.2f K",
                out->measured.warmup_rms, out->measured.none_warmup_rms);
@@ -209,6 +226,7 @@ void sp_report_text(const struct sp_report *r, bool exact, FILE *to)
     say_measured(&t);
     sp_report_happenings(r, exact, to);
     fputc('\n', to);
-    sp_say(to, 0, "", "See the cautions in README.md: a prediction is no substitute for a temperature sensor and "
+    sp_say(to, 0, "",
+           "See the cautions in README.md: a prediction is no substitute for a temperature sensor and "
            "an alarm.");
 }

@@ -75,8 +75,8 @@ static const char *base_name(const char *path)
 
 struct sp_words sp_words_step(const struct sp_design *d, size_t step)
 {
-    static const char *const kind[] = {[SP_STEP_TRACE] = "trace", [SP_STEP_IDLE] = "idle",
-                                       [SP_STEP_HOLD] = "hold", [SP_STEP_SOAK] = "soak"};
+    static const char *const kind[] = {
+        [SP_STEP_TRACE] = "trace", [SP_STEP_IDLE] = "idle", [SP_STEP_HOLD] = "hold", [SP_STEP_SOAK] = "soak"};
     if (step >= d->steps) return words("drive[%zu]", step);
     const struct sp_step *s = &d->step[step];
     if (s->kind != SP_STEP_TRACE || !s->trace) return words("drive[%zu] (%s)", step, kind[s->kind]);
@@ -90,6 +90,6 @@ struct sp_words sp_words_place(const struct sp_design *d, const struct sp_peak *
     char mark[128] = "";
     if (p->mark) sp_plain(mark, sizeof mark, p->mark, 24);
     return words("at %s, %s, in %s%s%s", sp_words_time(p->time, exact).text,
-                 sp_words_distance(p->distance, exact).text, sp_words_step(d, p->step).text, p->mark ? ", " : "",
-                 mark);
+                 sp_words_distance(p->distance, exact).text, sp_words_step(d, p->step).text,
+                 p->mark ? ", " : "", mark);
 }

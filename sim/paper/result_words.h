@@ -6,14 +6,16 @@
 #include "swirlpot/result.h"
 
 /* A short text by value, so that several fit into one call of printf. */
-struct sp_words { char text[160]; };
+struct sp_words {
+    char text[160];
+};
 
 /* `exact`: more digits instead of whole degrees, minutes and so on. */
-struct sp_words sp_words_degrees(double kelvin, bool exact);  /* "105 degC" */
+struct sp_words sp_words_degrees(double kelvin, bool exact);    /* "105 degC" */
 struct sp_words sp_words_kelvin(double difference, bool exact); /* "5 K", "less than 1 K"; its amount only */
-struct sp_words sp_words_time(double seconds, bool exact);    /* "12 min 31 s" */
-struct sp_words sp_words_distance(double metres, bool exact); /* "3.42 km" */
-struct sp_words sp_words_energy(double joules, bool exact);   /* "1.23 MJ" */
+struct sp_words sp_words_time(double seconds, bool exact);      /* "12 min 31 s" */
+struct sp_words sp_words_distance(double metres, bool exact);   /* "3.42 km" */
+struct sp_words sp_words_energy(double joules, bool exact);     /* "1.23 MJ" */
 struct sp_words sp_words_step(const struct sp_design *d, size_t step); /* "drive[1] (trace hill.csv)" */
 struct sp_words sp_words_place(const struct sp_design *d, const struct sp_peak *p, bool exact);
 

@@ -91,8 +91,10 @@ void sp_write_number(struct sp_writer *w, const char *name, double x)
 void sp_write_text(struct sp_writer *w, const char *name, const char *text)
 {
     begin(w, name);
-    if (text) put_quoted(w->to, text);
-    else fputs("null", w->to);
+    if (text)
+        put_quoted(w->to, text);
+    else
+        fputs("null", w->to);
 }
 
 void sp_write_bool(struct sp_writer *w, const char *name, bool x)
@@ -107,7 +109,8 @@ void sp_write_bool(struct sp_writer *w, const char *name, bool x)
 static size_t columns_of(const char *text, size_t n)
 {
     size_t columns = 0;
-    for (size_t i = 0; i < n; ++i) columns += ((unsigned char)text[i] & 0xc0U) != 0x80U;
+    for (size_t i = 0; i < n; ++i)
+        columns += ((unsigned char)text[i] & 0xc0U) != 0x80U;
     return columns;
 }
 

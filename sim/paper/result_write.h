@@ -15,9 +15,9 @@ struct sp_writer {
 };
 
 /* `name` NULL: a member of an array, or the document itself. */
-void sp_write_open(struct sp_writer *w, const char *name, char bracket); /* '{' or '[' */
-void sp_write_close(struct sp_writer *w, char bracket);                  /* '}' or ']' */
-void sp_write_number(struct sp_writer *w, const char *name, double x);   /* null when not finite */
+void sp_write_open(struct sp_writer *w, const char *name, char bracket);     /* '{' or '[' */
+void sp_write_close(struct sp_writer *w, char bracket);                      /* '}' or ']' */
+void sp_write_number(struct sp_writer *w, const char *name, double x);       /* null when not finite */
 void sp_write_text(struct sp_writer *w, const char *name, const char *text); /* NULL: null */
 void sp_write_bool(struct sp_writer *w, const char *name, bool x);
 

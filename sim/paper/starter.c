@@ -29,10 +29,8 @@ static const struct {
     int diameter, watt;
     double shutoff, free_flow;
 } fans[] = {
-    {255, 95, 143.0, 0.31},
-    {305, 135, 152.0, 0.46},
-    {350, 185, 160.0, 0.63},
-    {400, 270, 185.0, 0.92},
+    {165, 45, 110.0, 0.10},  {205, 65, 125.0, 0.18},  {255, 95, 143.0, 0.31},
+    {305, 135, 152.0, 0.46}, {350, 185, 160.0, 0.63}, {400, 270, 185.0, 0.92},
 };
 
 static double rounded(double x, double step)
@@ -70,8 +68,8 @@ static struct guess guess_all(const struct sp_starter *s)
     guess_engine(&g, litres, kilowatts, s->mass);
     /* Face over the heat of fast driving, from cars that hold 60 to 70 K over ambient. */
     g.face = 4.8e-3 * g.fraction * g.cruise;
-    g.height = rounded(1e3 * sqrt(g.face / 1.45), 10.0);
-    g.width = rounded(1e6 * g.face / g.height, 10.0);
+    g.height = fmax(150.0, rounded(1e3 * sqrt(g.face / 1.45), 10.0));
+    g.width = fmax(150.0, rounded(1e6 * g.face / g.height, 10.0));
     g.face = 1e-6 * g.width * g.height;
     g.inlet = rounded(0.32 * g.face * 1e4, 5.0);
     g.exit = rounded(0.56 * g.face * 1e4, 5.0);

@@ -72,7 +72,7 @@ void sp_curve_free(struct sp_curve *c)
 double sp_curve_at(const struct sp_curve *c, double n, double flow)
 {
     if (flow < n * c->first) return n * n * c->shutoff + n * c->slope0 * flow;
-    if (flow >= n * c->last) return n * n * c->tail_a - c->tail_c * flow * flow;
+    if (!(flow < n * c->last)) return n * n * c->tail_a - c->tail_c * flow * flow; /* NaN too: it stays one */
     double f = 0.0;
     gsl_interp_eval_e(c->interp, c->flow, c->pressure, flow / n, NULL, &f);
     return n * n * f;

@@ -28,6 +28,16 @@ void sp_fan_free(struct sp_fan_ready *f)
     sp_curve_free(&f->curve);
 }
 
+/* A static curve that ends flatter than the outlet head grows would have total pressure rise with flow for
+ * ever, and a standing fan drive the air: past the curve's end total pressure is at most that of the end. */
+static double most_total(const struct sp_fan_ready *f, double speed, double flow, double density)
+{
+    double end = speed * f->curve.free_flow;
+    if (flow <= end * f->design->count) return INFINITY;
+    double v = end * f->design->count / f->annulus;
+    return density / catalogue_density * sp_curve_at(&f->curve, speed, end) + 0.5 * density * v * v;
+}
+
 double sp_fan_pressure(const struct sp_fan_ready *f, double speed, double mass_flow, double density)
 {
     if (!f->design) return 0.0;
@@ -36,7 +46,7 @@ double sp_fan_pressure(const struct sp_fan_ready *f, double speed, double mass_f
     double windmill = f->design->windmill_loss * head;
     double added = density / catalogue_density * sp_curve_at(&f->curve, fmax(speed, 0.0), flow / f->design->count);
     if (flow < 0.0) return added + windmill;
-    if (f->design->static_basis) added += head;
+    if (f->design->static_basis) added = fmin(added + head, most_total(f, fmax(speed, 0.0), flow, density));
     return fmax(added, -windmill);
 }
 

@@ -71,6 +71,20 @@ close "H5 exit velocity" "$(number exit_velocity_m_s)" 16.32565 $tolerance
 want 0 duct case.json --json --speed "30 m/s" --set 'air.wind=10 m/s'
 close "B2 with wind" "$(number face_velocity_m_s)" "$(awk 'BEGIN { printf "%.9g", 40 * 0.264906 }')" $tolerance
 
+# Moist air at 20 degC, 101325 Pa, 50 %: 1.1988668 kg/m3 (dry 1.2041063), vapour by the Magnus form; 4300 m of
+# the US Standard Atmosphere 1976, at its own 260.2189 K: 0.7937550 kg/m3.
+want 0 duct case.json --json --speed "40 m/s" --set 'air={"ambient": "20 degC", "pressure": "101325 Pa",
+    "humidity": "50 %"}'
+close "moist air" "$(number density_kg_m3)" 1.1988668 1e-6
+want 0 duct case.json --json --speed "40 m/s" --set 'air={"ambient": "260.2189 K", "altitude": "4300 m"}'
+close "thin air" "$(number density_kg_m3)" 0.7937550 1e-6
+
+# Wind from behind faster than the car: the air flows backwards, and no loss is a gain.
+want 0 duct case.json --json --speed "0 m/s" --set 'air.wind=-10 m/s'
+awk -v m="$(number mass_flow_kg_s)" 'BEGIN { exit !(m < 0) }' || fail "no reverse flow: $(number mass_flow_kg_s)"
+want 0 duct case.json --json --speed "10 m/s" --set 'air.wind=-10 m/s'
+[ "$(number velocity_ratio)" = null ] || fail "velocity ratio in still air is not null"
+
 # Fan at a standstill: 250 Pa (1 - (Q/0.8)^2), K = 10 on 0.2 m2, lip 0.5 on 0.08 m2, exit 0.12 m2.
 cat >fan.json <<'CASE'
 { "car": { "duct": {

@@ -30,6 +30,18 @@ awk -F, 'NR == 1 { n = NF; next }
     { last = $1; for (i = 1; i <= NF; ++i) if ($i !~ /^(-?[0-9.]+(e[-+][0-9]+)?)?$/ || $i == "-0") {
         print "cell " i " of row " NR ": " $i; exit 1 } }
     END { if (last != "510") { print "ends at " last; exit 1 } }' one/series.csv >why || fail "series: $(cat why)"
+# What it holds is what the result says: peak, speed of the hold, heat by the trapezoid of the rows.
+cp one/result.json out
+awk -F, -v peak="$(number coolant_degC)" -v heat="$(number heat_in_J)" '
+    NR == 1 { for (i = 1; i <= NF; ++i) { split($i, word, " "); at[word[1]] = i } next }
+    { t = $1; q = $at["heat_in"]; T = $at["coolant_engine_out"]
+      if (T > top) top = T
+      if (NR > 2) sum += (t - before) * (q + qbefore) / 2
+      before = t; qbefore = q
+      if (t == 200 && ($at["speed"] - 110) ^ 2 > 1e-9) { print "speed in the hold: " $at["speed"]; exit 1 } }
+    END { if (top > peak + 1e-6 || top < peak - 0.1) { print "peak " top " against " peak; exit 1 }
+          if ((sum * 1000 / heat - 1) ^ 2 > 4e-6) { print "heat " sum * 1000 " against " heat; exit 1 } }
+    ' one/series.csv >why || fail "series against result: $(cat why)"
 head -n 1 one/events.csv | grep -q '^time \[s\],what,' || fail "headings: $(head -n 1 one/events.csv)"
 grep -q 'coolant peak' one/events.csv || fail "no peak in events.csv"
 [ "$(grep -c '"what"' one/result.json)" -eq "$(($(wc -l <one/events.csv) - 1))" ] ||
@@ -65,6 +77,17 @@ if ! touch shut/probe 2>/dev/null; then
     says err "shut/below"
 else
     rm -f shut/probe # whoever runs this may write anywhere
+fi
+# A disk that fills up, played by a limit on the size of files: 8 blocks of 512 bytes hold no series.
+if (trap '' XFSZ && ulimit -f 8) 2>/dev/null; then
+    # shellcheck disable=SC3045
+    (trap '' XFSZ; ulimit -f 8; exec "$command" run case.json -o full >out 2>err)
+    [ $? -eq 2 ] || fail "a full disk is no fault"
+    says err "full/series.csv"
+    [ -e full ] && fail "a full disk leaves something behind: $(ls -A full)"
+    mkdir kept && echo old >kept/series.csv
+    (trap '' XFSZ; ulimit -f 8; exec "$command" run case.json -o kept >out 2>err)
+    [ "$(cat kept/*)" = old ] || fail "a full disk touched what was there: $(ls -A kept)"
 fi
 # What was there before stays when a write fails.
 cp one/result.json before

@@ -41,7 +41,7 @@ is_json out
 [ "$(number verdict)" = '"overheats"' ] || fail "verdict $(number verdict)"
 [ "$(number limit)" = '"limits.coolant"' ] || fail "limit $(number limit)"
 says out '"what": "coolant over limit"'
-close "time over limit is positive" "$(awk -v t="$(number time_over_limit_s)" 'BEGIN { print t > 0 }')" 1 0
+close "time over limit is positive" "$(awk -v t="$(number time_over_limit_s)" 'BEGIN { print (t > 0) }')" 1 0
 want 1 run case.json --set 'limits.coolant=90 degC'
 head -n 1 out | grep -q '^Overheats: ' || fail "first line: $(head -n 1 out)"
 
@@ -66,6 +66,24 @@ want 0 run case.json --json --set 'air.pressure=79501.425 Pa'
 close "pressure for altitude" "$(number heat_out_J)" "$(sed -n 's/^ *"heat_out_J": \([^,]*\),$/\1/p' high)" 1e-6
 want 0 run case.json --json --set 'air.pressure=90 kPa' --set 'air.altitude=200 m'
 cmp -s out one || fail "altitude does not drop a pressure set before"
+
+# A measured coolant is compared, with what no model at all would say beside it; marks name the places.
+awk 'BEGIN { print "time [s],speed [km/h],power [kW],engine_speed [rpm],coolant [degC],mark"
+    for (t = 0; t <= 300; t += 5) printf "%d,80,25,3500,%.2f,%s\n", t, 92 - 50 * exp(-t / 80),
+        t < 200 ? "Lower, \"wet\" hairpin" : "Top" }' | sed 's/"wet"/""wet""/; s/Lower.*hairpin/"&"/' >trace.csv
+set -- --set 'drive=[{"trace": "trace.csv"}]' --set 'start.coolant=42 degC'
+want 0 run case.json --json "$@" -o traced
+is_json out
+# Warm-up as drawn: 92 - 50 exp(-t/80) passes 85 at t = 80 ln(50/7).
+close "logged time to 85 degC" "$(number measured_time_to_85_s)" 157.29 1e-2
+for name in rms_K warmup_rms_K no_model_rms_K no_model_warmup_rms_K; do
+    close "$name" "$(awk -v x="$(number $name)" 'BEGIN { print (x > 0) }')" 1 0
+done
+says out '"mark": "Lower, \"wet\" hairpin"'
+says traced/events.csv ',"Lower, ""wet"" hairpin"'
+want 0 run case.json "$@"
+says out "no model at all"
+says out '(trace.csv), Top'
 
 # Other drives by --set.
 want 0 run case.json --json --set 'drive[2].repeat=2'

@@ -178,6 +178,19 @@ static size_t splice(uint8_t *data, size_t size, size_t room, size_t from, size_
     return size - (to - from) + length;
 }
 
+/* Another number before the same unit. */
+static size_t renumber(uint8_t *data, size_t size, size_t room, size_t from, size_t to, unsigned pick)
+{
+    static const char *const numbers[] = {"0",     "-1",  "1e-9",  "1e-3", "0.1",    "0.9",   "1.1",
+                                          "2",     "7",   "33",    "60",   "99",     "150",   "1000",
+                                          "99999", "1e9", "1e300", "-40",  "273.15", "1e-300"};
+    const char *text = numbers[pick % (sizeof numbers / sizeof *numbers)];
+    size_t end = from;
+    while (end < to && strchr("+-.0123456789", data[end]))
+        ++end;
+    return end == from ? 0 : splice(data, size, room, from, end, text, strlen(text));
+}
+
 /* One text in quotes gives way to another of the same file, or to one of these. */
 size_t LLVMFuzzerCustomMutator(uint8_t *data, size_t size, size_t room, unsigned seed)
 {
@@ -227,6 +240,10 @@ size_t LLVMFuzzerCustomMutator(uint8_t *data, size_t size, size_t room, unsigned
         uint8_t copy[300];
         memcpy(copy, data + other, end - other);
         return splice(data, size, room, from, to, copy, end - other);
+    }
+    if ((seed & 3) == 2) {
+        size_t changed = renumber(data, size, room, from + 1, to, b);
+        if (changed) return changed;
     }
     const char *text = pool[b % (sizeof pool / sizeof *pool)];
     return splice(data, size, room, from, to, text, strlen(text));
