@@ -123,7 +123,7 @@ static void say_temperatures(const struct telling *t)
     say_peak(t, "Metal peak", &out->metal);
     say_limits(t);
     say_boiling(t);
-    if (out->liquid_lost > 0.0)
+    if (out->liquid_lost >= 1e-6) /* less than a millilitre is the seat's own weeping */
         sp_say(t->to, SP_LABEL_WIDTH, "Coolant lost", "%.2g l through the cap", out->liquid_lost * 1e3);
 }
 
