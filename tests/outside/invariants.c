@@ -342,8 +342,9 @@ static void random_drives(void **state)
     assert_int_equal(violations, 0);
 }
 
-/* With the fan and the power fixed. The thermostat must be fixed too: a hotter day warms the wax earlier, and
- * a valve that opens earlier may well clip the overshoot that its lag would have made. */
+/* With the fan and the power fixed. Two more things are held, for a hotter day may help through them: a wax
+ * that warms earlier opens earlier, and may clip the overshoot its lag would have made (no thermostat here);
+ * thick cold coolant thins, pumps better and leaves laminar flow (its properties are frozen here). */
 static void hotter_day_never_cooler(void **state)
 {
     (void)state;
@@ -353,6 +354,7 @@ static void hotter_day_never_cooler(void **state)
         struct drawn x;
         draw(first + i, &x);
         x.d.thermostat.none = true;
+        fixture_freeze(&x.d.coolant.fluid);
         x.d.duct.fan.law = i % 2 ? SP_FAN_ALWAYS : SP_FAN_NEVER;
         double start = x.d.start.coolant, radiator = x.d.start.radiator;
         struct fixture_drive cool = fixture_run(&fixture, &x.d, 0.0, 1e-7);
@@ -361,7 +363,7 @@ static void hotter_day_never_cooler(void **state)
         x.d.start.radiator = radiator;
         struct fixture_drive hot = fixture_run(&fixture, &x.d, 0.0, 1e-7);
         expect(&x, cool.status <= SP_NOT && hot.status <= SP_NOT, "statuses %d, %d", (int)cool.status, (int)hot.status);
-        sp_complaints_print(&cool.complaints, false, stderr);
+        sp_complaints_print(&hot.complaints, false, stderr);
         expect(&x, hot.result.coolant.value >= cool.result.coolant.value - 1e-3, "peak %.6f K, hotter day %.6f K",
                cool.result.coolant.value, hot.result.coolant.value);
         fixture_drop(&cool);
@@ -414,11 +416,14 @@ static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *
 {
     struct outer o = outer_of(x, in);
     double way = s->mass_flow >= 0.0 ? 1.0 : -1.0;
+    /* A fan behind the core stalls against a wind from behind over a band of winds: cold air from behind gives
+     * it more pressure than hot air from the core. Within the band the flow is nil and nothing balances. */
+    if (fabs(s->mass_flow) < 1e-9) return;
     double lost = l->lip + l->screen + l->diffuser + l->core + l->heating + l->exit +
                   (way > 0.0 ? l->exit_head : 0.0);
     double left = o.front - o.back - l->fan - way * lost;
     double size = fabs(o.front) + fabs(o.back) + fabs(l->fan) + lost;
-    expect(x, fabs(left) <= 1e-9 * size, "balance %g Pa of %g, m %g kg/s at %g m/s", left, size, s->mass_flow, in->speed);
+    expect(x, fabs(left) <= 1e-9 * size + 1e-9, "balance %g Pa of %g, m %g kg/s at %g m/s", left, size, s->mass_flow, in->speed);
     /* Stations in the order of the flow; between them total pressure falls, but for the fan's own place. */
     int fan_at = x->d.duct.fan.before_core ? 2 : 3;
     double give = 1e-9 * in->pressure;
@@ -456,8 +461,17 @@ static void check_heat(const struct drawn *x, const struct sp_duct_inputs *in, c
     expect(x, s->effectiveness >= 0.0 && s->effectiveness <= 1.0, "effectiveness %g", s->effectiveness);
 }
 
+/* A running fan that the reversed flow reaches hotter than the forward one (or, with a cold core, colder) is
+ * weaker in reverse: near nil flow both ways of flowing may then hold themselves up. */
+static bool two_ways(const struct drawn *x, const struct sp_duct_inputs *in)
+{
+    const struct sp_fan *fan = &x->d.duct.fan;
+    return fan->fitted && in->fan_speed > 0.0 && (fan->before_core ? in->wall > in->temperature : in->wall < in->temperature);
+}
+
 static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
 {
+    if (two_ways(x, in)) return;
     struct drawn less = *x;
     less.d.duct.exit.area *= 0.9;
     struct sp_duct *d = build(&less);
@@ -470,7 +484,7 @@ static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in,
 
 /* Hotter core, thinner air: less mass always. The exit's jet is faster where ram drives: there volume flow
  * squared goes with the temperature ratio over losses that grow more slowly. A fan is a machine of constant
- * volume and may lose exit speed, so it stands still for that. */
+ * volume and may lose exit speed, and so may laminar fins, for hot air is more viscous: both are left out. */
 static void hotter_core(const struct drawn *x, const struct sp_duct *d, const struct sp_duct_inputs *in,
                         const struct sp_duct_state *s)
 {
@@ -480,7 +494,9 @@ static void hotter_core(const struct drawn *x, const struct sp_duct *d, const st
     expect(x, sp_duct_solve(d, &hot, &h) == SP_OK, "a hotter core");
     if (!(s->mass_flow > 1e-3)) return;
     expect(x, h.mass_flow < s->mass_flow, "hotter core %.9g kg/s, before %.9g", h.mass_flow, s->mass_flow);
-    if (in->fan_speed > 0.0) return;
+    const struct sp_core *c = &x->d.duct.core;
+    bool viscous = c->drop_law == SP_DROP_FINS || (c->drop_law != SP_DROP_COEFFICIENT && isfinite(c->at_temperature));
+    if (in->fan_speed > 0.0 || viscous) return;
     expect(x, h.exit_velocity > s->exit_velocity, "hotter core %.9g m/s, before %.9g", h.exit_velocity, s->exit_velocity);
 }
 
@@ -489,6 +505,7 @@ static void same_from_elsewhere(const struct drawn *x, const struct sp_duct *d, 
                                 const struct sp_duct_state *s, struct sp_guess *guess)
 {
     struct sp_duct_state again;
+    if (two_ways(x, in)) return;
     expect(x, sp_duct_solve_from(d, in, guess, &again) == SP_OK, "from elsewhere");
     expect(x, fabs(again.mass_flow - s->mass_flow) <= 1e-9 * fabs(s->mass_flow) + 1e-11,
            "%.12g kg/s, from elsewhere %.12g", s->mass_flow, again.mass_flow);
