@@ -6,6 +6,7 @@
 #include "part/cells.h"
 #include "part/engine.h"
 
+static const double quickest_gauge = 0.05; /* s: a lag of nil would be no ODE */
 static const double full_skin_speed = 100.0 / 3.6; /* m/s at which the moving skin loss is reached */
 
 /* ---- coupling -------------------------------------------------------------------------------------- */
@@ -103,12 +104,20 @@ double sp_circuit_fan_wish(const struct sp_circuit *c, const struct sp_inputs *i
     }
 }
 
+/* Electrical power [W] of an electric pump, with its speed cubed. */
+static double pump_power(const struct sp_design *d, const struct sp_inputs *in)
+{
+    if (!d->pump.electric) return 0.0;
+    double speed = sp_pump_speed(d, 0.0, in->flags & SP_FLAG_ENGINE, in->flags & SP_FLAG_PUMP);
+    return d->pump.power * speed * speed * speed;
+}
+
 double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs *in, const double *y)
 {
     const struct sp_design *d = c->design;
     double load = 0.0;
     if (in->flags & SP_FLAG_ENGINE)
-        load = sp_fan_power(&d->duct.fan, y[SP_Y_FAN]) / d->electrics.alternator_efficiency;
+        load = (sp_fan_power(&d->duct.fan, y[SP_Y_FAN]) + pump_power(d, in)) / d->electrics.alternator_efficiency;
     double gas = in->in[SP_IN_HEAT_GAS] + load * in->in[SP_IN_HEAT_SLOPE];
     return gas * sp_engine_gas_factor(&d->engine, y[SP_Y_METAL]) + in->in[SP_IN_HEAT_FRICTION];
 }
@@ -211,7 +220,7 @@ void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, co
 
     dydt[SP_Y_WAX] = (y[SP_Y_JACKET] - y[SP_Y_WAX]) * sp_thermostat_rate(&d->thermostat, k->loop.pump, c->reference_flow);
     dydt[SP_Y_FAN] = d->duct.fan.fitted ? (sp_circuit_fan_wish(c, in, modes, y) - y[SP_Y_FAN]) / d->duct.fan.spin_up : 0.0;
-    dydt[SP_Y_GAUGE] = (sp_circuit_place(c, d->gauge.place, y) - y[SP_Y_GAUGE]) / d->gauge.lag;
+    dydt[SP_Y_GAUGE] = (sp_circuit_place(c, d->gauge.place, y) - y[SP_Y_GAUGE]) / fmax(d->gauge.lag, quickest_gauge);
     tank_rates(c, in, y, dydt);
 
     dydt[SP_Y_HEAT_IN] = heat;

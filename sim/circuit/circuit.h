@@ -73,7 +73,7 @@ double sp_circuit_place(const struct sp_circuit *c, enum sp_place_of place, cons
 struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
                                      struct sp_tank_inputs *inputs);
 
-/* Heat [W] that the engine gives its metal, fan's alternator load included. */
+/* Heat [W] that the engine gives its metal, the alternator's load by fans and electric pump included. */
 double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs *in, const double *y);
 
 void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,

@@ -6,7 +6,7 @@
 #include <string.h>
 
 static const double gas_constant = 8.314462618; /* J/mol K */
-static const double reseat = 5000.0;            /* Pa below its setting at which a cap shuts; common practice */
+static const double reseat = 5000.0;            /* Pa below its setting (a tenth of it at most) at which a cap shuts; common practice */
 static const double least_gas = 2.0e-5;         /* m3 left in a tank that was driven full */
 static const double smallest = 1.0e-5;          /* m3; a cell of no volume would be infinitely fast */
 
@@ -62,8 +62,8 @@ static void vent_at_start(const struct sp_circuit *c, const struct sp_inputs *in
     struct sp_tank_inputs ti;
     struct sp_tank_state s = sp_circuit_tank(c, in, y, &ti);
     if (s.pressure <= ti.ambient + t->cap) return;
-    double most = ti.ambient + t->cap - reseat;
-    double gas = ti.system + t->compliance * (t->cap - reseat) - ti.liquid;
+    double gauge = t->cap - fmin(reseat, 0.1 * t->cap), most = ti.ambient + gauge;
+    double gas = ti.system + t->compliance * gauge - ti.liquid;
     if (gas < least_gas) {
         y[SP_Y_LOST] = least_gas - gas;
         gas = least_gas;

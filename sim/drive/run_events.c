@@ -44,6 +44,15 @@ void sp_run_follow_fan(struct sp_run *r)
     note(r, runs ? SP_EV_FAN_ON : SP_EV_FAN_OFF);
 }
 
+/* The lift is continuous over a turn of the play, but the integrator has already stepped past the turn with
+ * the old side of it; only where the lift can move does that matter. */
+static bool lift_at_stake(const struct sp_run *r)
+{
+    const struct sp_thermostat *t = &r->drive->design->thermostat;
+    double wax = sp_integrator_state(r->integrator)[SP_Y_WAX];
+    return wax + t->hysteresis > t->opens && wax < t->full;
+}
+
 /* A watch crossed. Returns true when the rates jump, so that the integrator must forget. */
 static bool crossed(struct sp_run *r, int w, bool up)
 {
@@ -61,7 +70,7 @@ static bool crossed(struct sp_run *r, int w, bool up)
                            w == SP_W_PLAY_SHUT, &r->modes);
         r->high[SP_W_PLAY] = r->modes.play == SP_PLAY_OPENING;
         r->high[SP_W_PLAY_SHUT] = r->modes.play == SP_PLAY_HELD;
-        return false;
+        return lift_at_stake(r);
     case SP_W_COOLANT:
         if (up) r->over_since = r->time;
         else r->result->time_over_limit += r->time - r->over_since;

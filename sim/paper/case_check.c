@@ -162,8 +162,17 @@ static void check_diffuser(struct sp_reader *r)
         sp_case_fault(r, "car.duct.diffuser.length", "nothing", "a length such as \"320 mm\"", NULL);
 }
 
+/* Moist air is known over water only where the saturation formula is. */
+static void check_air(struct sp_reader *r)
+{
+    const struct sp_air_design *a = &r->design->air;
+    if (!(a->humidity > 0.0) || isnan(a->ambient) || isfinite(sp_vapour_saturation(a->ambient))) return;
+    sp_case_fault(r, "air.humidity", NULL, "0 % where the ambient is outside -45 degC to 60 degC", NULL);
+}
+
 void sp_case_check(struct sp_reader *r)
 {
+    check_air(r);
     if (r->no_car) return;
     check_orders(r);
     check_body(r);

@@ -163,5 +163,7 @@ void sp_case_check_core(struct sp_reader *r)
     check_geometry(r);
     check_drop(r);
     check_heat(r);
+    if (given(r, "drop.flow") != given(r, "drop.drop"))
+        lacks(r, given(r, "drop.flow") ? "drop.drop" : "drop.flow", "the other of flow and drop");
     if (r->purpose == SP_FOR_DRIVE) check_for_drive(r);
 }

@@ -2,6 +2,8 @@
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "case.h"
 
+#include "part/core.h"
+
 #include <math.h>
 #include <string.h>
 
@@ -69,8 +71,22 @@ static void doubt_engine(struct sp_reader *r)
     say(r, list, sizeof list / sizeof *list);
 }
 
+/* The correlations of fins rest on data of a certain range; beyond it they are a guess. */
+static void doubt_fins(struct sp_reader *r)
+{
+    const struct sp_core *c = &r->design->duct.core;
+    if (c->drop_law != SP_DROP_FINS && c->heat_law != SP_CORE_FINS) return;
+    struct sp_louvre g = sp_core_louvre(c);
+    const char *outside = sp_louvre_outside(&g);
+    char found[80];
+    if (!outside) return;
+    snprintf(found, sizeof found, "%s outside the correlations' data", outside);
+    sp_case_caution(r, "car.duct.core.fins", found, "fins such as those measured; expect more than 15 % off");
+}
+
 void sp_case_doubt(struct sp_reader *r)
 {
+    doubt_fins(r);
     doubt_duct(r);
     doubt_engine(r);
 }

@@ -34,7 +34,7 @@ const struct sp_key sp_keys_case[] = {
     {QUANTITY("start.metal", TEMPERATURE, start.metal), WHEN("else as the coolant"),
      RANGE("-60 degC to 250 degC"), SAYS("metal of the engine"), OWN},
     {QUANTITY("start.radiator", TEMPERATURE, start.radiator), WHEN("else as the coolant"),
-     RANGE("-60 degC to 150 degC"), SAYS("radiator, its hoses and what is in them"), OWN},
+     RANGE("-60 degC to 150 degC"), SAYS("core, the hose behind it and what is in them"), OWN},
 
     {GROUP("limits"), FOR_DRIVE, .type = "object with at least one limit",
      SAYS("what must not be passed; a drive needs at least one")},

@@ -25,14 +25,19 @@ static bool refuse(const struct sp_place *at, struct sp_complaints *to, const ch
 
 /* ---- building -------------------------------------------------------------------------------------- */
 
+struct sp_louvre sp_core_louvre(const struct sp_core *d)
+{
+    return (struct sp_louvre){.louvre_pitch = d->louvre_pitch, .louvre_angle = d->louvre_angle,
+                              .louvre_length = d->louvre_length, .fin_pitch = d->fin_pitch,
+                              .fin_length = d->tube_pitch - d->tube_height, .fin_thickness = d->fin_thickness,
+                              .fin_conductivity = d->fin_conductivity, .depth = d->depth,
+                              .tube_pitch = d->tube_pitch, .tube_height = d->tube_height};
+}
+
 static bool build_fins(const struct sp_core *d, struct sp_core_ready *c, const struct sp_place *at,
                        struct sp_complaints *to)
 {
-    struct sp_louvre g = {.louvre_pitch = d->louvre_pitch, .louvre_angle = d->louvre_angle,
-                          .louvre_length = d->louvre_length, .fin_pitch = d->fin_pitch,
-                          .fin_length = d->tube_pitch - d->tube_height, .fin_thickness = d->fin_thickness,
-                          .fin_conductivity = d->fin_conductivity, .depth = d->depth,
-                          .tube_pitch = d->tube_pitch, .tube_height = d->tube_height};
+    struct sp_louvre g = sp_core_louvre(d);
     if (!sp_louvre_core_build(&g, &c->louvre))
         return refuse(at, to, "fins and tubes that do not fit together",
                       "louvres shorter than the gap between tubes, fins thinner than their pitch, a depth");
@@ -43,7 +48,7 @@ static bool build_fins(const struct sp_core *d, struct sp_core_ready *c, const s
 static bool build_tubes(const struct sp_core *d, struct sp_core_ready *c, const struct sp_place *at,
                         struct sp_complaints *to)
 {
-    double all = fmax(floor(d->height / d->tube_pitch), 1.0) * d->rows;
+    double all = fmax(floor(d->height / d->tube_pitch + 1e-9), 1.0) * d->rows; /* 290 mm at 10 mm are 29 */
     c->tubes = fmax(all / d->passes, 1.0);
     c->tube_path = d->width * d->passes;
     struct sp_tube_shape shape = {.height = d->tube_height - 2.0 * d->tube_wall,
@@ -57,7 +62,13 @@ static bool build_tubes(const struct sp_core *d, struct sp_core_ready *c, const 
 static bool build_drop_table(const struct sp_core *d, struct sp_core_ready *c, const struct sp_place *at,
                              struct sp_complaints *to)
 {
-    const struct sp_table *t = &d->drop_table;
+    struct sp_table given = d->drop_table;
+    if (given.rows && given.cell[0] == 0.0 && given.cell[1] == 0.0) { /* the point at nil flow is ours anyway */
+        given.cell += 2;
+        --given.rows;
+    }
+    const struct sp_table *t = &given;
+    if (!t->rows) return refuse(at, to, "a drop table without a moving point", "one or more pairs above 0");
     for (size_t i = 0; i < t->rows; ++i) {
         double v = t->cell[2 * i], p = t->cell[2 * i + 1];
         double v0 = i ? t->cell[2 * i - 2] : 0.0, p0 = i ? t->cell[2 * i - 1] : 0.0;
@@ -195,7 +206,7 @@ double sp_core_air_conductance(const struct sp_core_ready *c, double G, double T
         double x = G / c->air_flux;
         return factor * c->air_scale * (c->air_power == 0.5 ? sqrt(x) : pow(x, c->air_power));
     }
-    double h = sp_louvre_film(&c->louvre, G / c->sigma, sp_air_viscosity(T), sp_air_cp_film(T), sp_air_prandtl(T));
+    double h = sp_louvre_film(&c->louvre, G / c->louvre.sigma, sp_air_viscosity(T), sp_air_cp_film(T), sp_air_prandtl(T));
     return factor * sp_louvre_surface_efficiency(&c->louvre, h) * h * c->louvre.area_frontal * c->face;
 }
 
@@ -230,7 +241,8 @@ double sp_resistance_drop(const struct sp_resistance *r, bool fitting, double fl
     if (!(x > 0.0)) return 0.0;
     if (fitting) return r->drop * density / reference_density * x * x;
     double thicker = viscosity / reference_viscosity;
-    return r->drop * density / reference_density * sqrt(sqrt(thicker)) * x * x / sqrt(sqrt(x));
+    double denser = density / reference_density;
+    return r->drop * denser * sqrt(sqrt(thicker / denser)) * x * x / sqrt(sqrt(x));
 }
 
 double sp_core_coolant_drop(const struct sp_core_ready *c, const struct sp_coolant *fluid, double flow, double T)

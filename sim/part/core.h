@@ -24,6 +24,9 @@ struct sp_core_ready {
     double coolant_scale, coolant_flow, coolant_power; /* W/K, kg/s */
 };
 
+/* The fins of a design as the correlations take them. */
+struct sp_louvre sp_core_louvre(const struct sp_core *d);
+
 /* `fluid` is what the maker's table, if there is one, was taken with. Complains of what cannot be used. */
 bool sp_core_build(const struct sp_core *d, const struct sp_coolant *fluid, struct sp_core_ready *out,
                    const struct sp_place *at, struct sp_complaints *complaints);
@@ -51,8 +54,8 @@ double sp_core_coolant_drop(const struct sp_core_ready *c, const struct sp_coola
  * k^0.6 cp^0.4 mu^(0.4-n) for h ~ m^n (Dittus-Boelter form at a given mass flow). */
 double sp_coolant_film_ratio(const struct sp_coolant *fluid, double T, double n);
 
-/* Drop of a resistance given at one flow, for turbulent tubes: rho (mu)^0.25 V^1.75, or with `fitting`
- * rho V^2, from 1000 kg/m3 and 0.7 mPa s. */
+/* Drop of a resistance given at one flow, for turbulent tubes (Blasius): rho^0.75 mu^0.25 V^1.75, or with
+ * `fitting` rho V^2, from 1000 kg/m3 and 0.7 mPa s. */
 double sp_resistance_drop(const struct sp_resistance *r, bool fitting, double flow, double density,
                           double viscosity);
 

@@ -15,8 +15,8 @@ double sp_road_force(const struct sp_body *b, double speed, double air_speed, do
  * below by -motoring (the brakes take the rest). */
 double sp_road_power(const struct sp_body *b, double force, double speed, double motoring);
 
-/* Engine speed [rev/s] at road speed: the highest gear that keeps the engine at or above... the first
- * gear (from the lowest) in which it turns below shift_speed, never below idle. NAN without gears. */
+/* Engine speed [rev/s] at road speed: in the first gear, from the lowest, in which it turns below
+ * shift_speed, or the last; never below idle. NAN without gears. */
 double sp_road_engine_speed(const struct sp_body *b, double speed, double idle);
 
 #endif

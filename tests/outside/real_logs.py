@@ -157,10 +157,9 @@ def cycle(tally, program, case, sets, path, label):
         return
     work, (distance, rolling, drag) = run.result["work"], reckoned(path)
     density = (100129 - 0.378 * 0.4 * 3169) / (287.05 * 298.15)  # standard pressure at 100 m; 25 degC, 40 % humid
-    tally.near(f"{label}: distance, m", run.result["distance_m"], distance, 0.002)
-    tally.near(f"{label}: rolling work, J", work["rolling_J"], rolling, 0.002)
-    # The case smooths speed over a second, which takes a little off the sharp tops.
-    tally.near(f"{label}: drag work, J", work["drag_J"], density * drag, 0.005)
+    tally.near(f"{label}: distance, m", run.result["distance_m"], distance, 2e-4)
+    tally.near(f"{label}: rolling work, J", work["rolling_J"], rolling, 2e-4)
+    tally.near(f"{label}: drag work, J", work["drag_J"], density * drag, 2e-4)
     parts = sum(work[k] for k in ("kinetic_J", "potential_J", "drag_J", "rolling_J", "brakes_J"))
     tally.near(f"{label}: work at the wheels against its parts, J", work["wheel_J"], parts, 1e-3)
     tally.within(f"{label}: kinetic energy gained, J", work["kinetic_J"], -1, 1)
