@@ -255,7 +255,8 @@ def against_both(tally, program, name):
     tally.within(f"{name}, engine out against the sheet, degC", got["out"], sheet["out"] - 3, sheet["out"] + 3)
     alike = solve(car, leaks=False, ambient=t_air + 273.15, warmer=0)
     tally.near(f"{name}, face over road speed against the own sum without leaks", got["ratio"], alike["ratio"], 0.01)
-    tally.near(f"{name}, inlet difference against the own sum without leaks, K", got["itd"], alike["itd"], 0.025)
+    tally.near(f"{name}, inlet difference against the own sum without leaks, K", got["itd"], alike["itd"],
+               0.025 if name == "pennock" else 0.015)  # the student car's tubes at Re 3150 feel whole tubes and warmth
     tally.near(f"{name}, air's rise against the own sum without leaks, K", got["rise"], alike["rise"], 0.015)
     print(f"{name}: face over road speed {got['ratio']:.4f} (sheet {sheet['ratio']}, own sum without leaks "
           f"{alike['ratio']:.4f}, with leaks {solve(car, True)['ratio']:.4f}); inlet difference {got['itd']:.2f} K "
