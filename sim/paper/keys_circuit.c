@@ -60,7 +60,7 @@ const struct sp_key sp_keys_circuit[] = {
      SAYS("lift when fully open"), SOURCE("usual stroke, a maker's page")},
     {QUANTITY("car.thermostat.discharge", NUMBER, thermostat.discharge), DEFAULT("0.6"), RANGE("0.05 to 1"),
      SAYS("discharge coefficient on the curtain area"), PRACTICE},
-    {QUANTITY("car.thermostat.leak", NUMBER, thermostat.leak), DEFAULT("1 %"), RANGE("0 % to 100 %"),
+    {QUANTITY("car.thermostat.leak", NUMBER, thermostat.leak), DEFAULT("0.3 %"), RANGE("0 % to 100 %"),
      SAYS("share of the full opening left when shut: the air bleed"), PRACTICE},
     {QUANTITY("car.thermostat.bypass_shut", NUMBER, thermostat.bypass_shut), DEFAULT("0.8"),
      RANGE("0.05 to 10"), SAYS("lift over full lift at which the bypass is shut; above 1 never"), PRACTICE},

@@ -41,5 +41,10 @@ place='(^|[^A-Za-z0-9_./-])/(home|root|work|Users|mnt|opt)/'
 complain "a path of one machine" "$(printf '%s\n' "$own" | xargs grep -nE "$place")"
 complain "tabs" "$(printf '%s\n' "$sources" | xargs grep -n "$(printf '\t')")"
 complain "blanks at a line's end" "$(printf '%s\n' "$own" | grep -vE '\.csv$' | xargs grep -nE ' +$')"
-complain "lines over 120 bytes" "$(printf '%s\n' "$sources" | xargs grep -nE '^.{121,}')"
+complain "lines over 132 bytes" "$(printf '%s\n' "$sources" | xargs grep -nE '^.{133,}')"
+complain "links to nowhere" "$(grep '\.md$' "$files" | while read -r page; do
+    grep -oE '\]\([^):#]+' "$page" | sed 's/^](//' | while read -r link; do
+        [ -e "$(dirname "$page")/$link" ] || echo "$page: $link"
+    done
+done)"
 exit $bad

@@ -78,7 +78,8 @@ class Steady:
     def settle(self, sets):
         run = require(self.program, f"docs/examples/{self.name}.json", self.also + sets)
         if not abs(run.last("heat_out") / run.last("heat_in") - 1) < 1e-3:
-            raise SystemExit(f"{self.name} {sets} has not settled\n0 passed, 1 failed, 0 skipped")
+            print(f"{self.name} {sets} has not settled\n0 passed, 1 failed, 0 skipped")
+            raise SystemExit(1)
         return run
 
     def rise(self, sets):

@@ -25,10 +25,10 @@ sys.path.insert(0, os.path.join(here, "tools"))
 from command import ROOT, Run, Tally  # noqa: E402
 
 CASES = os.path.join(here, "cases")
-RAW = (("kit_raw.json", "raw/2017-08-07_Seat_Leon_KA_RT_Frei.csv", "kit_1hz.json", "kit_2017-08-07_KA_RT_Frei_1hz.csv"),
-       ("kit_raw.json", "raw/2018-03-01_Seat_Leon_RT_S_Normal.csv", "kit_1hz.json", "kit_2018-03-01_RT_S_Normal_1hz.csv"),
-       ("carobd_raw.json", "raw/carobd_live23.csv", "carobd_1hz.json", "carobd_live23_1hz.csv"),
-       ("carobd_raw.json", "raw/carobd_live31.csv", "carobd_1hz.json", "carobd_live31_1hz.csv"))
+RAW = (("kit", "2017-08-07_Seat_Leon_KA_RT_Frei.csv", "kit_2017-08-07_KA_RT_Frei_1hz.csv"),
+       ("kit", "2018-03-01_Seat_Leon_RT_S_Normal.csv", "kit_2018-03-01_RT_S_Normal_1hz.csv"),
+       ("carobd", "carobd_live23.csv", "carobd_live23_1hz.csv"),
+       ("carobd", "carobd_live31.csv", "carobd_live31_1hz.csv"))
 GRAVITY, WREN = 9.80665, {"mass": 1160.0, "rolling": 0.011, "drag_area": 0.33 * 2.1}
 
 
@@ -80,7 +80,8 @@ def no_model(seconds, logged):
 def say(label, score):
     def s(x, unit):
         return "none" if x is None else f"{x:.1f} {unit}"
-    print(f"{label}: warm-up RMS {s(score['warmup_rms_K'], 'K')} (no model at all {s(score['no_model_warmup_rms_K'], 'K')}), "
+    print(f"{label}: warm-up RMS {s(score['warmup_rms_K'], 'K')} "
+          f"(no model at all {s(score['no_model_warmup_rms_K'], 'K')}), "
           f"whole drive {s(score['rms_K'], 'K')} ({s(score['no_model_rms_K'], 'K')}); "
           f"85 degC after {s(score['time_to_85_s'], 's')} (log {s(score['measured_time_to_85_s'], 's')})")
 
@@ -110,7 +111,8 @@ def scores(tally, label, run, path):
 
 def raw_logs(tally, program, data):
     """The raw log through a mapping, and the same drive as another program resampled it."""
-    for raw_case, raw, case, resampled in RAW:
+    for logger, raw, resampled in RAW:
+        raw_case, case, raw = logger + "_raw.json", logger + "_1hz.json", "raw/" + raw
         path = os.path.join(data, resampled)
         a = verdict(tally, program, raw_case, sets_for(raw_case, os.path.join(data, raw), path), raw)
         b = verdict(tally, program, case, sets_for(case, path, path), resampled)

@@ -15,7 +15,7 @@ They differ from the program in three things, each judged here:
      yet. The own sum without them shows what they are worth: 3 to 4 % of face velocity, 2 to 3 % of the
      inlet difference.
   2. the sheet's factor for uneven air and narrow tanks (0.93, 0.93, 0.92) is on heat, `heat_factor` is on
-     conductance. EQUAL turns the one into the other; the cases hold the result.
+     conductance; `equal_factor` turns the one into the other; the cases hold the result.
   3. the program's cells mix the coolant across a tube's depth: 0.3 to 1 % less heat than both unmixed.
 """
 import math

@@ -12,7 +12,7 @@ UNITS = {"": 1, "m": 1, "mm": 1e-3, "km": 1e3, "m2": 1, "cm2": 1e-4, "m3": 1, "l
          "Pa": 1, "kPa": 1e3, "bar": 1e5, "W": 1, "kW": 1e3, "W/K": 1, "kW/K": 1e3, "J/K": 1, "kJ/K": 1e3, "K": 1,
          "s": 1, "min": 60, "h": 3600, "m/s": 1, "km/h": 1 / 3.6, "rpm": 1 / 60, "rev/s": 1, "kg": 1, "deg": math.pi / 180,
          "rad": 1, "V": 1, "%": 0.01, "W/mK": 1}
-NUMBER = re.compile(r"^\s*([-+]?[\d.]+(?:[eE][-+]?\d+)?)\s*(\S*)\s*$")
+NUMBER = re.compile(r"^\s*([-+]?\d[\d.]*(?:[eE][-+]?\d+)?)\s*(\S*)\s*$")
 LIPS = {"sheet edge": 1.0, "hole in a skin": 0.5, "folded": 0.3, "rounded 10 mm": 0.18, "bellmouth": 0.05}
 
 

@@ -85,24 +85,30 @@ def falling_root(f, guess, top):
     x0, y0 = guess, f(guess)
     if y0 == 0:
         return x0
+    low = x0 if y0 > 0 else 0.0
+    high = x0 if y0 < 0 else math.inf
     x1 = guess * (1 + 1e-5)
     for _ in range(14):
         y1 = f(x1)
         if y1 == 0:
             return x1
+        low, high = (max(low, x1), high) if y1 > 0 else (low, min(high, x1))
         if y1 == y0:
-            return x1
-        x0, y0, x1 = x1, y1, x1 - y1 * (x1 - x0) / (y1 - y0)
-        if not 0 < x1 < 1e30:
             break
-        if abs(x1 - x0) <= 1e-12 * x1:
+        x0, y0, x1 = x1, y1, x1 - y1 * (x1 - x0) / (y1 - y0)
+        if abs(x1 - x0) <= 1e-12 * abs(x1):
             return x1
-    while f(top) > 0:
-        top *= 4
-    low = top
-    while f(low) < 0 and low > 1e-290:
-        low /= 4
-    return brentq(f, low, min(low * 4.000001, 1e30), xtol=1e-300, rtol=1e-14)
+        if not low <= x1 <= high:
+            break
+    while high == math.inf:
+        top = max(top, low) * 4
+        low, high = (top, high) if f(top) > 0 else (low, top)
+    while low == 0 or high > 16 * low:
+        mid = math.sqrt(low * high) if low > 0 else high / 1e6
+        if mid < 1e-300:
+            return 0.0
+        low, high = (mid, high) if f(mid) > 0 else (low, mid)
+    return brentq(f, low, high, xtol=1e-300, rtol=1e-14)
 
 
 class Duct:
@@ -133,7 +139,13 @@ class Duct:
         raw = here / 1.2 * self.curve(n, flow)
         if m < 0:
             return raw + self.windmill * head
-        return max(raw + (head if self.static else 0.0), -self.windmill * head)
+        if self.static:
+            raw += head
+            last = n * self.curve.free
+            if flow > last:
+                past = here / 2 * (last * self.fan["count"] / self.annulus) ** 2
+                raw = min(raw, here / 1.2 * self.curve(n, last) + past)
+        return max(raw, -self.windmill * head)
 
     def tau(self, m, t_air, wall, heat):
         """Temperature ratio and effectiveness of the core."""
