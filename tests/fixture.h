@@ -23,7 +23,8 @@ static const char fixture_case[] =
     "  \"limits\": { \"coolant\": \"115 degC\", \"boil_margin\": \"5 K\" },\n"
     "  \"car\": {\n"
     "    \"body\": { \"mass\": \"900 kg\", \"frontal_area\": \"1.8 m2\", \"drag_coefficient\": 0.4 },\n"
-    "    \"engine\": { \"displacement\": \"2.0 l\", \"rated_power\": \"150 kW\", \"rated_speed\": \"7500 rpm\",\n"
+    "    \"engine\": { \"displacement\": \"2.0 l\", \"rated_power\": \"150 kW\", \"rated_speed\": \"7500 "
+    "rpm\",\n"
     "                \"idle_speed\": \"900 rpm\", \"heat\": { \"fraction\": 0.5 } },\n"
     "    \"coolant\": { \"kind\": \"ethylene glycol\", \"glycol\": \"50 %\" },\n"
     "    \"pump\": { \"curve\": { \"shutoff\": \"110 kPa\", \"free_flow\": \"190 l/min\" },\n"
@@ -34,7 +35,8 @@ static const char fixture_case[] =
     "      \"inlet\": { \"area\": \"500 cm2\", \"recovery\": 0.9, \"lip\": \"rounded 10 mm\" },\n"
     "      \"diffuser\": { \"loss\": 0.3 },\n"
     "      \"core\": { \"width\": \"500 mm\", \"height\": \"340 mm\", \"depth\": \"40 mm\",\n"
-    "        \"fins\": { \"pitch\": \"1.8 mm\", \"louvre_pitch\": \"1.4 mm\", \"louvre_angle\": \"24 deg\" },\n"
+    "        \"fins\": { \"pitch\": \"1.8 mm\", \"louvre_pitch\": \"1.4 mm\", \"louvre_angle\": \"24 deg\" "
+    "},\n"
     "        \"tubes\": { \"pitch\": \"10 mm\", \"height\": \"2 mm\", \"rows\": 2 } },\n"
     "      \"fan\": { \"curve\": { \"shutoff\": \"180 Pa\", \"free_flow\": \"0.6 m3/s\" },\n"
     "               \"diameter\": \"330 mm\" },\n"
@@ -51,8 +53,8 @@ static inline struct fixture fixture_open(void)
     ut_set_error_message_handler(ut_ignore); /* the unit library's tables double a few names and say so */
     struct fixture f = {.units = sp_units_open()};
     assert_non_null(f.units);
-    f.base = sp_case_parse(f.units, "fixture", fixture_case, sizeof fixture_case - 1, NULL, 0, SP_FOR_DRIVE, &c,
-                           &cautions);
+    f.base = sp_case_parse(f.units, "fixture", fixture_case, sizeof fixture_case - 1, NULL, 0, SP_FOR_DRIVE,
+                           &c, &cautions);
     sp_complaints_print(&c, false, stderr);
     assert_non_null(f.base);
     sp_complaints_free(&c);
@@ -84,8 +86,13 @@ static inline void fixture_freeze(struct sp_coolant *c)
 
 static inline struct sp_step fixture_hold(double time, double speed, double power, double engine_speed)
 {
-    return (struct sp_step){.kind = SP_STEP_HOLD, .time = time, .speed = speed, .power = power,
-                            .engine_speed = engine_speed, .grade = 0.0, .repeat = 1.0};
+    return (struct sp_step){.kind = SP_STEP_HOLD,
+                            .time = time,
+                            .speed = speed,
+                            .power = power,
+                            .engine_speed = engine_speed,
+                            .grade = 0.0,
+                            .repeat = 1.0};
 }
 
 /* ---- drives ------------------------------------------------------------------------------------------ */
@@ -115,8 +122,8 @@ struct fixture_drive {
 };
 
 /* Builds and runs; a drive that cannot be built has status SP_INPUT. */
-static inline struct fixture_drive fixture_run(const struct fixture *f, const struct sp_design *d, double interval,
-                                               double tolerance)
+static inline struct fixture_drive fixture_run(const struct fixture *f, const struct sp_design *d,
+                                               double interval, double tolerance)
 {
     struct fixture_drive out = {.status = SP_INPUT};
     struct sp_complaints cautions = {0};

@@ -73,7 +73,7 @@ double sp_curve_at(const struct sp_curve *c, double n, double flow)
 {
     if (flow < n * c->first) return n * n * c->shutoff + n * c->slope0 * flow;
     if (!(flow < n * c->last)) return n * n * c->tail_a - c->tail_c * flow * flow; /* NaN too: it stays one */
-    double f = 0.0;
-    gsl_interp_eval_e(c->interp, c->flow, c->pressure, flow / n, NULL, &f);
+    double f = 0.0, at_rated = fmin(fmax(flow / n, c->first), c->last); /* rounding may leave the pairs */
+    gsl_interp_eval_e(c->interp, c->flow, c->pressure, at_rated, NULL, &f);
     return n * n * f;
 }

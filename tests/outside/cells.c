@@ -28,7 +28,8 @@ static void limit_of_many_cells(void **state)
     for (int i = 0; i < 3; ++i) {
         double hA = 1.0 + 1.0 / ratio[i];
         for (double rate = 0.1; rate < 30.0; rate *= 3.0)
-            check_close(sp_cells_rejection(20000, ratio[i] * hA, rate, hA, 1.0), rate * (1.0 - exp(-K[i] / rate)), 2e-6, 0);
+            check_close(sp_cells_rejection(20000, ratio[i] * hA, rate, hA, 1.0),
+                        rate * (1.0 - exp(-K[i] / rate)), 2e-6, 0);
     }
 }
 
@@ -37,7 +38,8 @@ static void order_two(void **state)
 {
     (void)state;
     double limit = coolant_rate * -expm1(-(1.0 / (1.0 / coolant + 1.0 / -expm1(-air))) / coolant_rate);
-    for (int n = 4; n <= 64; n *= 2) check_close((cells(n) - limit) / (cells(2 * n) - limit), 4.0, 0.05, 0);
+    for (int n = 4; n <= 64; n *= 2)
+        check_close((cells(n) - limit) / (cells(2 * n) - limit), 4.0, 0.05, 0);
     /* Ten cells, the default, are nearer than one in a thousand; stirred cells would be 1.3 % off. */
     check_close(cells(10), limit, 1e-3, 0);
 }
@@ -89,8 +91,8 @@ static void bounds(void **state)
 
 enum { SPEEDS = 6, FLOWS = 4 };
 static double speeds[SPEEDS] = {2, 4, 6, 8, 10, 12}, flows[FLOWS] = {0.5, 1.0, 1.5, 2.0};
-static double heat[SPEEDS * FLOWS] = {340.6, 386.0, 404.7, 415.0,  482.3, 585.8, 633.3, 661.0,
-                                      567.2, 719.8, 794.8, 840.1,  625.9, 819.5, 919.4, 981.5,
+static double heat[SPEEDS * FLOWS] = {340.6, 386.0, 404.7,  415.0,  482.3, 585.8, 633.3,  661.0,
+                                      567.2, 719.8, 794.8,  840.1,  625.9, 819.5, 919.4,  981.5,
                                       669.7, 898.0, 1020.5, 1098.2, 704.0, 962.4, 1105.3, 1197.5}; /* W/K */
 static const double face = 0.24, air_density = 1.2, table_cp = 3650.0;
 
@@ -109,20 +111,25 @@ static double unmixed_heat(double v, double m)
 static void conductance_points(void **state)
 {
     (void)state;
-    const struct { double v, m, UA; } want[] = {{2, 0.5, 600.33}, {6, 1.0, 1070.05}, {12, 2.0, 1637.49}};
+    const struct {
+        double v, m, UA;
+    } want[] = {{2, 0.5, 600.33}, {6, 1.0, 1070.05}, {12, 2.0, 1637.49}};
     for (int i = 0; i < 3; ++i) {
         double a = air_density * want[i].v * face * 1006.0, c = want[i].m * table_cp, least = fmin(a, c);
         double eps = unmixed_heat(want[i].v, want[i].m) / least;
         check_close(least * sp_ntu(SP_CROSS_UNMIXED, eps, least / fmax(a, c)), want[i].UA, 1e-5, 0);
     }
     for (int i = 0; i < SPEEDS; ++i)
-        for (int j = 0; j < FLOWS; ++j) check_close(unmixed_heat(speeds[i], flows[j]), heat[i * FLOWS + j], 0, 0.051);
+        for (int j = 0; j < FLOWS; ++j)
+            check_close(unmixed_heat(speeds[i], flows[j]), heat[i * FLOWS + j], 0, 0.051);
 }
 
 static struct sp_core table_core(double *rows, double *columns, double *values, size_t n, size_t k)
 {
-    return (struct sp_core){.heat_velocity = {n, 1, rows}, .heat_flow = {k, 1, columns},
-                            .heat_per_kelvin = {n, k, values}, .heat_at_density = air_density};
+    return (struct sp_core){.heat_velocity = {n, 1, rows},
+                            .heat_flow = {k, 1, columns},
+                            .heat_per_kelvin = {n, k, values},
+                            .heat_at_density = air_density};
 }
 
 static double law(const struct sp_conductance_law *l, double x)
@@ -130,17 +137,18 @@ static double law(const struct sp_conductance_law *l, double x)
     return l->scale * pow(x / l->reference, l->power);
 }
 
-/* The table is of unmixed streams, the cells take coolant mixed across the depth and a wall of one temperature:
- * they give 1.8 % to 2.2 % less for the same UA at equal sides, and more so at higher NTU. The fit must take
- * that up in its conductances: heat within 1 %, UA higher than the table's by up to 6 %, exponents near. */
+/* The table is of unmixed streams, the cells take coolant mixed across the depth and a wall of one
+ * temperature: they give 1.8 % to 2.2 % less for the same UA at equal sides, and more so at higher NTU. The
+ * fit must take that up in its conductances: heat within 1 %, UA higher than the table's by up to 6 %,
+ * exponents near. */
 static void recovery_of_an_unmixed_table(void **state)
 {
     (void)state;
     struct sp_core c = table_core(speeds, flows, heat, SPEEDS, FLOWS);
     struct sp_core_fit fit;
     assert_true(sp_core_fit(&c, face, 10, table_cp, &fit));
-    print_message("unmixed table: worst heat %.3f %%, air exponent %.4f, coolant %.4f\n", 100.0 * fit.worst, fit.air.power,
-                  fit.coolant.power);
+    print_message("unmixed table: worst heat %.3f %%, air exponent %.4f, coolant %.4f\n", 100.0 * fit.worst,
+                  fit.air.power, fit.coolant.power);
     check_within(fit.worst, 0.0, 0.01);
     check_within(fit.air.power, 0.48, 0.57);
     check_within(fit.coolant.power, 0.70, 0.85);
@@ -183,8 +191,8 @@ static void recovery_of_few_points(void **state)
 {
     (void)state;
     struct sp_core_fit fit;
-    double v[] = {3, 9}, m[] = {0.8, 1.6}, two[] = {unmixed_heat(3, 0.8), unmixed_heat(3, 1.6), unmixed_heat(9, 0.8),
-                                                    unmixed_heat(9, 1.6)};
+    double v[] = {3, 9}, m[] = {0.8, 1.6},
+           two[] = {unmixed_heat(3, 0.8), unmixed_heat(3, 1.6), unmixed_heat(9, 0.8), unmixed_heat(9, 1.6)};
     struct sp_core c = table_core(v, m, two, 2, 2);
     assert_true(sp_core_fit(&c, face, 10, table_cp, &fit));
     assert_true(fit.air.power == 0.5 && fit.coolant.power == 0.8);
@@ -237,8 +245,10 @@ static void settled_drive_rejects_the_table(void **state)
     assert_int_equal(r.status, SP_OK);
     double m = fixture_last(&r, SP_CH_RADIATOR_FLOW) * 1030.95;
     double v = fixture_last(&r, SP_CH_AIR_FLOW) / (air_density * face);
-    double per_kelvin = fixture_last(&r, SP_CH_HEAT_OUT) / (fixture_last(&r, SP_CH_RADIATOR_IN) - d.air.ambient);
-    print_message("settled: %.3f kg/s, %.3f m/s, %.2f W/K, the table's law %.2f\n", m, v, per_kelvin, unmixed_heat(v, m));
+    double per_kelvin =
+        fixture_last(&r, SP_CH_HEAT_OUT) / (fixture_last(&r, SP_CH_RADIATOR_IN) - d.air.ambient);
+    print_message("settled: %.3f kg/s, %.3f m/s, %.2f W/K, the table's law %.2f\n", m, v, per_kelvin,
+                  unmixed_heat(v, m));
     check_within(m, 0.5, 2.0);
     check_within(v, 2.0, 12.0);
     check_close(per_kelvin, unmixed_heat(v, m), 0.01, 0);
@@ -249,11 +259,16 @@ static void settled_drive_rejects_the_table(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(limit_of_many_cells),   cmocka_unit_test(order_two),
-        cmocka_unit_test(exact_for_an_even_wall), cmocka_unit_test(weight_is_the_mean),
-        cmocka_unit_test(bounds),                cmocka_unit_test(conductance_points),
-        cmocka_unit_test(recovery_of_an_unmixed_table), cmocka_unit_test(recovery_of_own_table),
-        cmocka_unit_test(recovery_of_few_points), cmocka_unit_test(settled_drive_rejects_the_table),
+        cmocka_unit_test(limit_of_many_cells),
+        cmocka_unit_test(order_two),
+        cmocka_unit_test(exact_for_an_even_wall),
+        cmocka_unit_test(weight_is_the_mean),
+        cmocka_unit_test(bounds),
+        cmocka_unit_test(conductance_points),
+        cmocka_unit_test(recovery_of_an_unmixed_table),
+        cmocka_unit_test(recovery_of_own_table),
+        cmocka_unit_test(recovery_of_few_points),
+        cmocka_unit_test(settled_drive_rejects_the_table),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -127,7 +127,8 @@ static void draw_fan(gsl_rng *g, struct drawn *x)
     f->diameter = between(g, 0.2, 0.45);
     f->hub = f->diameter * between(g, 0.2, 0.5);
     /* At free flow the outlet head is 1 % to 80 % of the shut-off pressure: of real fans some 5 % to 40 %. */
-    double annulus = acos(-1.0) / 4.0 * (f->diameter * f->diameter - f->hub * f->hub), shutoff = spread(g, 40.0, 800.0);
+    double annulus = acos(-1.0) / 4.0 * (f->diameter * f->diameter - f->hub * f->hub),
+           shutoff = spread(g, 40.0, 800.0);
     double flow = annulus * sqrt(shutoff / 0.6 * spread(g, 0.01, 0.8));
     f->curve = (struct sp_curve_design){shutoff, flow, {0, 0, NULL}};
     if (chance(g, 0.3)) draw_fan_pairs(g, shutoff, flow, x);
@@ -217,7 +218,8 @@ static void draw_steps(gsl_rng *g, struct drawn *x)
     for (int i = 0; i < STEPS; ++i) {
         double speed = chance(g, 0.2) ? 0.0 : between(g, -2.0, 85.0);
         double power = chance(g, 0.2) ? 0.0 : between(g, -0.1, 1.1) * d->engine.rated_power;
-        x->step[i] = fixture_hold(20.0, speed, power, between(g, d->engine.idle_speed, d->engine.rated_speed));
+        x->step[i] =
+            fixture_hold(20.0, speed, power, between(g, d->engine.idle_speed, d->engine.rated_speed));
     }
     if (chance(g, 0.5)) x->step[1].kind = chance(g, 0.5) ? SP_STEP_IDLE : SP_STEP_SOAK;
     d->step = x->step;
@@ -232,7 +234,8 @@ static void draw(unsigned long seed, struct drawn *x)
     gsl_rng *g = gsl_rng_alloc(gsl_rng_mt19937);
     assert_non_null(g);
     gsl_rng_set(g, seed);
-    for (int i = 0; i < 20; ++i) gsl_rng_uniform(g); /* neighbouring seeds begin alike */
+    for (int i = 0; i < 20; ++i)
+        gsl_rng_uniform(g); /* neighbouring seeds begin alike */
     x->seed = seed;
     x->d = *fixture.base;
     draw_air(g, &x->d);
@@ -250,34 +253,38 @@ static void show(const struct drawn *x)
     const struct sp_design *d = &x->d;
     const struct sp_core *c = &d->duct.core;
     const struct sp_fan *f = &d->duct.fan;
-    print_error("  air %.6g K %.6g Pa wind %.4g; start %.6g K; engine %.4g W, metal %.4g J/K, jacket %.4g m3\n",
-                d->air.ambient, d->air.pressure, d->air.wind, d->start.coolant, d->engine.rated_power,
-                d->engine.metal_capacity, d->engine.coolant_volume);
-    print_error("  coolant %d %.3g; pump %s %.4g Pa %.4g m3/s; thermostat %s %.5g..%.5g K leak %.3g play %.3g\n",
-                (int)d->coolant.kind, d->coolant.share, d->pump.electric ? "electric" : "belt",
-                d->pump.curve.shutoff, d->pump.curve.free_flow, d->thermostat.none ? "none" : "wax",
-                d->thermostat.opens, d->thermostat.full, d->thermostat.leak, d->thermostat.hysteresis);
-    print_error("  core %.3g x %.3g m, drop law %d, heat law %d, %g cells; inlet %.4g m2 recovery %.3g lip %.3g "
-                "screen %.3g; diffuser %d\n", c->width, c->height, (int)c->drop_law, (int)c->heat_law, c->cells,
-                d->duct.inlet.area, d->duct.inlet.recovery, d->duct.inlet.lip_loss, d->duct.inlet.screen,
-                (int)d->duct.diffuser.kind);
-    print_error("  fan %s x%g law %d, static %d, before %d, pairs %zu; exit %.4g m2 loss %.3g Cp %.3g angle %.3g\n",
-                f->fitted ? "fitted" : "none", f->count, (int)f->law, f->static_basis, f->before_core,
-                f->curve.pairs.rows, d->duct.exit.area, d->duct.exit.loss, d->duct.exit.pressure_coefficient,
-                d->duct.exit.angle);
+    print_error(
+        "  air %.6g K %.6g Pa wind %.4g; start %.6g K; engine %.4g W, metal %.4g J/K, jacket %.4g m3\n",
+        d->air.ambient, d->air.pressure, d->air.wind, d->start.coolant, d->engine.rated_power,
+        d->engine.metal_capacity, d->engine.coolant_volume);
+    print_error(
+        "  coolant %d %.3g; pump %s %.4g Pa %.4g m3/s; thermostat %s %.5g..%.5g K leak %.3g play %.3g\n",
+        (int)d->coolant.kind, d->coolant.share, d->pump.electric ? "electric" : "belt", d->pump.curve.shutoff,
+        d->pump.curve.free_flow, d->thermostat.none ? "none" : "wax", d->thermostat.opens, d->thermostat.full,
+        d->thermostat.leak, d->thermostat.hysteresis);
+    print_error(
+        "  core %.3g x %.3g m, drop law %d, heat law %d, %g cells; inlet %.4g m2 recovery %.3g lip %.3g "
+        "screen %.3g; diffuser %d\n",
+        c->width, c->height, (int)c->drop_law, (int)c->heat_law, c->cells, d->duct.inlet.area,
+        d->duct.inlet.recovery, d->duct.inlet.lip_loss, d->duct.inlet.screen, (int)d->duct.diffuser.kind);
+    print_error(
+        "  fan %s x%g law %d, static %d, before %d, pairs %zu; exit %.4g m2 loss %.3g Cp %.3g angle %.3g\n",
+        f->fitted ? "fitted" : "none", f->count, (int)f->law, f->static_basis, f->before_core,
+        f->curve.pairs.rows, d->duct.exit.area, d->duct.exit.loss, d->duct.exit.pressure_coefficient,
+        d->duct.exit.angle);
     for (size_t i = 0; i < d->steps; ++i)
         print_error("  step %d: %g s, %.4g m/s, %.5g W, %.4g rev/s\n", (int)d->step[i].kind, d->step[i].time,
                     d->step[i].speed, d->step[i].power, d->step[i].engine_speed);
 }
 
-#define expect(x, holds, ...)                                                                                  \
-    do {                                                                                                       \
-        if (!(holds) && ++violations <= 10) {                                                                  \
-            print_error("seed %lu: %s is broken: ", (x)->seed, #holds);                                        \
-            print_error(__VA_ARGS__);                                                                          \
-            print_error("\n");                                                                                 \
-            show(x);                                                                                           \
-        }                                                                                                      \
+#define expect(x, holds, ...)                                                                                \
+    do {                                                                                                     \
+        if (!(holds) && ++violations <= 10) {                                                                \
+            print_error("seed %lu: %s is broken: ", (x)->seed, #holds);                                      \
+            print_error(__VA_ARGS__);                                                                        \
+            print_error("\n");                                                                               \
+            show(x);                                                                                         \
+        }                                                                                                    \
     } while (0)
 
 static unsigned long setting(const char *name, unsigned long fallback)
@@ -294,10 +301,12 @@ static void check_samples(const struct drawn *x, const struct fixture_drive *r)
         const double *v = r->series.row[i].value;
         for (int c = 0; c < SP_CHANNELS; ++c)
             if (c != SP_CH_MEASURED)
-                expect(x, isfinite(v[c]), "%s at %g s", sp_channel_at((enum sp_channel)c)->name, v[SP_CH_TIME]);
+                expect(x, isfinite(v[c]), "%s at %g s", sp_channel_at((enum sp_channel)c)->name,
+                       v[SP_CH_TIME]);
         double split = v[SP_CH_RADIATOR_FLOW] + v[SP_CH_BYPASS_FLOW], pump = v[SP_CH_PUMP_FLOW];
         double kept = (1.0 - x->d.tank.bleed) * pump;
-        expect(x, fabs(split - kept) <= 1e-9 * fabs(pump), "flows at %g s: %g into %g", v[SP_CH_TIME], pump, split);
+        expect(x, fabs(split - kept) <= 1e-9 * fabs(pump), "flows at %g s: %g into %g", v[SP_CH_TIME], pump,
+               split);
         expect(x, pump >= 0.0 && v[SP_CH_RADIATOR_FLOW] >= 0.0, "flow %g at %g s", pump, v[SP_CH_TIME]);
         expect(x, v[SP_CH_LOST] > -1e-9, "lost %g m3 at %g s", v[SP_CH_LOST], v[SP_CH_TIME]);
         expect(x, v[SP_CH_LIFT] >= 0.0 && v[SP_CH_LIFT] <= 1.0, "lift %g", v[SP_CH_LIFT]);
@@ -315,9 +324,13 @@ static void check_result(const struct drawn *x, const struct fixture_drive *r)
     expect(x, fabs(s->ledger.error) <= 1e-4, "ledger %g", s->ledger.error);
     expect(x, r->series.count == 13, "%zu samples", r->series.count);
     expect(x, s->duration == 60.0, "duration %g", s->duration);
-    expect(x, isfinite(s->coolant.value) && isfinite(s->gauge.value) && isfinite(s->metal.value) &&
-           isfinite(s->boil_margin.value) && isfinite(s->tank_pressure.value) && isfinite(s->over_ambient), "peaks");
-    expect(x, s->fan.on >= 0.0 && s->fan.on <= 60.0 && s->fan.energy > -1e-9, "fan %g s %g J", s->fan.on, s->fan.energy);
+    expect(x,
+           isfinite(s->coolant.value) && isfinite(s->gauge.value) && isfinite(s->metal.value) &&
+               isfinite(s->boil_margin.value) && isfinite(s->tank_pressure.value) &&
+               isfinite(s->over_ambient),
+           "peaks");
+    expect(x, s->fan.on >= 0.0 && s->fan.on <= 60.0 && s->fan.energy > -1e-9, "fan %g s %g J", s->fan.on,
+           s->fan.energy);
     for (size_t i = 1; i < s->events; ++i)
         expect(x, s->event[i].time >= s->event[i - 1].time, "order of events %zu", i);
 }
@@ -337,8 +350,8 @@ static void random_drives(void **state)
         steps += r.result.work.steps;
         fixture_drop(&r);
     }
-    print_message("%lu drives of 60 s, %.0f steps each, %ld violations\n", count, (double)steps / (double)count,
-                  violations);
+    print_message("%lu drives of 60 s, %.0f steps each, %ld violations\n", count,
+                  (double)steps / (double)count, violations);
     assert_int_equal(violations, 0);
 }
 
@@ -358,7 +371,8 @@ static void hotter_day_never_cooler(void **state)
         fixture_freeze(&x.d.coolant.fluid);
         x.d.air.wind = fabs(x.d.air.wind);
         x.d.duct.exit.pressure_coefficient = -fabs(x.d.duct.exit.pressure_coefficient);
-        for (int k = 0; k < STEPS; ++k) x.step[k].speed = fabs(x.step[k].speed);
+        for (int k = 0; k < STEPS; ++k)
+            x.step[k].speed = fabs(x.step[k].speed);
         x.d.duct.fan.law = i % 2 ? SP_FAN_ALWAYS : SP_FAN_NEVER;
         double start = x.d.start.coolant, radiator = x.d.start.radiator;
         struct fixture_drive cool = fixture_run(&fixture, &x.d, 0.0, 1e-7);
@@ -366,17 +380,19 @@ static void hotter_day_never_cooler(void **state)
         x.d.start.coolant = start;
         x.d.start.radiator = radiator;
         struct fixture_drive hot = fixture_run(&fixture, &x.d, 0.0, 1e-7);
-        expect(&x, cool.status <= SP_NOT && hot.status <= SP_NOT, "statuses %d, %d", (int)cool.status, (int)hot.status);
+        expect(&x, cool.status <= SP_NOT && hot.status <= SP_NOT, "statuses %d, %d", (int)cool.status,
+               (int)hot.status);
         sp_complaints_print(&hot.complaints, false, stderr);
-        expect(&x, hot.result.coolant.value >= cool.result.coolant.value - 1e-3, "peak %.6f K, hotter day %.6f K",
-               cool.result.coolant.value, hot.result.coolant.value);
+        expect(&x, hot.result.coolant.value >= cool.result.coolant.value - 1e-3,
+               "peak %.6f K, hotter day %.6f K", cool.result.coolant.value, hot.result.coolant.value);
         fixture_drop(&cool);
         fixture_drop(&hot);
     }
     assert_int_equal(violations, 0);
 }
 
-/* ---- the air path ---------------------------------------------------------------------------------------- */
+/* ---- the air path ----------------------------------------------------------------------------------------
+ */
 
 static struct sp_duct *build(const struct drawn *x)
 {
@@ -404,37 +420,44 @@ static struct sp_duct_inputs condition(gsl_rng *g)
 }
 
 /* Dynamic pressure and what the openings see of it, from the definitions of the inputs. */
-struct outer { double head, front, back; };
+struct outer {
+    double head, front, back;
+};
 
 static struct outer outer_of(const struct drawn *x, const struct sp_duct_inputs *in)
 {
-    double rho = in->pressure / (in->R * in->temperature), head = 0.5 * rho * in->speed * in->speed * in->wake;
+    double rho = in->pressure / (in->R * in->temperature),
+           head = 0.5 * rho * in->speed * in->speed * in->wake;
     double cosine = cos(x->d.duct.exit.angle);
     bool ahead = in->speed >= 0.0;
     return (struct outer){head, ahead ? x->d.duct.inlet.recovery * head : 0.0,
                           (ahead ? x->d.duct.exit.pressure_coefficient : cosine * cosine) * head};
 }
 
-static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s,
-                            const struct sp_station *st, const struct sp_duct_losses *l)
+static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *in,
+                            const struct sp_duct_state *s, const struct sp_station *st,
+                            const struct sp_duct_losses *l)
 {
     struct outer o = outer_of(x, in);
     double way = s->mass_flow >= 0.0 ? 1.0 : -1.0;
-    /* A fan behind the core stalls against a wind from behind over a band of winds: cold air from behind gives
-     * it more pressure than hot air from the core. Within the band the flow is nil and nothing balances. */
+    /* A fan behind the core stalls against a wind from behind over a band of winds: cold air from behind
+     * gives it more pressure than hot air from the core. Within the band the flow is nil and nothing
+     * balances. */
     if (fabs(s->mass_flow) < 1e-9) return;
-    double lost = l->lip + l->screen + l->diffuser + l->core + l->heating + l->exit +
-                  (way > 0.0 ? l->exit_head : 0.0);
+    double lost =
+        l->lip + l->screen + l->diffuser + l->core + l->heating + l->exit + (way > 0.0 ? l->exit_head : 0.0);
     double left = o.front - o.back - l->fan - way * lost;
     double size = fabs(o.front) + fabs(o.back) + fabs(l->fan) + lost;
-    expect(x, fabs(left) <= 1e-9 * size + 1e-9, "balance %g Pa of %g, m %g kg/s at %g m/s", left, size, s->mass_flow, in->speed);
+    expect(x, fabs(left) <= 1e-9 * size + 1e-9, "balance %g Pa of %g, m %g kg/s at %g m/s", left, size,
+           s->mass_flow, in->speed);
     /* Stations in the order of the flow; between them total pressure falls, but for the fan's own place. */
     int fan_at = x->d.duct.fan.before_core ? 2 : 3;
     double give = 1e-9 * in->pressure;
     for (int i = 1; i < SP_STATIONS - 1; ++i) {
         double fall = way * (st[i].total_pressure - st[i + 1].total_pressure);
         if (i == fan_at && l->fan < 0.0 && way > 0.0) continue;
-        expect(x, fall >= -give, "total pressure from %d to %d rises by %g Pa, m %g", i, i + 1, -fall, s->mass_flow);
+        expect(x, fall >= -give, "total pressure from %d to %d rises by %g Pa, m %g", i, i + 1, -fall,
+               s->mass_flow);
     }
     if (way > 0.0) {
         double in_front = o.front + in->pressure - st[1].total_pressure;
@@ -451,7 +474,8 @@ static void check_masses(const struct drawn *x, const struct sp_duct_state *s, c
     const double area[SP_STATIONS] = {NAN, x->d.duct.inlet.area, face, face, face, x->d.duct.exit.area};
     for (int i = 1; i < SP_STATIONS; ++i) {
         double m = st[i].density * st[i].velocity * area[i];
-        expect(x, fabs(m - s->mass_flow) <= 1e-12 * fabs(s->mass_flow), "mass at %d: %g of %g", i, m, s->mass_flow);
+        expect(x, fabs(m - s->mass_flow) <= 1e-12 * fabs(s->mass_flow), "mass at %d: %g of %g", i, m,
+               s->mass_flow);
     }
     const double *all = &st[0].total_pressure;
     for (size_t i = 0; i < sizeof(struct sp_station) * SP_STATIONS / sizeof *all; ++i)
@@ -461,13 +485,15 @@ static void check_masses(const struct drawn *x, const struct sp_duct_state *s, c
 static void check_heat(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
 {
     double carried = fabs(s->mass_flow) * in->cp * in->temperature * (s->temperature_ratio - 1.0);
-    expect(x, fabs(carried - s->heat) <= 1e-9 * fabs(s->heat) + 1e-9, "heat %g W carried %g W", s->heat, carried);
+    expect(x, fabs(carried - s->heat) <= 1e-9 * fabs(s->heat) + 1e-9, "heat %g W carried %g W", s->heat,
+           carried);
     expect(x, s->effectiveness >= 0.0 && s->effectiveness <= 1.0, "effectiveness %g", s->effectiveness);
 }
 
 /* Whether several flows may hold themselves up, or none: a fan that runs against pressure from behind gets
- * weaker or stronger as the air it is reached by is warmed or not; and the louvres' published friction, blended
- * between Reynolds numbers 130 and 230, lets the drop of some fins fall with rising flow near 1.5 m/s. */
+ * weaker or stronger as the air it is reached by is warmed or not; and the louvres' published friction,
+ * blended between Reynolds numbers 130 and 230, lets the drop of some fins fall with rising flow near 1.5
+ * m/s. */
 static bool several(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
 {
     struct outer o = outer_of(x, in);
@@ -475,7 +501,8 @@ static bool several(const struct drawn *x, const struct sp_duct_inputs *in, cons
     return x->d.duct.core.drop_law == SP_DROP_FINS && fabs(s->face_velocity) < 4.0;
 }
 
-static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
+static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in,
+                         const struct sp_duct_state *s)
 {
     if (several(x, in, s)) return;
     struct drawn less = *x;
@@ -483,8 +510,8 @@ static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in,
     struct sp_duct *d = build(&less);
     struct sp_duct_state small;
     expect(x, sp_duct_solve(d, in, &small) == SP_OK, "a smaller exit");
-    expect(x, fabs(small.mass_flow) <= fabs(s->mass_flow) * (1.0 + 1e-9) + 1e-12, "smaller exit %g over %g kg/s",
-           small.mass_flow, s->mass_flow);
+    expect(x, fabs(small.mass_flow) <= fabs(s->mass_flow) * (1.0 + 1e-9) + 1e-12,
+           "smaller exit %g over %g kg/s", small.mass_flow, s->mass_flow);
     sp_duct_free(d);
 }
 
@@ -501,14 +528,17 @@ static void hotter_core(const struct drawn *x, const struct sp_duct *d, const st
     if (!(s->mass_flow > 1e-3)) return;
     expect(x, h.mass_flow < s->mass_flow, "hotter core %.9g kg/s, before %.9g", h.mass_flow, s->mass_flow);
     const struct sp_core *c = &x->d.duct.core;
-    bool viscous = c->drop_law == SP_DROP_FINS || (c->drop_law != SP_DROP_COEFFICIENT && isfinite(c->at_temperature));
+    bool viscous =
+        c->drop_law == SP_DROP_FINS || (c->drop_law != SP_DROP_COEFFICIENT && isfinite(c->at_temperature));
     if (in->fan_speed > 0.0 || viscous) return;
-    expect(x, h.exit_velocity > s->exit_velocity, "hotter core %.9g m/s, before %.9g", h.exit_velocity, s->exit_velocity);
+    expect(x, h.exit_velocity > s->exit_velocity, "hotter core %.9g m/s, before %.9g", h.exit_velocity,
+           s->exit_velocity);
 }
 
 /* The answer must not depend on where the search began, here: at the answer of quite another condition. */
-static void same_from_elsewhere(const struct drawn *x, const struct sp_duct *d, const struct sp_duct_inputs *in,
-                                const struct sp_duct_state *s, struct sp_guess *guess)
+static void same_from_elsewhere(const struct drawn *x, const struct sp_duct *d,
+                                const struct sp_duct_inputs *in, const struct sp_duct_state *s,
+                                struct sp_guess *guess)
 {
     struct sp_duct_state again;
     if (several(x, in, s)) return;
@@ -569,7 +599,8 @@ static int end(void **state)
 
 int main(void)
 {
-    const struct CMUnitTest tests[] = {cmocka_unit_test(random_drives), cmocka_unit_test(hotter_day_never_cooler),
+    const struct CMUnitTest tests[] = {cmocka_unit_test(random_drives),
+                                       cmocka_unit_test(hotter_day_never_cooler),
                                        cmocka_unit_test(random_ducts)};
     return cmocka_run_group_tests(tests, begin, end);
 }

@@ -105,7 +105,8 @@ static void two_masses_ramp(void **state)
     const double times[] = {2, 5, 9, 20, 40};
     for (int i = 0; i < 5; ++i) {
         const double *v = fixture_at(&r, times[i])->value;
-        check_close(v[SP_CH_METAL] - v[SP_CH_ENGINE_OUT], 1.764706 * (1.0 - exp(-times[i] / 8.823529)), 0, 1e-5);
+        check_close(v[SP_CH_METAL] - v[SP_CH_ENGINE_OUT], 1.764706 * (1.0 - exp(-times[i] / 8.823529)), 0,
+                    1e-5);
     }
     assert_true(fabs(r.result.ledger.error) < 1e-8);
     fixture_drop(&r);
@@ -121,8 +122,13 @@ static void two_masses_step(void **state)
     d.step = &s;
     d.steps = 1;
     struct fixture_drive r = run(&d, 5.0);
-    const struct { double t, metal, coolant; } want[] = {
-        {30, 22.384, 10.171}, {60, 37.210, 19.437}, {120, 54.446, 30.246}, {300, 68.340, 38.959}, {1500, 70.0, 40.0}};
+    const struct {
+        double t, metal, coolant;
+    } want[] = {{30, 22.384, 10.171},
+                {60, 37.210, 19.437},
+                {120, 54.446, 30.246},
+                {300, 68.340, 38.959},
+                {1500, 70.0, 40.0}};
     for (int i = 0; i < 5; ++i) {
         const double *v = fixture_at(&r, want[i].t)->value;
         check_close(v[SP_CH_METAL] - d.air.ambient, want[i].metal, 1e-4, 6e-4);
@@ -142,7 +148,8 @@ static void lap_ripple(void **state)
     for (int i = 0; i < 4; ++i) {
         struct sp_design d = with_sink(60e3, 25e3, 1e8, 1.5e3);
         struct sp_step s[2 * LAPS];
-        for (int k = 0; k < 2 * LAPS; ++k) s[k] = fixture_hold(0.5 * period[i], 40.0, k % 2 ? 0.0 : 100e3, 100.0);
+        for (int k = 0; k < 2 * LAPS; ++k)
+            s[k] = fixture_hold(0.5 * period[i], 40.0, k % 2 ? 0.0 : 100e3, 100.0);
         d.step = s;
         d.steps = 2 * LAPS;
         struct fixture_drive r = run(&d, 0.5 * period[i]);
@@ -187,7 +194,8 @@ static void hotter_day_frozen(void **state)
     d.start.coolant += 10.0;
     struct fixture_drive hot = run(&d, 60.0);
     for (size_t i = 0; i < cool.series.count; ++i)
-        check_close(hot.series.row[i].value[SP_CH_ENGINE_OUT] - cool.series.row[i].value[SP_CH_ENGINE_OUT], 10.0, 0, 2e-3);
+        check_close(hot.series.row[i].value[SP_CH_ENGINE_OUT] - cool.series.row[i].value[SP_CH_ENGINE_OUT],
+                    10.0, 0, 2e-3);
     fixture_drop(&cool);
     fixture_drop(&hot);
 }
@@ -207,8 +215,8 @@ static double settled(struct sp_design *d)
 
 /* With real properties it is not 10 K exactly. At equal density (pressure raised with temperature) what is
  * left is small: viscosity and conductivity of air and coolant. (The engine's gas, which gives less to hotter
- * metal, is left out.) At equal pressure there is 3 % less air as well: conductance goes with about its square
- * root, so some 1.5 % to 2 % of the rise over ambient comes on top. */
+ * metal, is left out.) At equal pressure there is 3 % less air as well: conductance goes with about its
+ * square root, so some 1.5 % to 2 % of the rise over ambient comes on top. */
 static void hotter_day_real(void **state)
 {
     (void)state;
@@ -220,13 +228,15 @@ static void hotter_day_real(void **state)
     double thin = settled(&d);
     d.air.pressure *= ratio;
     double dense = settled(&d);
-    print_message("over ambient %.3f K; +10 K of ambient: +%.3f K at equal density, +%.3f K at equal pressure\n", over,
-                  dense - T, thin - T);
+    print_message(
+        "over ambient %.3f K; +10 K of ambient: +%.3f K at equal density, +%.3f K at equal pressure\n", over,
+        dense - T, thin - T);
     check_within(dense - T, 9.5, 10.4);
     check_within(thin - dense, 0.010 * over, 0.025 * over);
 }
 
-/* ---- thermostat ------------------------------------------------------------------------------------------ */
+/* ---- thermostat ------------------------------------------------------------------------------------------
+ */
 
 static void thermostat_fractions(void **state)
 {
@@ -235,7 +245,8 @@ static void thermostat_fractions(void **state)
     t.opens = 355.15; /* 82 degC */
     t.full = 368.15;  /* 95 degC */
     const double at[] = {82, 85, 88.5, 92, 95, 60, 120}, want[] = {0, 0.2308, 0.5, 0.7692, 1, 0, 1};
-    for (int i = 0; i < 7; ++i) check_close(sp_thermostat_lift(&t, at[i] + 273.15), want[i], 0, 5e-5);
+    for (int i = 0; i < 7; ++i)
+        check_close(sp_thermostat_lift(&t, at[i] + 273.15), want[i], 0, 5e-5);
 }
 
 /* A ramp of 0.5 K/s and a lag of 15 s: the wax is 7.5 K behind. */
@@ -254,7 +265,8 @@ static void wax_lags_a_ramp(void **state)
     fixture_drop(&r);
 }
 
-/* ---- pump -------------------------------------------------------------------------------------------------- */
+/* ---- pump
+ * -------------------------------------------------------------------------------------------------- */
 
 /* Shut-off 100 kPa at 6000 rpm: 44.4 kPa at 4000, 1.78 kPa at 800. */
 static void pump_affinity(void **state)
@@ -304,7 +316,8 @@ static void quadratic_circuit(void **state)
 }
 
 /* Radiator and bypass in parallel behind the jacket, both quadratic: flows stand as the roots of conductance
- * squared, and the thermostat's valve of 35 mm at 8 mm drops 5.1 kPa at 100 l/min (discharge 0.6, hot 50/50). */
+ * squared, and the thermostat's valve of 35 mm at 8 mm drops 5.1 kPa at 100 l/min (discharge 0.6, hot 50/50).
+ */
 static void parallel_branches(void **state)
 {
     (void)state;
@@ -339,7 +352,8 @@ static void parallel_branches(void **state)
     sp_circuit_free(&k);
 }
 
-/* ---- tank -------------------------------------------------------------------------------------------------- */
+/* ---- tank
+ * -------------------------------------------------------------------------------------------------- */
 
 /* 8.0 l of 50 % ethylene glycol, filled at 20 degC and 101.3 kPa, brought to 100 degC with the gas at
  * 80 degC, all rigid: 0.394 l more liquid, and 290, 175, 136, 117 kPa gauge over air spaces of 0.6, 0.8, 1.0,
@@ -358,8 +372,11 @@ static void tank_pressures(void **state)
         t.air_space = space[i];
         t.compliance = 1e-18;
         t.fill_temperature = 293.15;
-        struct sp_tank_inputs in = {.air = sp_tank_filling(&t, 0.0, 101.325e3), .liquid = liquid,
-                                    .system = 8e-3 + space[i], .temperature = 353.15, .vapour = vapour,
+        struct sp_tank_inputs in = {.air = sp_tank_filling(&t, 0.0, 101.325e3),
+                                    .liquid = liquid,
+                                    .system = 8e-3 + space[i],
+                                    .temperature = 353.15,
+                                    .vapour = vapour,
                                     .ambient = 101.325e3};
         check_close(sp_tank_state(&t, &in).pressure - 101.325e3, gauge[i], 0, 0.6e3);
         check_close(sp_tank_state(&t, &in).gas, space[i] - (liquid - 8e-3), 1e-8, 0);
@@ -385,7 +402,8 @@ static void vents_then_cools(void **state)
     d.tank.skin = 60.0;
     d.engine.skin_standing = 60.0;
     d.start = (struct sp_start){d.air.ambient, NAN, NAN};
-    struct sp_step s[] = {fixture_hold(900.0, 30.0, 40e3, 80.0), {.kind = SP_STEP_SOAK, .time = 60000.0, .repeat = 1.0}};
+    struct sp_step s[] = {fixture_hold(900.0, 30.0, 40e3, 80.0),
+                          {.kind = SP_STEP_SOAK, .time = 60000.0, .repeat = 1.0}};
     d.step = s;
     d.steps = 2;
     struct fixture_drive r = run(&d, 100.0);
@@ -415,12 +433,12 @@ static int end(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(two_masses_ramp),     cmocka_unit_test(two_masses_step),
-        cmocka_unit_test(lap_ripple),          cmocka_unit_test(soak_equalises),
-        cmocka_unit_test(hotter_day_frozen),   cmocka_unit_test(hotter_day_real),
+        cmocka_unit_test(two_masses_ramp),      cmocka_unit_test(two_masses_step),
+        cmocka_unit_test(lap_ripple),           cmocka_unit_test(soak_equalises),
+        cmocka_unit_test(hotter_day_frozen),    cmocka_unit_test(hotter_day_real),
         cmocka_unit_test(thermostat_fractions), cmocka_unit_test(wax_lags_a_ramp),
-        cmocka_unit_test(pump_affinity),       cmocka_unit_test(quadratic_circuit),
-        cmocka_unit_test(parallel_branches),   cmocka_unit_test(tank_pressures),
+        cmocka_unit_test(pump_affinity),        cmocka_unit_test(quadratic_circuit),
+        cmocka_unit_test(parallel_branches),    cmocka_unit_test(tank_pressures),
         cmocka_unit_test(vents_then_cools),
     };
     return cmocka_run_group_tests(tests, begin, end);

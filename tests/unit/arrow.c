@@ -10,7 +10,10 @@
 
 static gsl_rng *dice;
 
-static double any(void) { return 2.0 * gsl_rng_uniform(dice) - 1.0; }
+static double any(void)
+{
+    return 2.0 * gsl_rng_uniform(dice) - 1.0;
+}
 
 /* Position of a state in the band, or -1: hose out, coolant and wall by turns, hose back. */
 static int band_place(const struct sp_layout *l, int state)
@@ -25,7 +28,8 @@ static int band_place(const struct sp_layout *l, int state)
 static bool allowed(const struct sp_layout *l, int row, int column)
 {
     int p = band_place(l, row), q = band_place(l, column);
-    bool passive_column = column > SP_Y_FAN && column < SP_Y_CHAIN, passive_row = row > SP_Y_FAN && row < SP_Y_CHAIN;
+    bool passive_column =
+        column > SP_Y_FAN && column<SP_Y_CHAIN, passive_row = row> SP_Y_FAN && row < SP_Y_CHAIN;
     if (passive_column) {
         bool tank = (row == SP_Y_AIR || row == SP_Y_LOST) && (column == SP_Y_AIR || column == SP_Y_LOST);
         return passive_row && (row == column || tank);
@@ -54,7 +58,8 @@ static struct random draw(int cells, double size)
     r.core = r.wall + r.n;
     for (int j = 0; j < r.n; ++j) {
         r.jac[j] = r.block + j * r.n;
-        for (int i = 0; i < r.n; ++i) r.jac[j][i] = allowed(&r.l, i, j) ? size * any() : 0.0;
+        for (int i = 0; i < r.n; ++i)
+            r.jac[j][i] = allowed(&r.l, i, j) ? size * any() : 0.0;
         r.jac[j][j] -= 4.0 * size; /* every cell of a circuit decays */
     }
     for (int i = 0; i < r.n; ++i) {
@@ -87,7 +92,8 @@ static void dense_solve(const struct random *r, double scale, const double *b, d
     int sign;
     gsl_matrix_memcpy(m, r->dense);
     gsl_matrix_scale(m, scale);
-    for (size_t i = 0; i < n; ++i) gsl_matrix_set(m, i, i, gsl_matrix_get(m, i, i) + 1.0);
+    for (size_t i = 0; i < n; ++i)
+        gsl_matrix_set(m, i, i, gsl_matrix_get(m, i, i) + 1.0);
     gsl_vector_const_view bv = gsl_vector_const_view_array(b, n);
     gsl_vector_view xv = gsl_vector_view_array(x, n);
     assert_int_equal(gsl_linalg_LU_decomp(m, p, &sign), 0);
@@ -113,13 +119,17 @@ static void against_dense(void **state)
             assert_true(sp_arrow_factor(&a, f));
             double b[SP_Y_MOST], x[SP_Y_MOST], want[SP_Y_MOST], norm = 0.0;
             for (int again = 0; again < 3; ++again) { /* one factor serves many right-hand sides */
-                for (int i = 0; i < r.n; ++i) b[i] = any();
+                for (int i = 0; i < r.n; ++i)
+                    b[i] = any();
                 dense_solve(&r, -gamma[g], b, want);
                 sp_arrow_solve(&a, f, b, x);
-                for (int i = 0; i < r.n; ++i) norm = fmax(norm, fabs(want[i]));
-                for (int i = 0; i < r.n; ++i) check_close(x[i], want[i], 0, 1e-9 * norm);
+                for (int i = 0; i < r.n; ++i)
+                    norm = fmax(norm, fabs(want[i]));
+                for (int i = 0; i < r.n; ++i)
+                    check_close(x[i], want[i], 0, 1e-9 * norm);
                 sp_arrow_solve(&a, f, b, b); /* in place */
-                for (int i = 0; i < r.n; ++i) check_close(b[i], x[i], 0, 0);
+                for (int i = 0; i < r.n; ++i)
+                    check_close(b[i], x[i], 0, 0);
             }
             sp_arrow_close(&a);
             free(f);
@@ -137,18 +147,21 @@ static void entry_by_entry(void **state)
     assert_non_null(f);
     assert_true(sp_arrow_open(r.l, &a));
     double b[SP_Y_MOST], x[SP_Y_MOST], want[SP_Y_MOST];
-    for (int i = 0; i < r.n; ++i) b[i] = 1.0 + i;
+    for (int i = 0; i < r.n; ++i)
+        b[i] = 1.0 + i;
     for (int i = 0; i < r.n; ++i)
         for (int j = 0; j < r.n; ++j) {
             if (!allowed(&r.l, i, j)) continue;
             r.jac[j][i] += 0.5;
-            gsl_matrix_set(r.dense, (size_t)i, (size_t)j, gsl_matrix_get(r.dense, (size_t)i, (size_t)j) + 0.5);
+            gsl_matrix_set(r.dense, (size_t)i, (size_t)j,
+                           gsl_matrix_get(r.dense, (size_t)i, (size_t)j) + 0.5);
             sp_arrow_fill(&a, r.jac, r.wall, r.core);
             sp_arrow_scale_add(&a, -0.3);
             assert_true(sp_arrow_factor(&a, f));
             dense_solve(&r, -0.3, b, want);
             sp_arrow_solve(&a, f, b, x);
-            for (int k = 0; k < r.n; ++k) check_close(x[k], want[k], 1e-10, 1e-8);
+            for (int k = 0; k < r.n; ++k)
+                check_close(x[k], want[k], 1e-10, 1e-8);
         }
     sp_arrow_close(&a);
     free(f);
@@ -164,12 +177,14 @@ static void scale_and_identity(void **state)
     struct sp_layout l = sp_layout_of(5);
     double b[SP_Y_MOST], x[SP_Y_MOST];
     assert_true(sp_arrow_open(l, &a));
-    for (int i = 0; i < l.count; ++i) b[i] = any();
+    for (int i = 0; i < l.count; ++i)
+        b[i] = any();
     assert_false(sp_arrow_factor(&a, f)); /* all nil: no pivot */
     sp_arrow_scale_add(&a, 3.0);
     assert_true(sp_arrow_factor(&a, f));
     sp_arrow_solve(&a, f, b, x);
-    for (int i = 0; i < l.count; ++i) check_close(x[i], b[i], 0, 0);
+    for (int i = 0; i < l.count; ++i)
+        check_close(x[i], b[i], 0, 0);
     sp_arrow_close(&a);
     assert_null(a.entry);
     free(f);

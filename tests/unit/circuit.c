@@ -86,12 +86,14 @@ static struct jacobian jacobian_of(const struct rig *r)
     j.block = calloc(n * n + 5 * n, sizeof *j.block);
     j.jac = calloc(n, sizeof *j.jac);
     assert_true(j.block && j.jac);
-    for (int i = 0; i < j.n; ++i) j.jac[i] = j.block + i * j.n;
+    for (int i = 0; i < j.n; ++i)
+        j.jac[i] = j.block + i * j.n;
     j.wall = j.block + n * n;
     j.core = j.wall + n;
     j.work = j.core + n;
     struct sp_guesses guesses = {{0.0, 0.0}, {0.0, 0.0}};
-    assert_int_equal(sp_circuit_jacobian(&r->c, &r->in, &r->modes, r->y, &guesses, j.jac, j.wall, j.core, j.work), SP_OK);
+    assert_int_equal(
+        sp_circuit_jacobian(&r->c, &r->in, &r->modes, r->y, &guesses, j.jac, j.wall, j.core, j.work), SP_OK);
     return j;
 }
 
@@ -114,13 +116,15 @@ static void column_by_differences(const struct rig *r, int j, double *out)
     rates_at(r, moved, &k, up);
     moved[j] = r->y[j] - step;
     rates_at(r, moved, &k, down);
-    for (int i = 0; i < n; ++i) out[i] = (up[i] - down[i]) / (2.0 * step);
+    for (int i = 0; i < n; ++i)
+        out[i] = (up[i] - down[i]) / (2.0 * step);
 }
 
 static double scale_of(const struct jacobian *j, int row)
 {
     double most = 0.0;
-    for (int k = 0; k < j->n; ++k) most = fmax(most, fabs(j->jac[k][row]));
+    for (int k = 0; k < j->n; ++k)
+        most = fmax(most, fabs(j->jac[k][row]));
     return most;
 }
 
@@ -200,15 +204,18 @@ static void jacobian_of_the_tank(void **state)
         if (venting) { /* a kPa over the setting */
             struct sp_tank_inputs ti;
             for (int i = 0; i < 60; ++i)
-                r.y[SP_Y_AIR] *= (101325.0 + 11e3 - 3e4) / (sp_circuit_tank(&r.c, &r.in, r.y, &ti).pressure - 3e4);
+                r.y[SP_Y_AIR] *=
+                    (101325.0 + 11e3 - 3e4) / (sp_circuit_tank(&r.c, &r.in, r.y, &ti).pressure - 3e4);
             check_close(sp_circuit_tank(&r.c, &r.in, r.y, &ti).pressure, 101325.0 + 11e3, 0, 2e3);
         }
         struct jacobian j = jacobian_of(&r);
         double want[SP_Y_MOST];
         for (int c = SP_Y_AIR; c <= SP_Y_LOST; ++c) {
             column_by_differences(&r, c, want);
-            for (int i = 0; i < j.n; ++i) check_close(j.jac[c][i], want[i], 1e-2, 1e-9);
-            for (int i = 0; i < j.n; ++i) assert_true(i == SP_Y_AIR || i == SP_Y_LOST || j.jac[c][i] == 0.0);
+            for (int i = 0; i < j.n; ++i)
+                check_close(j.jac[c][i], want[i], 1e-2, 1e-9);
+            for (int i = 0; i < j.n; ++i)
+                assert_true(i == SP_Y_AIR || i == SP_Y_LOST || j.jac[c][i] == 0.0);
         }
         if (venting) assert_true(j.jac[SP_Y_AIR][SP_Y_AIR] < 0.0);
         drop_jacobian(&j);
@@ -216,8 +223,8 @@ static void jacobian_of_the_tank(void **state)
     }
 }
 
-/* What the structured solver leaves out of the true matrix is nothing: I - gamma J by differences of everything
- * and dense LU give the same step. */
+/* What the structured solver leaves out of the true matrix is nothing: I - gamma J by differences of
+ * everything and dense LU give the same step. */
 static void structure_holds(void **state)
 {
     (void)state;
@@ -236,7 +243,8 @@ static void structure_holds(void **state)
     double column[SP_Y_MOST], b[SP_Y_MOST], x[SP_Y_MOST], want[SP_Y_MOST];
     for (size_t c = 0; c < n; ++c) {
         column_by_differences(&r, (int)c, column);
-        for (size_t i = 0; i < n; ++i) gsl_matrix_set(m, i, c, (i == c ? 1.0 : 0.0) - gamma * column[i]);
+        for (size_t i = 0; i < n; ++i)
+            gsl_matrix_set(m, i, c, (i == c ? 1.0 : 0.0) - gamma * column[i]);
         b[c] = 1.0 + 0.1 * (double)c;
     }
     int sign;
@@ -252,7 +260,8 @@ static void structure_holds(void **state)
     sp_arrow_scale_add(&a, -gamma);
     assert_true(sp_arrow_factor(&a, f));
     sp_arrow_solve(&a, f, b, x);
-    for (size_t i = 0; i < n; ++i) check_close(x[i], want[i], 1e-3, 1e-5 * (1.0 + fabs(want[i])));
+    for (size_t i = 0; i < n; ++i)
+        check_close(x[i], want[i], 1e-3, 1e-5 * (1.0 + fabs(want[i])));
     sp_arrow_close(&a);
     free(f);
     drop_jacobian(&j);
@@ -261,9 +270,11 @@ static void structure_holds(void **state)
     drop(&r);
 }
 
-/* ---- balances ------------------------------------------------------------------------------------------- */
+/* ---- balances -------------------------------------------------------------------------------------------
+ */
 
-/* Heat in less heat out is what the held heat grows by, at any state: the ledger's three sides, from the rates. */
+/* Heat in less heat out is what the held heat grows by, at any state: the ledger's three sides, from the
+ * rates. */
 static void books_balance(void **state)
 {
     (void)state;
@@ -308,7 +319,8 @@ static void cold_car_rests(void **state)
     struct sp_coupling k;
     double f[SP_Y_MOST];
     rates_at(&r, r.y, &k, f);
-    for (int i = 0; i < r.c.layout.count; ++i) check_close(f[i], 0.0, 0, 1e-10);
+    for (int i = 0; i < r.c.layout.count; ++i)
+        check_close(f[i], 0.0, 0, 1e-10);
     assert_true(k.duct.mass_flow == 0.0 && k.loop.pump == 0.0);
     drop(&r);
 }
@@ -426,9 +438,14 @@ static int end(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(jacobian_against_differences), cmocka_unit_test(jacobian_of_the_tank),
-        cmocka_unit_test(structure_holds), cmocka_unit_test(books_balance), cmocka_unit_test(cold_car_rests),
-        cmocka_unit_test(start_state),     cmocka_unit_test(controller),    cmocka_unit_test(bad_cars),
+        cmocka_unit_test(jacobian_against_differences),
+        cmocka_unit_test(jacobian_of_the_tank),
+        cmocka_unit_test(structure_holds),
+        cmocka_unit_test(books_balance),
+        cmocka_unit_test(cold_car_rests),
+        cmocka_unit_test(start_state),
+        cmocka_unit_test(controller),
+        cmocka_unit_test(bad_cars),
     };
     return cmocka_run_group_tests(tests, begin, end);
 }

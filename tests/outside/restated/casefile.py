@@ -10,8 +10,10 @@ from .fluids import standard_altitude, standard_pressure
 
 UNITS = {"": 1, "m": 1, "mm": 1e-3, "km": 1e3, "m2": 1, "cm2": 1e-4, "m3": 1, "l": 1e-3, "m3/s": 1, "l/min": 1e-3 / 60,
          "Pa": 1, "kPa": 1e3, "bar": 1e5, "W": 1, "kW": 1e3, "W/K": 1, "kW/K": 1e3, "J/K": 1, "kJ/K": 1e3, "K": 1,
-         "s": 1, "min": 60, "h": 3600, "m/s": 1, "km/h": 1 / 3.6, "rpm": 1 / 60, "rev/s": 1, "kg": 1, "deg": math.pi / 180,
-         "rad": 1, "V": 1, "%": 0.01, "W/mK": 1}
+         "s": 1, "min": 60, "h": 3600, "m/s": 1, "km/h": 1 / 3.6, "rpm": 1 / 60, "rev/s": 1, "kg": 1,
+         "deg": math.pi / 180, "kg/s": 1, "kg/m3": 1,
+         "rad": 1, "V": 1, "%": 0.01, "W/mK": 1,
+         "Pa.s/m": 1, "Pa.s2/m2": 1}
 NUMBER = re.compile(r"^\s*([-+]?\d[\d.]*(?:[eE][-+]?\d+)?)\s*(\S*)\s*$")
 LIPS = {"sheet edge": 1.0, "hole in a skin": 0.5, "folded": 0.3, "rounded 10 mm": 0.18, "bellmouth": 0.05}
 
@@ -37,15 +39,23 @@ def _fill(have, **defaults):
     return have
 
 
-def load(path):
-    folder = os.path.dirname(path)
+def read(path):
+    """The case as text with its car inside and its traces by absolute path."""
+    folder = os.path.dirname(os.path.abspath(path))
     with open(path, encoding="utf-8") as f:
         raw = json.load(f)
     if isinstance(raw["car"], str):
         with open(os.path.join(folder, raw["car"]), encoding="utf-8") as f:
             raw["car"] = json.load(f)
+    for step in raw["drive"]:
+        if "trace" in step:
+            step["trace"] = os.path.normpath(os.path.join(folder, step["trace"]))
+    return raw
+
+
+def understood(raw):
+    """The case in SI units with every default."""
     case = quantity(raw)
-    case["folder"] = folder
     air = _fill(case["air"], humidity=0.0, wind=0.0)
     if "pressure" in air:
         air["altitude"] = standard_altitude(air["pressure"])
@@ -66,10 +76,12 @@ def _car(car):
     _fill(car["body"], shift_speed=car["engine"]["rated_speed"])
     coolant = _fill(car.setdefault("coolant", {}), kind="ethylene glycol")
     _fill(coolant, glycol=0.0 if coolant["kind"] == "water" else 0.5)
-    _fill(car["pump"], drive="belt", ratio=1.15)
+    pump = _fill(car["pump"], drive="belt", ratio=1.15, rated_voltage=13.0, run_on=0.0)
+    if isinstance(pump["curve"], dict):
+        _fill(pump, power=2 / (3 * math.sqrt(3)) * pump["curve"]["shutoff"] * pump["curve"]["free_flow"] / 0.32)
     if car.setdefault("thermostat", {}) != "none":
         stat = _fill(car["thermostat"], opens=358.15, hysteresis=3.0, lag=12.0, lag_still=40.0, bore=0.035, lift=0.008,
-                     discharge=0.6, leak=0.01, bypass_shut=0.8)
+                     discharge=0.6, leak=0.003, bypass_shut=0.8)
         _fill(stat, full=stat["opens"] + 12)
     hoses = _fill(car.setdefault("hoses", {}), bends=4.0, skin=6.0)
     for name in ("out", "back"):
@@ -108,14 +120,19 @@ def _duct(duct):
     bulk = core["width"] * core["height"] * core["depth"]
     _fill(core, metal_capacity=900 * (0.33 * bulk / 1e-3 + 2.5 * core["height"] / 0.4),
           coolant_volume=0.13 * bulk + 1.3e-3 * core["height"] / 0.4)
-    tubes = _fill(core["tubes"], wall=0.3e-3, rows=1, passes=1)
-    _fill(core["fins"], thickness=0.1e-3, conductivity=180.0, louvre_length=0.85 * (tubes["pitch"] - tubes["height"]))
+    if "tubes" in core:
+        tubes = _fill(core["tubes"], wall=0.3e-3, rows=1, passes=1)
+        _fill(core["fins"], thickness=0.1e-3, conductivity=180.0,
+              louvre_length=0.85 * (tubes["pitch"] - tubes["height"]))
+    else:
+        core.setdefault("drop", {"flow": 0.1 / 60, "drop": 18e3})
     if "fan" in duct:
-        fan = _fill(duct["fan"], count=1, basis="total", before=None, windmill_loss=1.2, rated_voltage=13.0, spin_up=1.5,
-                    control="switch", switch={}, proportional={}, sensor="engine out", run_on=0.0)
+        fan = _fill(duct["fan"], count=1, basis="total", before=None, windmill_loss=1.2, rated_voltage=13.0,
+                    spin_up=1.5, control="switch", switch={}, proportional={}, sensor="engine out", run_on=0.0)
         if "diameter" in fan:
             _fill(fan, hub=0.35 * fan["diameter"])
         _fill(fan["switch"], on=369.15, off=364.15)
+        _fill(fan["proportional"], **{"from": 363.15, "to": 373.15, "least": 0.33})
 
 
 def trace(path):

@@ -2,8 +2,8 @@
 """Sections 5 (coolant), 9 and 11: tubes, flows of the coolant loop, header tank and cap."""
 import math
 
-from .duct import falling_root
 from .fluids import R_MOL, PressureCurve
+from .roots import falling_root
 
 
 class Tubes:
@@ -38,7 +38,7 @@ class Tubes:
         return x * (re - 1000) * pr / (1 + 12.7 * math.sqrt(x) * (pr ** (2 / 3) - 1)) \
             * (1 + (self.bore / self.length) ** (2 / 3))
 
-    def conductance(self, flow, coolant, temperature):
+    def inner(self, flow, coolant, temperature):
         mu, k = coolant.viscosity(temperature), coolant.conductivity(temperature)
         pr = coolant.capacity(temperature) * mu / k
         re = flow / self.count * self.bore / (self.section * mu)

@@ -1,12 +1,12 @@
 # SPDX-License-Identifier: GPL-3.0-or-later
 """Sections 7, 8 and 15: engine heat by row, road load, and the schedule of straight lines between rows."""
 import math
-import os
 
 import numpy as np
 
 from .casefile import trace
 from .fluids import GRAVITY, moist_air, ramp, standard_pressure
+from .merging import merged
 
 # channels of a row, in this order
 SPEED, AIR_SPEED, WAKE, AMBIENT, PRESSURE, GAS, FRICTION, SLOPE, TURNS, POWER = range(10)
@@ -110,10 +110,11 @@ def central(t, v):
 
 
 class Segment:
-    """A stretch of straight channels from t0 to t1; `a` and `b` hold them at its ends."""
+    """A stretch of straight channels from t0 to t1, `a` and `b` at its ends; engine on, fan and pump allowed."""
 
     def __init__(self, t0, t1, a, b, on):
         self.t0, self.t1, self.a, self.b, self.on = t0, t1, a, b, on
+        self.fan = self.pump = on
 
     def at(self, t):
         w = (t - self.t0) / (self.t1 - self.t0)
@@ -126,6 +127,7 @@ class Schedule:
         self.engine = EngineHeat(self.car["engine"])
         self.idle = self.car["engine"]["idle_speed"]
         self.segments, self.now, self.pressure, self.first_z = [], 0.0, self.air["pressure"], None
+        self.work = None
         for step in case["drive"]:
             for _ in range(int(step.get("repeat", 1))):
                 if "trace" in step:
@@ -136,7 +138,24 @@ class Schedule:
                     self._steady(step["idle"], 0.0, 0.0, self.idle, True)
                 else:
                     self._steady(step["hold"], step["speed"], step["power"], step["engine_speed"], True)
-        self.segments = self._thinned()
+        self.segments = self._run_on(self._thinned())
+
+    def _run_on(self, segments):
+        """Stretches without the engine cut where a run-on ends."""
+        fan, pump = (self.car["duct"].get("fan") or {}).get("run_on", 0.0), self.car["pump"]["run_on"]
+        out, stop = [], None
+        for s in segments:
+            if s.on:
+                stop = s.t1
+                out.append(s)
+                continue
+            cuts = sorted({s.t0, s.t1} | {stop + r for r in (fan, pump) if stop is not None and s.t0 < stop + r < s.t1})
+            for t0, t1 in zip(cuts, cuts[1:]):
+                piece = Segment(t0, t1, s.at(t0), s.at(t1), False)
+                piece.fan = stop is not None and t0 < stop + fan
+                piece.pump = stop is not None and t0 < stop + pump
+                out.append(piece)
+        return out
 
     def _row(self, v, ambient, pressure, power, turns, on):
         heats = self.engine.row(power, turns) if on else (0.0, 0.0, 0.0)
@@ -148,10 +167,8 @@ class Schedule:
         self.now += length
 
     def _trace(self, step):
-        have = trace(os.path.join(self.case["folder"], step["trace"]))
+        have = trace(step["trace"])
         t, v = have["time"], have["speed"]
-        if min(b - a for a, b in zip(t, t[1:])) < self.case["solver"]["merge"] - 1e-9:
-            raise NotImplementedError("rows to merge")
         if step.get("smooth", 0) > 0:
             v, accel = smooth(t, v, step["smooth"])
         else:
@@ -162,10 +179,16 @@ class Schedule:
             if "power" in have:
                 power, turns = have["power"][i], have["engine_speed"][i]
             else:
-                power, turns = self._road_load(speed, accel[i], pressure)
+                power, turns = self._road_load(speed, accel[i], pressure)[:2]
             rows.append(self._row(speed, self.air["ambient"], pressure, power, turns, True))
+        if "power" not in have:
+            self._add_work(t, v, accel, rows)
         if min(r[TURNS] for r in rows) < 0.3 * self.idle:
             raise NotImplementedError("an engine that stops within a trace")
+        least = self.case["solver"]["merge"]
+        if min(b - a for a, b in zip(t, t[1:])) < least - 1e-9:
+            marks = have.get("mark", [])
+            t, rows = merged(t, rows, {i for i in range(1, len(marks)) if marks[i] != marks[i - 1]}, least)
         for i in range(len(t) - 1):
             self.segments.append(Segment(self.now + t[i], self.now + t[i + 1], rows[i], rows[i + 1], True))
         self.now += t[-1]
@@ -178,18 +201,44 @@ class Schedule:
         return self.air["pressure"] * standard_pressure(min(max(base + z - self.first_z, -2000.0), 11000.0)) \
             / standard_pressure(base)
 
-    def _road_load(self, v, accel, pressure):
-        body, air = self.car["body"], v + self.air["wind"]
+    def _density(self, pressure):
         gas, _ = moist_air(self.air["ambient"], pressure, self.air["humidity"])
-        rho = pressure / (gas * self.air["ambient"])
-        force = body["mass"] * GRAVITY * body["rolling_resistance"] * (-1 if v < 0 else 1) \
-            + rho / 2 * body["drag_coefficient"] * body["frontal_area"] * air * abs(air) \
-            + body["rotating_mass"] * body["mass"] * accel
+        return pressure / (gas * self.air["ambient"])
+
+    def _drag(self, v, rho):
+        body, air = self.car["body"], v + self.air["wind"]
+        return rho / 2 * body["drag_coefficient"] * body["frontal_area"] * air * abs(air)
+
+    def _road_load(self, v, accel, pressure):
+        """Power at the crank, engine speed, and power asked for at the wheels."""
+        body = self.car["body"]
+        force = self._rolling(v) + self._drag(v, self._density(pressure)) + body["rotating_mass"] * body["mass"] * accel
         wheel = abs(v) / (2 * math.pi * body["wheel_radius"])
         below = [g for g in body["gears"] if wheel * g < body["shift_speed"]]
         turns = max(wheel * (below[0] if below else body["gears"][-1]), self.idle)
         power, eff = force * v, body["driveline_efficiency"]
-        return (power / eff if power >= 0 else max(power * eff, -self.engine.motoring(turns))), turns
+        crank = power / eff if power >= 0 else max(power * eff, -self.engine.motoring(turns))
+        return crank, turns, power
+
+    def _rolling(self, v):
+        body = self.car["body"]
+        return body["mass"] * GRAVITY * body["rolling_resistance"] * (-1 if v < 0 else 1)
+
+    def _add_work(self, t, v, accel, rows):
+        """Work at the wheels of section 16, on a level road."""
+        eff, w = self.car["body"]["driveline_efficiency"], dict.fromkeys(("wheel", "rolling", "drag", "brakes"), 0.0)
+        asked = [self._road_load(x, a, r[PRESSURE])[2] for x, a, r in zip(v, accel, rows)]
+        given = [r[POWER] * eff if r[POWER] >= 0 else r[POWER] / eff for r in rows]
+        rho = [self._density(r[PRESSURE]) for r in rows]
+        for i in range(len(t) - 1):
+            h, j = t[i + 1] - t[i], i + 1
+            w["wheel"] += h / 2 * (given[i] + given[j])
+            w["rolling"] += h / 2 * (self._rolling(v[i]) * v[i] + self._rolling(v[j]) * v[j])
+            w["brakes"] += h / 2 * (given[i] - asked[i] + given[j] - asked[j])
+            u, mean = (v[i] + v[j]) / 2, (rho[i] + rho[j]) / 2
+            w["drag"] += h / 6 * (self._drag(v[i], rho[i]) * v[i] + 4 * self._drag(u, mean) * u
+                                  + self._drag(v[j], rho[j]) * v[j])
+        self.work = w
 
     def _thinned(self):
         """Rows on a straight line dropped, which changes nothing but the number of restarts."""

@@ -6,7 +6,7 @@ import numpy as np
 from scipy.integrate import solve_ivp
 
 from .drive import Schedule
-from .plant import AIR, FAN, GAUGE, JACKET, LOST, METAL, WAX, Plant
+from .plant import AIR, JACKET, LOST, WAX, Plant
 
 
 class Drive:
@@ -17,7 +17,7 @@ class Drive:
         size = self.plant.size
         self.atol = np.full(size, 10 * rtol)
         self.samples, self.events, self.fan_on_s, self.evaluations = [], [], 0.0, 0
-        self.peak, self.wax_full_s = (-math.inf, 0.0), 0.0
+        self.peak, self.full_s = (-math.inf, 0.0), 0.0
 
     def run(self):
         plant, segments = self.plant, self.schedule.segments
@@ -28,10 +28,13 @@ class Drive:
         self.atol[plant.sums:] = 1e6 * self.rtol
         self.start = y.copy()
         self.mode, self.held = "held", float(y[WAX])
-        self.on = self._sensed(y) >= self.fan["switch"]["on"] if self.fan else False
+        self.levels = self._levels()
+        self.on = self._sensed(y) >= self.levels[1] if self.fan else False
         self.band = self._band(y)
         self._sample(0.0, y, first)
-        for s in segments:
+        for before, s in zip([None, *segments], segments):
+            if before and self.on and before.fan != s.fan:
+                self.events.append((s.t0, "fan on" if s.fan else "fan off"))
             y = self._segment(y, s)
         self.end = y
         return self
@@ -45,19 +48,20 @@ class Drive:
         level = self.plant.effective(y, self.mode, self.held)
         return 0 if level <= self.stat["opens"] else 1 if level <= self.stat["full"] else 2
 
-    def _wish(self, s):
-        if not self.fan or not s.on:
-            return 0.0
-        control = self.fan["control"]
+    def _levels(self):
+        """Temperatures at which the fan is no longer, and is, asked for."""
+        control = self.fan["control"] if self.fan else "never"
+        if control == "switch":
+            return self.fan["switch"]["off"], self.fan["switch"]["on"]
         if control == "proportional":
-            raise NotImplementedError(control)
-        return self.plant.n_full[True] if control == "always" or (control == "switch" and self.on) else 0.0
+            return (self.fan["proportional"]["from"],) * 2
+        return (-math.inf, -math.inf) if control == "always" else (math.inf, math.inf)
 
     def _watch(self):
         """What may happen next: names with functions that change sign, and the direction."""
         out = []
-        if self.fan and self.fan["control"] == "switch":
-            level = self.fan["switch"]["off" if self.on else "on"]
+        if self.fan and self.fan["control"] in ("switch", "proportional"):
+            level = self.levels[0] - 1e-9 if self.on else self.levels[1]
             out.append(("fan", lambda t, y: self._sensed(y) - level, -1 if self.on else 1))
         if self.stat == "none":
             return out
@@ -81,6 +85,7 @@ class Drive:
     def _happen(self, name, t, y):
         if name == "fan":
             self.on = not self.on
+            name = "fan on" if self.on else "fan off"
         elif name == "held":
             self.held = self.plant.effective(y, self.mode, 0.0)
             self.mode = "held"
@@ -96,7 +101,7 @@ class Drive:
         plant, t = self.plant, s.t0
         while t < s.t1 - 1e-12:
             watch = self._watch()
-            wish, on, mode, held = self._wish(s), s.on, self.mode, self.held
+            on, mode, held = self.on, self.mode, self.held
             width = s.t1 - s.t0
             a, slope = s.a, [(q - p) / width for p, q in zip(s.a, s.b)]
 
@@ -104,7 +109,7 @@ class Drive:
                 past = now - s.t0
                 ch = [p + k * past for p, k in zip(a, slope)]
                 self.evaluations += 1
-                return plant.rates(state, ch, on, mode, held, wish)
+                return plant.rates(state, ch, s, mode, held, on)
 
             functions = []
             for _, f, direction in watch:
@@ -117,10 +122,10 @@ class Drive:
             if sol.status < 0:
                 raise RuntimeError(sol.message)
             self._collect(t, sol, s)
-            if self.fan and s.on and wish > 0:
+            if s.fan and on:
                 self.fan_on_s += sol.t[-1] - t
             if self.band == 2 and self.stat != "none":
-                self.wax_full_s += sol.t[-1] - t
+                self.full_s += sol.t[-1] - t
             y, t = sol.y[:, -1].copy(), float(sol.t[-1])
             if sol.status == 1:
                 for (name, _, _), when in zip(watch, sol.t_events):
@@ -151,7 +156,7 @@ class Drive:
 
     def series(self):
         """Columns over the samples, each shown as it stood before a jump."""
-        rows = [self.plant.report(y, s.at(min(t, s.t1)), s.on, mode, held) for t, y, s, mode, held in self.samples]
+        rows = [self.plant.report(y, s.at(min(t, s.t1)), s, mode, held) for t, y, s, mode, held in self.samples]
         out = {k: np.array([r[k] for r in rows]) for k in rows[0]}
         out["time"] = np.array([r[0] for r in self.samples])
         return out

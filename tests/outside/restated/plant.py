@@ -5,8 +5,9 @@ import math
 import numpy as np
 
 from .circuit import Loop, Tank, Tubes
+from .core import Fins, GivenDrop, PowerLaws
 from .drive import AIR_SPEED, AMBIENT, FRICTION, GAS, PRESSURE, SLOPE, SPEED, TURNS, WAKE
-from .duct import Core, Duct
+from .duct import Duct
 from .fluids import Coolant, moist_air
 
 METAL, JACKET, TANK, WAX, FAN, GAUGE, AIR, LOST = range(8)
@@ -24,22 +25,47 @@ class Plant:
         self.gas = gas
         core = car["duct"]["core"]
         self.n = int(core["cells"])
-        self.tubes = Tubes(core)
-        self.duct = Duct(car["duct"], gas, cp, Core(core))
-        self.loop = Loop(car, self.coolant, self.tubes)
+        fins = Fins(core) if "fins" in core else None
+        tubes = Tubes(core) if "tubes" in core else None
+        laws = PowerLaws(core, self.coolant) if "heat" in core else None
+        drops = GivenDrop(core) if "pressure_drop" in core else fins
+        self.inner = (laws or tubes).inner
+        self.duct = Duct(car["duct"], gas, cp, drops.drops, (laws or fins).conductance)
+        self.loop = Loop(car, self.coolant, tubes)
         self.fan = car["duct"].get("fan")
         self.plate = CORE + self.n
         self.sums = CORE + 2 * self.n
         self.size = self.sums + 8
         self._masses()
         elec = car["electrics"]
-        self.n_full = {True: 0.0, False: 0.0}
-        if self.fan:
-            self.n_full = {on: (elec["running" if on else "stopped"] / self.fan["rated_voltage"]) ** 0.9
-                           for on in (True, False)}
+        self.volts = {True: elec["running"], False: elec["stopped"]}
         self.gas_ref = self.engine["gas_temperature"]
         if self.gas_ref != "none" and self.gas_ref <= self.engine["gas_reference"]:
             self.gas_ref = "none"
+
+    def full_speed(self, machine, on):
+        """Speed of fan or electric pump at the voltage there is."""
+        return (self.volts[on] / machine["rated_voltage"]) ** 0.9
+
+    def pump_speed(self, turns, s):
+        """Of rated, in the stretch s of the schedule."""
+        pump = self.car["pump"]
+        if pump["drive"] == "belt":
+            return pump["ratio"] * turns / pump["speed"] if s.on else 0.0
+        return self.full_speed(pump, s.on) if s.pump else 0.0
+
+    def wish(self, y, s, switched):
+        """The controller's wish of section 13."""
+        if not self.fan or not s.fan or self.fan["control"] == "never":
+            return 0.0
+        full = self.full_speed(self.fan, s.on)
+        if self.fan["control"] == "always":
+            return full
+        if self.fan["control"] == "switch":
+            return full if switched else 0.0
+        p = self.fan["proportional"]
+        x = (float(self.place(y, self.fan["sensor"])) - p["from"]) / (p["to"] - p["from"])
+        return full * min(max(20 * x, 0.0), 1.0) * (p["least"] + (1 - p["least"]) * min(max(x, 0.0), 1.0))
 
     def _masses(self):
         car, hoses = self.car, self.car["hoses"]
@@ -82,20 +108,22 @@ class Plant:
         s = self.stat
         return min(max((self.effective(y, mode, held) - s["opens"]) / (s["full"] - s["opens"]), 0.0), 1.0)
 
-    def flows(self, y, ch, on, mode, held):
-        pump = self.car["pump"]
-        turns = pump["ratio"] * ch[TURNS] / pump["speed"] if on else 0.0
+    def flows(self, y, ch, s, mode, held):
+        turns = self.pump_speed(ch[TURNS], s)
         lift = self.lift(y, mode, held)
         loop = self.loop.solve(float(y[JACKET]), float(np.add.reduce(y[CORE:self.plate])) / self.n, lift, turns)
         wall = float(np.add.reduce(y[self.plate:self.sums])) / self.n
         air = self.duct.solve(ch[AIR_SPEED], ch[WAKE], ch[AMBIENT], ch[PRESSURE], float(y[FAN]), wall)
         return lift, loop, air, wall
 
-    def heat(self, t_metal, fan_power, ch, on):
+    def heat(self, t_metal, fan_power, ch, s):
         e, z = self.engine, 1.0
         if self.gas_ref != "none":
             z = max((self.gas_ref - t_metal) / (self.gas_ref - e["gas_reference"]), 0.0)
-        load = fan_power / self.car["electrics"]["alternator_efficiency"] if on else 0.0
+        load = fan_power
+        if self.car["pump"]["drive"] == "electric":
+            load += self.car["pump"]["power"] * self.pump_speed(0.0, s) ** 3
+        load = load / self.car["electrics"]["alternator_efficiency"] if s.on else 0.0
         return (ch[GAS] + ch[SLOPE] * load) * z + ch[FRICTION]
 
     def fan_power(self, n):
@@ -107,9 +135,9 @@ class Plant:
         hoses = self.car["hoses"]["skin"] / 6
         return g * (y[METAL] - amb), hoses * (y[OUT:CORE] - amb), self.car["tank"]["skin"] * (y[TANK] - amb)
 
-    def rates(self, y, ch, on, mode, held, wish):
+    def rates(self, y, ch, s, mode, held, switched):
         """dy/dt."""
-        _, (q_p, q_r, _, q_t, rho_h, _, _), air, wall = self.flows(y, ch, on, mode, held)
+        _, (q_p, q_r, _, q_t, rho_h, _, _), air, wall = self.flows(y, ch, s, mode, held)
         e, n, core, plate, sums = self.engine, self.n, CORE, self.plate, self.sums
         d = np.zeros(self.size)
         amb, t_metal, t_jacket, t_tank = ch[AMBIENT], float(y[METAL]), float(y[JACKET]), float(y[TANK])
@@ -125,7 +153,7 @@ class Plant:
         skin_metal, skin_hoses, skin_tank = self.skins(y, ch)
         flow[:6] -= skin_hoses
         cells = y[core:plate]
-        b = self.tubes.conductance(m_r, self.coolant, float(np.add.reduce(cells)) / n) / n
+        b = self.inner(m_r, self.coolant, float(np.add.reduce(cells)) / n) / n
         w = weight(b / (m_r * cap[8])) if m_r > 0 else 0.0
         before = np.empty(n)
         before[0], before[1:] = y[OUT + 2], cells[:-1]
@@ -137,17 +165,17 @@ class Plant:
         k = e["conductance"] * self.coolant.film_ratio(t_jacket, 0.8) \
             * (self.coolant.density(t_jacket) / 1030.95) ** 0.8 * (x ** 4 + e["conductance_still"] ** 4) ** 0.25
         power = self.fan_power(float(y[FAN]))
-        heat = self.heat(t_metal, power, ch, on)
+        heat = self.heat(t_metal, power, ch, s)
         d[METAL] = (heat - k * (t_metal - t_jacket) - skin_metal) / e["metal_capacity"]
         d[JACKET] = (k * (t_metal - t_jacket) + m_r * (hc[5] - h_jacket) + m_t * (h_tank - h_jacket)) \
             / (self.m_jacket * cap[0])
         d[TANK] = (m_t * (h_jacket - h_tank) - skin_tank) / (self.m_tank * cap[1])
         if self.stat != "none":
-            s = self.stat
-            lag = 1 / s["lag_still"] + (1 / s["lag"] - 1 / s["lag_still"]) * min(q_p / self.loop.curve.free, 1.0) ** 0.6
+            v = self.stat
+            lag = 1 / v["lag_still"] + (1 / v["lag"] - 1 / v["lag_still"]) * min(q_p / self.loop.curve.free, 1.0) ** 0.6
             d[WAX] = (t_jacket - y[WAX]) * lag
         if self.fan:
-            d[FAN] = (wish - y[FAN]) / self.fan["spin_up"]
+            d[FAN] = (self.wish(y, s, switched) - y[FAN]) / self.fan["spin_up"]
         d[GAUGE] = (self.place(y, self.car["gauge"]["place"]) - y[GAUGE]) / max(self.car["gauge"]["lag"], 0.05)
         lost = float(y[LOST])
         p, volume = self.tank.gas(self.tank.liquid(self.parts(y)) - lost, ch[PRESSURE], t_tank, float(y[AIR]))
@@ -167,9 +195,9 @@ class Plant:
         return self.engine["metal_capacity"] * y[METAL] + self.core_metal() * np.mean(y[self.plate:self.sums]) \
             + float(np.dot(masses, self.coolant.capacities(cells)[1]))
 
-    def report(self, y, ch, on, mode, held):
+    def report(self, y, ch, s, mode, held):
         """What a sample shows."""
-        lift, (q_p, q_r, q_b, q_t, _, jacket, rise), air, wall = self.flows(y, ch, on, mode, held)
+        lift, (q_p, q_r, q_b, q_t, _, jacket, rise), air, wall = self.flows(y, ch, s, mode, held)
         p, _ = self.tank.gas(self.tank.liquid(self.parts(y)) - y[LOST], ch[PRESSURE], float(y[TANK]), float(y[AIR]))
         mix = float(y[JACKET])
         if q_p > 0:
@@ -188,7 +216,7 @@ class Plant:
                 "air_mass_flow": air["m"], "face_velocity": air["face"], "exit_velocity": air["v_exit"],
                 "air_out": air["tau"] * ch[AMBIENT] - c, "fan_speed": y[FAN], "fan_pressure": fan, "fan_power": power,
                 "tank_pressure": p / 1e3, "boil_margin": margin, "coolant_lost": y[LOST] * 1e3,
-                "heat_in": self.heat(float(y[METAL]), power, ch, on) / 1e3,
+                "heat_in": self.heat(float(y[METAL]), power, ch, s) / 1e3,
                 "heat_out": air["warm"] * (wall - ch[AMBIENT]) / 1e3,
                 "heat_skin": (skin_metal + skin_hoses.sum() + skin_tank) / 1e3, "drag": air["drag"]}
 

@@ -1,0 +1,193 @@
+/* Watched conditions: signs, the play's modes, what does not apply.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
+#include "fixture.h"
+
+#include "drive/watch.h"
+
+static struct fixture fixture;
+
+struct rig {
+    struct sp_design d;
+    struct sp_circuit c;
+    struct sp_inputs in;
+    struct sp_modes modes;
+    double y[SP_Y_MOST];
+    struct sp_watched seen;
+};
+
+static void prepare(struct rig *r)
+{
+    struct sp_complaints c = {0};
+    assert_true(sp_circuit_build(&r->d, &r->c, &c));
+    r->in = (struct sp_inputs){.flags = SP_FLAG_ENGINE | SP_FLAG_PUMP | SP_FLAG_FAN};
+    r->in.in[SP_IN_SPEED] = r->in.in[SP_IN_AIR_SPEED] = 20.0;
+    r->in.in[SP_IN_WAKE] = 1.0;
+    r->in.in[SP_IN_AMBIENT] = 298.15;
+    r->in.in[SP_IN_PRESSURE] = 101325.0;
+    r->in.in[SP_IN_ENGINE_SPEED] = 60.0;
+    sp_circuit_start(&r->c, &r->in, r->y);
+}
+
+static const double *look(struct rig *r)
+{
+    struct sp_signals s;
+    struct sp_guesses guesses = {{0.0, 0.0}, {0.0, 0.0}};
+    struct sp_coupling k;
+    sp_circuit_signals(&r->c, r->y, &s);
+    assert_int_equal(sp_circuit_couple(&r->c, &r->in, &r->modes, &s, &guesses, &k), SP_OK);
+    sp_watch(&r->c, &r->in, &r->modes, r->y, &k, &r->seen);
+    for (int i = 0; i < SP_WATCHES; ++i)
+        assert_true(isfinite(r->seen.g[i]));
+    return r->seen.g;
+}
+
+static void fan_switch(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    struct sp_fan *f = &r.d.duct.fan;
+    f->law = SP_FAN_SWITCHED;
+    f->on = 369.0;
+    f->off = 364.0;
+    prepare(&r);
+    r.y[SP_Y_JACKET] = 368.0;
+    check_close(look(&r)[SP_W_FAN], -1.0, 1e-12, 0);
+    r.modes.fan_on = true; /* now it waits for `off` */
+    check_close(look(&r)[SP_W_FAN], 4.0, 1e-12, 0);
+    f->sensor = SP_AT_RADIATOR_OUT;
+    r.y[r.c.layout.core + r.c.layout.cells - 1] = 350.0;
+    check_close(look(&r)[SP_W_FAN], -14.0, 1e-12, 0);
+    f->law = SP_FAN_PROPORTIONAL;
+    f->from = 348.0;
+    check_close(look(&r)[SP_W_FAN], 2.0, 1e-12, 0);
+    const enum sp_fan_law steady[] = {SP_FAN_ALWAYS, SP_FAN_NEVER};
+    for (int i = 0; i < 2; ++i) {
+        f->law = steady[i];
+        assert_true(look(&r)[SP_W_FAN] > 0.0);
+    }
+    f->fitted = false;
+    assert_true(look(&r)[SP_W_FAN] > 0.0);
+    sp_circuit_free(&r.c);
+}
+
+/* Warm, turn, cool by the play, shut, turn, warm again: the modes of an operator with 3 K of play. */
+static void round_the_play(void **state)
+{
+    (void)state;
+    struct sp_thermostat t = fixture.base->thermostat;
+    t.hysteresis = 3.0;
+    struct sp_modes m = {.play = SP_PLAY_OPENING};
+    sp_watch_turn_play(&t, 360.0, false, &m);
+    assert_true(m.play == SP_PLAY_HELD && m.held == 360.0);
+    sp_watch_turn_play(&t, 357.0, true, &m);
+    assert_true(m.play == SP_PLAY_SHUTTING);
+    check_close(sp_thermostat_effective(&t, m.play, 357.0, m.held), 360.0, 0, 0);
+    sp_watch_turn_play(&t, 352.0, false, &m);
+    assert_true(m.play == SP_PLAY_HELD && m.held == 355.0);
+    sp_watch_turn_play(&t, 355.0, false, &m);
+    assert_true(m.play == SP_PLAY_OPENING);
+    check_close(sp_thermostat_effective(&t, m.play, 355.0, m.held), 355.0, 0, 0);
+}
+
+static void play_watches(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    r.d.thermostat.hysteresis = 3.0;
+    prepare(&r);
+    r.y[SP_Y_WAX] = 360.0;
+    r.y[SP_Y_JACKET] = 362.0;
+    r.modes.play = SP_PLAY_OPENING;
+    assert_true(look(&r)[SP_W_PLAY] > 0.0); /* the wax warms */
+    r.y[SP_Y_JACKET] = 358.0;
+    assert_true(look(&r)[SP_W_PLAY] < 0.0);
+    r.modes = (struct sp_modes){.play = SP_PLAY_HELD, .held = 360.0};
+    assert_true(look(&r)[SP_W_PLAY] < 0.0 &&
+                r.seen.g[SP_W_PLAY_SHUT] > 0.0); /* just turned: between the sides */
+    r.y[SP_Y_WAX] = 358.5;
+    assert_true(look(&r)[SP_W_PLAY] < 0.0 && r.seen.g[SP_W_PLAY_SHUT] > 0.0);
+    r.y[SP_Y_WAX] = 356.9;
+    assert_true(look(&r)[SP_W_PLAY_SHUT] < 0.0);
+    r.y[SP_Y_WAX] = 360.1;
+    assert_true(look(&r)[SP_W_PLAY] > 0.0);
+    r.d.thermostat.hysteresis = 0.0;
+    assert_true(look(&r)[SP_W_PLAY] == 1.0 && r.seen.g[SP_W_PLAY_SHUT] == 1.0);
+    r.d.thermostat.none = true;
+    assert_true(look(&r)[SP_W_OPENS] > 0.0 && r.seen.g[SP_W_FULL] > 0.0);
+    sp_circuit_free(&r.c);
+}
+
+static void limits(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    r.d.limits = (struct sp_limits){370.0, 380.0, 390.0, 10.0};
+    r.d.gauge.offset = 2.0;
+    prepare(&r);
+    r.y[SP_Y_JACKET] = 371.0;
+    r.y[SP_Y_GAUGE] = 379.0;
+    r.y[SP_Y_METAL] = 389.0;
+    const double *g = look(&r);
+    check_close(g[SP_W_COOLANT], 1.0, 1e-12, 0);
+    check_close(g[SP_W_GAUGE], 1.0, 1e-12, 0); /* the offset counts: it is what the driver reads */
+    check_close(g[SP_W_METAL], -1.0, 1e-12, 0);
+    check_close(g[SP_W_MARGIN], 10.0 - r.seen.boil_margin, 1e-12, 0);
+    check_close(g[SP_W_BOIL], -r.seen.boil_margin, 1e-12, 0);
+    check_close(g[SP_W_CAP], r.seen.tank_pressure - 101325.0 - r.d.tank.cap, 1e-12, 1e-9);
+    r.d.limits = (struct sp_limits){NAN, NAN, NAN, NAN};
+    g = look(&r);
+    assert_true(g[SP_W_COOLANT] < 0.0 && g[SP_W_GAUGE] < 0.0 && g[SP_W_METAL] < 0.0 && g[SP_W_MARGIN] < 0.0);
+    sp_circuit_free(&r.c);
+}
+
+/* The margin is against the boiling point at its own pressure: at the jacket with the pump's rise, at the
+ * pump's inlet at the tank's. */
+static void boil_margin(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    prepare(&r);
+    r.in.flags = 0; /* nothing flows: jacket at tank pressure */
+    for (double T = 300.0; T < 420.0; T += 20.0) {
+        for (int i = 0; i < r.c.layout.count; ++i)
+            if (i <= SP_Y_WAX || i >= SP_Y_CHAIN) r.y[i] = T;
+        look(&r);
+        double boils = sp_coolant_boiling(&r.d.coolant.fluid, fmin(r.seen.tank_pressure, 4.99e6));
+        check_close(r.seen.boil_margin, boils - T, 1e-9, 1e-9);
+    }
+    sp_circuit_free(&r.c);
+}
+
+static void events_have_texts(void **state)
+{
+    (void)state;
+    for (int w = 0; w < SP_WATCHES; ++w) {
+        struct sp_watch_events e = sp_watch_event[w];
+        assert_true((e.rise == SP_EVENT_KINDS) == (e.fall == SP_EVENT_KINDS));
+        if (e.rise != SP_EVENT_KINDS) assert_true(e.rise != e.fall && strlen(sp_event_text(e.rise)) > 3);
+    }
+    assert_string_equal(sp_event_text(SP_EVENT_KINDS), "?");
+    assert_null(sp_channel_at(SP_CHANNELS));
+}
+
+static int begin(void **state)
+{
+    (void)state;
+    fixture = fixture_open();
+    return 0;
+}
+
+static int end(void **state)
+{
+    (void)state;
+    fixture_close(&fixture);
+    return 0;
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {cmocka_unit_test(fan_switch),   cmocka_unit_test(round_the_play),
+                                       cmocka_unit_test(play_watches), cmocka_unit_test(limits),
+                                       cmocka_unit_test(boil_margin),  cmocka_unit_test(events_have_texts)};
+    return cmocka_run_group_tests(tests, begin, end);
+}
