@@ -56,7 +56,8 @@ struct sp_duct_state {
     double temperature_ratio; /* T3/T2, absolute, in flow direction */
     double exit_velocity;  /* m/s, positive out of the exit */
     double fan_pressure;   /* Pa total, negative when windmilling */
-    double drag;           /* N internal: m (V - ve cos a) - (pe - pinf) Ae cos a */
+    double drag;           /* N internal: m (V - ve cos a) - (pe - pinf) Ae cos a; in reverse flow the
+                            * jet out of the inlet, forwards, takes the place of ve cos a */
     bool diffuser_stalled;
 };
 
@@ -69,6 +70,11 @@ SP_API enum sp_status sp_duct_solve(const struct sp_duct *d, const struct sp_duc
 SP_API void sp_duct_stations(const struct sp_duct *d, const struct sp_duct_inputs *in,
                              const struct sp_duct_state *state, struct sp_station station[SP_STATIONS],
                              struct sp_duct_losses *losses);
+
+/* Drag [N] from the losses instead of the exit's momentum: m (V - v_w), v_w the speed far behind when the exit's
+ * total pressure has turned into speed again at ambient pressure. The same as `drag` for a jet along the stream
+ * leaving at ambient pressure; the difference is a force on the outside. NAN in reverse flow. */
+SP_API double sp_duct_wake_drag(const struct sp_duct_state *state, const struct sp_station station[SP_STATIONS]);
 
 #ifdef __cplusplus
 }

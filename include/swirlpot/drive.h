@@ -4,7 +4,7 @@
 #ifndef SWIRLPOT_DRIVE_H
 #define SWIRLPOT_DRIVE_H
 
-#include "swirlpot/part.h"
+#include "swirlpot/design.h"
 
 #ifdef __cplusplus
 extern "C" {

@@ -15,6 +15,7 @@ extern "C" {
 #define SP_R_VAPOUR 461.523   /* J/kgK */
 #define SP_CP_DRY 1004.685    /* J/kgK, 3.5 R */
 #define SP_CP_VAPOUR 1872.0   /* J/kgK */
+#define SP_R_MOLAR 8.314462618 /* J/mol K, exact in the SI of 2019 */
 #define SP_ZERO_C 273.15      /* K */
 #define SP_GRAVITY 9.80665    /* m/s2 */
 
@@ -48,6 +49,8 @@ SP_API double sp_air_viscosity(double T);
 SP_API double sp_air_conductivity(double T);
 SP_API double sp_air_cp_film(double T);
 SP_API double sp_air_prandtl(double T);
+
+#define SP_COOLANT_REFERENCE 1030.95 /* kg/m3, 50/50 ethylene glycol at 90 degC, ASHRAE */
 
 /* ---- coolants --------------------------------------------------------------------------------- */
 

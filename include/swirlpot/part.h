@@ -1,6 +1,7 @@
-/* swirlpot/part.h - what a car's cooling consists of, as numbers in SI: the design.
+/* swirlpot/part.h - what a car's cooling consists of, as numbers in SI.
  *
- * Plain structs, filled by the case reader (paper.h) or by hand; read-only from then on. Everything is
+ * Plain structs, filled by the case reader (paper.h) or by hand (then within the ranges of
+ * docs/case-file.md, which nothing checks again); read-only from then on. Everything is
  * SI and kelvin; rotation is in rev/s. NAN in an optional field means "not given", as do NULL and 0
  * counts where said. Keys, defaults, ranges and the basis of each stand in docs/case-file.md, made from
  * the same tables that read a case.
@@ -9,7 +10,6 @@
 #define SWIRLPOT_PART_H
 
 #include "swirlpot/fluid.h"
-#include "swirlpot/trace.h"
 
 #ifdef __cplusplus
 extern "C" {
@@ -215,63 +215,6 @@ struct sp_duct_design {
     struct sp_fan fan;
     struct sp_exit exit;
 };
-
-/* ---- sensors, limits, start, drive --------------------------------------------------------------- */
-
-struct sp_gauge {
-    enum sp_place_of place;
-    double lag, offset; /* s, K */
-};
-
-struct sp_limits {
-    double coolant, gauge, metal; /* K; NAN: none */
-    double boil_margin;           /* K; NAN: none */
-};
-
-struct sp_start {
-    double coolant, metal, radiator; /* K; NAN metal and radiator: as coolant */
-};
-
-enum sp_step_kind { SP_STEP_TRACE, SP_STEP_IDLE, SP_STEP_HOLD, SP_STEP_SOAK };
-
-struct sp_step {
-    enum sp_step_kind kind;
-    char *trace;                    /* path to open: the case's own text, from where the case stands */
-    double time;                    /* s, the other kinds */
-    double speed, power, engine_speed, grade; /* hold; power NAN: from road load */
-    double repeat;                  /* times, 1.. */
-    double smooth;                  /* s half-width for the speed of a trace, 0: none */
-    struct sp_trace_format format;  /* headings and units owned by the design */
-};
-
-struct sp_solver {
-    double tolerance; /* relative */
-    double merge;     /* s: rows finer than this are merged */
-};
-
-/* The whole design. Build with sp_case_read (paper.h), free with sp_design_free. */
-struct sp_design {
-    char *title;
-    struct sp_air_design air;
-    struct sp_body body;
-    struct sp_engine engine;
-    struct sp_electrics electrics;
-    struct sp_coolant_design coolant;
-    struct sp_pump pump;
-    struct sp_thermostat thermostat;
-    struct sp_hoses hoses;
-    struct sp_tank tank;
-    struct sp_duct_design duct;
-    struct sp_gauge gauge;
-    struct sp_limits limits;
-    struct sp_start start;
-    struct sp_step *step;
-    size_t steps;
-    struct sp_solver solver;
-    char *file; /* the case's file, for complaints and relative paths */
-};
-
-SP_API void sp_design_free(struct sp_design *d);
 
 #ifdef __cplusplus
 }

@@ -1,5 +1,6 @@
 /* A strict reading of JSON: our scanner finds what cJSON lets pass, cJSON parses, and the result is
- * a tree that knows on which line of which file each value stands. Internal. */
+ * a tree that knows on which line of which file each value stands. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_BASE_JSON_H
 #define SP_BASE_JSON_H
 

@@ -6,7 +6,7 @@
 #include <math.h>
 #include <stdalign.h>
 
-enum { QUICK_STEPS = 14, WIDENINGS = 80, BRENT_STEPS = 200 };
+enum { QUICK_STEPS = 14, WIDENINGS = 80, BRENT_STEPS = 100, HALVINGS = 1100 };
 
 struct bracket {
     double low, high; /* f(low) > 0 > f(high); infinite while unknown */
@@ -35,6 +35,7 @@ static bool secant(sp_falling f, const void *context, double step, struct sp_gue
 {
     double x = g->x, fx = f(x, context);
     double slope = g->slope;
+    bool near = false; /* the slope is of a short chord taken here; a guess's or a long chord's may be any */
     for (int i = 0; i < QUICK_STEPS; ++i) {
         if (fx == 0.0) {
             *g = (struct sp_guess){x, slope};
@@ -45,11 +46,15 @@ static bool secant(sp_falling f, const void *context, double step, struct sp_gue
         double next = slope < 0.0 ? x - fx / slope : (fx > 0.0 ? x + step : x - step);
         if (!(next > b->low && next < b->high)) next = inside(b, x, step * (double)(1 << (i < 20 ? i : 20)));
         if (slope < 0.0 && close_enough(next - x, x, step)) {
-            *g = (struct sp_guess){next, slope};
-            return true;
+            if (near) {
+                *g = (struct sp_guess){next, slope};
+                return true;
+            }
+            next = x + copysign(0.5 * (1e-9 * fabs(x) + 1e-12 * step), fx);
         }
         double fn = f(next, context);
         slope = next != x ? (fn - fx) / (next - x) : 0.0;
+        near = fabs(next - x) <= 1e-3 * fabs(next) + 1e-9 * step;
         x = next;
         fx = fn;
     }
@@ -81,6 +86,25 @@ static double brent_call(double x, void *p)
     return c->f(x, c->context);
 }
 
+static bool narrow_enough(double low, double high, double x, double step)
+{
+    return fabs(high - low) <= 1e-13 * fabs(x) + 1e-15 * step;
+}
+
+/* Where interpolation creeps (a value of 1e100 at one end), halving does not. */
+static bool halve(sp_falling f, const void *context, double low, double high, double step, double *x)
+{
+    for (int i = 0; i < HALVINGS; ++i) {
+        *x = 0.5 * (low + high);
+        if (narrow_enough(low, high, *x, step) || *x <= low || *x >= high) return true;
+        double fx = f(*x, context);
+        if (!isfinite(fx)) return false;
+        if (fx > 0.0) low = *x;
+        else high = *x;
+    }
+    return false;
+}
+
 /* GSL's own solver with its state on the stack instead of the heap. */
 static bool brent(sp_falling f, const void *context, const struct bracket *b, double step, double *x)
 {
@@ -92,11 +116,10 @@ static bool brent(sp_falling f, const void *context, const struct bracket *b, do
     if (gsl_root_fsolver_set(&solver, &wrapped, b->low, b->high) != GSL_SUCCESS) return false;
     for (int i = 0; i < BRENT_STEPS; ++i) {
         if (gsl_root_fsolver_iterate(&solver) != GSL_SUCCESS) return false;
-        double low = gsl_root_fsolver_x_lower(&solver), high = gsl_root_fsolver_x_upper(&solver);
         *x = gsl_root_fsolver_root(&solver);
-        if (fabs(high - low) <= 1e-13 * fabs(*x) + 1e-15 * step) return true;
+        if (narrow_enough(gsl_root_fsolver_x_lower(&solver), gsl_root_fsolver_x_upper(&solver), *x, step)) return true;
     }
-    return false;
+    return halve(f, context, gsl_root_fsolver_x_lower(&solver), gsl_root_fsolver_x_upper(&solver), step, x);
 }
 
 enum sp_status sp_root_falling(sp_falling f, const void *context, double step, struct sp_guess *guess)

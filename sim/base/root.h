@@ -1,5 +1,6 @@
 /* Roots of falling functions: a safeguarded secant in front, GSL's Brent behind it. Internal.
- * Allocates nothing. */
+ * Allocates nothing.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_BASE_ROOT_H
 #define SP_BASE_ROOT_H
 

@@ -5,7 +5,8 @@
  * coolant) stand for what every cell does to the air path and the coolant split: together a border of
  * seven. Gauge, trapped air, lost liquid and the integrals are driven by all and drive nothing but
  * themselves: they follow by substitution. A factorisation costs a few thousand operations where the dense
- * one of the same matrix takes ten times that. */
+ * one of the same matrix takes ten times that.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_CIRCUIT_ARROW_H
 #define SP_CIRCUIT_ARROW_H
 

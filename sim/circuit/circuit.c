@@ -42,7 +42,7 @@ static double jacket_conductance(const struct sp_design *d, double flow, double 
     double moving = x > 0.0 ? pow(x, 0.8) : 0.0;
     double m2 = moving * moving, s2 = e->conductance_still * e->conductance_still;
     /* The reference is volume flow; the mass flow that goes with it follows density. */
-    double denser = sp_coolant_density(&d->coolant.fluid, T) / 1030.95; /* 50/50 at 90 degC, ASHRAE */
+    double denser = sp_coolant_density(&d->coolant.fluid, T) / SP_COOLANT_REFERENCE;
     double ratio = sp_coolant_film_ratio(&d->coolant.fluid, T, 0.8) * pow(denser, 0.8);
     return e->conductance * ratio * sqrt(sqrt(m2 * m2 + s2 * s2));
 }
@@ -73,6 +73,7 @@ enum sp_status sp_circuit_couple(const struct sp_circuit *c, const struct sp_inp
     if (sp_duct_solve_from(c->duct, &air, &guesses->duct, &out->duct)) return SP_NUMERICS;
     if (sp_circuit_split(c, in, modes, s, &guesses->loop, out)) return SP_NUMERICS;
     out->jacket_conductance = jacket_conductance(c->design, out->loop.pump, s->jacket);
+    out->core_rate = out->mass_radiator * sp_coolant_cp(fluid, s->core);
     out->core_conductance = sp_core_coolant_conductance(&c->duct->core, fluid, out->mass_radiator, s->core);
     return SP_OK;
 }
@@ -84,13 +85,20 @@ double sp_circuit_place(const struct sp_circuit *c, enum sp_place_of place, cons
     return place == SP_AT_ENGINE_OUT ? y[SP_Y_JACKET] : y[c->layout.core + c->layout.cells - 1];
 }
 
+double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const struct sp_coupling *k)
+{
+    if (!(k->mass_pump > 0.0)) return y[SP_Y_JACKET];
+    return (k->mass_radiator * y[c->layout.wall - 1] + k->mass_bypass * y[SP_Y_JACKET] +
+            k->mass_bleed * y[SP_Y_TANK]) / k->mass_pump;
+}
+
 double sp_circuit_fan_wish(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
                            const double *y)
 {
     const struct sp_fan *f = &c->design->duct.fan;
     if (!f->fitted || !(in->flags & SP_FLAG_FAN)) return 0.0;
     const struct sp_electrics *e = &c->design->electrics;
-    double full = sp_fan_speed_at(f, in->flags & SP_FLAG_ENGINE ? e->voltage_running : e->voltage_stopped);
+    double full = sp_motor_speed(in->flags & SP_FLAG_ENGINE ? e->voltage_running : e->voltage_stopped, f->rated_voltage);
     switch (f->law) {
     case SP_FAN_ALWAYS: return full;
     case SP_FAN_SWITCHED: return modes->fan_on ? full : 0.0;
@@ -178,9 +186,7 @@ static double core(const struct sp_circuit *c, const struct sp_coupling *k, doub
     double film = k->core_conductance / n, mass = c->mass_core / n;
     double to_air = fabs(k->duct.mass_flow) * c->air.cp * k->duct.effectiveness / n;
     double metal = c->design->duct.core.metal_capacity / n;
-    double number = k->mass_radiator > 0.0
-                        ? film / (k->mass_radiator * sp_coolant_cp(f, y[l->core])) : INFINITY;
-    double w = sp_cells_weight(number);
+    double w = sp_cells_weight(k->core_rate > 0.0 ? film / k->core_rate : INFINITY);
     double before = y[l->core - 1];
     for (int i = 0; i < n; ++i) {
         double T = y[l->core + i], wall = y[l->wall + i];

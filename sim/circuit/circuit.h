@@ -4,7 +4,8 @@
  *   signals   the few scalars of y on which the coupled solvers depend,
  *   coupling  the air path and the coolant split solved for these signals,
  *   rates     the balances of every cell with that coupling.
- * Nothing here allocates or keeps a state of its own; starting guesses live in the caller's struct. */
+ * Nothing here allocates or keeps a state of its own; starting guesses live in the caller's struct.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_CIRCUIT_CIRCUIT_H
 #define SP_CIRCUIT_CIRCUIT_H
 
@@ -46,6 +47,7 @@ struct sp_coupling {
     double lift;
     double mass_pump, mass_radiator, mass_bypass, mass_bleed; /* kg/s */
     double jacket_conductance, core_conductance;              /* W/K */
+    double core_rate;                                         /* W/K, of the coolant through the core */
 };
 
 struct sp_guesses { struct sp_guess duct, loop; };
@@ -68,6 +70,9 @@ double sp_circuit_fan_wish(const struct sp_circuit *c, const struct sp_inputs *i
 
 /* Temperature at a sensor's place. */
 double sp_circuit_place(const struct sp_circuit *c, enum sp_place_of place, const double *y);
+
+/* Temperature [K] of what enters the pump: the mix of radiator, bypass and tank; the jacket's when it stands. */
+double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const struct sp_coupling *k);
 
 /* Tank pressure and gas from the state. */
 struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,

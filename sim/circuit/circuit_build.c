@@ -5,9 +5,7 @@
 #include <math.h>
 #include <string.h>
 
-static const double gas_constant = 8.314462618; /* J/mol K */
 static const double reseat = 5000.0;            /* Pa below its setting (a tenth of it at most) at which a cap shuts; common practice */
-static const double least_gas = 2.0e-5;         /* m3 left in a tank that was driven full */
 static const double smallest = 1.0e-5;          /* m3; a cell of no volume would be infinitely fast */
 
 static double bore_volume(double length, double bore)
@@ -18,7 +16,12 @@ static double bore_volume(double length, double bore)
 bool sp_circuit_build(const struct sp_design *d, struct sp_circuit *out, struct sp_complaints *complaints)
 {
     memset(out, 0, sizeof *out);
-    struct sp_place at = {.file = d->file, .path = "car.duct"};
+    struct sp_place at = {.file = d->file, .path = "car.duct.core.cells"};
+    if (!(d->duct.core.cells >= 1.0 && d->duct.core.cells <= SP_CELLS_MAX)) { /* a design filled by hand */
+        sp_complain(complaints, &at, "a number of cells that cannot be", "1 to 50 cells", NULL);
+        return false;
+    }
+    at.path = "car.duct";
     out->design = d;
     out->air = sp_moist_air(d->air.ambient, d->air.pressure, d->air.humidity);
     out->duct = sp_duct_build(&d->duct, &d->coolant.fluid, &at, complaints);
@@ -64,11 +67,11 @@ static void vent_at_start(const struct sp_circuit *c, const struct sp_inputs *in
     if (s.pressure <= ti.ambient + t->cap) return;
     double gauge = t->cap - fmin(reseat, 0.1 * t->cap), most = ti.ambient + gauge;
     double gas = ti.system + t->compliance * gauge - ti.liquid;
-    if (gas < least_gas) {
-        y[SP_Y_LOST] = least_gas - gas;
-        gas = least_gas;
+    if (gas < SP_TANK_LAST_GAS) {
+        y[SP_Y_LOST] = SP_TANK_LAST_GAS - gas;
+        gas = SP_TANK_LAST_GAS;
     }
-    y[SP_Y_AIR] = fmax(most - ti.vapour, 0.0) * gas / (gas_constant * ti.temperature);
+    y[SP_Y_AIR] = fmax(most - ti.vapour, 0.0) * gas / (SP_R_MOLAR * ti.temperature);
 }
 
 void sp_circuit_start(const struct sp_circuit *c, const struct sp_inputs *in, double *y)
@@ -115,11 +118,6 @@ static double boiling(const struct sp_coolant *f, double pressure)
 double sp_circuit_boil_margin(const struct sp_circuit *c, const double *y, const struct sp_coupling *k, double tank)
 {
     const struct sp_coolant *f = &c->design->coolant.fluid;
-    const struct sp_layout *l = &c->layout;
     double outlet = boiling(f, tank + k->loop.rise - k->loop.jacket_drop) - y[SP_Y_JACKET];
-    /* Into the pump comes the mix of radiator, bypass and tank, at tank pressure. */
-    double all = k->mass_pump, mixed = y[SP_Y_JACKET];
-    if (all > 0.0)
-        mixed = (k->mass_radiator * y[l->wall - 1] + k->mass_bypass * y[SP_Y_JACKET] + k->mass_bleed * y[SP_Y_TANK]) / all;
-    return fmin(outlet, boiling(f, tank) - mixed);
+    return fmin(outlet, boiling(f, tank) - sp_circuit_pump_inlet(c, y, k));
 }

@@ -9,6 +9,7 @@
 #include <stdlib.h>
 #include <string.h>
 
+#include "part/cells.h"
 #include "part/diffuser.h"
 #include "part/inlet.h"
 
@@ -68,7 +69,7 @@ static void heat_the_air(const struct problem *p, double m, struct flow *f)
     } else if (sp_core_has_heat(&p->duct->core)) {
         double film = 0.5 * (in->temperature + in->wall);
         double hA = sp_core_air_conductance(&p->duct->core, fabs(m) / p->duct->core.face, film);
-        f->effectiveness = rate > 0.0 ? -expm1(-hA / rate) : 1.0;
+        f->effectiveness = sp_cells_air_effectiveness(hA, rate);
         f->heat = rate * f->effectiveness * (in->wall - in->temperature);
         f->tau = 1.0 + f->effectiveness * (in->wall / in->temperature - 1.0);
     } else {
@@ -157,7 +158,9 @@ static void fill(const struct problem *p, double m, const struct flow *f, struct
     out->temperature_ratio = f->tau;
     out->exit_velocity = m / ((m >= 0.0 ? f->rho_out : f->rho_in) * d->exit.area);
     out->fan_pressure = f->fan;
-    out->drag = m * (p->speed - out->exit_velocity * cos_a) - f->back * d->exit.area * cos_a;
+    /* In reverse the air is swallowed from behind and leaves forwards as a jet: both are drag. */
+    double jet = m >= 0.0 ? out->exit_velocity * cos_a : m / (f->rho_out * d->inlet.area);
+    out->drag = fabs(m) * (p->speed - jet) - f->back * d->exit.area * cos_a;
     out->diffuser_stalled = p->duct->diffuser_stalled && m > 0.0;
 }
 
@@ -218,6 +221,13 @@ void sp_duct_stations(const struct sp_duct *d, const struct sp_duct_inputs *in, 
     s[5] = station(&p, m, at_exit, rear, exit);
     *losses = (struct sp_duct_losses){p.head - f.available, f.lip, f.screen, f.diffuser, f.core.core,
                                       f.core.heating, -f.fan, f.exit, f.exit_head};
+}
+
+double sp_duct_wake_drag(const struct sp_duct_state *state, const struct sp_station s[SP_STATIONS])
+{
+    if (state->mass_flow < 0.0) return NAN;
+    double head = fmax(s[5].total_pressure - s[0].static_pressure, 0.0);
+    return state->mass_flow * (s[0].velocity - sqrt(2.0 * head / s[5].density));
 }
 
 /* The core's loss coefficient on its face head, at a speed where cores are tested. */

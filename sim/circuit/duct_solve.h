@@ -1,4 +1,5 @@
-/* The air path from inside the library: with a starting guess kept by the caller. Internal. */
+/* The air path from inside the library: with a starting guess kept by the caller. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_CIRCUIT_DUCT_SOLVE_H
 #define SP_CIRCUIT_DUCT_SOLVE_H
 

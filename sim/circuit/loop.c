@@ -1,11 +1,12 @@
 /* The coolant loop. SPDX-License-Identifier: GPL-3.0-or-later */
 #include "circuit/loop.h"
 
+#include "part/fan.h"
+
 #include <gsl/gsl_math.h>
 #include <math.h>
 #include <string.h>
 
-static const double pump_voltage_exponent = 0.9; /* flow over plug voltage; common practice as for fans */
 static const double soft_pressure = 1.0;         /* Pa, below which the bypass answers linearly */
 static const double still = 1e-4;                /* pump speed, over rated, that counts as standing */
 static const double reference_density = 1000.0;
@@ -109,7 +110,7 @@ double sp_pump_speed(const struct sp_design *d, double engine_speed, bool engine
     if (!p->electric) return engine_on ? p->ratio * engine_speed / p->speed : 0.0;
     if (!allowed) return 0.0;
     double volts = engine_on ? d->electrics.voltage_running : d->electrics.voltage_stopped;
-    return pow(volts / p->rated_voltage, pump_voltage_exponent);
+    return sp_motor_speed(volts, p->rated_voltage);
 }
 
 bool sp_loop_build(const struct sp_design *d, const struct sp_core_ready *core, struct sp_loop *out,

@@ -1,12 +1,14 @@
 /* The coolant loop: how the pump's flow splits between radiator, bypass and tank. Internal.
  *
  * One pump and the jacket in series carry the whole flow; behind the jacket it divides into the radiator
- * branch (thermostat, hoses, core) and the bypass. A small share, the bleed, goes through the header tank. */
+ * branch (thermostat, hoses, core) and the bypass. A small share, the bleed, goes through the header tank.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_CIRCUIT_LOOP_H
 #define SP_CIRCUIT_LOOP_H
 
 #include "base/root.h"
 #include "part/core.h"
+#include "swirlpot/design.h"
 
 struct sp_loop {
     const struct sp_design *design;

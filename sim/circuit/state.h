@@ -1,4 +1,5 @@
-/* The state vector of a drive: one place for what stands where. Internal. */
+/* The state vector of a drive: one place for what stands where. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_CIRCUIT_STATE_H
 #define SP_CIRCUIT_STATE_H
 

@@ -9,6 +9,11 @@
 #include <sundials/sundials_linearsolver.h>
 #include <sundials/sundials_matrix.h>
 
+/* Long quiet soaks: longer steps would leave the ledger to the error control of each cell, which is blind to
+ * their sum; so would Newton iterations that stop as early as they usually may (0.1 of the tolerance). */
+static const double longest_step = 60.0; /* s */
+static const double newton_share = 0.05;
+
 struct sp_integrator {
     struct sp_problem problem;
     SUNContext context;
@@ -164,7 +169,9 @@ static bool open_cvode(struct sp_integrator *i, double t, double relative)
            CVodeSetJacFn(i->cvode, jacobian) == CV_SUCCESS &&
            CVodeRootInit(i->cvode, i->problem.watches, watch) == CV_SUCCESS &&
            CVodeSetNoInactiveRootWarn(i->cvode) == CV_SUCCESS && CVodeSetMaxHnilWarns(i->cvode, -1) == CV_SUCCESS &&
-           CVodeSetMaxNumSteps(i->cvode, -1) == CV_SUCCESS;
+           CVodeSetMaxNumSteps(i->cvode, -1) == CV_SUCCESS &&
+           CVodeSetMaxStep(i->cvode, longest_step) == CV_SUCCESS &&
+           CVodeSetNonlinConvCoef(i->cvode, newton_share) == CV_SUCCESS;
 }
 
 struct sp_integrator *sp_integrator_open(const struct sp_problem *p, double t, const double *y, double relative,

@@ -1,7 +1,8 @@
 /* The integrator: the only place that knows CVODE. Internal.
  *
  * BDF with Newton; one instance a run; the caller steps it segment by segment. Between the first and the
- * last step nothing is allocated. */
+ * last step nothing is allocated.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_INTEGRATE_H
 #define SP_DRIVE_INTEGRATE_H
 

@@ -1,4 +1,5 @@
-/* How the model stands against a trace's measured coolant, and how no model at all would. Internal. */
+/* How the model stands against a trace's measured coolant, and how no model at all would. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_MEASURED_H
 #define SP_DRIVE_MEASURED_H
 

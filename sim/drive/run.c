@@ -7,6 +7,7 @@
 #include <stdlib.h>
 #include <string.h>
 
+static const double shortest = 1e-9;                   /* s: rows closer than this are one instant */
 static const double coldest = 150.0, hottest = 5000.0; /* K: outside no trial value is worth a solve */
 
 /* ---- what the integrator asks ----------------------------------------------------------------------- */
@@ -31,7 +32,7 @@ static int rates(double t, const double *y, double *dydt, void *context)
     if (!sensible(r, y)) return 1;
     sp_schedule_at(r->schedule, r->segment, t, &in);
     sp_circuit_signals(r->circuit, y, &s);
-    if (sp_circuit_couple(r->circuit, &in, &r->modes, &s, &r->guesses, &k)) return -1;
+    if (sp_circuit_couple(r->circuit, &in, &r->modes, &s, &r->guesses, &k)) return 1; /* a smaller step may do */
     sp_circuit_rates(r->circuit, &in, &r->modes, y, &k, dydt);
     return 0;
 }
@@ -91,7 +92,10 @@ static enum sp_status run_all(struct sp_run *r)
     const struct sp_schedule *s = r->schedule;
     size_t last = SIZE_MAX; /* segment driven before */
     for (size_t k = 0; k + 1 < s->rows; ++k) {
-        if (s->time[k + 1] <= s->time[k]) continue; /* a jump: no time passes */
+        if (s->time[k + 1] - s->time[k] <= shortest) { /* a jump: no time passes */
+            r->time = s->time[k + 1];
+            continue;
+        }
         bool jump = last == SIZE_MAX || last + 1 != k || s->flags[last] != s->flags[k];
         r->segment = k;
         bool next_step = last != SIZE_MAX && s->step[last] != s->step[k];
@@ -194,7 +198,11 @@ struct sp_drive *sp_drive_build(struct sp_units *u, const struct sp_design *d, s
                                 struct sp_complaints *cautions)
 {
     struct sp_drive *drive = calloc(1, sizeof *drive);
-    if (!drive) return NULL;
+    if (!drive) {
+        struct sp_place at = {.file = d->file};
+        sp_complain(complaints, &at, "no memory", "room for a drive", NULL);
+        return NULL;
+    }
     drive->design = d;
     bool good = sp_circuit_build(d, &drive->circuit, complaints);
     good = sp_schedule_build(u, d, &drive->schedule, complaints, cautions) == SP_OK && good;

@@ -1,4 +1,5 @@
-/* One run of a drive: what its pieces share. Internal. */
+/* One run of a drive: what its pieces share. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_RUN_H
 #define SP_DRIVE_RUN_H
 

@@ -56,6 +56,8 @@ static bool lift_at_stake(const struct sp_run *r)
 /* A watch crossed. Returns true when the rates jump, so that the integrator must forget. */
 static bool crossed(struct sp_run *r, int w, bool up)
 {
+    bool play = w == SP_W_PLAY || w == SP_W_PLAY_SHUT;
+    if (!play && up == r->high[w]) return false; /* said already */
     r->high[w] = up;
     note(r, up ? sp_watch_event[w].rise : sp_watch_event[w].fall);
     switch (w) {
@@ -106,12 +108,23 @@ void sp_run_announce(struct sp_run *r, size_t from)
     if (from == to ? is : was != is) note(r, is ? SP_EV_ENGINE_STARTS : SP_EV_ENGINE_STOPS);
 }
 
+/* A turn of the play moves the lift's temperature by its slack: `opens` or `full` may lie just there. */
+static bool look_at_lift(struct sp_run *r)
+{
+    struct sp_watched seen;
+    if (sp_run_look(r, r->time, sp_integrator_state(r->integrator), &seen)) return false;
+    crossed(r, SP_W_OPENS, seen.g[SP_W_OPENS] >= 0.0);
+    crossed(r, SP_W_FULL, seen.g[SP_W_FULL] >= 0.0);
+    return true;
+}
+
 bool sp_run_take_crossings(struct sp_run *r, const int *sign)
 {
     bool jump = false;
     ++r->result->work.roots;
     for (int w = 0; w < SP_WATCHES; ++w)
         if (sign[w]) jump = crossed(r, w, sign[w] > 0) || jump;
+    if (sign[SP_W_PLAY] || sign[SP_W_PLAY_SHUT]) look_at_lift(r);
     r->seen_at = NAN;
     sp_run_follow_fan(r);
     return jump;

@@ -31,7 +31,11 @@ static void track_summit(struct sp_run *r, double from, double slope)
         if (r->scratch[SP_Y_JACKET] > 0.0) low = mid;
         else high = mid;
     }
-    if (sp_integrator_look_back(r->integrator, low, 0, r->scratch)) track(&r->coolant, r->scratch[SP_Y_JACKET], low);
+    if (!sp_integrator_look_back(r->integrator, low, 0, r->scratch)) return;
+    struct sp_inputs in;
+    sp_schedule_at(r->schedule, r->segment, low, &in);
+    track(&r->coolant, r->scratch[SP_Y_JACKET], low);
+    track(&r->over_ambient, r->scratch[SP_Y_JACKET] - in.in[SP_IN_AMBIENT], low);
 }
 
 bool sp_run_track(struct sp_run *r)

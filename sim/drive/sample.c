@@ -20,10 +20,7 @@ static void temperatures(const struct sp_run *r, const double *y, const struct s
     v[SP_CH_TANK] = y[SP_Y_TANK];
     v[SP_CH_WAX] = y[SP_Y_WAX];
     v[SP_CH_GAUGE] = y[SP_Y_GAUGE] + r->drive->design->gauge.offset;
-    v[SP_CH_PUMP_IN] = y[SP_Y_JACKET];
-    if (k->mass_pump > 0.0)
-        v[SP_CH_PUMP_IN] = (k->mass_radiator * y[l->wall - 1] + k->mass_bypass * y[SP_Y_JACKET] +
-                            k->mass_bleed * y[SP_Y_TANK]) / k->mass_pump;
+    v[SP_CH_PUMP_IN] = sp_circuit_pump_inlet(r->circuit, y, k);
 }
 
 static void flows(const struct sp_run *r, const struct sp_inputs *in, const double *y, const struct sp_coupling *k,

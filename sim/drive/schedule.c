@@ -89,7 +89,7 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
                            .density = sp_density_of(d, row->in[SP_IN_AMBIENT], row->in[SP_IN_PRESSURE])};
     struct sp_wheel_power wheel = {0};
     sp_schedule_caution_sources(b, i, &s);
-    bool off = step->engine_speed < 0.3 * d->engine.idle_speed;
+    bool off = step->engine_speed < SP_OFF_SHARE * d->engine.idle_speed;
     if (!off) sp_engine_row_fill(&s, &at, row->in, &wheel);
     row->flags = off ? 0 : SP_FLAG_ENGINE;
     to->work.wheel = (wheel.rolling + wheel.climb + wheel.drag + wheel.brakes) * step->time;

@@ -8,7 +8,7 @@
 #define SP_DRIVE_SCHEDULE_H
 
 #include "circuit/inputs.h"
-#include "swirlpot/part.h"
+#include "swirlpot/design.h"
 
 struct sp_schedule {
     size_t rows;

@@ -10,6 +10,8 @@
 #include "drive/schedule.h"
 #include "part/engine.h"
 
+#define SP_OFF_SHARE 0.3 /* of idle speed: below it the engine is off */
+
 enum { SP_SCHEDULE_ROWS = 20000000 }; /* most rows of a drive: 3 GB */
 
 /* ---- rows ------------------------------------------------------------------------------------- */

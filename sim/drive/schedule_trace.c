@@ -8,7 +8,6 @@
 #include <stdlib.h>
 #include <string.h>
 
-static const double off_speed = 0.3;   /* of idle speed: below, the engine is off */
 static const double slope_half = 50.0; /* m */
 static const double steepest = 0.5;    /* sine of a road; beyond, the altitudes are at fault */
 
@@ -279,7 +278,7 @@ static void row_of(struct deriving *v, size_t i, struct sp_row *row, struct sp_w
 static bool runs(const struct deriving *v, size_t i)
 {
     const double *n = v->trace.column[SP_COL_ENGINE_SPEED];
-    double least = off_speed * v->b->design->engine.idle_speed;
+    double least = SP_OFF_SHARE * v->b->design->engine.idle_speed;
     return !n || (n[i] >= least && n[i + 1] >= least);
 }
 

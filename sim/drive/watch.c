@@ -56,8 +56,8 @@ void sp_watch(const struct sp_circuit *c, const struct sp_inputs *in, const stru
     g[SP_W_FAN] = fan_watch(c, modes, y);
     play_watch(&d->thermostat, modes, y, g);
     double effective = sp_thermostat_effective(&d->thermostat, modes->play, y[SP_Y_WAX], modes->held);
-    g[SP_W_OPENS] = d->thermostat.none ? 1.0 : effective - d->thermostat.opens;
-    g[SP_W_FULL] = d->thermostat.none ? 1.0 : effective - d->thermostat.full;
+    g[SP_W_OPENS] = d->thermostat.none ? -1.0 : effective - d->thermostat.opens;
+    g[SP_W_FULL] = d->thermostat.none ? -1.0 : effective - d->thermostat.full;
     struct sp_tank_inputs tank;
     out->tank_pressure = sp_circuit_tank(c, in, y, &tank).pressure;
     g[SP_W_CAP] = out->tank_pressure - tank.ambient - d->tank.cap;

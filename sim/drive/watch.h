@@ -1,6 +1,7 @@
 /* The conditions a drive watches: switches of the controller, limits, the cap, boiling. Internal.
  *
- * Each is a function of the state that crosses nil; the integrator finds the crossing. */
+ * Each is a function of the state that crosses nil; the integrator finds the crossing.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_WATCH_H
 #define SP_DRIVE_WATCH_H
 
@@ -19,7 +20,7 @@ enum sp_watch {
 struct sp_watch_events { enum sp_event_kind rise, fall; };
 extern const struct sp_watch_events sp_watch_event[SP_WATCHES];
 
-/* All values at once; a watch that does not apply is 1. Also gives tank pressure and boil margin. */
+/* All values at once; a watch that does not apply never changes sign. Also gives tank pressure and boil margin. */
 struct sp_watched { double g[SP_WATCHES], tank_pressure, boil_margin; };
 
 void sp_watch(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,

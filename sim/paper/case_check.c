@@ -69,6 +69,13 @@ static void check_curve(struct sp_reader *r, const char *path, const struct sp_t
     if (!t->rows) return;
     if (t->rows < 2) sp_case_fault(r, path, "one pair", "two pairs or more", NULL);
     check_rising(r, path, t, 0, 1.0, "flow rising from pair to pair");
+    for (size_t i = 1; i < t->rows; ++i) {
+        char here[SP_PATH_MAX];
+        if (!(t->cell[2 * i + 1] > t->cell[2 * i - 1])) continue;
+        snprintf(here, sizeof here, "%.200s[%zu][1]", path, i);
+        sp_case_fault(r, here, NULL, "pressure that never rises with flow: with a stall dip one duct would have several "
+                      "flows; give the stable branch, carried on to shut-off", NULL);
+    }
     double last = t->cell[2 * t->rows - 1];
     if (t->rows > 1 && !(last < t->cell[2 * t->rows - 3]))
         sp_case_fault(r, path, "pressure that does not fall at the end",

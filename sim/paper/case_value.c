@@ -8,7 +8,7 @@
 
 /* Density of 50/50 ethylene glycol at 90 degC, which turns a volume flow into a mass flow: the state for
  * which heat data are given (ASHRAE's table). */
-static const double reference_density = 1030.95;
+static const double reference_density = SP_COOLANT_REFERENCE;
 
 void *sp_key_place(const struct sp_key *row, struct sp_design *d, size_t step)
 {

@@ -112,7 +112,10 @@ static void print_sums(const struct sp_duct_point *p, FILE *to)
     if (isfinite(ratio)) fprintf(to, ", %.5f of the speed through the air", ratio);
     fprintf(to, "\n  mass flow       %.5f kg/s\n", tidy(p->state.mass_flow, 5e-6));
     fprintf(to, "  exit velocity   %.4f m/s\n", tidy(p->state.exit_velocity, 5e-5));
-    fprintf(to, "  internal drag   %.3f N\n", tidy(p->state.drag, 5e-4));
+    fprintf(to, "  internal drag   %.3f N", tidy(p->state.drag, 5e-4));
+    double wake = sp_duct_wake_drag(&p->state, p->station);
+    if (isfinite(wake)) fprintf(to, " from momentum; %.3f N from losses (far wake)", tidy(wake, 5e-4));
+    fputc('\n', to);
     if (p->in.fan_speed > 0.0 || p->state.fan_pressure != 0.0)
         fprintf(to, "  fan pressure    %.2f Pa\n", tidy(p->state.fan_pressure, 0.005));
     if (p->state.diffuser_stalled) fputs("  The diffuser stalls: it opens too fast for its length.\n", to);
@@ -163,6 +166,7 @@ static void write_point(struct sp_writer *w, const struct sp_duct_point *p)
     sp_write_number(w, "temperature_ratio", p->state.temperature_ratio);
     sp_write_number(w, "exit_velocity_m_s", p->state.exit_velocity);
     sp_write_number(w, "internal_drag_N", p->state.drag);
+    sp_write_number(w, "wake_drag_N", sp_duct_wake_drag(&p->state, p->station));
     sp_write_number(w, "fan_pressure_Pa", p->state.fan_pressure);
     sp_write_bool(w, "diffuser_stalled", p->state.diffuser_stalled);
     sp_write_open(w, "stations", '[');

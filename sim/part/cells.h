@@ -1,5 +1,6 @@
 /* The radiator as cells along the coolant path: the relation that every cell uses, steady and
- * transient alike. Internal. Pure functions. */
+ * transient alike. Internal. Pure functions.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_CELLS_H
 #define SP_PART_CELLS_H
 

@@ -191,9 +191,11 @@ struct sp_core_loss sp_core_air_loss(const struct sp_core_ready *c, double G, do
     double T_mean = 0.5 * (T_in + T_out);
     if (c->design->drop_law == SP_DROP_FINS) {
         struct sp_core_drop drop = sp_louvre_drop(&c->louvre, G / c->sigma, sp_air_viscosity(T_mean), rho_in, rho_out);
-        /* Static drop less the dynamic head gained between equal areas is the loss of total pressure. */
-        return (struct sp_core_loss){drop.entrance + drop.friction + drop.exit,
-                                     drop.acceleration - 0.5 * G * G * thinner};
+        /* Static drop less the dynamic head gained between equal areas is the loss of total pressure; of the
+         * acceleration, half is the heating's own loss, as in a core tested cold. */
+        double heating = 0.5 * drop.acceleration;
+        return (struct sp_core_loss){drop.entrance + drop.friction + drop.exit + drop.acceleration -
+                                     0.5 * G * G * thinner - heating, heating};
     }
     double mean = 0.5 * (1.0 / rho_in + 1.0 / rho_out);
     return (struct sp_core_loss){tested_loss(c, G, T_mean, mean), 0.5 * G * G * thinner / (c->sigma * c->sigma)};

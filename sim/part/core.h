@@ -1,4 +1,5 @@
-/* A core: what it costs the air and the coolant, and what it conducts. Internal. */
+/* A core: what it costs the air and the coolant, and what it conducts. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_CORE_H
 #define SP_PART_CORE_H
 

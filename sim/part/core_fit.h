@@ -1,4 +1,5 @@
-/* Conductances recovered from a maker's table of heat, through the cells' own relation. Internal. */
+/* Conductances recovered from a maker's table of heat, through the cells' own relation. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_CORE_FIT_H
 #define SP_PART_CORE_FIT_H
 

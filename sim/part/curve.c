@@ -14,14 +14,15 @@ static bool refuse(const struct sp_place *at, struct sp_complaints *to, const ch
 static bool rising(const struct sp_table *t)
 {
     for (size_t i = 0; i + 1 < t->rows; ++i)
-        if (!(t->cell[2 * i + 2] > t->cell[2 * i])) return false;
+        if (!(t->cell[2 * i + 2] > t->cell[2 * i] && t->cell[2 * i + 3] <= t->cell[2 * i + 1])) return false;
     return t->rows >= 2 && t->cell[0] >= 0.0;
 }
 
 static bool from_pairs(const struct sp_table *t, struct sp_curve *c, const struct sp_place *at,
                        struct sp_complaints *to)
 {
-    if (!rising(t)) return refuse(at, to, "pairs out of order", "two or more pairs with rising flow from 0 up");
+    if (!rising(t)) return refuse(at, to, "pairs out of order",
+                      "two or more pairs with flow rising from 0 up and pressure that never rises");
     double *block = malloc(2 * t->rows * sizeof *block);
     if (!block) return refuse(at, to, "no memory", "room for the curve");
     double *pressure = block + t->rows;

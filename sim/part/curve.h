@@ -1,4 +1,5 @@
-/* A fan's or pump's pressure over volume flow, with the laws of speed. Internal. */
+/* A fan's or pump's pressure over volume flow, with the laws of speed. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_CURVE_H
 #define SP_PART_CURVE_H
 

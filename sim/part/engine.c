@@ -124,9 +124,10 @@ static struct heat_at law_over_power(const struct sp_engine_law *law, double pow
     struct heat_at at = law->speeds > 0 ? table_law(law, power, speed) : rated_law(law, power, speed);
     const struct sp_engine *e = &law->engine;
     double slow = 1.0 - rising(speed / e->idle_speed, overrun_slow, overrun_fast);
-    double extra = law->idle_extra * slow, load = power / e->rated_power;
+    double extra = law->idle_extra * slow * fmin(speed / e->idle_speed, 1.0), load = power / e->rated_power;
     at.heat += extra * (1.0 - rising(load, 0.0, idle_power));
     at.slope -= extra * rising_slope(load, 0.0, idle_power) / e->rated_power;
+    at.heat = fmax(at.heat, 0.0); /* an idle heat below the law's own must not cool a cranking engine */
     return at;
 }
 
@@ -172,7 +173,8 @@ struct sp_engine_heat sp_engine_heat(const struct sp_engine_law *law, const stru
         out.gas = e->heat_law == SP_HEAT_FUEL ? heat : (1.0 - cut) * heat;
     }
     out.friction = cut * e->overrun_share * sp_engine_motoring(e, speed);
-    out.per_power = (1.0 - cut) * at.slope;
+    /* What is measured already holds the alternator's load. */
+    out.per_power = isnan(flow) ? (1.0 - cut) * at.slope : 0.0;
     return out;
 }
 

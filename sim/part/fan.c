@@ -5,7 +5,6 @@
 #include <string.h>
 
 static const double catalogue_density = 1.2; /* kg/m3 of fan curves */
-static const double voltage_exponent = 0.9;
 
 bool sp_fan_build(const struct sp_fan *d, double face, struct sp_fan_ready *out, const struct sp_place *at,
                   struct sp_complaints *complaints)
@@ -50,9 +49,9 @@ double sp_fan_pressure(const struct sp_fan_ready *f, double speed, double mass_f
     return fmax(added, -windmill);
 }
 
-double sp_fan_speed_at(const struct sp_fan *d, double voltage)
+double sp_motor_speed(double voltage, double rated)
 {
-    return pow(voltage / d->rated_voltage, voltage_exponent);
+    return pow(voltage / rated, 0.9);
 }
 
 double sp_fan_power(const struct sp_fan *d, double speed)

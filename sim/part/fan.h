@@ -1,4 +1,5 @@
-/* A fan, or several equal ones side by side, in the duct. Internal. */
+/* A fan, or several equal ones side by side, in the duct. Internal.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_FAN_H
 #define SP_PART_FAN_H
 
@@ -19,9 +20,9 @@ void sp_fan_free(struct sp_fan_ready *f);
  * resist with the same loss on top of the shut-off pressure. */
 double sp_fan_pressure(const struct sp_fan_ready *f, double speed, double mass_flow, double density);
 
-/* Speed over rated speed at voltage U: (U/rated)^0.9, common practice for brushed motors
+/* Speed over rated speed of a fan or pump at voltage U: (U/rated)^0.9, common practice for brushed motors
  * (flow goes with voltage to 0.8..1.0). */
-double sp_fan_speed_at(const struct sp_fan *d, double voltage);
+double sp_motor_speed(double voltage, double rated);
 
 /* Electrical power [W] of all fans at `speed` times rated speed: rated power times speed cubed. */
 double sp_fan_power(const struct sp_fan *d, double speed);

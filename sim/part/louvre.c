@@ -90,6 +90,8 @@ static double f_high(const struct sp_louvre_core *c, double ln_re)
     return exp(c->high_ln + c->high_power * ln_re - 2.966 * log(ln_re + log(0.3)));
 }
 
+static void find_summit(struct sp_louvre_core *c);
+
 bool sp_louvre_core_build(const struct sp_louvre *g, struct sp_louvre_core *out)
 {
     if (!possible(g)) return false;
@@ -107,6 +109,7 @@ bool sp_louvre_core_build(const struct sp_louvre *g, struct sp_louvre_core *out)
         length * sqrt(2.0 / (g->fin_conductivity * g->fin_thickness) * (1.0 + g->fin_thickness / g->depth));
     /* not so for fins thinner than a hundredth of their pitch: a logarithm below 0 to a broken power */
     if (!(isfinite(c.low_end2) && isfinite(c.high_end2) && isfinite(c.j_scale))) return false;
+    find_summit(&c);
     *out = c;
     return true;
 }
@@ -146,7 +149,7 @@ double sp_louvre_j(const struct sp_louvre_core *c, double re)
 }
 
 /* f Re, finite down to nil flow. Between 130 and 230 the branches are blended as amended in 2006. */
-static double friction_re(const struct sp_louvre_core *c, double re)
+static double published_re(const struct sp_louvre_core *c, double re)
 {
     re = fabs(re);
     if (re < SP_LOUVRE_RE_F) re = SP_LOUVRE_RE_F;
@@ -156,6 +159,25 @@ static double friction_re(const struct sp_louvre_core *c, double re)
         return re * sqrt(0.5 * ((1.0 + w) * c->low_end2 + (1.0 - w) * c->high_end2));
     }
     return re * f_high(c, log(re));
+}
+
+/* The first summit of f Re^2 over the blend; the branches on either side rise by themselves. */
+static void find_summit(struct sp_louvre_core *c)
+{
+    c->summit_re = INFINITY;
+    for (double re = re_blend_low; re <= re_blend_high; re += 0.25) {
+        double value = re * published_re(c, re);
+        if (value < c->summit) return;
+        c->summit = value;
+        c->summit_re = re;
+    }
+    c->summit_re = INFINITY;
+}
+
+static double friction_re(const struct sp_louvre_core *c, double re)
+{
+    double f_re = published_re(c, re);
+    return fabs(re) > c->summit_re ? fmax(f_re, c->summit / fabs(re)) : f_re;
 }
 
 double sp_louvre_friction(const struct sp_louvre_core *c, double re)

@@ -37,6 +37,7 @@ struct sp_louvre_core {
     double low_ln, low_power;      /* low branch:  ln f = low_ln + low_power ln Re - 3.01 ln ln(Re/2) */
     double high_ln, high_power;    /* high branch: ln f = ... - 2.966 ln ln(0.3 Re) */
     double low_end2, high_end2;    /* squares of f at the ends of the blend, Re 130 and 230 */
+    double summit_re, summit; /* where f Re^2 first stops rising, and its value; Re infinite if it never does */
     double fin_ml;                 /* fin parameter m l = fin_ml sqrt(h) */
 };
 
@@ -61,6 +62,9 @@ const char *sp_louvre_outside(const struct sp_louvre *g);
 double sp_louvre_reynolds(const struct sp_louvre_core *c, double G, double viscosity);
 
 double sp_louvre_j(const struct sp_louvre_core *c, double re);
+/* As published, save that f Re^2, to which the drop is proportional, never falls: for some geometries the
+ * published blend lets it between Re 130 and some 300, which no core does and which would give one duct
+ * several flows. There f Re^2 is held at its summit. */
 double sp_louvre_friction(const struct sp_louvre_core *c, double re);
 
 /* Film coefficient [W/m2K] = j G cp Pr^(-2/3). */

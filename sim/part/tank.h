@@ -1,8 +1,11 @@
-/* Header tank: a gas spring, a cap, and what the cap lets out. Internal. Pure functions. */
+/* Header tank: a gas spring, a cap, and what the cap lets out. Internal. Pure functions.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_TANK_H
 #define SP_PART_TANK_H
 
 #include "swirlpot/part.h"
+
+#define SP_TANK_LAST_GAS 2.0e-5 /* m3 of gas below which liquid goes out with it; common practice */
 
 struct sp_tank_inputs {
     double air;         /* mol of air in the tank */

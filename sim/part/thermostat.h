@@ -1,4 +1,5 @@
-/* Thermostat: a wax element that lags, with play between opening and shutting. Internal. Pure functions. */
+/* Thermostat: a wax element that lags, with play between opening and shutting. Internal. Pure functions.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_PART_THERMOSTAT_H
 #define SP_PART_THERMOSTAT_H
 

@@ -19,12 +19,16 @@
 static const double scale = 0.5; /* the model trace's car is twice as strong as the case's */
 static const double rate = 50.0; /* Hz */
 
-static double now(void)
+static double clock_of(clockid_t which)
 {
     struct timespec t;
-    clock_gettime(CLOCK_MONOTONIC, &t);
+    clock_gettime(which, &t);
     return (double)t.tv_sec + 1e-9 * (double)t.tv_nsec;
 }
+
+static double now(void) { return clock_of(CLOCK_MONOTONIC); }
+static double busy(void) { return clock_of(CLOCK_PROCESS_CPUTIME_ID); } /* of the processor */
+static double seconds_of(struct timeval t) { return (double)t.tv_sec + 1e-6 * (double)t.tv_usec; }
 
 static _Noreturn void give_up(const char *what, const struct sp_complaints *c)
 {
@@ -71,8 +75,9 @@ static double write_log(const struct sp_trace *model, const char *file, double h
     return megabytes;
 }
 
-/* Runs a command with its output thrown away; its status, seconds and peak memory. */
-static int command(char *const *argv, double *seconds, double *megabytes)
+/* Runs a command with its output thrown away; its status, seconds (by the clock, and of the processor) and peak
+ * memory. */
+static int command(char *const *argv, double seconds[2], double *megabytes)
 {
     struct rusage used;
     int status;
@@ -86,7 +91,8 @@ static int command(char *const *argv, double *seconds, double *megabytes)
         _exit(127);
     }
     if (wait4(child, &status, 0, &used) < 0 || !WIFEXITED(status)) give_up("the command fell over", NULL);
-    *seconds = now() - began;
+    seconds[0] = now() - began;
+    seconds[1] = seconds_of(used.ru_utime) + seconds_of(used.ru_stime);
     *megabytes = (double)used.ru_maxrss * 1024e-6;
     return WEXITSTATUS(status);
 }
@@ -137,7 +143,7 @@ int main(int argc, char **argv)
 {
     if (argc < 5) give_up("usage: bench_trace MODEL-TRACE CAR COMMAND FOLDER [HOURS]", NULL);
     char log[1024], file[1024], verb[] = "run";
-    double hours = argc > 5 ? atof(argv[5]) : 24.0, seconds, memory;
+    double hours = argc > 5 ? atof(argv[5]) : 24.0, seconds[2], memory;
     snprintf(log, sizeof log, "%s/log.csv", argv[4]);
     snprintf(file, sizeof file, "%s/case.json", argv[4]);
     struct sp_units *u = sp_units_open();
@@ -147,15 +153,17 @@ int main(int argc, char **argv)
     double megabytes = write_log(&model, log, hours);
     printf("a log of %g h at %g Hz\n  size                          %.0f MB\n", hours, rate, megabytes);
 
-    double began = now();
+    double began = now(), began_busy = busy();
     struct sp_trace t = read_trace(u, log);
-    double taken = now() - began;
-    printf("  read                          %.2f s: %.0f MB/s, %zu rows\n", taken, megabytes / taken, t.rows);
+    double taken = now() - began, taken_busy = busy() - began_busy;
+    printf("  read                          %.2f s, %.2f s of the processor: %.0f MB/s, %zu rows\n", taken,
+           taken_busy, megabytes / taken_busy, t.rows);
     sp_trace_free(&t);
 
     char *call[] = {argv[3], verb, file, NULL};
-    int status = command(call, &seconds, &memory);
-    printf("  run by the command            %.2f s, %.0f MB at most, status %d\n", seconds, memory, status);
+    int status = command(call, seconds, &memory);
+    printf("  run by the command            %.2f s, %.2f s of the processor, %.0f MB at most, status %d\n",
+           seconds[0], seconds[1], memory, status);
     say_merging(u, &model, file, log);
     sp_trace_free(&model);
     sp_units_close(u);

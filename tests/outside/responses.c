@@ -1,4 +1,5 @@
-/* How engine, thermostat, bypass, fan, cap, road and air follow what the drive asks, against sums on paper.
+/* How engine, coolant mix, thermostat, bypass, fan, cap, road and air follow what the drive asks, against
+ * sums on paper.
  *
  * Sources stand beside the tests. SPDX-License-Identifier: GPL-3.0-or-later */
 #include "fixture.h"
@@ -108,6 +109,24 @@ static void accelerating_and_climbing(void **state)
 
 /* ---- coolant's ways ---------------------------------------------------------------------------------------
  */
+
+/* A mix of 55 % lies between the ASHRAE columns of 50 and 60 %: viscosity at their geometric mean (Arrhenius'
+ * rule of mixtures), density and heat capacity at their mean. At 20, 60, 100 degC. */
+static void mixes_between_the_columns(void **state)
+{
+    (void)state;
+    const double t[] = {20.0, 60.0, 100.0}, mu_50[] = {3.94, 1.43, 0.70}, mu_60[] = {5.38, 1.69, 0.77};
+    const double rho_50[] = {1073.35, 1052.04, 1022.95}, rho_60[] = {1086.27, 1063.69, 1033.33};
+    const double c_50[] = {3281.0, 3435.0, 3590.0}, c_60[] = {3084.0, 3258.0, 3433.0};
+    struct sp_coolant c;
+    assert_true(sp_coolant_mix(SP_ETHYLENE_GLYCOL, 0.55, &c));
+    for (int i = 0; i < 3; ++i) {
+        double T = t[i] + 273.15;
+        check_close(sp_coolant_viscosity(&c, T), 1e-3 * sqrt(mu_50[i] * mu_60[i]), 1.5e-2, 0);
+        check_close(sp_coolant_density(&c, T), 0.5 * (rho_50[i] + rho_60[i]), 2e-5, 0);
+        check_close(sp_coolant_cp(&c, T), 0.5 * (c_50[i] + c_60[i]), 3e-4, 0);
+    }
+}
 
 /* A drive that warms and cools again: the wax stands at 82 degC when it opens, at 79 when it is shut. */
 static void shuts_below_where_it_opens(void **state)
@@ -306,6 +325,7 @@ static int end(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
+        cmocka_unit_test(mixes_between_the_columns),
         cmocka_unit_test(overrun),
         cmocka_unit_test(idle_as_given),
         cmocka_unit_test(accelerating_and_climbing),

@@ -18,6 +18,8 @@ def _following_wind(raw):
     raw["air"]["wind"] = "-9 m/s"
     raw["car"]["duct"]["fan"].update(before="core", basis="total", control="always", run_on="40 s")
     raw["car"]["thermostat"]["hysteresis"] = "0 K"
+    hold = {"hold": "50 s", "speed": "30 km/h", "power": "9 kW", "engine_speed": "2400 rpm"}
+    raw["drive"] = [raw["drive"][0], hold, dict(hold, power="-2 kW", engine_speed="2600 rpm"), *raw["drive"][1:]]
     return raw
 
 
