@@ -46,6 +46,9 @@ SP_API double sp_air_density(double T, double p, double humidity);
 /* Film properties of dry air, fitted 240..420 K (held at the ends outside):
  * viscosity [Pa s], conductivity [W/mK], heat capacity [J/kgK], Prandtl number. */
 SP_API double sp_air_viscosity(double T);
+
+/* Viscosity [Pa s] by Sutherland's formula, US Standard Atmosphere 1976: for pressure drops. T > 0 K. */
+SP_API double sp_air_sutherland(double T);
 SP_API double sp_air_conductivity(double T);
 SP_API double sp_air_cp_film(double T);
 SP_API double sp_air_prandtl(double T);

@@ -17,6 +17,9 @@
  * finite at nil flow. At 1 m/s it changes a loss by 5e-7. */
 static const double laminar_floor = 1e-3;
 
+/* Face velocity [m/s] over which the fan's air changes from hot to fresh as the flow turns. */
+static const double creeping = 0.02;
+
 /* Loss of air drawn in through the exit, on the head there: a sharp edge in a wall. Common practice. */
 static const double reverse_entry = 0.5;
 
@@ -93,6 +96,16 @@ static struct sp_core_loss through_core(const struct problem *p, double m, const
     return loss;
 }
 
+/* A fan behind the core sees hot air forwards and fresh air in reverse; between, over a creeping flow, one goes
+ * over into the other, so that the balance has no step at nil flow. */
+static double fan_at(const struct problem *p, double m, const struct flow *f)
+{
+    double ahead = fmin(fmax(0.5 + 0.5 * m / (p->density * p->duct->core.face * creeping), 0.0), 1.0);
+    if (p->duct->design.fan.before_core) ahead = 1.0 - ahead;
+    double cold = f->rho_in, hot = f->rho_out;
+    return sp_fan_pressure(&p->duct->fan, p->in->fan_speed, m, cold + (hot - cold) * ahead);
+}
+
 static void forward(const struct problem *p, double m, struct flow *f)
 {
     const struct sp_duct_design *d = &p->duct->design;
@@ -102,7 +115,7 @@ static void forward(const struct problem *p, double m, struct flow *f)
     f->screen = d->inlet.screen * inlet_head;
     f->diffuser = p->duct->diffuser_loss * inlet_head;
     f->core = through_core(p, m, f);
-    f->fan = sp_fan_pressure(&p->duct->fan, p->in->fan_speed, m, d->fan.before_core ? f->rho_in : f->rho_out);
+    f->fan = fan_at(p, m, f);
     f->exit_head = head_in(p, m, f->rho_out, d->exit.area);
     f->exit = d->exit.loss * f->exit_head;
     f->balance = f->available - f->back + f->fan - f->lip - f->screen - f->diffuser - f->core.core -
@@ -118,7 +131,7 @@ static void reverse(const struct problem *p, double m, struct flow *f)
     f->screen = d->inlet.screen * inlet_head;
     f->diffuser = p->duct->diffuser_loss * inlet_head;
     f->core = through_core(p, m, f);
-    f->fan = sp_fan_pressure(&p->duct->fan, p->in->fan_speed, m, d->fan.before_core ? f->rho_out : f->rho_in);
+    f->fan = fan_at(p, m, f);
     f->exit = (d->exit.loss + reverse_entry) * head_in(p, m, f->rho_in, d->exit.area);
     f->balance = f->available - f->back + f->fan + f->lip + f->screen + f->diffuser + f->core.core +
                  f->core.heating + f->exit;
@@ -208,9 +221,9 @@ void sp_duct_stations(const struct sp_duct *d, const struct sp_duct_inputs *in, 
     double front = ahead ? T2 : T3, rear = ahead ? T3 : T2, way = ahead ? 1.0 : -1.0;
     /* From the front backwards; in reverse flow the losses run the other way. */
     double at_inlet = ahead ? f.available - f.lip : f.available + f.lip;
-    double at_face = at_inlet - way * (f.screen + f.diffuser);
     double fan_front = d->design.fan.before_core ? f.fan : 0.0, fan_rear = f.fan - fan_front;
-    double at_back = at_face + fan_front - way * (f.core.core + f.core.heating);
+    double at_face = at_inlet - way * (f.screen + f.diffuser) + fan_front;
+    double at_back = at_face - way * (f.core.core + f.core.heating);
     double at_fan = at_back + fan_rear;
     double at_exit = ahead ? at_fan - f.exit : f.back;
     s[0] = (struct sp_station){in->pressure + p.head, in->pressure, p.density, T2, p.speed};

@@ -93,6 +93,7 @@ bool sp_run_look_again(struct sp_run *r, bool first)
     for (int w = 0; w < SP_WATCHES; ++w) {
         bool up = seen.g[w] >= 0.0;
         if (w == SP_W_PLAY || w == SP_W_PLAY_SHUT) r->high[w] = up;
+        else if (first && (w == SP_W_OPENS || w == SP_W_FULL)) r->high[w] = up; /* where it stands, not an event */
         else if (first ? up : up != r->high[w]) crossed(r, w, up);
     }
     r->seen_at = NAN;

@@ -91,6 +91,11 @@ double sp_air_viscosity(double T)
     return 1.4923e-6 * T * sqrt(T) / (T + 118.06);
 }
 
+double sp_air_sutherland(double T)
+{
+    return 1.458e-6 * T * sqrt(T) / (T + 110.4);
+}
+
 double sp_air_conductivity(double T)
 {
     T = film_range(T);

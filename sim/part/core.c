@@ -137,7 +137,7 @@ bool sp_core_build(const struct sp_core *d, const struct sp_coolant *fluid, stru
     if (good && tubes && d->tube_pitch > 0.0) good = build_tubes(d, out, at, complaints);
     if (d->drop_law == SP_DROP_TABLE) good = build_drop_table(d, out, at, complaints) && good;
     if (d->drop_law != SP_DROP_FINS) out->sigma = d->free_area_ratio;
-    if (isfinite(d->at_temperature)) out->reference_viscosity = sp_air_viscosity(d->at_temperature);
+    if (isfinite(d->at_temperature)) out->reference_viscosity = sp_air_sutherland(d->at_temperature);
     if (d->heat_law == SP_CORE_POWER) build_power(d, out);
     if (d->heat_law == SP_CORE_MAKER && good) good = build_maker(d, fluid, out, at, complaints);
     return good;
@@ -171,7 +171,7 @@ static double tested_drop(const struct sp_core_ready *c, double v)
 static double tested_loss(const struct sp_core_ready *c, double G, double T_mean, double inverse_density)
 {
     const struct sp_core *d = c->design;
-    double thicker = c->reference_viscosity > 0.0 ? sp_air_viscosity(T_mean) / c->reference_viscosity : 1.0;
+    double thicker = c->reference_viscosity > 0.0 ? sp_air_sutherland(T_mean) / c->reference_viscosity : 1.0;
     switch (d->drop_law) {
     case SP_DROP_COEFFICIENT: return d->coefficient * 0.5 * G * G * inverse_density;
     case SP_DROP_LINEAR:
@@ -190,7 +190,7 @@ struct sp_core_loss sp_core_air_loss(const struct sp_core_ready *c, double G, do
     double thinner = 1.0 / rho_out - 1.0 / rho_in; /* m3/kg gained */
     double T_mean = 0.5 * (T_in + T_out);
     if (c->design->drop_law == SP_DROP_FINS) {
-        struct sp_core_drop drop = sp_louvre_drop(&c->louvre, G / c->sigma, sp_air_viscosity(T_mean), rho_in, rho_out);
+        struct sp_core_drop drop = sp_louvre_drop(&c->louvre, G / c->sigma, sp_air_sutherland(T_mean), rho_in, rho_out);
         /* Static drop less the dynamic head gained between equal areas is the loss of total pressure; of the
          * acceleration, half is the heating's own loss, as in a core tested cold. */
         double heating = 0.5 * drop.acceleration;

@@ -4,6 +4,7 @@
 #include <math.h>
 
 static const double opening = 1.0e-8;  /* m3/s per Pa of excess: 1 l/s at 1 bar; common practice */
+static const double open_rise = 0.1, least_rise = 5e3; /* of the cap's setting; Pa. Common practice */
 static const double softness = 500.0;  /* Pa over which the cap's seat lifts */
 
 struct sp_tank_state sp_tank_state(const struct sp_tank *t, const struct sp_tank_inputs *in)
@@ -14,7 +15,9 @@ struct sp_tank_state sp_tank_state(const struct sp_tank *t, const struct sp_tank
     double root = sqrt(base * base + 4.0 * t->compliance * nRT);
     double x = base >= 0.0 ? 2.0 * nRT / (base + root) : (root - base) / (2.0 * t->compliance);
     if (base == 0.0 && nRT == 0.0) x = 0.0;
-    return (struct sp_tank_state){in->vapour + x, base + t->compliance * x};
+    /* A cap that stands open passes whatever steam boils: the pressure rises a little over its setting. */
+    double most = in->ambient + t->cap + fmax(open_rise * t->cap, least_rise);
+    return (struct sp_tank_state){fmin(in->vapour + x, most), base + t->compliance * x};
 }
 
 double sp_tank_filling(const struct sp_tank *t, double vapour, double p)

@@ -21,7 +21,7 @@ struct sp_tank_state {
     double gas;      /* m3 */
 };
 
-/* Pressure of the trapped gas: p = n R T / V_g + p_v, V_g = system + compliance (p - ambient) - liquid;
+/* Pressure of the trapped gas, at most a tenth of the cap's setting (5 kPa at least) above it: p = n R T / V_g + p_v, V_g = system + compliance (p - ambient) - liquid;
  * the root of a quadratic. compliance > 0. */
 struct sp_tank_state sp_tank_state(const struct sp_tank *t, const struct sp_tank_inputs *in);
 

@@ -97,9 +97,17 @@ static void films(void **state)
     check_close(sp_air_prandtl(350), 0.700, 5e-3, 0);
 }
 
+/* US Standard Atmosphere 1976: 1.789380e-5 Pa s at 288.15 K. */
+static void sutherland(void **state)
+{
+    (void)state;
+    check_close(sp_air_sutherland(288.15), 1.789380e-5, 1e-6, 0);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
+        cmocka_unit_test(sutherland),
         cmocka_unit_test(standard_atmosphere),
         cmocka_unit_test(warm_and_cold_days),
         cmocka_unit_test(humid_air),
