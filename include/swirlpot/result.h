@@ -37,7 +37,7 @@ SP_API void sp_report_events(const struct sp_report *r, FILE *to);
  * runs and put there by sp_report_files_finish: all of it is there afterwards, or what was there before. */
 struct sp_report_files;
 
-/* Makes the directory when it is missing (not the ones above it). NULL with complaints. The list of
+/* Makes the directory when it is missing, and those above it. NULL with complaints. The list of
  * complaints must outlive the files. */
 SP_API struct sp_report_files *sp_report_files_open(const char *directory, struct sp_complaints *complaints);
 

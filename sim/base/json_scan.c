@@ -305,10 +305,11 @@ bool sp_json_scan(const char *name, const char *named_by, const char *text, size
                   struct sp_json_marks *out, struct sp_complaints *complaints)
 {
     const char *start = text ? text : "";
+    if (!text) size = 0;
     struct scan s = {start, start, start + size, 1, 0, {name, 1, NULL, named_by}, out, complaints};
-    if (size >= 3 && memcmp(text, "\xef\xbb\xbf", 3) == 0)
+    if (size >= 3 && memcmp(start, "\xef\xbb\xbf", 3) == 0)
         return fault(&s, "plain UTF-8, beginning with the value", "save the file without a byte order mark");
-    if (size >= 2 && (memcmp(text, "\xff\xfe", 2) == 0 || memcmp(text, "\xfe\xff", 2) == 0))
+    if (size >= 2 && (memcmp(start, "\xff\xfe", 2) == 0 || memcmp(start, "\xfe\xff", 2) == 0))
         return fault_on(&s, 1, "UTF-16", "UTF-8", "save the file as UTF-8");
     if (!scan_value(&s, 0, "a JSON value")) return false;
     skip_blanks(&s);

@@ -143,7 +143,9 @@ struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp
     *inputs = (struct sp_tank_inputs){.air = y[SP_Y_AIR], .liquid = liquid - y[SP_Y_LOST], .system = c->system_volume,
                                       .temperature = y[SP_Y_TANK], .ambient = in->in[SP_IN_PRESSURE],
                                       .vapour = sp_coolant_vapour_pressure(f, y[SP_Y_TANK])};
-    return sp_tank_state(&c->design->tank, inputs);
+    struct sp_tank_state s = sp_tank_state(&c->design->tank, inputs);
+    s.pressure = fmin(s.pressure, sp_tank_most(&c->design->tank, inputs->ambient));
+    return s;
 }
 
 static void tank_rates(const struct sp_circuit *c, const struct sp_inputs *in, const double *y, double *dydt)

@@ -5,7 +5,8 @@
 #include <math.h>
 #include <string.h>
 
-static const double reseat = 5000.0;            /* Pa below its setting (a tenth of it at most) at which a cap shuts; common practice */
+/* Pa below its setting (a tenth of it at most) at which a cap shuts; common practice. */
+static const double reseat = 5000.0;
 static const double smallest = 1.0e-5;          /* m3; a cell of no volume would be infinitely fast */
 
 static double bore_volume(double length, double bore)

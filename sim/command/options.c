@@ -84,7 +84,8 @@ const char *sp_nearest(const char *word, const char *const *known, size_t count)
             best = known[i];
         }
     }
-    return best && least <= strlen(best) / 2 + 1 ? best : NULL;
+    size_t most = strlen(word) / 2; /* no more changes than half the letters, or one */
+    return best && least <= (most > 1 ? most : 1) ? best : NULL;
 }
 
 /* ---- reading --------------------------------------------------------------------------------------- */

@@ -55,7 +55,32 @@ void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const str
     }
 }
 
+void sp_schedule_caution_power(struct sp_scheduling *b, size_t step, double most)
+{
+    const double usual = 1.3; /* of rated power: more is a slip of units, or noise differentiated */
+    double rated = b->design->engine.rated_power;
+    if (!(most > usual * rated)) return;
+    char found[64], expected[96];
+    snprintf(found, sizeof found, "power up to %.4g kW", most / 1e3);
+    snprintf(expected, sizeof expected, "no more than 1.3 times car.engine.rated_power, which is %.4g kW",
+             rated / 1e3);
+    sp_schedule_caution(b, step, found, expected);
+}
+
 /* ---- steps without a trace -------------------------------------------------------------------- */
+
+/* False with a complaint when a hold's engine stands and gives power all the same. */
+static bool hold_turns(struct sp_scheduling *b, size_t i)
+{
+    const struct sp_step *step = &b->design->step[i];
+    char found[96];
+    if (!sp_schedule_stopped(&b->design->engine, step->engine_speed, step->power)) return true;
+    snprintf(found, sizeof found, "%.4g rpm with a power of %.4g kW", 60.0 * step->engine_speed,
+             step->power / 1e3);
+    sp_schedule_fault(b, i, "engine_speed", found,
+                      "an engine that turns, or power 0 kW: below 0.3 times car.engine.idle_speed it is off");
+    return false;
+}
 
 /* A hold's engine. False when it cannot be known. */
 static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, struct sp_schedule *to)
@@ -63,6 +88,7 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
     const struct sp_design *d = b->design;
     const struct sp_step *step = &d->step[i];
     struct sp_engine_sources s = {d, b->law, SP_POWER_COLUMN, SP_ENGINE_COLUMN};
+    if (!hold_turns(b, i)) return false;
     if (isnan(step->power) && step->speed != 0.0) {
         s.power = SP_POWER_ROAD;
         to->power_from_road = true;
@@ -91,6 +117,7 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
     sp_schedule_caution_sources(b, i, &s);
     bool off = step->engine_speed < SP_OFF_SHARE * d->engine.idle_speed;
     if (!off) sp_engine_row_fill(&s, &at, row->in, &wheel);
+    sp_schedule_caution_power(b, i, row->in[SP_IN_POWER]);
     row->flags = off ? 0 : SP_FLAG_ENGINE;
     to->work.wheel = (wheel.rolling + wheel.climb + wheel.drag + wheel.brakes) * step->time;
     to->work.rolling = wheel.rolling * step->time;

@@ -21,6 +21,7 @@ struct deriving {
     struct sp_engine_sources sources;
     struct sp_merge merge;
     double altitude, pressure; /* of the row worked out last */
+    double most_power;         /* W */
     bool finite;
 };
 
@@ -271,6 +272,7 @@ static void row_of(struct deriving *v, size_t i, struct sp_row *row, struct sp_w
         at.density = sp_density_of(v->b->design, row->in[SP_IN_AMBIENT], row->in[SP_IN_PRESSURE]);
     }
     sp_engine_row_fill(&v->sources, &at, row->in, wheel);
+    v->most_power = fmax(v->most_power, row->in[SP_IN_POWER]);
     for (int c = 0; c < SP_INPUTS; c++)
         if (c != SP_IN_MEASURED && !isfinite(row->in[c])) v->finite = false;
 }
@@ -341,6 +343,7 @@ static bool build_rows(struct deriving *v, struct sp_rows *to)
                           "fewer rows, or a longer solver.merge");
         return false;
     }
+    sp_schedule_caution_power(v->b, v->step, v->most_power);
     to->table.rows_merged = v->merge.pushed - to->table.rows;
     to->table.measured = has(v, SP_COL_COOLANT);
     to->table.power_from_road = v->sources.power == SP_POWER_ROAD;
@@ -354,7 +357,7 @@ bool sp_schedule_trace(struct sp_scheduling *b, size_t step, struct sp_rows *to)
     bool fine = read_trace(&v);
     if (fine) {
         count_repairs(&v);
-        fine = find_sources(&v);
+        fine = find_sources(&v) && sp_schedule_find_speeds(b, step, &v.trace, &v.sources);
     }
     if (fine) {
         sp_schedule_caution_sources(b, step, &v.sources);

@@ -65,6 +65,8 @@ static struct sp_design *read_all(struct sp_reader *r, const char *text, size_t 
         sp_complain(to, &at, c->found, c->expected, c->hint);
     }
     if (to) to->dropped += own.dropped;
+    r->complaints = NULL;
+    r->cautions = NULL;
     sp_complaints_free(&own);
     sp_complaints_free(&unused);
     return design;

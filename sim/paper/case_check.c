@@ -8,19 +8,47 @@
 
 /* One value that has to be below another. */
 struct order {
-    const char *path;
-    double value, bound;
-    bool equal_allowed;
-    const char *expected;
+    const char *low, *high;
+    double below, above; /* SI */
 };
 
+/* A value as its user knows it: the text written, the default's text, or the number a rule gave. */
+static void in_words(const struct sp_reader *r, const char *path, double value, char *out, size_t size)
+{
+    const struct sp_json *node = sp_case_node(r->tree, path);
+    const struct sp_key *row = sp_key_find(path);
+    if (node && node->text)
+        snprintf(out, size, "%.80s", node->text);
+    else if (!row->rule && row->fallback)
+        snprintf(out, size, "%.80s by default", row->fallback);
+    else if (row->kind == SP_K_TEMPERATURE)
+        snprintf(out, size, "%.6g degC by default", value - SP_ZERO_C);
+    else if (row->kind == SP_K_ROTATION)
+        snprintf(out, size, "%.6g rpm by default", 60.0 * value);
+    else
+        snprintf(out, size, "%.6g %s by default", value, sp_kind_si(row->kind));
+}
+
+/* How much a user has to do with a value: nothing, in a file, on the command line. */
+static int weight(const struct sp_reader *r, const char *path)
+{
+    const struct sp_json *node = sp_case_node(r->tree, path);
+    if (!node) return 0;
+    return node->file && !strncmp(node->file, "--set ", 6) ? 2 : 1;
+}
+
+/* Blames what the user set, and the lower of the two where that is both or none. */
 static void check_order(struct sp_reader *r, const struct order *o)
 {
-    if (isnan(o->value) || isnan(o->bound)) return;
-    if (o->value < o->bound || (o->equal_allowed && o->value <= o->bound)) return;
-    char found[80];
-    snprintf(found, sizeof found, "%.6g against %.6g (SI)", o->value, o->bound);
-    sp_case_fault(r, o->path, found, o->expected, NULL);
+    if (isnan(o->below) || isnan(o->above) || o->below < o->above) return;
+    bool low = weight(r, o->low) >= weight(r, o->high);
+    const char *blamed = low ? o->low : o->high, *other = low ? o->high : o->low;
+    char bound[120], found[120], expected[260];
+    in_words(r, other, low ? o->above : o->below, bound, sizeof bound);
+    in_words(r, blamed, low ? o->below : o->above, found, sizeof found);
+    snprintf(expected, sizeof expected, "%s %s %s, which is %s", sp_key_name(sp_key_find(blamed)),
+             low ? "below" : "above", sp_key_name(sp_key_find(other)), bound);
+    sp_case_fault(r, blamed, sp_case_given(r, blamed) ? NULL : found, expected, NULL);
 }
 
 static void check_orders(struct sp_reader *r)
@@ -28,13 +56,12 @@ static void check_orders(struct sp_reader *r)
     const struct sp_design *d = r->design;
     const struct sp_fan *f = &d->duct.fan;
     const struct order orders[] = {
-        {"car.thermostat.opens", d->thermostat.opens, d->thermostat.full, false, "opens below full"},
-        {"car.engine.idle_speed", d->engine.idle_speed, d->engine.rated_speed, false,
-         "idle_speed below rated_speed"},
-        {"car.tank.air_space", d->tank.air_space, d->tank.volume, false, "air_space below volume"},
-        {"car.duct.fan.hub", f->hub, f->diameter, false, "hub below diameter"},
-        {"car.duct.fan.switch.off", f->off, f->on, false, "off below on"},
-        {"car.duct.fan.proportional.from", f->from, f->to, false, "from below to"},
+        {"car.thermostat.opens", "car.thermostat.full", d->thermostat.opens, d->thermostat.full},
+        {"car.engine.idle_speed", "car.engine.rated_speed", d->engine.idle_speed, d->engine.rated_speed},
+        {"car.tank.air_space", "car.tank.volume", d->tank.air_space, d->tank.volume},
+        {"car.duct.fan.hub", "car.duct.fan.diameter", f->hub, f->diameter},
+        {"car.duct.fan.switch.off", "car.duct.fan.switch.on", f->off, f->on},
+        {"car.duct.fan.proportional.from", "car.duct.fan.proportional.to", f->from, f->to},
     };
     for (size_t i = 0; i < sizeof orders / sizeof *orders; ++i)
         check_order(r, &orders[i]);
@@ -73,8 +100,10 @@ static void check_curve(struct sp_reader *r, const char *path, const struct sp_t
         char here[SP_PATH_MAX];
         if (!(t->cell[2 * i + 1] > t->cell[2 * i - 1])) continue;
         snprintf(here, sizeof here, "%.200s[%zu][1]", path, i);
-        sp_case_fault(r, here, NULL, "pressure that never rises with flow: with a stall dip one duct would have several "
-                      "flows; give the stable branch, carried on to shut-off", NULL);
+        sp_case_fault(r, here, NULL,
+                      "pressure that never rises with flow: with a stall dip one duct would have several "
+                      "flows; give the stable branch, carried on to shut-off",
+                      NULL);
     }
     double last = t->cell[2 * t->rows - 1];
     if (t->rows > 1 && !(last < t->cell[2 * t->rows - 3]))
@@ -101,7 +130,7 @@ static void check_heat_table(struct sp_reader *r)
     qsort(t->cell, t->rows, t->columns * sizeof *t->cell, by_speed_and_power);
     while (powers < t->rows && t->cell[3 * powers] == t->cell[0])
         ++powers;
-    bool full = t->rows % powers == 0 && powers > 1 && t->rows > powers;
+    bool full = powers > 1 && t->rows % powers == 0 && t->rows > powers;
     for (size_t i = 0; full && i < t->rows; ++i) {
         const double *row = &t->cell[3 * i], *first = &t->cell[3 * (i % powers)];
         const double *head = &t->cell[3 * (i - i % powers)];

@@ -23,8 +23,9 @@ static void unknown(struct sp_reader *r, const struct sp_json *node, const char 
         const char *name = sp_column_name((enum sp_column)c);
         if (sp_edit_distance(name, node->key) < sp_edit_distance(best, node->key)) best = name;
     }
+    bool near = sp_key_near(node->key, sp_edit_distance(best, node->key));
     snprintf(hint, sizeof hint, "nearest known key is \"%s\"", best);
-    sp_case_fault_at(r, node, path, "an unknown key", "a column of a trace", hint);
+    sp_case_fault_at(r, node, path, "an unknown key", "a column of a trace", near ? hint : NULL);
 }
 
 /* A text of its own for the format; NULL with a complaint when it will not do. */

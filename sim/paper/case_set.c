@@ -59,10 +59,9 @@ static bool unknown(struct sp_reader *r, const char *text, const char *path, con
 {
     char hint[200];
     const char *nearest = sp_key_nearest(group, name);
-    if (!*group) { /* the car's keys may stand without "car." */
-        const char *of_car = sp_key_nearest("car", name);
-        if (sp_edit_distance(of_car, name) < sp_edit_distance(nearest, name)) nearest = of_car;
-    }
+    const char *of_car = *group ? NULL : sp_key_nearest("car", name); /* may stand without "car." */
+    if (of_car && (!nearest || sp_edit_distance(of_car, name) < sp_edit_distance(nearest, name)))
+        nearest = of_car;
     snprintf(hint, sizeof hint, "nearest known key is \"%s\"", nearest ? nearest : "");
     return complain(r, text, path, "an unknown key", "a key of the case or car", nearest ? hint : NULL);
 }
@@ -79,6 +78,7 @@ static bool known(struct sp_reader *r, const char *text, const char *shown, cons
         memcpy(group, pattern, length + 1);
         if (inside) continue; /* within a table's rows, or a trace's columns */
         if (part.is_index) {
+            if (!row) return complain(r, text, shown, "an index", "a key before it", NULL);
             if (row->shape == SP_SHAPE_STEPS)
                 snprintf(pattern + length, sizeof pattern - length, "[]");
             else

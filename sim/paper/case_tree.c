@@ -120,6 +120,21 @@ static void apply(struct sp_reader *r, char *const *set, size_t sets, bool of_ca
     }
 }
 
+/* A car's file where a case belongs, which would be a complaint for each of its keys. */
+static bool is_car(struct sp_reader *r)
+{
+    static const char *const telling[] = {"body", "engine", "duct"};
+    const struct sp_json *key = NULL;
+    if (sp_json_member(r->tree, "car")) return false;
+    for (size_t i = 0; i < sizeof telling / sizeof *telling && !key; ++i)
+        key = sp_json_member(r->tree, telling[i]);
+    if (!key) return false;
+    struct sp_place at = {.file = key->file, .line = key->line, .path = key->key, .named_by = key->named_by};
+    sp_complain(r->complaints, &at, "a key of a car", "the keys of a case: air, car, drive, limits",
+                "this looks like a car; name it under \"car\"");
+    return true;
+}
+
 bool sp_case_load(struct sp_reader *r, const char *text, size_t size, char *const *set, size_t sets)
 {
     r->tree = text ? sp_json_parse(r->name, NULL, text, size, r->complaints)
@@ -127,6 +142,7 @@ bool sp_case_load(struct sp_reader *r, const char *text, size_t size, char *cons
     if (!r->tree) return false;
     if (r->tree->type != SP_JSON_OBJECT) return refuse(r, r->tree, NULL, "an object: the case");
     apply(r, set, sets, true);
+    if (is_car(r)) return false;
     r->no_car = !load_car(r);
     apply(r, set, sets, false);
     return true;

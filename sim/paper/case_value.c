@@ -225,7 +225,7 @@ static void read_three(struct sp_reader *r, const struct sp_key *row, const stru
                        const char *path, double *to)
 {
     const double thousand = 1000.0 / 60.0; /* rev/s */
-    double three[3];
+    double three[3] = {0};
     if (node->type != SP_JSON_ARRAY) {
         sp_case_fault_at(r, node, path, NULL, "a list of three pressures", NULL);
         return;

@@ -7,13 +7,24 @@
 static void walk_object(struct sp_reader *r, const struct sp_json *node, const char *pattern,
                         const char *path);
 
+static bool belongs_to_car(const char *key)
+{
+    char path[SP_PATH_MAX];
+    snprintf(path, sizeof path, "car.%.120s", key);
+    return sp_key_find(path) != NULL;
+}
+
 static void unknown(struct sp_reader *r, const struct sp_json *node, const char *pattern, const char *path)
 {
     char hint[120], expected[120];
     const char *nearest = sp_key_nearest(pattern, node->key);
-    snprintf(hint, sizeof hint, "nearest known key is \"%s\"", nearest ? nearest : "");
+    bool of_car = !*pattern && belongs_to_car(node->key);
+    if (of_car)
+        snprintf(hint, sizeof hint, "a key of the car: it belongs under \"car\"");
+    else
+        snprintf(hint, sizeof hint, "nearest known key is \"%s\"", nearest ? nearest : "");
     snprintf(expected, sizeof expected, "a known key of %s", *pattern ? pattern : "the case");
-    sp_case_fault_at(r, node, path, "an unknown key", expected, nearest ? hint : NULL);
+    sp_case_fault_at(r, node, path, "an unknown key", expected, of_car || nearest ? hint : NULL);
 }
 
 static void walk_steps(struct sp_reader *r, const struct sp_json *node, const char *path)

@@ -80,6 +80,12 @@ size_t sp_edit_distance(const char *a, const char *b)
     return row[nb];
 }
 
+bool sp_key_near(const char *written, size_t distance)
+{
+    size_t most = strlen(written) / 2;
+    return distance <= (most > 1 ? most : 1);
+}
+
 const char *sp_key_nearest(const char *group, const char *key)
 {
     const char *best = NULL;
@@ -92,7 +98,7 @@ const char *sp_key_nearest(const char *group, const char *key)
         best = sp_key_name(row);
         distance = d;
     }
-    return best;
+    return best && sp_key_near(key, distance) ? best : NULL;
 }
 
 /* ---- ranges ---------------------------------------------------------------------------------------- */

@@ -74,9 +74,12 @@ const char *sp_key_name(const struct sp_key *row);
 bool sp_key_of_step(const struct sp_key *row); /* stands in a drive step */
 bool sp_key_of_car(const struct sp_key *row);  /* stands in the car */
 
-/* Name of the known key nearest to `key` in the group at `group`, by edit distance; NULL if none. */
+/* Name of the known key nearest to `key` in the group at `group`, by edit distance; NULL if none is
+ * near. */
 const char *sp_key_nearest(const char *group, const char *key);
 size_t sp_edit_distance(const char *a, const char *b);
+/* Near enough to be meant: no more changes than half the letters that were written, or one. */
+bool sp_key_near(const char *written, size_t distance);
 
 /* Bounds of a range text in SI. `open` bounds are not allowed themselves. */
 struct sp_range {

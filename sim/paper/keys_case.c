@@ -48,8 +48,8 @@ const struct sp_key sp_keys_case[] = {
      RANGE("0 K to 150 K"), SAYS("least distance of the coolant to its boiling point, at any place"), OWN},
 
     {GROUP("solver"), OPTIONAL, SAYS("how exactly the drive is worked out")},
-    {QUANTITY("solver.tolerance", NUMBER, solver.tolerance), DEFAULT("1e-5"), RANGE("1e-10 to 1e-2"),
+    {QUANTITY("solver.tolerance", NUMBER, solver.tolerance), DEFAULT("1e-5"), RANGE("1e-10 to 1e-4"),
      SAYS("relative tolerance of the integration"), PRACTICE},
-    {QUANTITY("solver.merge", TIME, solver.merge), DEFAULT("0.5 s"), RANGE("0 s to 60 s"),
+    {QUANTITY("solver.merge", TIME, solver.merge), DEFAULT("0.3 s"), RANGE("0 s to 60 s"),
      SAYS("rows of a trace closer than this are merged into their mean"), PRACTICE},
     END_OF_KEYS};

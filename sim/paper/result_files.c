@@ -20,7 +20,7 @@ struct sp_report_files {
     struct sp_complaints *complaints;
     struct sp_file_out file[FILES];
     char *directory;
-    bool made; /* the directory was not there before */
+    bool *made; /* by length: whether so much of the directory's path was not there before */
 };
 
 /* ---- cells ----------------------------------------------------------------------------------------- */
@@ -72,6 +72,26 @@ static void put_heading(FILE *to)
     fputc('\n', to);
 }
 
+/* Channels whose smallest values are what the solver leaves of nil. */
+static bool has_noise(enum sp_channel c)
+{
+    switch (c) {
+    case SP_CH_AIR_FLOW:
+    case SP_CH_FACE_VELOCITY:
+    case SP_CH_EXIT_VELOCITY:
+    case SP_CH_FAN_SPEED:
+    case SP_CH_FAN_POWER:
+    case SP_CH_LOST:
+    case SP_CH_HEAT_IN:
+    case SP_CH_HEAT_OUT:
+    case SP_CH_HEAT_SKIN:
+    case SP_CH_DRAG:
+        return true;
+    default:
+        return false;
+    }
+}
+
 static bool put_row(void *context, const struct sp_sample *sample)
 {
     struct sp_report_files *f = context;
@@ -79,7 +99,8 @@ static bool put_row(void *context, const struct sp_sample *sample)
     for (int c = 0; c < SP_CHANNELS; ++c) {
         const struct sp_channel_info *info = sp_channel_at((enum sp_channel)c);
         if (c) fputc(',', to);
-        put_number(to, (sample->value[c] - info->offset) / info->scale);
+        double shown = (sample->value[c] - info->offset) / info->scale;
+        put_number(to, fabs(shown) < 1e-9 && has_noise((enum sp_channel)c) ? 0.0 : shown);
     }
     fputc('\n', to);
     if (!ferror(to)) return true;
@@ -90,24 +111,46 @@ static bool put_row(void *context, const struct sp_sample *sample)
 
 /* ---- directory ------------------------------------------------------------------------------------- */
 
-static bool make_directory(struct sp_report_files *f)
+/* One directory, when it is missing. */
+static bool make_one(struct sp_report_files *f, const char *path)
 {
     struct stat is;
-    struct sp_place at = {.file = f->directory};
-    f->made = mkdir(f->directory, 0777) == 0;
-    if (f->made) return true;
+    struct sp_place at = {.file = path};
+    bool there = stat(path, &is) == 0;
+    if (!there && mkdir(path, 0777) == 0) return f->made[strlen(path)] = true;
     int error = errno;
-    if (error == EEXIST && stat(f->directory, &is) == 0) {
-        if (S_ISDIR(is.st_mode)) return true;
-        sp_complain(f->complaints, &at, "something that is no directory", "a directory, or nothing yet",
-                    NULL);
-        return false;
-    }
-    char words[128];
-    if (strerror_r(error, words, sizeof words) != 0) snprintf(words, sizeof words, "error %d", error);
-    sp_complain(f->complaints, &at, words, "a place where a directory can be made, in one that is there",
-                NULL);
+    if (!there && error == EEXIST) there = stat(path, &is) == 0; /* someone else was quicker */
+    if (there && S_ISDIR(is.st_mode)) return true;
+    char words[128] = "something that is no directory";
+    if (!there && strerror_r(error, words, sizeof words) != 0)
+        snprintf(words, sizeof words, "error %d", error);
+    sp_complain(f->complaints, &at, words,
+                there ? "a directory, or nothing yet" : "a place where a directory can be made", NULL);
     return false;
+}
+
+/* The directory and those above it, from the top down. */
+static bool make_directory(struct sp_report_files *f)
+{
+    char *path = f->directory;
+    for (size_t n = 1; path[0] && path[n]; ++n) {
+        if (path[n] != '/' || path[n - 1] == '/') continue;
+        path[n] = '\0';
+        bool fine = make_one(f, path);
+        path[n] = '/';
+        if (!fine) return false;
+    }
+    return make_one(f, path);
+}
+
+/* Takes away what was made, from the bottom up; what someone has put something into stays. */
+static void remove_directory(struct sp_report_files *f)
+{
+    for (size_t n = strlen(f->directory); n > 0; --n) {
+        if (!f->made[n]) continue;
+        f->directory[n] = '\0';
+        rmdir(f->directory);
+    }
 }
 
 static bool begin_file(struct sp_report_files *f, int which, const char *name)
@@ -134,6 +177,7 @@ static void let_go(struct sp_report_files *f)
     for (int i = 0; i < FILES; ++i)
         sp_file_abandon(&f->file[i]);
     free(f->directory);
+    free(f->made);
     free(f);
 }
 
@@ -142,7 +186,7 @@ void sp_report_files_abandon(struct sp_report_files *f)
     if (!f) return;
     for (int i = 0; i < FILES; ++i)
         sp_file_abandon(&f->file[i]);
-    if (f->made) rmdir(f->directory); /* stays if someone has put something there */
+    remove_directory(f);
     let_go(f);
 }
 
@@ -151,9 +195,12 @@ struct sp_report_files *sp_report_files_open(const char *directory, struct sp_co
     struct sp_report_files *f = calloc(1, sizeof *f);
     size_t size = strlen(directory) + 1;
     char *copy = f ? malloc(size) : NULL;
-    if (!copy) {
+    if (f) f->made = calloc(size, sizeof *f->made);
+    if (!copy || !f->made) {
         struct sp_place at = {.file = directory};
         sp_complain(complaints, &at, "too little memory", "memory to write there", NULL);
+        free(copy);
+        if (f) free(f->made);
         free(f);
         return NULL;
     }

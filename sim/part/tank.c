@@ -15,9 +15,12 @@ struct sp_tank_state sp_tank_state(const struct sp_tank *t, const struct sp_tank
     double root = sqrt(base * base + 4.0 * t->compliance * nRT);
     double x = base >= 0.0 ? 2.0 * nRT / (base + root) : (root - base) / (2.0 * t->compliance);
     if (base == 0.0 && nRT == 0.0) x = 0.0;
-    /* A cap that stands open passes whatever steam boils: the pressure rises a little over its setting. */
-    double most = in->ambient + t->cap + fmax(open_rise * t->cap, least_rise);
-    return (struct sp_tank_state){fmin(in->vapour + x, most), base + t->compliance * x};
+    return (struct sp_tank_state){in->vapour + x, base + t->compliance * x};
+}
+
+double sp_tank_most(const struct sp_tank *t, double ambient)
+{
+    return ambient + t->cap + fmax(open_rise * t->cap, least_rise);
 }
 
 double sp_tank_filling(const struct sp_tank *t, double vapour, double p)

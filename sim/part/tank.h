@@ -21,9 +21,13 @@ struct sp_tank_state {
     double gas;      /* m3 */
 };
 
-/* Pressure of the trapped gas, at most a tenth of the cap's setting (5 kPa at least) above it: p = n R T / V_g + p_v, V_g = system + compliance (p - ambient) - liquid;
+/* Pressure of the trapped gas: p = n R T / V_g + p_v, V_g = system + compliance (p - ambient) - liquid;
  * the root of a quadratic. compliance > 0. */
 struct sp_tank_state sp_tank_state(const struct sp_tank *t, const struct sp_tank_inputs *in);
+
+/* The most [Pa] that can stand in the tank: an open cap passes whatever steam boils, at a tenth of its setting (5 kPa
+ * at least) above it. Common practice. */
+double sp_tank_most(const struct sp_tank *t, double ambient);
 
 /* Air [mol] that fills the air space at the filling temperature and ambient pressure `p`. */
 double sp_tank_filling(const struct sp_tank *t, double vapour, double p);

@@ -5,13 +5,13 @@
     python3 tests/faults/run.py [--at FOLDER] [NAME...]
 
 Each fault of list.py is one edit in a copy of the checkout. The copy is built once; then for every fault: edit,
-build, ask the tests of tests/outside until the first turns red, take the edit back. Names choose faults; without
-names all are planted. --at keeps the copy and its build in FOLDER for the next call.
+build, ask the tests of tests/outside until the first turns red, take the edit back. Names choose faults;
+without names all are planted. --at keeps the copy and its build in FOLDER for the next call.
 
-First all outside tests must be green without a fault: one that is not is told and left out. SP_DRIVES is 60 unless
-set, for the random drives; the written-again model (twin.py) goes through one case unless SP_TWIN_CASES is set.
-The last line reads "N passed, N failed, N skipped". 0: every fault was caught; 1: some survived or could not be
-planted; 2: it could not begin.
+First all outside tests must be green without a fault: one that is not is told, left out and counted as failed.
+SP_DRIVES is 60 unless set, for the random drives; the model written again (twin.py) goes through one case unless
+SP_TWIN_CASES is set. The last line reads "N passed, N failed, N skipped". 0: every fault was caught; 1: some
+survived or could not be planted; 2: it could not begin.
 """
 import os
 import re
@@ -28,7 +28,8 @@ from list import FAULTS  # noqa: E402
 
 SCRIPTS = ("three_cars", "practice_effects", "twin")  # those that ask the command alone
 LIMIT = 300  # seconds for one test
-PYTHON = "/usr/bin/python3" if os.access("/usr/bin/python3", os.X_OK) else sys.executable  # the one with SciPy
+SYSTEM = "/usr/bin/python3"  # the one with SciPy
+PYTHON = SYSTEM if os.access(SYSTEM, os.X_OK) else sys.executable
 OK, RED = "green", "red"
 
 
@@ -85,8 +86,8 @@ class Copy:
         shutil.copymode(here, there)
 
     def configure(self):
-        words = ["cmake", "-S", self.source, "-B", self.build, "-DSWIRLPOT_TESTS=ON", "-DCMAKE_BUILD_TYPE=None",
-                 "-DCMAKE_C_FLAGS=-O1 -w", "-DCMAKE_C_COMPILER=gcc"]  # -w: a fault may leave something unused
+        words = ["cmake", "-S", self.source, "-B", self.build, "-DSWIRLPOT_TESTS=ON", "-DCMAKE_C_COMPILER=gcc",
+                 "-DCMAKE_BUILD_TYPE=None", "-DCMAKE_C_FLAGS=-O1 -w"]  # -w: a fault may leave something unused
         return self.quiet(words)
 
     def make(self, target):
@@ -114,8 +115,8 @@ class Copy:
         if not script:
             words = [os.path.join(self.build, "tests", "test_" + test)]
         try:
-            done = subprocess.run(words, capture_output=True, text=True, errors="replace", check=False, env=self.env,
-                                  cwd=self.source, timeout=LIMIT)
+            done = subprocess.run(words, capture_output=True, text=True, errors="replace", check=False,
+                                  env=self.env, cwd=self.source, timeout=LIMIT)
         except subprocess.TimeoutExpired:
             return RED, f"no end in {LIMIT} s"
         return (RED, first_red(done)) if done.returncode else (OK, "")
@@ -132,7 +133,7 @@ def first_red(done):
 
 
 def plant(copy, fault):
-    """The file with the fault in it, and what stood there before. Blanks and line breaks in it do not matter."""
+    """The file with the fault in it, and what stood there before. Line breaks in between do not matter."""
     path = os.path.join(copy.source, fault.file)
     before = read(path)
     pattern = r"\s*".join(re.escape(t) for t in re.findall(r"\w+|[^\w\s]", fault.old))

@@ -306,7 +306,8 @@ int main(void)
         cmocka_unit_test(fan_at_rest_and_with_ram), cmocka_unit_test(hot_fan),
         cmocka_unit_test(windmilling_fan),      cmocka_unit_test(heated_closed_forms),
         cmocka_unit_test(heating_thins_the_air), cmocka_unit_test(drag),
-        cmocka_unit_test(drag_reconciles_with_losses), cmocka_unit_test(drag_from_the_far_wake), cmocka_unit_test(compressible_series),
+        cmocka_unit_test(drag_reconciles_with_losses),
+        cmocka_unit_test(drag_from_the_far_wake), cmocka_unit_test(compressible_series),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -440,10 +440,6 @@ static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *
 {
     struct outer o = outer_of(x, in);
     double way = s->mass_flow >= 0.0 ? 1.0 : -1.0;
-    /* A fan behind the core stalls against a wind from behind over a band of winds: cold air from behind
-     * gives it more pressure than hot air from the core. Within the band the flow is nil and nothing
-     * balances. */
-    if (fabs(s->mass_flow) < 1e-9) return;
     double lost =
         l->lip + l->screen + l->diffuser + l->core + l->heating + l->exit + (way > 0.0 ? l->exit_head : 0.0);
     double left = o.front - o.back - l->fan - way * lost;
@@ -451,7 +447,7 @@ static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *
     expect(x, fabs(left) <= 1e-9 * size + 1e-9, "balance %g Pa of %g, m %g kg/s at %g m/s", left, size,
            s->mass_flow, in->speed);
     /* Stations in the order of the flow; between them total pressure falls, but for the fan's own place. */
-    int fan_at = x->d.duct.fan.before_core ? 2 : 3;
+    int fan_at = x->d.duct.fan.before_core ? 1 : 3;
     double give = 1e-9 * in->pressure;
     for (int i = 1; i < SP_STATIONS - 1; ++i) {
         double fall = way * (st[i].total_pressure - st[i + 1].total_pressure);

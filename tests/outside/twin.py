@@ -80,7 +80,7 @@ def largest(tally, what, mine, theirs, at, limit, shift, keep=None, relative=Fal
 
     A threshold crossed a moment earlier shows in all that moves fast just then.
     """
-    size = max(float(np.max(np.abs(mine))), 1e-6) if relative else 1.0
+    size = max(float(np.max(np.abs(mine))), 1e-3) if relative else 1.0
     steps = np.abs(np.diff(mine) / np.diff(at))
     steep = np.maximum(np.append(steps, 0.0), np.insert(steps, 0, 0.0))
     gap = np.maximum(np.abs(mine - theirs) - shift * steep, 0.0) / size
@@ -179,7 +179,7 @@ def duct_gaps(point, d, air):
         theirs = point
         for part in key.split("."):
             theirs = theirs[int(part) if part.isdigit() else part]
-        yield key, theirs, value
+        yield key, math.inf if theirs is None else theirs, value
 
 
 def compare_ducts(tally, program):
@@ -201,6 +201,8 @@ def compare_ducts(tally, program):
                     speeds = [0.0, 0.5, 2.0, 5.0, 9.0, 14.0, 20.0, 30.0, 45.0, 60.0]
                     if heat > 0:
                         speeds = [v for v in speeds if flows(duct, case["air"], v + wind, fan == "on", heat)]
+                    if not speeds:
+                        continue
                     arguments = [a for v in speeds for a in ("--speed", f"{v} m/s")]
                     if heat > 0:
                         arguments += ["--heat", f"{heat:g} W"]

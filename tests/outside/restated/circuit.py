@@ -151,7 +151,8 @@ class Tank:
         energy = max(air, 0.0) * R_MOL * t_tank
         s = math.sqrt(b * b + 4 * beta * energy)
         x = 2 * energy / (b + s) if b >= 0 else (s - b) / (2 * beta)
-        return vapour + x, b + beta * x
+        cap = self.t["cap"]
+        return min(vapour + x, ambient + cap + max(0.1 * cap, 5000.0)), b + beta * x
 
     def start(self, temperatures, ambient):
         """Moles of air and volume lost when the drive begins."""

@@ -5,7 +5,7 @@ import math
 import numpy as np
 from scipy.optimize import least_squares
 
-from .fluids import CP_DRY, Steffen, air_film, air_viscosity
+from .fluids import CP_DRY, Steffen, air_film, sutherland
 
 
 class Fins:
@@ -36,6 +36,7 @@ class Fins:
             * (fp / ll) ** (-0.7931 * tp / gap) * (tp / td) ** -0.0446 \
             * math.log(1.2 + (lp / fp) ** 1.4) ** -3.553 * theta ** -0.477
         self.at_130, self.at_230 = self._f_low(130.0), self._f_high(230.0)
+        self.turn, self.top = self._turn()
         self.j0 = (theta / 90) ** 0.27 * (fp / lp) ** -0.14 * (length / lp) ** -0.29 * (depth / lp) ** -0.23 \
             * (ll / lp) ** 0.68 * (tp / lp) ** -0.28 * (thick / lp) ** -0.05
         self.fin_length = length / 2 - thick
@@ -49,7 +50,20 @@ class Fins:
     def _f_high(self, re):
         return self.high * re ** self.high_power * math.log(0.3 * re) ** -2.966
 
+    def _turn(self):
+        """Reynolds number at which f Re^2 would begin to fall, and f Re^2 there."""
+        steps = [130 + 0.25 * i for i in range(401)]
+        heights = [re * self._blended(re) for re in steps]
+        for re, here, there in zip(steps, heights, heights[1:]):
+            if here > there:
+                return re, here
+        return math.inf, 0.0
+
     def friction_re(self, re):
+        blended = self._blended(re)
+        return max(blended, self.top / re) if re > self.turn else blended
+
+    def _blended(self, re):
         if re <= 50:
             return 50 * self._f_low(50.0)
         if re <= 130:
@@ -62,13 +76,13 @@ class Fins:
     def drops(self, flux, t_in, rho_in, t_out, rho_out):
         """dp_core and dp_heating."""
         g, sq = flux / self.sigma, self.sigma ** 2
-        mu = air_viscosity((t_in + t_out) / 2)
+        mu = sutherland((t_in + t_out) / 2)
         u = (1 / rho_in + 1 / rho_out) / 2
         core = g * g / 2 * (self.contraction + 1 - sq) / rho_in \
             + self.friction_re(g * self.pitch / mu) * g * mu / (2 * self.pitch) * self.area_ratio * u \
             - g * g / 2 * (1 - sq - self.expansion) / rho_out
         d = 1 / rho_out - 1 / rho_in
-        return core, g * g * d - flux * flux / 2 * d
+        return core + (g * g - flux * flux) / 2 * d, g * g / 2 * d
 
     def conductance(self, flux, film):
         g = flux / self.sigma
@@ -85,7 +99,7 @@ class GivenDrop:
     def __init__(self, core):
         p = self.p = core["pressure_drop"]
         self.rho = p.get("at_density", 1.2)
-        self.at = air_viscosity(p["at_temperature"]) if "at_temperature" in p else None
+        self.at = sutherland(p["at_temperature"]) if "at_temperature" in p else None
         self.sigma = core.get("free_area_ratio", 1.0)
         if "table" in p:
             rows = p["table"]
@@ -101,7 +115,7 @@ class GivenDrop:
         return self.line(v) if v <= end else top * (v / end) ** self.power
 
     def drops(self, flux, t_in, rho_in, t_out, rho_out):
-        r = air_viscosity((t_in + t_out) / 2) / self.at if self.at else 1.0
+        r = sutherland((t_in + t_out) / 2) / self.at if self.at else 1.0
         u, d = (1 / rho_in + 1 / rho_out) / 2, 1 / rho_out - 1 / rho_in
         if "coefficient" in self.p:
             core = self.p["coefficient"] * flux ** 2 / 2 * u

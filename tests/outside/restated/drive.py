@@ -69,7 +69,7 @@ class EngineHeat:
         heat, slope = self._law(max(power, 0.0), turns)
         fade = 1 - ramp(y, 1.2, 1.5)
         s = min(max(max(x, 0.0) / 0.10, 0.0), 1.0)
-        heat += self.idle_extra * fade * (1 - ramp(max(x, 0.0), 0.0, 0.10))
+        heat = max(heat + self.idle_extra * min(y, 1.0) * fade * (1 - ramp(max(x, 0.0), 0.0, 0.10)), 0.0)
         slope -= self.idle_extra * fade * 6 * s * (1 - s) / (0.10 * self.rated)
         cut = ramp(x, 0.0, -0.02) * ramp(y, 1.2, 1.5)
         return (1 - cut) * heat, cut * self.e["overrun_share"] * self.motoring(turns), (1 - cut) * slope

@@ -2,6 +2,8 @@
 """Sections 4 and 6: the air's way through the car, with its fan."""
 import math
 
+from scipy.optimize import brentq
+
 from .fluids import PressureCurve
 from .roots import falling_root
 
@@ -30,8 +32,9 @@ class Duct:
     def fan_pressure(self, m, n, rho, rho_out):
         if not self.fan:
             return 0.0
-        before = self.fan["before"] == "core"
-        here = rho if before == (m >= 0) else rho_out
+        ahead, behind = (rho, rho_out) if self.fan["before"] == "core" else (rho_out, rho)
+        way = min(max(m / (0.02 * rho * self.face), -1.0), 1.0)
+        here = (1 + way) / 2 * ahead + (1 - way) / 2 * behind
         flow = m / here / self.fan["count"]
         head = here / 2 * (m / here / self.annulus) ** 2
         raw = here / 1.2 * self.curve(n, flow)
@@ -86,6 +89,17 @@ class Duct:
                 + (self.exit_loss + 0.5) * head(rho, self.exit)
         return out
 
+    @staticmethod
+    def _heated(surplus, cold):
+        """The root below the unheated flow. Given heat can choke the flow altogether: then there is none."""
+        sign, high = math.copysign(1, cold), abs(cold) * 1.0001
+        low = high * 0.97
+        while low > 1e-5 * abs(cold):
+            if sign * surplus(sign * low) > 0:
+                return sign * brentq(lambda x: sign * surplus(sign * x), low, high, xtol=1e-300, rtol=1e-14)
+            high, low = low, low * 0.97
+        return None
+
     def solve(self, v_air, wake, t_air, pressure, n, wall=None, heat=0.0):
         """Mass flow and what hangs on it."""
         v = v_air * math.sqrt(max(wake, 0.0))
@@ -94,12 +108,14 @@ class Duct:
         def surplus(m):
             return self.terms(m, v, eta, exit_cp, rho, t_air, n, wall, heat)["sum"]
 
-        given = wall is None and heat > 0
-        still = surplus(1e-100) if given else (eta - exit_cp) * rho * v * v / 2 + self.fan_pressure(0.0, n, rho, rho)
-        if still == 0 and not given:
+        still = (eta - exit_cp) * rho * v * v / 2 + self.fan_pressure(0.0, n, rho, rho)
+        if wall is None and heat > 0:
+            cold = self.solve(v_air, wake, t_air, pressure, n)["m"]
+            m = self._heated(surplus, cold)
+            if m is None:
+                return None
+        elif still == 0:
             m = 0.0
-        elif given and still < 0 < surplus(-1e-100):
-            return None  # heat chokes what little air there would be, from either side
         elif still > 0:
             m = self.guess = falling_root(surplus, self.guess, 1.0)
         else:
@@ -107,7 +123,8 @@ class Duct:
         tau, e = self.tau(m, t_air, wall, heat)
         behind = rho / tau if m >= 0 else rho
         v_exit = m / (behind * self.exit)
-        drag = m * (v - v_exit * self.cos) - exit_cp * rho * v * v / 2 * self.exit * self.cos
+        drag = m * (v - v_exit * self.cos) if m >= 0 else -m * (v - m * tau / (rho * self.inlet))
+        drag -= exit_cp * rho * v * v / 2 * self.exit * self.cos
         warm = abs(m) * self.cp * e
         return {"m": m, "tau": tau, "rho": rho, "hot": rho / tau, "e": e, "warm": warm, "v": v, "q": rho * v * v / 2,
                 "face": m / (rho * self.face), "v_exit": v_exit, "drag": drag, "eta": eta, "exit_cp": exit_cp}

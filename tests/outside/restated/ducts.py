@@ -1,5 +1,7 @@
 # SPDX-License-Identifier: GPL-3.0-or-later
 """What `swirlpot duct` reports, worked out again (section 4, results of the air path)."""
+import math
+
 from .core import Fins, GivenDrop
 from .duct import Duct
 from .fluids import moist_air
@@ -13,8 +15,6 @@ def car_duct(case):
 
 def flows(duct, air, speed, fan, heat):
     """Whether there is a steady flow at all."""
-    if speed == 0 and not fan:
-        return False
     return duct.solve(speed, 1.0, air["ambient"], air["pressure"], 1.0 if fan else 0.0, None, heat) is not None
 
 
@@ -30,11 +30,13 @@ def stations(duct, air, point):
     if m < 0:
         return out
     total = [q, s["eta"] * q - terms["lip"]]
-    total.append(total[1] - terms["screen"] - terms["diffuser"])
     before = terms["fan"] if duct.fan and duct.fan["before"] == "core" else 0.0
-    total.append(total[2] - terms["core"] - terms["heating"] + before)
+    total.append(total[1] - terms["screen"] - terms["diffuser"] + before)
+    total.append(total[2] - terms["core"] - terms["heating"])
     total.append(total[3] + terms["fan"] - before)
     total.append(total[4] - terms["exit"])
+    if total[5] > 0:
+        out["wake_drag_N"] = m * (s["v"] - math.sqrt(2 * total[5] / hot))
     areas = [None, duct.inlet, duct.face, duct.face, duct.face, duct.exit]
     for i, high in enumerate(total):
         density = rho if i < 3 else hot
@@ -51,9 +53,9 @@ def scale(key, point):
     """What a difference is taken relative to: pressures to the largest at play, drag to its own two parts."""
     if "Pa" in key:
         return 1.0 + max(abs(v) for v in point["losses_Pa"].values())
-    if key == "internal_drag_N":
+    if "drag" in key:
         return 1e-3 + abs(point["mass_flow_kg_s"]) * (abs(point["air_speed_m_s"]) + abs(point["exit_velocity_m_s"]))
     value = point
     for part in key.split("."):
         value = value[int(part) if part.isdigit() else part]
-    return max(abs(value), 1e-12)
+    return max(abs(value), 1e-6)

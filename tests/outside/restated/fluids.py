@@ -28,9 +28,9 @@ def moist_air(temperature, pressure, humidity):
     return (1 - x) * R_DRY + x * R_VAPOUR, (1 - x) * CP_DRY + x * CP_VAPOUR
 
 
-def air_viscosity(temperature):
-    t = min(max(temperature, 240.0), 420.0)
-    return 1.4923e-6 * t * math.sqrt(t) / (t + 118.06)
+def sutherland(temperature):
+    """Viscosity for pressure drops."""
+    return 1.458e-6 * temperature * math.sqrt(temperature) / (temperature + 110.4)
 
 
 def air_film(temperature):

@@ -153,8 +153,9 @@ class Plant:
         skin_metal, skin_hoses, skin_tank = self.skins(y, ch)
         flow[:6] -= skin_hoses
         cells = y[core:plate]
-        b = self.inner(m_r, self.coolant, float(np.add.reduce(cells)) / n) / n
-        w = weight(b / (m_r * cap[8])) if m_r > 0 else 0.0
+        middle = float(np.add.reduce(cells)) / n
+        b = self.inner(m_r, self.coolant, middle) / n
+        w = weight(b / (m_r * self.coolant.capacity(middle))) if m_r > 0 else 0.0
         before = np.empty(n)
         before[0], before[1:] = y[OUT + 2], cells[:-1]
         q = b * (w * before + (1 - w) * cells - y[plate:sums])
