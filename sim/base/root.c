@@ -27,7 +27,7 @@ static double inside(const struct bracket *b, double from, double step)
 
 static bool close_enough(double move, double x, double step)
 {
-    return fabs(move) <= 1e-9 * fabs(x) + 1e-12 * step;
+    return fabs(move) <= 1e-11 * fabs(x) + 1e-13 * step;
 }
 
 /* The fast one. Leaves what it learnt in the bracket when it gives up. */

@@ -15,7 +15,7 @@ struct sp_guess {
 typedef double (*sp_falling)(double x, const void *context);
 
 /* Finds x with f(x) = 0 for a function that falls over all x from plus to minus. `step` > 0 is a length
- * typical of x, the first step where the slope is unknown. The secant stops when its step is below 1e-9 |x|
+ * typical of x, the first step where the slope is unknown. The secant stops when its step is below 1e-11 |x|
  * (the next error is far smaller), Brent at 1e-13 |x| + 1e-15 step. SP_NUMERICS when no sign change is found or f is not finite. */
 enum sp_status sp_root_falling(sp_falling f, const void *context, double step, struct sp_guess *guess);
 

@@ -48,6 +48,22 @@ static bool read_question(struct sp_units *u, const struct sp_arguments *a, stru
     return false;
 }
 
+/* The model takes the air's density as constant ahead of the core and again behind it, and the core's laws are
+ * fitted to air that is not much hotter. */
+static void doubt(struct question *q, const struct sp_duct_point *p)
+{
+    const double most_ratio = 1.4, hottest = 473.15 /* K */;
+    double ratio = p->state.temperature_ratio, out = p->in.temperature * ratio;
+    char found[128];
+    if (!(ratio > most_ratio || out > hottest)) return;
+    struct sp_place at = {.path = "--heat"};
+    snprintf(found, sizeof found, "air at %.4g degC behind the core at %.6g m/s, %.3g times as hot as before it",
+             out - SP_ZERO_C, p->speed, ratio);
+    sp_complain(&q->cautions, &at, found,
+                "at most 200 degC and 1.4 times the absolute temperature: this is outside the model's range",
+                NULL);
+}
+
 static enum sp_status solve_all(const struct sp_design *d, const struct sp_duct *duct, struct question *q,
                                 struct sp_duct_point *point)
 {
@@ -55,7 +71,10 @@ static enum sp_status solve_all(const struct sp_design *d, const struct sp_duct 
         char found[80];
         enum sp_status status =
             sp_duct_point_solve(duct, &d->air, q->speed[i], q->heat, q->fan ? 1.0 : 0.0, &point[i]);
-        if (status == SP_OK) continue;
+        if (status == SP_OK) {
+            doubt(q, &point[i]);
+            continue;
+        }
         snprintf(found, sizeof found, "heat at nil flow, speed %.6g m/s", q->speed[i]);
         if (status == SP_INPUT)
             complain(q, "--heat", found, "air that moves: a speed, or a fan that runs");

@@ -47,9 +47,10 @@ struct loss {
 static void list_losses(const struct sp_duct_point *p, struct loss out[LOSSES])
 {
     const struct sp_duct_losses *l = &p->losses;
-    double fan = p->state.mass_flow < 0.0 ? -l->fan : l->fan; /* what helps forwards hinders backwards */
+    bool back = p->state.mass_flow < 0.0;
+    double fan = back ? -l->fan : l->fan; /* what helps forwards hinders backwards */
     const struct loss all[LOSSES] = {{"unrecovered", "not recovered at the inlet", l->unrecovered},
-                                     {"lip", "inlet lip", l->lip},
+                                     {"lip", back ? "jet out of the inlet" : "inlet lip", l->lip},
                                      {"screen", "screen", l->screen},
                                      {"diffuser", "diffuser", l->diffuser},
                                      {"core", "core", l->core},
@@ -96,13 +97,14 @@ static void print_losses(const struct sp_duct_point *p, FILE *to)
 {
     struct loss loss[LOSSES];
     double head = p->station[0].total_pressure - p->station[0].static_pressure, sum = 0.0;
+    bool back = p->state.mass_flow < 0.0; /* then the air never comes from the free stream ahead */
     list_losses(p, loss);
     fprintf(to, "\n  %-38s%11s%13s\n", "where each pascal goes", "Pa", "share of q");
-    for (int i = 0; i < LOSSES; ++i) {
+    for (int i = back ? 1 : 0; i < LOSSES; ++i) {
         sum += loss[i].pascal;
         if (loss[i].pascal != 0.0) print_loss(loss[i].text, loss[i].pascal, head, to);
     }
-    if (p->state.mass_flow >= 0.0) print_loss("free stream (total) to exit (static)", sum, head, to);
+    print_loss(back ? "exit (static) to inlet (total)" : "free stream (total) to exit (static)", sum, head, to);
 }
 
 static void print_sums(const struct sp_duct_point *p, FILE *to)

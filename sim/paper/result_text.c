@@ -17,7 +17,7 @@ struct judged {
     double limit, came_to, left;
 };
 
-enum { LIMITS = 4 };
+enum { LIMITS = 4, BOIL_MARGIN = 3 };
 
 static void list_limits(const struct sp_report *r, struct judged out[LIMITS])
 {
@@ -34,6 +34,20 @@ static void list_limits(const struct sp_report *r, struct judged out[LIMITS])
 
 /* ---- first line ------------------------------------------------------------------------------------ */
 
+static void say_boil_margin(const struct telling *t, const char *verdict, const struct judged *j)
+{
+    struct sp_words limit = sp_words_limit(j->limit, true), came = sp_words_kelvin(j->came_to, t->exact);
+    if (j->left >= 0.0)
+        sp_say(t->to, 0, "", "%s: coolant stays %s short of boiling, %s more than the %s asked for.", verdict,
+               came.text, sp_words_kelvin(j->left, t->exact).text, limit.text);
+    else if (j->came_to >= 0.0)
+        sp_say(t->to, 0, "", "%s: coolant comes within %s of boiling; %s asked for.", verdict, came.text,
+               limit.text);
+    else
+        sp_say(t->to, 0, "", "%s: coolant goes %s past boiling; %s asked for.", verdict, came.text,
+               limit.text);
+}
+
 static void say_headline(const struct telling *t)
 {
     struct judged all[LIMITS];
@@ -43,15 +57,12 @@ static void say_headline(const struct telling *t)
     for (int i = 0; i < LIMITS; ++i) {
         const struct judged *j = &all[i];
         if (!out->limit || strcmp(out->limit, j->key)) continue;
-        struct sp_words left = sp_words_kelvin(j->left, t->exact),
-                        came = sp_words_kelvin(j->came_to, t->exact);
-        if (i < LIMITS - 1)
-            sp_say(t->to, 0, "", "%s: %s peaks at %s, %s %s its limit of %s.", verdict, j->what,
-                   sp_words_degrees(j->came_to, t->exact).text, left.text, j->left < 0.0 ? "over" : "under",
-                   sp_words_degrees(j->limit, t->exact).text);
+        if (i == BOIL_MARGIN)
+            say_boil_margin(t, verdict, j);
         else
-            sp_say(t->to, 0, "", "%s: coolant comes %s %s boiling, %s %s than asked for.", verdict, came.text,
-                   j->came_to < 0.0 ? "past" : "near", left.text, j->left < 0.0 ? "less" : "more");
+            sp_say(t->to, 0, "", "%s: %s peaks at %s, %s %s its limit of %s.", verdict, j->what,
+                   sp_words_degrees(j->came_to, t->exact).text, sp_words_kelvin(j->left, t->exact).text,
+                   j->left < 0.0 ? "over" : "under", sp_words_limit(j->limit, false).text);
         return;
     }
     sp_say(t->to, 0, "", "%s.", verdict);
@@ -87,12 +98,19 @@ static void say_limits(const struct telling *t)
             snprintf(missing + used, sizeof missing - used, "%s%s", used ? ", " : "", name[i]);
             continue;
         }
-        struct sp_words limit =
-            i == LIMITS - 1 ? sp_words_kelvin(j->limit, t->exact) : sp_words_degrees(j->limit, t->exact);
+        struct sp_words limit = sp_words_limit(j->limit, i == BOIL_MARGIN);
+        struct sp_words left = sp_words_kelvin(j->left, t->exact);
         bool binds = t->report->result->limit && !strcmp(t->report->result->limit, j->key);
-        sp_say(t->to, SP_LABEL_WIDTH, label, "%s %s: %s %s%s", name[i], limit.text,
-               sp_words_kelvin(j->left, t->exact).text, j->left < 0.0 ? "beyond it" : "left",
-               binds ? ", the one that binds" : "");
+        const char *end = binds ? ", the one that binds" : "";
+        if (i != BOIL_MARGIN)
+            sp_say(t->to, SP_LABEL_WIDTH, label, "%s %s: %s %s%s", name[i], limit.text, left.text,
+                   j->left < 0.0 ? "beyond it" : "left", end);
+        else if (j->left < 0.0)
+            sp_say(t->to, SP_LABEL_WIDTH, label, "%s asked for %s: short by %s%s", name[i], limit.text,
+                   left.text, end);
+        else
+            sp_say(t->to, SP_LABEL_WIDTH, label, "%s asked for %s: %s to spare%s", name[i], limit.text,
+                   left.text, end);
         label = "";
     }
     if (*missing) sp_say(t->to, SP_LABEL_WIDTH, label, "none given for %s", missing);
@@ -197,18 +215,63 @@ static void say_measured(const struct telling *t)
            sp_words_time(out->measured.measured_time_to_85, t->exact).text);
 }
 
+/* Whether a state holds before the first event: its end comes first, or it never changes and held at all. */
+static bool held_before(const struct sp_result *r, enum sp_event_kind begins, enum sp_event_kind ends, bool held)
+{
+    for (size_t i = 0; i < r->events; ++i)
+        if (r->event[i].kind == begins || r->event[i].kind == ends) return r->event[i].kind == ends;
+    return held;
+}
+
+/* Time with the thermostat fully open and the engine off, from the events. */
+static double full_and_off(const struct sp_result *r)
+{
+    bool full = held_before(r, SP_EV_THERMOSTAT_FULL, SP_EV_THERMOSTAT_REGULATES, r->time_above_band > 0.0);
+    bool runs = held_before(r, SP_EV_ENGINE_STARTS, SP_EV_ENGINE_STOPS, false);
+    double since = 0.0, sum = 0.0;
+    for (size_t i = 0; i <= r->events; ++i) {
+        double now = i < r->events ? r->event[i].time : r->duration;
+        if (full && !runs) sum += now - since;
+        since = now;
+        if (i == r->events) break;
+        enum sp_event_kind kind = r->event[i].kind;
+        if (kind == SP_EV_THERMOSTAT_FULL || kind == SP_EV_THERMOSTAT_REGULATES)
+            full = kind == SP_EV_THERMOSTAT_FULL;
+        if (kind == SP_EV_ENGINE_STARTS || kind == SP_EV_ENGINE_STOPS) runs = kind == SP_EV_ENGINE_STARTS;
+    }
+    return sum;
+}
+
+static bool ever_ran(const struct sp_result *r)
+{
+    for (size_t i = 0; i < r->events; ++i)
+        if (r->event[i].kind == SP_EV_ENGINE_STARTS) return true;
+    return false;
+}
+
+static void say_thermostat(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    double off = full_and_off(out);
+    char rest[80] = "";
+    if (off >= 0.5) snprintf(rest, sizeof rest, ", %.40s of it with the engine off", sp_words_time(off, t->exact).text);
+    if (t->report->design->thermostat.none)
+        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "none fitted");
+    else if (out->time_above_band > 0.0)
+        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "fully open for %s%s",
+               sp_words_time(out->time_above_band, t->exact).text, rest);
+    else if (ever_ran(out))
+        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "regulates all the way, never fully open");
+    else
+        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "never fully open; the engine never runs");
+}
+
 static void say_drive(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
     sp_say(t->to, SP_LABEL_WIDTH, "Drive", "%s, %s", sp_words_time(out->duration, t->exact).text,
            sp_words_distance(out->distance, t->exact).text);
-    if (t->report->design->thermostat.none)
-        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "none");
-    else if (out->time_above_band > 0.0)
-        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "fully open for %s: nothing left to regulate with",
-               sp_words_time(out->time_above_band, t->exact).text);
-    else
-        sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "regulates all the way, never fully open");
+    say_thermostat(t);
 }
 
 void sp_report_text(const struct sp_report *r, bool exact, FILE *to)

@@ -39,6 +39,11 @@ struct sp_words sp_words_kelvin(double difference, bool exact)
     return amount > 0.0 && amount < 0.5 ? words("less than 1 K") : words("%.0f K", whole(amount));
 }
 
+struct sp_words sp_words_limit(double limit, bool difference)
+{
+    return difference ? words("%.6g K", limit) : words("%.6g degC", limit - SP_ZERO_C + 0.0);
+}
+
 struct sp_words sp_words_time(double seconds, bool exact)
 {
     double s = whole(seconds);

@@ -13,6 +13,8 @@ struct sp_words {
 /* `exact`: more digits instead of whole degrees, minutes and so on. */
 struct sp_words sp_words_degrees(double kelvin, bool exact);    /* "105 degC" */
 struct sp_words sp_words_kelvin(double difference, bool exact); /* "5 K", "less than 1 K"; its amount only */
+/* A limit as exactly as it was given, to six digits: "105.2 degC", "12 K". */
+struct sp_words sp_words_limit(double limit, bool difference);
 struct sp_words sp_words_time(double seconds, bool exact);      /* "12 min 31 s" */
 struct sp_words sp_words_distance(double metres, bool exact);   /* "3.42 km" */
 struct sp_words sp_words_energy(double joules, bool exact);     /* "1.23 MJ" */

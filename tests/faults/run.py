@@ -4,13 +4,13 @@
 
     python3 tests/faults/run.py [--at FOLDER] [NAME...]
 
-Each fault of list.py is one edit in a copy of the checkout. The copy is built once; then for every fault: edit,
-build, ask the tests of tests/outside until the first turns red, take the edit back. Names choose faults;
+Each fault of list.py is one edit in a copy of the checkout. The copy is built once; then for every fault:
+edit, build, ask the tests of tests/outside until the first turns red, take the edit back. Names choose faults;
 without names all are planted. --at keeps the copy and its build in FOLDER for the next call.
 
-First all outside tests must be green without a fault: one that is not is told, left out and counted as failed.
-SP_DRIVES is 60 unless set, for the random drives; the model written again (twin.py) goes through one case unless
-SP_TWIN_CASES is set. The last line reads "N passed, N failed, N skipped". 0: every fault was caught; 1: some
+First all outside tests must be green without a fault: one that is not is told, left out, counted as failed.
+SP_DRIVES is 60 unless set, for the random drives; the model written again (twin.py) goes through one case
+unless SP_TWIN_CASES is set. The last line reads "N passed, N failed, N skipped". 0: every fault was caught; 1: some
 survived or could not be planted; 2: it could not begin.
 """
 import os
@@ -86,9 +86,9 @@ class Copy:
         shutil.copymode(here, there)
 
     def configure(self):
-        words = ["cmake", "-S", self.source, "-B", self.build, "-DSWIRLPOT_TESTS=ON", "-DCMAKE_C_COMPILER=gcc",
-                 "-DCMAKE_BUILD_TYPE=None", "-DCMAKE_C_FLAGS=-O1 -w"]  # -w: a fault may leave something unused
-        return self.quiet(words)
+        flags = "-O1 -w"  # a fault may leave something unused
+        return self.quiet(["cmake", "-S", self.source, "-B", self.build, "-DSWIRLPOT_TESTS=ON",
+                           "-DCMAKE_C_COMPILER=gcc", "-DCMAKE_BUILD_TYPE=None", "-DCMAKE_C_FLAGS=" + flags])
 
     def make(self, target):
         return self.quiet(["cmake", "--build", self.build, "--target", target, "--", "-j1"])

@@ -261,11 +261,14 @@ def main(arguments):
 METHOD = "LSODA"
 try:
     import numpy as np
-    import scipy  # noqa: F401
+    import scipy
+
+    assert scipy
 except ImportError:
     print("no scipy here: the twin does not run")
     print("0 passed, 0 failed, 1 skipped")
     sys.exit(0)
+sys.dont_write_bytecode = True
 sys.path.insert(0, HERE)
 from restated import casefile, march  # noqa: E402
 
