@@ -1,4 +1,5 @@
-/* Assertions for the tests: doubles are compared as doubles, NaN never passes. */
+/* Assertions for the tests: doubles are compared as doubles, NaN never passes.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_TESTS_CHECK_H
 #define SP_TESTS_CHECK_H
 

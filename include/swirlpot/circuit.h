@@ -61,8 +61,8 @@ struct sp_duct_state {
     bool diffuser_stalled;
 };
 
-/* Solves one condition. SP_OK; SP_INPUT when heat is given at nil flow; SP_NUMERICS when no root was
- * found (which no physical input does). */
+/* Solves one condition. SP_OK; SP_INPUT when the flow cannot carry the given heat (none at all, or only by heating
+ * it past five times its temperature); SP_NUMERICS when no root was found (which no physical input does). */
 SP_API enum sp_status sp_duct_solve(const struct sp_duct *d, const struct sp_duct_inputs *in,
                                     struct sp_duct_state *out);
 

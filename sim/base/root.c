@@ -134,3 +134,9 @@ enum sp_status sp_root_falling(sp_falling f, const void *context, double step, s
     *guess = (struct sp_guess){x, 0.0};
     return SP_OK;
 }
+
+enum sp_status sp_root_between(sp_falling f, const void *context, double low, double high, double step, double *x)
+{
+    struct bracket b = {low, high};
+    return brent(f, context, &b, step, x) ? SP_OK : SP_NUMERICS;
+}

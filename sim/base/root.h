@@ -19,4 +19,7 @@ typedef double (*sp_falling)(double x, const void *context);
  * (the next error is far smaller), Brent at 1e-13 |x| + 1e-15 step. SP_NUMERICS when no sign change is found or f is not finite. */
 enum sp_status sp_root_falling(sp_falling f, const void *context, double step, struct sp_guess *guess);
 
+/* The root between two places of opposite sign, by Brent's method; good as above. */
+enum sp_status sp_root_between(sp_falling f, const void *context, double low, double high, double step, double *x);
+
 #endif

@@ -20,6 +20,9 @@ static const double laminar_floor = 1e-3;
 /* Face velocity [m/s] over which the fan's air changes from hot to fresh as the flow turns. */
 static const double creeping = 0.02;
 
+/* Air heated to more than this many times its temperature is no answer but a sign that the flow breaks down. */
+static const double hottest_ratio = 5.0;
+
 /* Loss of air drawn in through the exit, on the head there: a sharp edge in a wall. Common practice. */
 static const double reverse_entry = 0.5;
 
@@ -197,10 +200,35 @@ enum sp_status sp_duct_solve_from(const struct sp_duct *d, const struct sp_duct_
     return isfinite(out->mass_flow) && isfinite(out->heat) ? SP_OK : SP_NUMERICS;
 }
 
+/* Given heat, less air comes out hotter, and hot laminar air resists the more: below some flow the balance turns
+ * back. What a duct settles to is the largest flow, on the way down from the unheated one. */
+static enum sp_status solve_heated(const struct sp_duct *d, const struct sp_duct_inputs *in, double cold,
+                                   struct sp_duct_state *out)
+{
+    struct problem p = pose(d, in);
+    double typical = p.density * d->core.face, before = cold, way = cold > 0.0 ? 1.0 : -1.0;
+    for (double m = cold; fabs(m) * in->cp * in->temperature * (hottest_ratio - 1.0) > in->heat; m *= 0.98) {
+        if (way * balance_at(m, &p) > 0.0 || (m == cold && balance_at(m, &p) == 0.0)) {
+            double root = m;
+            double low = fmin(m, before), high = fmax(m, before);
+            if (m != before && sp_root_between(balance_at, &p, low, high, typical, &root)) return SP_NUMERICS;
+            struct flow f = flow_at(&p, root);
+            fill(&p, root, &f, out);
+            return SP_OK;
+        }
+        before = m;
+    }
+    return SP_INPUT;
+}
+
 enum sp_status sp_duct_solve(const struct sp_duct *d, const struct sp_duct_inputs *in, struct sp_duct_state *out)
 {
     struct sp_guess guess = {0.3 * in->speed * d->core.face * in->pressure / (in->R * in->temperature), 0.0};
-    return sp_duct_solve_from(d, in, &guess, out);
+    if (!in->heat_given || !(in->heat > 0.0)) return sp_duct_solve_from(d, in, &guess, out);
+    struct sp_duct_inputs cold = *in;
+    cold.heat = 0.0;
+    enum sp_status status = sp_duct_solve_from(d, &cold, &guess, out);
+    return status ? status : solve_heated(d, in, out->mass_flow, out);
 }
 
 static struct sp_station station(const struct problem *p, double m, double total, double T, double area)

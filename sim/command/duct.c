@@ -48,8 +48,8 @@ static bool read_question(struct sp_units *u, const struct sp_arguments *a, stru
     return false;
 }
 
-/* The model takes the air's density as constant ahead of the core and again behind it, and the core's laws are
- * fitted to air that is not much hotter. */
+/* The density is taken as constant ahead of the core and again behind it, and the laws of cores are fitted to
+ * air that is not much hotter. */
 static void doubt(struct question *q, const struct sp_duct_point *p)
 {
     const double most_ratio = 1.4, hottest = 473.15 /* K */;
@@ -57,8 +57,9 @@ static void doubt(struct question *q, const struct sp_duct_point *p)
     char found[128];
     if (!(ratio > most_ratio || out > hottest)) return;
     struct sp_place at = {.path = "--heat"};
-    snprintf(found, sizeof found, "air at %.4g degC behind the core at %.6g m/s, %.3g times as hot as before it",
-             out - SP_ZERO_C, p->speed, ratio);
+    snprintf(found, sizeof found,
+             "air at %.4g degC behind the core at %.6g m/s, %.3g times as hot as before it", out - SP_ZERO_C,
+             p->speed, ratio);
     sp_complain(&q->cautions, &at, found,
                 "at most 200 degC and 1.4 times the absolute temperature: this is outside the model's range",
                 NULL);
@@ -75,9 +76,9 @@ static enum sp_status solve_all(const struct sp_design *d, const struct sp_duct 
             doubt(q, &point[i]);
             continue;
         }
-        snprintf(found, sizeof found, "heat at nil flow, speed %.6g m/s", q->speed[i]);
+        snprintf(found, sizeof found, "heat at nil flow, or more than the flow can carry, speed %.6g m/s", q->speed[i]);
         if (status == SP_INPUT)
-            complain(q, "--heat", found, "air that moves: a speed, or a fan that runs");
+            complain(q, "--heat", found, "air that moves: a speed, or a fan that runs; or less heat");
         else
             complain(q, "--speed", "no flow that balances the pressures", "a duct that can be solved");
         return status;

@@ -1,8 +1,9 @@
 /* schedule_parts.h - the schedule while it is being built. Internal to schedule*.c.
  *
- * schedule.c joins the steps, schedule_trace.c makes rows of a trace, schedule_engine.c says what the
- * engine does at a row, schedule_stopped.c finds engine speeds a log has lost, schedule_merge.c coarsens rows, schedule_run_on.c sets what runs on after a stop,
- * schedule_work.c checks the road load's work, schedule_rows.c holds rows.
+ * schedule.c joins the steps, schedule_trace.c makes rows of a trace, schedule_stopped.c finds engine speeds
+ * that a log has lost, schedule_engine.c says what the engine does at a row, schedule_merge.c coarsens rows,
+ * schedule_run_on.c sets what runs on after a stop, schedule_work.c checks the road load's work,
+ * schedule_rows.c holds rows.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_SCHEDULE_PARTS_H
 #define SP_DRIVE_SCHEDULE_PARTS_H
@@ -157,8 +158,8 @@ void sp_schedule_caution_power(struct sp_scheduling *b, size_t step, double most
 /* True of an engine that stands and yet gives power [W]; false where either is NAN. */
 bool sp_schedule_stopped(const struct sp_engine *e, double engine_speed, double power);
 
-/* Rows that say so are a complaint, or with layout.repair get the last good engine speed, counted. False after
- * a complaint. */
+/* Rows that say so are a complaint, or with layout.repair get the last good engine speed, counted. False
+ * after a complaint. */
 bool sp_schedule_find_speeds(struct sp_scheduling *b, size_t step, struct sp_trace *trace,
                              const struct sp_engine_sources *sources);
 

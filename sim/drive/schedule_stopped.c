@@ -4,7 +4,7 @@
 
 #include <math.h>
 
-/* Of rated power: below it, what flow meters and torque sums show of an engine that stands. Common practice. */
+/* Of rated power: what flow meters and torque sums may show of an engine that stands. Common practice. */
 static const double idle_share = 0.02;
 
 /* One trace's engine speeds under the eye. */

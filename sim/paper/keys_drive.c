@@ -18,7 +18,8 @@ const struct sp_key sp_keys_drive[] = {
      .keep = SP_KEEP_NOTHING,
      FOR_DRIVE,
      .type = "list of steps",
-     SAYS("what is driven, in order; each step holds exactly one of `trace`, `idle`, `hold`, `soak`")},
+     SAYS("what is driven, in order, in at most 9999 steps; each step holds exactly one of `trace`, `idle`, "
+          "`hold`, `soak`")},
     {GROUP("drive[]"), OPTIONAL, SAYS("one step of the drive")},
     {.path = "drive[].trace",
      .shape = SP_SHAPE_TEXT,

@@ -83,7 +83,9 @@ static const char *const opening[] = {
     "%\"` is",
     "0.45 there. A difference of temperatures is given in K or degR, never in degC. Paths are relative to "
     "the file",
-    "that names them. Unknown keys, `null` and doubled keys are complaints.",
+    "that names them. Unknown keys, `null` and doubled keys are complaints. A list or table has at most 4096 "
+    "rows,",
+    "an object at most 1000 keys.",
     "",
     "`car` may be an object or the path of a file that holds that object; with `\"from\": \"other.json\"` "
     "the object",

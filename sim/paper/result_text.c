@@ -216,7 +216,8 @@ static void say_measured(const struct telling *t)
 }
 
 /* Whether a state holds before the first event: its end comes first, or it never changes and held at all. */
-static bool held_before(const struct sp_result *r, enum sp_event_kind begins, enum sp_event_kind ends, bool held)
+static bool held_before(const struct sp_result *r, enum sp_event_kind begins, enum sp_event_kind ends,
+                        bool held)
 {
     for (size_t i = 0; i < r->events; ++i)
         if (r->event[i].kind == begins || r->event[i].kind == ends) return r->event[i].kind == ends;
@@ -254,7 +255,8 @@ static void say_thermostat(const struct telling *t)
     const struct sp_result *out = t->report->result;
     double off = full_and_off(out);
     char rest[80] = "";
-    if (off >= 0.5) snprintf(rest, sizeof rest, ", %.40s of it with the engine off", sp_words_time(off, t->exact).text);
+    if (off >= 0.5)
+        snprintf(rest, sizeof rest, ", %.40s of it with the engine off", sp_words_time(off, t->exact).text);
     if (t->report->design->thermostat.none)
         sp_say(t->to, SP_LABEL_WIDTH, "Thermostat", "none fitted");
     else if (out->time_above_band > 0.0)

@@ -1,8 +1,8 @@
 # SPDX-License-Identifier: GPL-3.0-or-later
 """The planted faults: each one edit of one file, wrong physics that still builds and runs.
 
-`old` stands exactly once in the file, whatever its line breaks. `first` names the outside tests to ask first, to
-save time; all others follow if those stay green.
+`old` stands exactly once in the file, whatever its line breaks. `first` names the outside tests to ask first,
+to save time; all others follow if those stay green.
 """
 from collections import namedtuple
 

@@ -5,13 +5,13 @@
     python3 tests/faults/run.py [--at FOLDER] [NAME...]
 
 Each fault of list.py is one edit in a copy of the checkout. The copy is built once; then for every fault:
-edit, build, ask the tests of tests/outside until the first turns red, take the edit back. Names choose faults;
-without names all are planted. --at keeps the copy and its build in FOLDER for the next call.
+edit, build, ask the tests of tests/outside until the first turns red, take the edit back. Names choose
+faults; without names all are planted. --at keeps the copy and its build in FOLDER for the next call.
 
 First all outside tests must be green without a fault: one that is not is told, left out, counted as failed.
 SP_DRIVES is 60 unless set, for the random drives; the model written again (twin.py) goes through one case
-unless SP_TWIN_CASES is set. The last line reads "N passed, N failed, N skipped". 0: every fault was caught; 1: some
-survived or could not be planted; 2: it could not begin.
+unless SP_TWIN_CASES is set. The last line reads "N passed, N failed, N skipped". 0: every fault was caught;
+1: some survived or could not be planted; 2: it could not begin.
 """
 import os
 import re
@@ -24,6 +24,7 @@ import time
 HERE = os.path.dirname(os.path.abspath(__file__))
 ROOT = os.path.abspath(os.path.join(HERE, "..", ".."))
 sys.path.insert(0, HERE)
+sys.dont_write_bytecode = True
 from list import FAULTS  # noqa: E402
 
 SCRIPTS = ("three_cars", "practice_effects", "twin")  # those that ask the command alone

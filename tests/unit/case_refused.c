@@ -35,6 +35,8 @@ static void refused_at(const char *text, enum sp_purpose purpose, char *const *s
     refused_at(DRIVE_CASE, SP_FOR_DRIVE, (char *const[]){(char *)(size_t)(value)}, 1, path, found, expected, \
                __LINE__)
 
+#define FAN_SET(rest) "duct.fan={\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}, " rest "}"
+
 static void bad_settings(void **state)
 {
     (void)state;
@@ -61,6 +63,61 @@ static void bad_settings(void **state)
     assert_string_equal(r.complaints.list[0].file, "--set duct.exit.aera=3");
     assert_string_equal(r.complaints.list[0].hint, "nearest known key is \"area\"");
     drop(&r);
+    r = parse_set(DUCT_CASE, SP_FOR_DUCT, (char *const[]){(char[]){"duct.exit.quux=3"}}, 1);
+    assert_null(r.complaints.list[0].hint); /* nothing is near */
+    drop(&r);
+    r = parse_set(DUCT_CASE, SP_FOR_DUCT, (char *const[]){(char[]){"bodi.mass=3"}}, 1);
+    assert_string_equal(r.complaints.list[0].hint, "nearest known key is \"body\""); /* of the car */
+    drop(&r);
+}
+
+static void cars_for_cases(void **state)
+{
+    (void)state;
+    refused(CAR, "body", "a key of a car", "air, car, drive, limits");
+    refused("{" DUCT_OF(COEFFICIENT) "}", "duct", "a key of a car", NULL);
+    struct result r = parse_set(CAR, SP_FOR_DRIVE, NULL, 0);
+    assert_string_equal(r.complaints.list[0].hint, "this looks like a car; name it under \"car\"");
+    drop(&r);
+    r = parse_set("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}, \"pump\": {}, \"drlve\": [], \"x\": 1}",
+                  SP_FOR_DUCT, NULL, 0);
+    assert_int_equal(r.complaints.count, 3);
+    assert_string_equal(r.complaints.list[0].hint, "a key of the car: it belongs under \"car\"");
+    assert_string_equal(r.complaints.list[1].hint, "nearest known key is \"drive\"");
+    assert_null(r.complaints.list[2].hint);
+    drop(&r);
+    r = parse_set(DRIVE_CASE, SP_FOR_DRIVE, (char *const[]){(char[]){"drive[1].columns={\"zzz\": \"v\"}"}}, 1);
+    assert_int_equal(r.complaints.count, 1);
+    assert_null(r.complaints.list[0].hint);
+    drop(&r);
+}
+
+/* Two values the wrong way round: the one the user set is blamed, in the words of the user. */
+static void orders(void **state)
+{
+    (void)state;
+    set_refused("thermostat.full=70 degC", "thermostat.full", "70 degC",
+                "full above opens, which is 85 degC by default");
+    set_refused("thermostat={\"opens\": \"194 degF\", \"full\": \"80 degC\"}", "thermostat.opens", "194 degF",
+                "opens below full, which is 80 degC");
+    set_refused("engine.rated_speed=600 rpm", "engine.rated_speed", "600 rpm",
+                "rated_speed above idle_speed, which is 850 rpm by default");
+    set_refused("engine.idle_speed=117 Hz", NULL, NULL, "100 rpm to 6000 rpm");
+    set_refused("engine={\"displacement\": \"2 l\", \"rated_power\": \"90 kW\", \"rated_speed\": \"2000 rpm\", "
+                "\"idle_speed\": \"40 Hz\", \"heat\": {\"fraction\": 0.6}}",
+                "engine.idle_speed", "40 Hz", "idle_speed below rated_speed, which is 2000 rpm");
+    set_refused("tank.air_space=29 l", "tank.air_space", "29 l", "air_space below volume, which is");
+    set_refused(FAN_SET("\"switch\": {\"on\": \"60 degC\"}"), "duct.fan.switch.on", "60 degC",
+                "on above off, which is 91 degC by default");
+    set_refused(FAN_SET("\"control\": \"proportional\", \"proportional\": {\"from\": \"373.15 K\"}"),
+                "duct.fan.proportional.from", "373.15 K", "from below to, which is 100 degC by default");
+    /* Both stand in the car, one is set over it. */
+    const char *with = "{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"thermostat\": {\"opens\": \"88 degC\", "
+                       "\"full\": \"99 degC\"}}}";
+    refused_at(with, SP_FOR_DUCT, (char *const[]){(char[]){"thermostat.full=87 degC"}}, 1, "thermostat.full",
+               "87 degC", "full above opens, which is 88 degC", __LINE__);
+    refused_at(with, SP_FOR_DUCT, (char *const[]){(char[]){"thermostat.opens=99 degC"}}, 1,
+               "thermostat.opens", "99 degC", "opens below full, which is 99 degC", __LINE__);
 }
 
 /* ---- complaints ------------------------------------------------------------------------------------ */
@@ -161,7 +218,6 @@ static void cores_that_will_not_do(void **state)
 static void fans_that_will_not_do(void **state)
 {
     (void)state;
-#define FAN_SET(rest) "duct.fan={\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}, " rest "}"
     set_refused(FAN_SET("\"diameter\": \"300 mm\", \"hub\": \"300 mm\""), "duct.fan.hub", NULL,
                 "below diameter");
     set_refused(FAN_SET("\"switch\": {\"on\": \"90 degC\", \"off\": \"90 degC\"}"), "duct.fan.switch.off",
@@ -201,14 +257,14 @@ static void circuits_that_will_not_do(void **state)
                 "rpm\", \"1 kW\", \"2 kW\"], "
                 "[\"2000 rpm\", \"1 kW\", \"1 kW\"], [\"2000 rpm\", \"1 kW\", \"2 kW\"]]}",
                 "engine.heat.table", "no full grid", NULL);
-    set_refused("pump.curve=[[\"0 l/min\", \"0 kPa\"], [\"9 l/min\", \"5 kPa\"], [\"10 l/min\", \"4 kPa\"]]",
-                "pump.curve", "no pressure", NULL);
+    set_refused("pump.curve=[[\"0 l/min\", \"4 kPa\"], [\"9 l/min\", \"5 kPa\"], [\"10 l/min\", \"4 kPa\"]]",
+                "pump.curve[1][1]", "5 kPa", "never rises");
     set_refused("electrics=none", "electrics", "none", "an object");
     set_refused("engine.idle_speed=1 Hz", "engine.idle_speed", "1 Hz", "100 rpm");
     set_refused(
         "engine={\"displacement\": \"2 l\", \"rated_power\": \"90 kW\", \"rated_speed\": \"600 rpm\", "
         "\"heat\": {\"fraction\": 0.6}}",
-        "engine.idle_speed", NULL, "below rated_speed");
+        "engine.rated_speed", "600 rpm", "rated_speed above idle_speed, which is 850 rpm");
     set_refused("engine.friction=[\"1 bar\", \"0 bar\"]", "engine.friction", "a row of 2", "a row of 3");
     set_refused("body={\"frontal_area\": \"2 m2\", \"wheel_radius\": \"30 cm\", \"gears\": [3, 4]}",
                 "body.gears[1]", "4", "falling");
@@ -253,7 +309,8 @@ int main(void)
         cmocka_unit_test(bad_settings),           cmocka_unit_test(what_is_missing),
         cmocka_unit_test(what_does_not_belong),   cmocka_unit_test(cores_that_will_not_do),
         cmocka_unit_test(fans_that_will_not_do),  cmocka_unit_test(circuits_that_will_not_do),
-        cmocka_unit_test(steps_that_will_not_do),
+        cmocka_unit_test(steps_that_will_not_do), cmocka_unit_test(cars_for_cases),
+        cmocka_unit_test(orders),
     };
     return cmocka_run_group_tests(tests, begin, end);
 }

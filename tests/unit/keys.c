@@ -177,6 +177,15 @@ static void nearest_keys(void **state)
     assert_string_equal(sp_key_nearest("", "limit"), "limits");
     assert_string_equal(sp_key_nearest("drive[]", "repeats"), "repeat");
     assert_null(sp_key_nearest("car.duct.inlet.area", "x"));
+    /* Near is what needs no more changes than half its letters, or one. */
+    assert_string_equal(sp_key_nearest("car.duct.exit", "aera"), "area"); /* 2 of 4 */
+    assert_null(sp_key_nearest("car.duct.exit", "acre_x"));               /* 4 of 6 */
+    assert_null(sp_key_nearest("", "body"));
+    assert_null(sp_key_nearest("", ""));
+    assert_true(sp_key_near("x", 1));
+    assert_false(sp_key_near("x", 2));
+    assert_true(sp_key_near("abcdefg", 3));
+    assert_false(sp_key_near("abcdefg", 4));
 }
 
 static void ranges(void **state)
