@@ -42,6 +42,36 @@ spoil 's/"500 cm2"/"500 cm"/; s/"800 kg"/"-800 kg"/; s/"90 s"/"90 degC"/; s/"lim
 want 2 run bad.json --every "1 km"
 for path in car.duct.inlet.area car.body.mass "drive[0].idle" "limit" --every; do says err "$path"; done
 
+# A car where a case belongs.
+printf '{ "body": { "mass": "800 kg" },\n  "engine": {}, "duct": {} }\n' >acar.json
+want 2 run acar.json
+says err 'swirlpot: acar.json, line 1, body: found a key of a car'
+says err 'this looks like a car; name it under "car"'
+[ "$(wc -l <err)" -eq 1 ] || fail "a car for a case is more than one complaint"
+
+# A hint only where a known key is near.
+spoil 's/"limits"/"zzzzzz"/'
+want 2 run bad.json
+says_not err "nearest"
+
+# Two values in the wrong order, in the user's own words.
+want 2 run case.json --set 'thermostat.full=176 degF'
+says err 'thermostat.full: found "176 degF"; expected full above opens, which is 85 degC by default'
+
+# Power from an engine that stands: a complaint, or held with repair.
+printf 'time [s],speed [km/h],power [kW],engine_speed [rpm]\n0,50,20,3000\n1,50,20,0\n2,50,20,3000\n' >lost.csv
+want 2 run case.json --set 'drive=[{"trace": "lost.csv"}]'
+says err 'swirlpot: lost.csv, engine_speed: found 0 rpm with 20 kW at 1 s, row 2; expected above 255 rpm'
+says err 'layout.repair'
+want 0 run case.json --set 'drive=[{"trace": "lost.csv", "layout": {"repair": true}}]'
+says err 'power without engine speed at 1 row'
+want 2 run case.json --set 'drive[1].engine_speed=0 rpm'
+says err 'drive[1].engine_speed: found 0 rpm with a power of 30 kW'
+want 0 run case.json --set 'drive[1].power=150 kW' --set 'limits.coolant=200 degC'
+says err 'drive[1]: found power up to 150 kW; expected no more than 1.3 times car.engine.rated_power'
+want 0 run case.json
+[ -s err ] && fail "cautions where nothing is doubtful: $(cat err)"
+
 want 2 run case.json --set duct.exit.aera="600 cm2"
 says err "area"
 want 2 run case.json --set duct.exit.area

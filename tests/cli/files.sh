@@ -47,6 +47,12 @@ grep -q 'coolant peak' one/events.csv || fail "no peak in events.csv"
 [ "$(grep -c '"what"' one/result.json)" -eq "$(($(wc -l <one/events.csv) - 1))" ] ||
     fail "events.csv and result.json hold other events"
 
+# What the solver leaves of nil is nil: after the engine stops the fan runs down, and no cell is 1e-30.
+awk -F, 'NR == 1 { for (i = 1; i <= NF; ++i) { split($i, word, " "); name[i] = word[1] } next }
+    { for (i = 1; i <= NF; ++i) if (name[i] ~ /^(fan_speed|air_mass_flow|face_velocity|exit_velocity|drag|fan_power)$/ ||
+          name[i] ~ /^(heat_.*|coolant_lost)$/) { x = $i + 0; if (x != 0 && x < 1e-9 && x > -1e-9) {
+        print name[i] " in row " NR ": " $i; exit 1 } } }' one/series.csv >why || fail "noise: $(cat why)"
+
 # Off the grid the end is there too.
 want 0 run case.json -o coarse --every "7 s"
 [ "$(tail -n 1 coarse/series.csv | cut -d, -f1)" = 510 ] || fail "the end is missing with --every 7 s"
@@ -60,11 +66,28 @@ want 2 run case.json -o none --set 'limits.coolant=90 m'
 [ -e none ] && fail "a refused case makes a directory"
 
 # Places that cannot be.
-want 2 run case.json -o nowhere/below
-says err "nowhere/below"
-[ -e nowhere ] && fail "parents are made"
 want 2 run case.json -o case.json
 says err "case.json"
+want 2 run case.json -o case.json/below
+says err "case.json: found something that is no directory"
+
+# Parents are made on the way, and taken away again when the run fails.
+want 0 run case.json -o deep/er//still/
+[ -s deep/er/still/result.json ] || fail "missing parents are not made"
+want 0 run case.json -o "$room/whole/path"
+[ -s whole/path/series.csv ] || fail "missing parents of a whole path are not made"
+want 2 run case.json -o fresh/one/two --set 'limits.coolant=90 m'
+[ -e fresh ] && fail "a refused case makes parents"
+mkdir -p old && mkdir old/kept
+if (trap '' XFSZ && ulimit -f 8) 2>/dev/null; then
+    for place in fresh/one//two/ old/kept/new/one; do
+        (trap '' XFSZ; ulimit -f 8; exec "$command" run case.json -o "$place" >out 2>err)
+        [ $? -eq 2 ] || fail "a full disk is no fault"
+    done
+    [ -e fresh ] && fail "a full disk leaves parents behind"
+    [ -d old/kept ] || fail "a directory that was there is gone"
+    [ -e old/kept/new ] && fail "a full disk leaves a parent behind"
+fi
 mkdir taken && mkdir taken/series.csv
 want 2 run case.json -o taken
 says err "taken/series.csv"
@@ -75,6 +98,8 @@ if ! touch shut/probe 2>/dev/null; then
     says err "shut/"
     want 2 run case.json -o shut/below
     says err "shut/below"
+    want 2 run case.json -o shut/far/below
+    says err "shut/far"
 else
     rm -f shut/probe # whoever runs this may write anywhere
 fi

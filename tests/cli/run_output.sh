@@ -51,6 +51,34 @@ want 0 run case.json --json --set 'limits={"boil_margin": "1 K"}'
 [ "$(number time_over_limit_s)" = null ] || fail "a time over no limit: $(number time_over_limit_s)"
 [ "$(number limit)" = '"limits.boil_margin"' ] || fail "limit $(number limit)"
 
+# The verdict on a boil margin, in words; limits as they were given.
+want 0 run case.json --set 'limits={"boil_margin": "1.25 K", "coolant": "149.2 degC"}'
+head -n 1 out | grep -E -q '^Survives: coolant stays [0-9]+ K short of boiling, [0-9]+ K more than the 1\.25 K asked for\.$' ||
+    fail "first line: $(head -n 1 out)"
+grep -E -q '^ +boil margin asked for 1\.25 K: [0-9]+ K to spare, the one that binds$' out || fail "no limit of 1.25 K"
+says out "coolant 149.2 degC: "
+want 1 run case.json --set 'limits={"boil_margin": "60 K"}'
+head -n 1 out | grep -E -q '^Overheats: coolant comes within [0-9]+ K of boiling; 60 K asked for\.$' ||
+    fail "first line: $(head -n 1 out)"
+grep -E -q 'boil margin asked for 60 K: short by [0-9]+ K, the one that binds$' out || fail "no limit of 60 K"
+want 1 run case.json --set 'limits={"boil_margin": "2 K"}' --set 'drive=[{"hold": "10 min", "speed": "5 km/h",
+    "power": "60 kW", "engine_speed": "4000 rpm"}]'
+head -n 1 out | grep -E -q '^Overheats: coolant goes [0-9]+ K past boiling; 2 K asked for\.$' ||
+    fail "first line: $(head -n 1 out)"
+want 0 run case.json --set 'limits.coolant=239.36 degF' # 115.2 degC
+head -n 1 out | grep -q 'its limit of 115.2 degC\.$' || fail "first line: $(head -n 1 out)"
+
+# The thermostat: open for how long and how much of it in vain; never, because there is none or nothing runs.
+want 0 run case.json --set 'thermostat={"opens": "40 degC", "full": "45 degC"}'
+says out "Thermostat       fully open for 8 min 30 s, 4 min 00 s of it with the engine off"
+says_not out "nothing left"
+want 0 run case.json --set 'thermostat=none'
+says out "Thermostat       none fitted"
+want 0 run case.json --set 'drive=[{"soak": "2 min"}]' --set 'start.coolant=60 degC'
+says out "Thermostat       never fully open; the engine never runs"
+want 0 run case.json --set 'drive=[{"idle": "1 min"}]' --set 'start.coolant=60 degC'
+says out "Thermostat       regulates all the way, never fully open"
+
 # A standing car has no drag coefficient.
 want 0 run case.json --json --set 'drive=[{"idle": "2 min"}]'
 [ "$(number mean_coefficient)" = null ] || fail "drag coefficient of a standing car: $(number mean_coefficient)"

@@ -17,6 +17,13 @@ usage "no verb"
 usage "nearest is 'run'" runn case.json
 usage "nearest is 'duct'" duc case.json
 usage "--jsn" --jsn
+usage "an unknown verb; expected run, duct, show or new
+" dance case.json
+usage "an option of 'run'
+" run --colour case.json
+says_not err "nearest"
+usage "an unknown verb" sweep case.json
+says_not err "nearest"
 usage "an unknown verb" "" case.json
 usage "nearest is '--json'" run --jsn case.json
 usage "--speed" run case.json --speed "30 m/s"

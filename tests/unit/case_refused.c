@@ -106,7 +106,6 @@ static void orders(void **state)
     set_refused("engine={\"displacement\": \"2 l\", \"rated_power\": \"90 kW\", \"rated_speed\": \"2000 rpm\", "
                 "\"idle_speed\": \"40 Hz\", \"heat\": {\"fraction\": 0.6}}",
                 "engine.idle_speed", "40 Hz", "idle_speed below rated_speed, which is 2000 rpm");
-    set_refused("tank.air_space=29 l", "tank.air_space", "29 l", "air_space below volume, which is");
     set_refused(FAN_SET("\"switch\": {\"on\": \"60 degC\"}"), "duct.fan.switch.on", "60 degC",
                 "on above off, which is 91 degC by default");
     set_refused(FAN_SET("\"control\": \"proportional\", \"proportional\": {\"from\": \"373.15 K\"}"),
