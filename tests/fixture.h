@@ -130,7 +130,7 @@ static inline struct fixture_drive fixture_run(const struct fixture *f, const st
     struct sp_drive *drive = sp_drive_build(f->units, d, &out.complaints, &cautions);
     sp_complaints_free(&cautions);
     if (!drive) return out;
-    struct sp_sink sink = {&out.series, fixture_take};
+    struct sp_sink sink = {.context = &out.series, .row = fixture_take};
     struct sp_run_options options = {interval, tolerance, interval > 0.0 ? &sink : NULL};
     out.status = sp_drive_run(drive, &options, &out.result, &out.complaints);
     sp_drive_free(drive);

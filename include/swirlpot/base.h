@@ -61,6 +61,9 @@ SP_API void sp_complaints_print(const struct sp_complaints *c, bool caution, FIL
 
 SP_API void sp_complaints_free(struct sp_complaints *c);
 
+/* Appends copies of all complaints of `from` to `to`. */
+SP_API void sp_complaints_copy(const struct sp_complaints *from, struct sp_complaints *to);
+
 /* ---- quantities ---------------------------------------------------------------------------- */
 
 /* Kinds of quantity a text may hold; the SI unit of each stands in units.c, one row a kind. */

@@ -146,3 +146,13 @@ void sp_complaints_free(struct sp_complaints *c)
     free(c->list);
     *c = (struct sp_complaints){0};
 }
+
+void sp_complaints_copy(const struct sp_complaints *from, struct sp_complaints *to)
+{
+    for (size_t i = 0; i < from->count; ++i) {
+        const struct sp_complaint *c = &from->list[i];
+        struct sp_place at = {c->file, c->line, c->path, c->named_by};
+        sp_complain(to, &at, c->found, c->expected, c->hint);
+    }
+    to->dropped += from->dropped;
+}

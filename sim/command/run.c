@@ -72,5 +72,6 @@ const struct sp_verb sp_verb_run = {
     "Drives the case from end to end and says whether the coolant stays within its\n"
     "limits, where and when it was hottest, what happened on the way and what the\n"
     "cooling cost in drag. Status 0: survives; 1: some limit was broken.\n\n"
-    "With -o, DIR is made when missing; series.csv holds the drive over time.",
+    "With -o, DIR is made when missing, and what is missing above it; series.csv\n"
+    "holds the drive over time.",
     run};

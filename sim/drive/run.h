@@ -41,6 +41,7 @@ struct sp_run {
     struct sp_tracked coolant, gauge, metal, margin, pressure, over_ambient;
     size_t event_room;
     bool lost_event;             /* no memory for one */
+    bool ledger_open;            /* the sum did not close; the only fault that a smaller tolerance mends */
     struct sp_watched seen;      /* watches as last looked at ... */
     double seen_at;              /* ... at this time; NAN: not valid */
 };

@@ -111,7 +111,8 @@ enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_co
     order_events(out);
     ledger(r, start, end);
     judge(r);
-    if (fabs(out->ledger.error) <= ledger_tolerance && !r->lost_event) return out->survives ? SP_OK : SP_NOT;
+    r->ledger_open = !(fabs(out->ledger.error) <= ledger_tolerance);
+    if (!r->ledger_open && !r->lost_event) return out->survives ? SP_OK : SP_NOT;
     char found[80];
     snprintf(found, sizeof found, "a ledger that is out by %.2g of the heat turned over", out->ledger.error);
     struct sp_place at = {.file = r->drive->design->file};

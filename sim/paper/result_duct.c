@@ -104,7 +104,7 @@ static void print_losses(const struct sp_duct_point *p, FILE *to)
         sum += loss[i].pascal;
         if (loss[i].pascal != 0.0) print_loss(loss[i].text, loss[i].pascal, head, to);
     }
-    print_loss(back ? "exit (static) to inlet (total)" : "free stream (total) to exit (static)", sum, head,
+    print_loss(back ? "exit (total) to inlet (static)" : "free stream (total) to exit (static)", sum, head,
                to);
 }
 

@@ -109,6 +109,16 @@ static bool put_row(void *context, const struct sp_sample *sample)
     return false;
 }
 
+/* The drive begins anew: so does the series. */
+static bool put_again(void *context)
+{
+    struct sp_report_files *f = context;
+    FILE *to = f->file[SERIES].stream;
+    if (fflush(to) != 0 || ftruncate(fileno(to), 0) != 0 || fseek(to, 0, SEEK_SET) != 0) return false;
+    put_heading(to);
+    return !ferror(to);
+}
+
 /* ---- directory ------------------------------------------------------------------------------------- */
 
 /* One directory, when it is missing. */
@@ -207,7 +217,7 @@ struct sp_report_files *sp_report_files_open(const char *directory, struct sp_co
     memcpy(copy, directory, size);
     f->directory = copy;
     f->complaints = complaints;
-    f->sink = (struct sp_sink){f, put_row};
+    f->sink = (struct sp_sink){f, put_row, put_again};
     if (make_directory(f) && begin_file(f, SERIES, "series.csv") && begin_file(f, EVENTS, "events.csv") &&
         begin_file(f, RESULT, "result.json")) {
         put_heading(f->file[SERIES].stream);

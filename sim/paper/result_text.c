@@ -38,7 +38,7 @@ static void say_boil_margin(const struct telling *t, const char *verdict, const 
 {
     struct sp_words limit = sp_words_limit(j->limit, true), came = sp_words_kelvin(j->came_to, t->exact);
     if (j->left >= 0.0)
-        sp_say(t->to, 0, "", "%s: coolant stays %s short of boiling, %s more than the %s asked for.", verdict,
+        sp_say(t->to, 0, "", "%s: coolant stays %s short of boiling, %s over the %s asked for.", verdict,
                came.text, sp_words_kelvin(j->left, t->exact).text, limit.text);
     else if (j->came_to >= 0.0)
         sp_say(t->to, 0, "", "%s: coolant comes within %s of boiling; %s asked for.", verdict, came.text,

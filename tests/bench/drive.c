@@ -225,7 +225,7 @@ static void say_shares(const struct sp_drive *drive)
 static void say_allocations(const struct sp_drive *drive, double duration)
 {
     struct tape t = tape_for(duration);
-    struct sp_sink sink = {&t, keep};
+    struct sp_sink sink = {.context = &t, .row = keep};
     long before = allocations;
     struct sp_result r = run(drive, 0.0, &sink);
     printf("  allocations                   %ld from first to last step, %ld before and after\n", t.last - t.first,
@@ -237,7 +237,7 @@ static void say_allocations(const struct sp_drive *drive, double duration)
 static void say_deviation(const struct sp_drive *drive, double tolerance, double duration)
 {
     struct tape a = tape_for(duration), b = tape_for(duration);
-    struct sp_sink to_a = {&a, keep}, to_b = {&b, keep};
+    struct sp_sink to_a = {.context = &a, .row = keep}, to_b = {.context = &b, .row = keep};
     struct sp_result plain = run(drive, tolerance, &to_a), tight = run(drive, 1e-3 * tolerance, &to_b);
     double most = 0.0;
     if (a.rows != b.rows) give_up("runs of different length", NULL);

@@ -82,15 +82,15 @@ close "thin air" "$(number density_kg_m3)" 0.7937550 1e-6
 # Wind from behind faster than the car: the air flows backwards, and no loss is a gain.
 want 0 duct case.json --json --speed "0 m/s" --set 'air.wind=-10 m/s'
 awk -v m="$(number mass_flow_kg_s)" 'BEGIN { exit !(m < 0) }' || fail "no reverse flow: $(number mass_flow_kg_s)"
-# For a person the losses are listed with their sum, which is what drives the flow: out of the exit's static
-# pressure into the inlet's total one, (Cp - recovery) q. Here head and recovery are those of 10 m/s from behind:
-# the table's rows must add up to its last.
-want 0 duct case.json --speed "0 m/s" --set 'air.wind=-10 m/s' --set duct.inlet.screen=0.5 \
-    --set duct.inlet.recovery=0.9 --set duct.exit.pressure_coefficient=0.3
+# For a person the losses in reverse are listed with their sum, which is what drives the flow from behind the
+# exit to before the inlet: (Cp - recovery) q, here 0.3 of 60 Pa.
+want 0 duct case.json --speed "10 m/s" --set duct.inlet.screen=0.5 \
+    --set duct.inlet.recovery=0.2 --set duct.exit.pressure_coefficient=0.5
 says_not out "not recovered"
-awk '/share of q/ { on = 1; next } !on { next } /exit \(static\) to inlet \(total\)/ { total = $(NF - (($NF == "%") ? 2 : 1)); seen = 1; exit }
-    NF { sum += $(NF - (($NF == "%") ? 2 : 1)) }
-    END { exit !(seen && sum > 1 && (sum - total) ^ 2 < 0.0009) }' out || fail "losses in reverse: $(cat out)"
+awk '/share of q/ { on = 1; next }
+    on && $NF == "%" { if (/exit \(total\) to inlet \(static\)/) { total = $(NF - 2); exit } sum += $(NF - 2); ++n }
+    END { exit !(n == 4 && (total - 18) ^ 2 < 1e-4 && (sum - total) ^ 2 < 9e-4) }' out ||
+    fail "losses in reverse: $(cat out)"
 want 0 duct case.json --json --speed "10 m/s" --set 'air.wind=-10 m/s'
 [ "$(number velocity_ratio)" = null ] || fail "velocity ratio in still air is not null"
 
@@ -118,9 +118,8 @@ says err "caution"
 says err "at 1 m/s"
 says err "outside the model's range"
 is_json out
-want 0 duct fan.json --speed "20 m/s" --speed "0.5 m/s" --heat "20 kW"
+want 0 duct fan.json --speed "20 m/s" --speed "1 m/s" --heat "20 kW"
 [ "$(grep -c "outside the model's range" err)" -eq 1 ] || fail "not one caution: $(cat err)"
-says err "at 0.5 m/s"
 
 # The same for a person: no wider than 80 columns, and the losses are there.
 want 0 duct fan.json --speed "10 m/s" --heat "20 kW" --fan on

@@ -53,7 +53,7 @@ want 0 run case.json --json --set 'limits={"boil_margin": "1 K"}'
 
 # The verdict on a boil margin, in words; limits as they were given.
 want 0 run case.json --set 'limits={"boil_margin": "1.25 K", "coolant": "149.2 degC"}'
-head -n 1 out | grep -E -q '^Survives: coolant stays [0-9]+ K short of boiling, [0-9]+ K more than the 1\.25 K asked for\.$' ||
+head -n 1 out | grep -E -q '^Survives: coolant stays [0-9]+ K short of boiling, [0-9]+ K over the 1\.25 K asked for\.$' ||
     fail "first line: $(head -n 1 out)"
 grep -E -q '^ +boil margin asked for 1\.25 K: [0-9]+ K to spare, the one that binds$' out || fail "no limit of 1.25 K"
 says out "coolant 149.2 degC: "
@@ -62,7 +62,7 @@ head -n 1 out | grep -E -q '^Overheats: coolant comes within [0-9]+ K of boiling
     fail "first line: $(head -n 1 out)"
 grep -E -q 'boil margin asked for 60 K: short by [0-9]+ K, the one that binds$' out || fail "no limit of 60 K"
 want 1 run case.json --set 'limits={"boil_margin": "2 K"}' --set 'drive=[{"hold": "10 min", "speed": "5 km/h",
-    "power": "60 kW", "engine_speed": "4000 rpm"}]'
+    "power": "120 kW", "engine_speed": "6000 rpm"}]'
 head -n 1 out | grep -E -q '^Overheats: coolant goes [0-9]+ K past boiling; 2 K asked for\.$' ||
     fail "first line: $(head -n 1 out)"
 want 0 run case.json --set 'limits.coolant=239.36 degF' # 115.2 degC

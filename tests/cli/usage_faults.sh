@@ -17,10 +17,7 @@ usage "no verb"
 usage "nearest is 'run'" runn case.json
 usage "nearest is 'duct'" duc case.json
 usage "--jsn" --jsn
-usage "an unknown verb; expected run, duct, show or new
-" dance case.json
-usage "an option of 'run'
-" run --colour case.json
+usage "an option of 'run'" run --colour case.json # no known one is near
 says_not err "nearest"
 usage "an unknown verb" sweep case.json
 says_not err "nearest"

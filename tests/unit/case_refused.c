@@ -86,7 +86,8 @@ static void cars_for_cases(void **state)
     assert_string_equal(r.complaints.list[1].hint, "nearest known key is \"drive\"");
     assert_null(r.complaints.list[2].hint);
     drop(&r);
-    r = parse_set(DRIVE_CASE, SP_FOR_DRIVE, (char *const[]){(char[]){"drive[1].columns={\"zzz\": \"v\"}"}}, 1);
+    r = parse_set(DRIVE_CASE, SP_FOR_DRIVE,
+                  (char *const[]){(char[]){"drive[1].columns={\"zzz\": \"v\"}"}}, 1);
     assert_int_equal(r.complaints.count, 1);
     assert_null(r.complaints.list[0].hint);
     drop(&r);
@@ -98,21 +99,21 @@ static void orders(void **state)
     (void)state;
     set_refused("thermostat.full=70 degC", "thermostat.full", "70 degC",
                 "full above opens, which is 85 degC by default");
-    set_refused("thermostat={\"opens\": \"194 degF\", \"full\": \"80 degC\"}", "thermostat.opens", "194 degF",
-                "opens below full, which is 80 degC");
+    set_refused("thermostat={\"opens\": \"194 degF\", \"full\": \"80 degC\"}", "thermostat.opens",
+                "194 degF", "opens below full, which is 80 degC");
     set_refused("engine.rated_speed=600 rpm", "engine.rated_speed", "600 rpm",
                 "rated_speed above idle_speed, which is 850 rpm by default");
     set_refused("engine.idle_speed=117 Hz", NULL, NULL, "100 rpm to 6000 rpm");
-    set_refused("engine={\"displacement\": \"2 l\", \"rated_power\": \"90 kW\", \"rated_speed\": \"2000 rpm\", "
-                "\"idle_speed\": \"40 Hz\", \"heat\": {\"fraction\": 0.6}}",
+    set_refused("engine={\"displacement\": \"2 l\", \"rated_power\": \"90 kW\", "
+                "\"rated_speed\": \"2000 rpm\", \"idle_speed\": \"40 Hz\", \"heat\": {\"fraction\": 0.6}}",
                 "engine.idle_speed", "40 Hz", "idle_speed below rated_speed, which is 2000 rpm");
     set_refused(FAN_SET("\"switch\": {\"on\": \"60 degC\"}"), "duct.fan.switch.on", "60 degC",
                 "on above off, which is 91 degC by default");
     set_refused(FAN_SET("\"control\": \"proportional\", \"proportional\": {\"from\": \"373.15 K\"}"),
                 "duct.fan.proportional.from", "373.15 K", "from below to, which is 100 degC by default");
     /* Both stand in the car, one is set over it. */
-    const char *with = "{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", \"thermostat\": {\"opens\": \"88 degC\", "
-                       "\"full\": \"99 degC\"}}}";
+    const char *with = "{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) ", "
+                       "\"thermostat\": {\"opens\": \"88 degC\", \"full\": \"99 degC\"}}}";
     refused_at(with, SP_FOR_DUCT, (char *const[]){(char[]){"thermostat.full=87 degC"}}, 1, "thermostat.full",
                "87 degC", "full above opens, which is 88 degC", __LINE__);
     refused_at(with, SP_FOR_DUCT, (char *const[]){(char[]){"thermostat.opens=99 degC"}}, 1,

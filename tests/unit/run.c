@@ -263,7 +263,7 @@ static void sink_that_stops(void **state)
     struct sp_drive *drive = sp_drive_build(fixture.units, &d, &c, &cautions);
     assert_non_null(drive);
     int left = 3;
-    struct sp_sink sink = {&left, refuse_third};
+    struct sp_sink sink = {.context = &left, .row = refuse_third};
     struct sp_run_options options = {1.0, 0.0, &sink};
     struct sp_result out;
     assert_int_equal(sp_drive_run(drive, &options, &out, &c), SP_INPUT);
