@@ -41,6 +41,9 @@ if [ -x "$out/release/tests/test_invariants" ]; then
     SP_DRIVES=$drives TALLY_TIMEOUT=20000 tally_cmocka "invariants, $drives drives" "$out/release/tests/test_invariants"
 fi
 
+say "Planted faults: each must turn an outside test red"
+TALLY_TIMEOUT=3000 tally_script "planted faults" $python tests/faults/run.py
+
 say "Valgrind"
 memcheck version 0 --version
 memcheck help 0 --help
