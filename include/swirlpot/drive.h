@@ -108,7 +108,8 @@ struct sp_run_options {
     const struct sp_sink *sink; /* NULL: no samples */
 };
 
-/* Runs; should the ledger not close, again at a tenth of the tolerance, twice at most. SP_OK survives, SP_NOT overheats, SP_NUMERICS with a complaint, SP_INPUT when the sink stops it.
+/* Runs; should the ledger not close, again at a tenth of the tolerance, twice at most. SP_OK survives, SP_NOT
+ * overheats, SP_NUMERICS with a complaint, SP_INPUT when the sink stops it.
  * *out is freed with sp_result_free whatever came. Marks in it live as long as the drive. */
 SP_API enum sp_status sp_drive_run(const struct sp_drive *drive, const struct sp_run_options *options,
                                    struct sp_result *out, struct sp_complaints *complaints);
