@@ -19,7 +19,6 @@ struct build {
     struct sp_complaints *complaints;
     char path[PATH_MOST];
     size_t path_length;
-    bool doubled;
 };
 
 static char *copy(const char *text, size_t length)
@@ -60,7 +59,6 @@ static void complain_doubled(struct build *b, const struct member *first, const 
     place.path = path;
     snprintf(found, sizeof found, "the key \"%.80s\" again, first on line %ld", again->key, first->line);
     sp_complain(b->complaints, &place, found, "each key once", NULL);
-    b->doubled = true;
 }
 
 static void check_keys(struct build *b, struct member *list, size_t count)
@@ -185,9 +183,7 @@ struct sp_json *sp_json_parse(const char *name, const char *named_by, const char
         free(plain);
     }
     free(marks.list);
-    if (!b.doubled) return tree;
-    sp_json_free(tree);
-    return NULL;
+    return tree;
 }
 
 struct sp_json *sp_json_read(const char *file, const char *named_by, struct sp_complaints *complaints)
@@ -214,6 +210,10 @@ struct sp_json *sp_json_value(const char *name, const char *text)
 {
     struct sp_complaints unused = {0};
     struct sp_json *node = sp_json_parse(name, NULL, text, strlen(text), &unused);
+    if (unused.count > 0) { /* twice the same key */
+        sp_json_free(node);
+        node = NULL;
+    }
     sp_complaints_free(&unused);
     forget_lines(node); /* there are no lines on a command line */
     if (node) return node;

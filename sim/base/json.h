@@ -21,9 +21,10 @@ struct sp_json {
 
 enum { SP_JSON_DEPTH = 64 }; /* deepest nesting accepted */
 
-/* Parses `size` bytes. On a fault returns NULL and adds exactly one complaint (syntax, duplicate
- * keys, trailing text, text cut short, 1e400, NaN, 01, raw control characters, invalid UTF-8,
- * nesting past SP_JSON_DEPTH, NUL bytes or \u0000); several duplicate keys may add one each. */
+/* Parses `size` bytes. On a fault of syntax returns NULL and adds exactly one complaint (trailing text, text cut
+ * short, 1e400, NaN, 01, raw control characters, invalid UTF-8, nesting past SP_JSON_DEPTH, NUL bytes or \u0000).
+ * Keys that stand twice add a complaint each, but the tree is returned with all of them, so that other faults
+ * can be told in the same go: a caller that was given complaints has no usable tree. */
 struct sp_json *sp_json_parse(const char *name, const char *named_by, const char *text, size_t size,
                               struct sp_complaints *complaints);
 

@@ -90,6 +90,13 @@ want 2 run traced.json
 says err "trace.csv, line 3"
 says err "traced.json"
 
+# A key that stands twice does not hide the file's other faults.
+printf '{ "air": { "ambient": "30 degC", "ambient": "31 degC" }, "widht": 3,\n "car": { "duct": { "inlet": { "area": "5 kg" } } } }\n' >twice.json
+want 2 duct twice.json --speed "30 m/s"
+says err "twice.json, line 1, air.ambient"
+says err "widht"
+says err "twice.json, line 2, car.duct.inlet.area"
+
 # Heat into standing air, and a fan that is not there.
 want 2 duct case.json --speed "0 m/s" --heat "60 kW"
 says err "--heat"

@@ -316,7 +316,10 @@ static size_t walk(const struct sp_json *n, long least, long most)
 
 static struct sp_json *parse(const uint8_t *data, size_t size, struct sp_complaints *c)
 {
-    return sp_json_parse("a", "b", (const char *)data, size, c);
+    struct sp_json *tree = sp_json_parse("a", "b", (const char *)data, size, c);
+    if (c->count == 0) return tree;
+    sp_json_free(tree); /* keys that stand twice leave one that is not to be used */
+    return NULL;
 }
 
 static void print(const struct sp_complaints *c, long lines)
