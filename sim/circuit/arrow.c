@@ -30,6 +30,7 @@ bool sp_arrow_open(struct sp_layout layout, struct sp_arrow *out)
 {
     int band = layout.count - SP_Y_CHAIN;
     *out = (struct sp_arrow){.layout = layout, .band = band};
+    for (int p = 0; p < band; ++p) out->state[p] = state_of(&layout, p);
     int lengths[] = {band * WIDTH, band * SP_BORDER, SP_BORDER_STATES * band, SP_BORDER_STATES * SP_BORDER,
                      SP_PASSIVE * passive_width(out)};
     double **part[] = {&out->diagonals, &out->columns, &out->rows, &out->corner, &out->passive};
@@ -55,10 +56,10 @@ void sp_arrow_close(struct sp_arrow *a)
 static void fill_band(struct sp_arrow *a, double *const *jac, const double *wall, const double *core)
 {
     for (int p = 0; p < a->band; ++p) {
-        int row = state_of(&a->layout, p);
+        int row = a->state[p];
         for (int q = p - LOWER; q <= p + 1; ++q)
             a->diagonals[p * WIDTH + OWN + q - p] =
-                q >= 0 && q < a->band ? jac[state_of(&a->layout, q)][row] : 0.0;
+                q >= 0 && q < a->band ? jac[a->state[q]][row] : 0.0;
         double *c = a->columns + p * SP_BORDER;
         for (int j = 0; j < SP_BORDER_STATES; ++j) c[j] = jac[j][row];
         c[SP_BORDER_WALL] = wall[row];
@@ -70,7 +71,7 @@ void sp_arrow_fill(struct sp_arrow *a, double *const *jac, const double *wall, c
 {
     fill_band(a, jac, wall, core);
     for (int i = 0; i < SP_BORDER_STATES; ++i) {
-        for (int p = 0; p < a->band; ++p) a->rows[i * a->band + p] = jac[state_of(&a->layout, p)][i];
+        for (int p = 0; p < a->band; ++p) a->rows[i * a->band + p] = jac[a->state[p]][i];
         double *c = a->corner + i * SP_BORDER;
         for (int j = 0; j < SP_BORDER_STATES; ++j) c[j] = jac[j][i];
         c[SP_BORDER_WALL] = wall[i];
@@ -82,7 +83,7 @@ void sp_arrow_fill(struct sp_arrow *a, double *const *jac, const double *wall, c
         for (int j = 0; j < SP_BORDER_STATES; ++j) c[j] = jac[j][row];
         c[SP_BORDER_WALL] = wall[row];
         c[SP_BORDER_CORE] = core[row];
-        for (int p = 0; p < a->band; ++p) c[SP_BORDER + p] = jac[state_of(&a->layout, p)][row];
+        for (int p = 0; p < a->band; ++p) c[SP_BORDER + p] = jac[a->state[p]][row];
         for (int j = 0; j < SP_PASSIVE; ++j) c[SP_BORDER + a->band + j] = jac[SP_BORDER_STATES + j][row];
     }
 }
@@ -220,7 +221,7 @@ static void solve_passive(const struct sp_arrow *a, const double *border, const 
 void sp_arrow_solve(const struct sp_arrow *a, struct sp_arrow_factor *f, const double *b, double *x)
 {
     double border[SP_BORDER] = {0.0};
-    for (int p = 0; p < a->band; ++p) f->z[p] = b[state_of(&a->layout, p)];
+    for (int p = 0; p < a->band; ++p) f->z[p] = b[a->state[p]];
     forward(f->diagonals, a->band, f->z, 1);
     backward(f->diagonals, a->band, f->z, 1);
     for (int i = 0; i < SP_BORDER; ++i)
@@ -231,5 +232,5 @@ void sp_arrow_solve(const struct sp_arrow *a, struct sp_arrow_factor *f, const d
     }
     solve_passive(a, border, f->z, b, x); /* reads b before the rest of x is written */
     for (int j = 0; j < SP_BORDER_STATES; ++j) x[j] = border[j];
-    for (int p = 0; p < a->band; ++p) x[state_of(&a->layout, p)] = f->z[p];
+    for (int p = 0; p < a->band; ++p) x[a->state[p]] = f->z[p];
 }

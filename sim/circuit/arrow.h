@@ -26,6 +26,7 @@ enum {
 struct sp_arrow {
     struct sp_layout layout;
     int band; /* rows in the band: chain and walls */
+    int state[SP_BAND_MOST]; /* state index of each row of the band */
     int entries;
     double *entry; /* owned */
     double *diagonals;  /* band x 5: lower 3, 2, 1, own, upper 1 */
