@@ -11,6 +11,8 @@
 #include "swirlpot/drive.h"
 #include "swirlpot/paper.h"
 
+#include <udunits2.h>
+
 #include <math.h>
 #include <stdlib.h>
 #include <string.h>
@@ -275,6 +277,7 @@ static void bench(struct sp_units *u, const char *file)
 int main(int argc, char **argv)
 {
     double began = now();
+    ut_set_error_message_handler(ut_ignore);
     struct sp_units *u = sp_units_open();
     if (!u || argc < 2) give_up("usage: bench_drive CASE...", NULL);
     printf("units loaded in                 %.2f ms\n", 1e3 * (now() - began));

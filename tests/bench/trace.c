@@ -8,6 +8,8 @@
 #include "swirlpot/paper.h"
 #include "swirlpot/trace.h"
 
+#include <udunits2.h>
+
 #include <math.h>
 #include <stdlib.h>
 #include <string.h>
@@ -146,6 +148,7 @@ int main(int argc, char **argv)
     double hours = argc > 5 ? atof(argv[5]) : 24.0, seconds[2], memory;
     snprintf(log, sizeof log, "%s/log.csv", argv[4]);
     snprintf(file, sizeof file, "%s/case.json", argv[4]);
+    ut_set_error_message_handler(ut_ignore);
     struct sp_units *u = sp_units_open();
     if (!u) give_up("no units", NULL);
     struct sp_trace model = read_trace(u, argv[1]);
