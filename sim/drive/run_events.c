@@ -92,8 +92,8 @@ bool sp_run_look_again(struct sp_run *r, bool first)
     if (sp_run_look(r, r->time, sp_integrator_state(r->integrator), &seen)) return false;
     for (int w = 0; w < SP_WATCHES; ++w) {
         bool up = seen.g[w] >= 0.0;
-        if (w == SP_W_PLAY || w == SP_W_PLAY_SHUT) r->high[w] = up;
-        else if (first && (w == SP_W_OPENS || w == SP_W_FULL)) r->high[w] = up; /* where it stands, not an event */
+        bool play = w == SP_W_PLAY || w == SP_W_PLAY_SHUT, lift = w == SP_W_OPENS || w == SP_W_FULL;
+        if (play || (first && lift)) r->high[w] = up; /* where it stands is no event */
         else if (first ? up : up != r->high[w]) crossed(r, w, up);
     }
     r->seen_at = NAN;

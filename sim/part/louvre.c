@@ -165,8 +165,9 @@ static double published_re(const struct sp_louvre_core *c, double re)
 static void find_summit(struct sp_louvre_core *c)
 {
     c->summit_re = INFINITY;
-    for (double re = re_blend_low; re <= re_blend_high; re += 0.25) {
-        double value = re * published_re(c, re);
+    const int steps = 400; /* of Re 0.25 */
+    for (int i = 0; i <= steps; ++i) {
+        double re = re_blend_low + (re_blend_high - re_blend_low) * i / steps, value = re * published_re(c, re);
         if (value < c->summit) return;
         c->summit = value;
         c->summit_re = re;
