@@ -114,6 +114,13 @@ static inline bool fixture_take(void *context, const struct sp_sample *s)
     return true;
 }
 
+static inline bool fixture_again(void *context)
+{
+    struct fixture_series *k = context;
+    k->count = 0;
+    return true;
+}
+
 struct fixture_drive {
     enum sp_status status;
     struct sp_result result;
@@ -130,7 +137,7 @@ static inline struct fixture_drive fixture_run(const struct fixture *f, const st
     struct sp_drive *drive = sp_drive_build(f->units, d, &out.complaints, &cautions);
     sp_complaints_free(&cautions);
     if (!drive) return out;
-    struct sp_sink sink = {.context = &out.series, .row = fixture_take};
+    struct sp_sink sink = {.context = &out.series, .row = fixture_take, .again = fixture_again};
     struct sp_run_options options = {interval, tolerance, interval > 0.0 ? &sink : NULL};
     out.status = sp_drive_run(drive, &options, &out.result, &out.complaints);
     sp_drive_free(drive);

@@ -87,6 +87,10 @@ SP_API double sp_coolant_prandtl(const struct sp_coolant *c, double T);
 /* Specific enthalpy [J/kg], 0 at 0 degC, the exact integral of sp_coolant_cp. */
 SP_API double sp_coolant_enthalpy(const struct sp_coolant *c, double T);
 
+/* Temperature [K] at which the mix begins to freeze: ethylene glycol 10..60 % after ASHRAE tables, linear between;
+ * propylene glycol 50 % -33 degC, other shares in proportion to ethylene glycol's (a guess). */
+SP_API double sp_coolant_freezing(const struct sp_coolant *c);
+
 /* Vapour pressure [Pa] over the mix (modified Raoult, activity 1) and boiling point [K] at
  * pressure p [Pa], 1 kPa..5 MPa. The two are inverse to each other to 1e-9 relative. */
 SP_API double sp_coolant_vapour_pressure(const struct sp_coolant *c, double T);

@@ -91,7 +91,7 @@ bool sp_run_look_again(struct sp_run *r, bool first)
     struct sp_watched seen;
     if (sp_run_look(r, r->time, sp_integrator_state(r->integrator), &seen)) return false;
     for (int w = 0; w < SP_WATCHES; ++w) {
-        bool up = seen.g[w] >= 0.0;
+        bool up = seen.g[w] > 0.0; /* what equals its limit has not passed it */
         bool play = w == SP_W_PLAY || w == SP_W_PLAY_SHUT, lift = w == SP_W_OPENS || w == SP_W_FULL;
         if (play || (first && lift)) r->high[w] = up; /* where it stands is no event */
         else if (first ? up : up != r->high[w]) crossed(r, w, up);

@@ -27,7 +27,7 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
 {
     const struct sp_design *d = b->design;
     const struct sp_step *step = &d->step[i];
-    struct sp_engine_sources s = {d, b->law, SP_POWER_COLUMN, SP_ENGINE_COLUMN};
+    struct sp_engine_sources s = {.design = d, .law = b->law, .power = SP_POWER_COLUMN, .speed = SP_ENGINE_COLUMN};
     if (!hold_turns(b, i)) return false;
     if (isnan(step->power) && step->speed != 0.0) {
         s.power = SP_POWER_ROAD;
@@ -128,6 +128,13 @@ static void add_accounts(struct sp_schedule *to, const struct sp_schedule *from,
 static void join_step(struct sp_scheduling *b, size_t i, double repeat, const struct sp_rows *step)
 {
     double rows = (double)b->rows.table.rows + repeat * (double)step->table.rows;
+    double span = step->table.rows ? step->table.time[step->table.rows - 1] - step->table.time[0] : 0.0;
+    if (repeat * span > SP_SCHEDULE_SPAN) {
+        char found[96];
+        snprintf(found, sizeof found, "%.9g times %.9g s", repeat, span);
+        sp_schedule_fault(b, i, "repeat", found, "a step of at most 100 days in all");
+        return;
+    }
     if (rows > SP_SCHEDULE_ROWS || !sp_rows_reserve(&b->rows, (size_t)rows)) {
         char found[96];
         snprintf(found, sizeof found, "%.9g times %zu rows", repeat, step->table.rows);

@@ -11,6 +11,7 @@
 #include "drive/schedule.h"
 #include "part/engine.h"
 
+#define SP_SCHEDULE_SPAN 8.64e6 /* s, of one step with its repeats: 100 days */
 #define SP_OFF_SHARE 0.3 /* of idle speed: below it the engine is off */
 
 enum { SP_SCHEDULE_ROWS = 20000000 }; /* most rows of a drive: 3 GB */
@@ -112,6 +113,7 @@ struct sp_engine_sources {
     const struct sp_engine_law *law;
     enum sp_power_source power;
     enum sp_speed_source speed;
+    bool lacks_flow; /* the heat law wants a flow that the trace has not */
 };
 
 /* Wheel power of the road load by its parts, W: rolling, climbing, drag, speeding up; and what the brakes

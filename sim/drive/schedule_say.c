@@ -28,6 +28,11 @@ void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const str
     enum sp_heat_law law = b->design->engine.heat_law;
     bool flow = (s->power == SP_POWER_FUEL && law != SP_HEAT_FUEL) ||
                 (s->power == SP_POWER_AIR && law != SP_HEAT_AIR);
+    if (s->lacks_flow && !b->cautioned_flow) {
+        b->cautioned_flow = true;
+        sp_schedule_caution(b, step, "a heat law that goes by flow, and a trace without that flow",
+                            "a column fuel_flow or air_flow; heat taken by power and heat.fraction instead");
+    }
     if (s->speed == SP_ENGINE_ASSUMED && !b->cautioned_speed) {
         b->cautioned_speed = true;
         sp_schedule_caution(b, step, "no engine speed and no gears",

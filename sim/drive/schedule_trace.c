@@ -97,6 +97,8 @@ static bool find_sources(struct deriving *v)
     s->design = v->b->design;
     s->law = v->b->law;
     s->speed = speed_source(v);
+    s->lacks_flow = (e->heat_law == SP_HEAT_FUEL && !has(v, SP_COL_FUEL_FLOW)) ||
+                    (e->heat_law == SP_HEAT_AIR && !has(v, SP_COL_AIR_FLOW));
     if (has(v, SP_COL_POWER)) {
         s->power = SP_POWER_COLUMN;
     } else if (has(v, SP_COL_TORQUE)) {

@@ -53,3 +53,12 @@ double sp_coolant_enthalpy(const struct sp_coolant *c, double T)
     double outside = (T - SP_ZERO_C) - 100.0 * x; /* K beyond the range, where cp is held */
     return 100.0 * x * sum + outside * polynomial(c->cp, x);
 }
+
+double sp_coolant_freezing(const struct sp_coolant *c)
+{
+    static const double degrees[] = {0.0, -3.9, -8.9, -15.7, -24.8, -37.1, -52.0}; /* at 0, 10, .. 60 % by volume */
+    double tenths = fmin(fmax(c->share * 10.0, 0.0), 6.0);
+    int below = tenths < 6.0 ? (int)tenths : 5;
+    double t = degrees[below] + (tenths - below) * (degrees[below + 1] - degrees[below]);
+    return SP_ZERO_C + (c->kind == SP_PROPYLENE_GLYCOL ? t * 33.0 / 37.1 : t);
+}

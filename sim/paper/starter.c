@@ -190,7 +190,8 @@ static bool make_directory(const char *dir, struct sp_complaints *to)
     struct stat what;
     if (mkdir(dir, 0777) == 0) return true;
     if (errno == EEXIST && stat(dir, &what) == 0 && S_ISDIR(what.st_mode)) return true;
-    return refuse(to, dir, "a place where no directory can be made", "a directory, or room for one");
+    return refuse(to, dir, "no directory, nor a place for one",
+                  "a directory, or a new name in a directory that is there");
 }
 
 struct page {

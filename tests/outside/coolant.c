@@ -204,9 +204,24 @@ static void boiling_at_altitude(void **state)
     }
 }
 
+/* Freezing points of ASHRAE's tables by volume: 30 % -15.7, 50 % -37.1, 60 % -52 degC; propylene glycol 50 % -33. */
+static void freezing(void **state)
+{
+    (void)state;
+    const struct { enum sp_coolant_kind kind; double share, t; } given[] = {
+        {SP_WATER, 0.0, 0.0}, {SP_ETHYLENE_GLYCOL, 0.3, -15.7}, {SP_ETHYLENE_GLYCOL, 0.5, -37.1},
+        {SP_ETHYLENE_GLYCOL, 0.6, -52.0}, {SP_PROPYLENE_GLYCOL, 0.5, -33.0}};
+    for (size_t i = 0; i < sizeof given / sizeof *given; ++i) {
+        struct sp_coolant c;
+        assert_true(sp_coolant_mix(given[i].kind, given[i].share, &c));
+        check_close(sp_coolant_freezing(&c), SP_ZERO_C + given[i].t, 0, 0.05);
+    }
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
+        cmocka_unit_test(freezing),
         cmocka_unit_test(water),
         cmocka_unit_test(ethylene_glycol),
         cmocka_unit_test(ethylene_single_values),
