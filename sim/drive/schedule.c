@@ -128,13 +128,6 @@ static void add_accounts(struct sp_schedule *to, const struct sp_schedule *from,
 static void join_step(struct sp_scheduling *b, size_t i, double repeat, const struct sp_rows *step)
 {
     double rows = (double)b->rows.table.rows + repeat * (double)step->table.rows;
-    double span = step->table.rows ? step->table.time[step->table.rows - 1] - step->table.time[0] : 0.0;
-    if (repeat * span > SP_SCHEDULE_SPAN) {
-        char found[96];
-        snprintf(found, sizeof found, "%.9g times %.9g s", repeat, span);
-        sp_schedule_fault(b, i, "repeat", found, "a step of at most 100 days in all");
-        return;
-    }
     if (rows > SP_SCHEDULE_ROWS || !sp_rows_reserve(&b->rows, (size_t)rows)) {
         char found[96];
         snprintf(found, sizeof found, "%.9g times %zu rows", repeat, step->table.rows);
@@ -142,6 +135,13 @@ static void join_step(struct sp_scheduling *b, size_t i, double repeat, const st
             b, i, "repeat", found,
             "a drive of at most 20 million rows that memory can hold: fewer repeats, fewer marks, or a "
             "longer solver.merge");
+        return;
+    }
+    double span = step->table.rows ? step->table.time[step->table.rows - 1] - step->table.time[0] : 0.0;
+    if (repeat * span > SP_SCHEDULE_SPAN) {
+        char found[96];
+        snprintf(found, sizeof found, "%.9g times %.9g s", repeat, span);
+        sp_schedule_fault(b, i, "repeat", found, "a step of at most 100 days in all");
         return;
     }
     for (double n = 0.0; n < repeat && !b->failed; n += 1.0)

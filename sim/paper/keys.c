@@ -82,8 +82,9 @@ size_t sp_edit_distance(const char *a, const char *b)
 
 bool sp_key_near(const char *written, size_t distance)
 {
-    size_t most = strlen(written) / 2; /* two letters that changed places count as two */
-    return distance <= (most > 2 ? most : 2);
+    size_t length = strlen(written), most = length / 2;
+    if (length >= 3 && most < 2) most = 2; /* two letters that changed places count as two */
+    return distance <= (most > 1 ? most : 1);
 }
 
 const char *sp_key_nearest(const char *group, const char *key)

@@ -91,7 +91,8 @@ says err "trace.csv, line 3"
 says err "traced.json"
 
 # A key that stands twice does not hide the file's other faults.
-printf '{ "air": { "ambient": "30 degC", "ambient": "31 degC" }, "widht": 3,\n "car": { "duct": { "inlet": { "area": "5 kg" } } } }\n' >twice.json
+printf '{ "air": { "ambient": "30 degC", "ambient": "31 degC" }, "widht": 3,
+ "car": { "duct": { "inlet": { "area": "5 kg" } } } }\n' >twice.json
 want 2 duct twice.json --speed "30 m/s"
 says err "twice.json, line 1, air.ambient"
 says err "widht"
