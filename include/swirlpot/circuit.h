@@ -1,7 +1,7 @@
 /* swirlpot/circuit.h - the air path of a duct, solved for one condition.
  *
  * Stations: 0 free stream, 1 inlet, 2 core face, 3 core back, 4 behind the fan, 5 exit.
- * Low-Mach flow with the density falling as the air heats; equation (2) of docs/model.md.
+ * Low-Mach flow with the density falling as the air heats; equation (1) of docs/model.md.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SWIRLPOT_CIRCUIT_H
 #define SWIRLPOT_CIRCUIT_H

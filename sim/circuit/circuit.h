@@ -24,7 +24,7 @@ struct sp_circuit {
     struct sp_layout layout;
     struct sp_moist air;
     double mass_jacket, mass_tank, mass_out, mass_back, mass_core; /* kg of coolant, when filled */
-    double liquid_filled, system_volume;                          /* m3 */
+    double system_volume;                                         /* m3, liquid when filled and air space */
     double reference_flow;                                        /* m3/s at which the wax follows fastest */
 };
 

@@ -46,8 +46,8 @@ bool sp_circuit_build(const struct sp_design *d, struct sp_circuit *out, struct 
     out->mass_tank = rho * tank_liquid;
     out->mass_out = rho * hose_out;
     out->mass_back = rho * hose_back;
-    out->liquid_filled = (out->mass_jacket + out->mass_core + out->mass_tank + out->mass_out + out->mass_back) / rho;
-    out->system_volume = out->liquid_filled + d->tank.air_space;
+    double liquid = (out->mass_jacket + out->mass_core + out->mass_tank + out->mass_out + out->mass_back) / rho;
+    out->system_volume = liquid + d->tank.air_space;
     return true;
 }
 

@@ -1,7 +1,7 @@
-/* The air path: one equation in the mass flow, equation (2) of docs/model.md.
+/* The air path: one equation in the mass flow, equation (1) of docs/model.md.
  *
  * Every loss rises with mass flow and every gain falls with it, so that the balance of total pressure is a
- * falling function of mass flow with one root, forward or reverse.
+ * falling function of mass flow with one root, forward or reverse (given heat apart, see solve_heated).
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "circuit/duct_solve.h"
 

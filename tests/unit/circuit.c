@@ -140,6 +140,7 @@ static void check_jacobian(const struct rig *r, const char *what)
             double got = j.jac[c][i];
             if (c >= l->wall) got += j.wall[i] / l->cells;
             if (c >= l->core && c < l->back) got += j.core[i] / l->cells;
+            /* 1e-6: an ulp or some of heat rates near 1e5 W, over the fan's step of 1e-4 */
             double give = 4e-3 * fabs(want[i]) + 1e-6 * scale_of(&j, i) + 1e-6;
             if (!(fabs(got - want[i]) <= give)) {
                 print_error("%s: d f[%d] / d y[%d] is %.9g, by differences %.9g\n", what, i, c, got, want[i]);
