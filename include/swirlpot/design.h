@@ -56,7 +56,7 @@ struct sp_design {
     struct sp_thermostat thermostat;
     struct sp_hoses hoses;
     struct sp_tank tank;
-    struct sp_duct_design duct;
+    struct sp_duct_design duct[SP_DUCTS];
     struct sp_gauge gauge;
     struct sp_limits limits;
     struct sp_start start;

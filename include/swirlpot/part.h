@@ -208,12 +208,14 @@ struct sp_exit {
     double angle;                /* rad to the stream */
 };
 
+enum { SP_DUCTS = 4, SP_CORES = 5, SP_FANS = 3, SP_EXITS = 8 }; /* at most, in a car or a duct */
+
 struct sp_duct_design {
     struct sp_inlet inlet;
     struct sp_diffuser_design diffuser;
-    struct sp_core core;
-    struct sp_fan fan;
-    struct sp_exit exit;
+    struct sp_core core[SP_CORES];
+    struct sp_fan fan[SP_FANS];
+    struct sp_exit exit[SP_EXITS];
 };
 
 #ifdef __cplusplus

@@ -95,7 +95,7 @@ double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const 
 double sp_circuit_fan_wish(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
                            const double *y)
 {
-    const struct sp_fan *f = &c->design->duct.fan;
+    const struct sp_fan *f = &c->design->duct[0].fan[0];
     if (!f->fitted || !(in->flags & SP_FLAG_FAN)) return 0.0;
     const struct sp_electrics *e = &c->design->electrics;
     double full = sp_motor_speed(in->flags & SP_FLAG_ENGINE ? e->voltage_running : e->voltage_stopped, f->rated_voltage);
@@ -125,7 +125,7 @@ double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs
     const struct sp_design *d = c->design;
     double load = 0.0;
     if (in->flags & SP_FLAG_ENGINE)
-        load = (sp_fan_power(&d->duct.fan, y[SP_Y_FAN]) + pump_power(d, in)) / d->electrics.alternator_efficiency;
+        load = (sp_fan_power(&d->duct[0].fan[0], y[SP_Y_FAN]) + pump_power(d, in)) / d->electrics.alternator_efficiency;
     double gas = in->in[SP_IN_HEAT_GAS] + load * in->in[SP_IN_HEAT_SLOPE];
     return gas * sp_engine_gas_factor(&d->engine, y[SP_Y_METAL]) + in->in[SP_IN_HEAT_FRICTION];
 }
@@ -187,7 +187,7 @@ static double core(const struct sp_circuit *c, const struct sp_coupling *k, doub
     int n = l->cells;
     double film = k->core_conductance / n, mass = c->mass_core / n;
     double to_air = fabs(k->duct.mass_flow) * c->air.cp * k->duct.effectiveness / n;
-    double metal = c->design->duct.core.metal_capacity / n;
+    double metal = c->design->duct[0].core[0].metal_capacity / n;
     double w = sp_cells_weight(k->core_rate > 0.0 ? film / k->core_rate : INFINITY);
     double before = y[l->core - 1];
     for (int i = 0; i < n; ++i) {
@@ -227,14 +227,14 @@ void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, co
     dydt[SP_Y_JACKET] = (carried + to_coolant) / (c->mass_jacket * sp_coolant_cp(f, y[SP_Y_JACKET]));
 
     dydt[SP_Y_WAX] = (y[SP_Y_JACKET] - y[SP_Y_WAX]) * sp_thermostat_rate(&d->thermostat, k->loop.pump, c->reference_flow);
-    dydt[SP_Y_FAN] = d->duct.fan.fitted ? (sp_circuit_fan_wish(c, in, modes, y) - y[SP_Y_FAN]) / d->duct.fan.spin_up : 0.0;
+    dydt[SP_Y_FAN] = d->duct[0].fan[0].fitted ? (sp_circuit_fan_wish(c, in, modes, y) - y[SP_Y_FAN]) / d->duct[0].fan[0].spin_up : 0.0;
     dydt[SP_Y_GAUGE] = (sp_circuit_place(c, d->gauge.place, y) - y[SP_Y_GAUGE]) / fmax(d->gauge.lag, quickest_gauge);
     tank_rates(c, in, y, dydt);
 
     dydt[SP_Y_HEAT_IN] = heat;
     dydt[SP_Y_HEAT_AIR] = k->duct.heat;
     dydt[SP_Y_HEAT_SKIN] = metal_skin + skin + tank_skin;
-    dydt[SP_Y_FAN_ENERGY] = sp_fan_power(&d->duct.fan, y[SP_Y_FAN]);
+    dydt[SP_Y_FAN_ENERGY] = sp_fan_power(&d->duct[0].fan[0], y[SP_Y_FAN]);
     dydt[SP_Y_DRAG_WORK] = k->duct.drag * in->in[SP_IN_SPEED];
     double rho = in->in[SP_IN_PRESSURE] / (c->air.R * ambient), V = in->in[SP_IN_AIR_SPEED];
     dydt[SP_Y_HEAD_WORK] = 0.5 * rho * V * V * in->in[SP_IN_SPEED];

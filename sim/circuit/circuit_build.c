@@ -18,14 +18,14 @@ bool sp_circuit_build(const struct sp_design *d, struct sp_circuit *out, struct 
 {
     memset(out, 0, sizeof *out);
     struct sp_place at = {.file = d->file, .path = "car.duct.core.cells"};
-    if (!(d->duct.core.cells >= 1.0 && d->duct.core.cells <= SP_CELLS_MAX)) { /* a design filled by hand */
+    if (!(d->duct[0].core[0].cells >= 1.0 && d->duct[0].core[0].cells <= SP_CELLS_MAX)) { /* a design filled by hand */
         sp_complain(complaints, &at, "a number of cells that cannot be", "1 to 50 cells", NULL);
         return false;
     }
     at.path = "car.duct";
     out->design = d;
     out->air = sp_moist_air(d->air.ambient, d->air.pressure, d->air.humidity);
-    out->duct = sp_duct_build(&d->duct, &d->coolant.fluid, &at, complaints);
+    out->duct = sp_duct_build(&d->duct[0], &d->coolant.fluid, &at, complaints);
     if (!out->duct) return false;
     if (!sp_core_has_heat(&out->duct->core)) {
         at.path = "car.duct.core.heat";
@@ -34,7 +34,7 @@ bool sp_circuit_build(const struct sp_design *d, struct sp_circuit *out, struct 
     }
     at.path = "car.pump.curve";
     if (!sp_loop_build(d, &out->duct->core, &out->loop, &at, complaints)) return false;
-    out->layout = sp_layout_of((int)d->duct.core.cells);
+    out->layout = sp_layout_of((int)d->duct[0].core[0].cells);
     out->reference_flow = out->loop.pump.free_flow;
 
     double rho = sp_coolant_density(&d->coolant.fluid, d->tank.fill_temperature);
@@ -42,7 +42,7 @@ bool sp_circuit_build(const struct sp_design *d, struct sp_circuit *out, struct 
     double hose_out = bore_volume(d->hoses.length_out, d->hoses.bore_out);
     double hose_back = bore_volume(d->hoses.length_back, d->hoses.bore_back);
     out->mass_jacket = rho * fmax(d->engine.coolant_volume, smallest);
-    out->mass_core = rho * fmax(d->duct.core.coolant_volume, smallest);
+    out->mass_core = rho * fmax(d->duct[0].core[0].coolant_volume, smallest);
     out->mass_tank = rho * tank_liquid;
     out->mass_out = rho * hose_out;
     out->mass_back = rho * hose_back;
@@ -105,7 +105,7 @@ double sp_circuit_heat_held(const struct sp_circuit *c, const double *y)
                 c->mass_back * sp_coolant_enthalpy(f, y[l->back + i])) / SP_HOSE_CELLS;
     for (int i = 0; i < l->cells; ++i)
         sum += (c->mass_core * sp_coolant_enthalpy(f, y[l->core + i]) +
-                c->design->duct.core.metal_capacity * (y[l->wall + i] - SP_ZERO_C)) / l->cells;
+                c->design->duct[0].core[0].metal_capacity * (y[l->wall + i] - SP_ZERO_C)) / l->cells;
     return sum;
 }
 

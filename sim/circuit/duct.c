@@ -52,7 +52,7 @@ static struct problem pose(const struct sp_duct *d, const struct sp_duct_inputs 
     bool ahead = in->speed >= 0.0;
     /* A wind from behind rams the exit, as far as it looks that way, and leaves the inlet in the lee. */
     p.recovery = ahead ? d->design.inlet.recovery : 0.0;
-    p.back = ahead ? d->design.exit.pressure_coefficient : d->cos_angle * d->cos_angle;
+    p.back = ahead ? d->design.exit[0].pressure_coefficient : d->cos_angle * d->cos_angle;
     /* Given heat makes the losses of nil flow linear by itself; the floor would leave a step there. */
     p.floor = in->heat_given && in->heat > 0.0 ? 0.0 : laminar_floor;
     return p;
@@ -104,7 +104,7 @@ static struct sp_core_loss through_core(const struct problem *p, double m, const
 static double fan_at(const struct problem *p, double m, const struct flow *f)
 {
     double ahead = fmin(fmax(0.5 + 0.5 * m / (p->density * p->duct->core.face * creeping), 0.0), 1.0);
-    if (p->duct->design.fan.before_core) ahead = 1.0 - ahead;
+    if (p->duct->design.fan[0].before_core) ahead = 1.0 - ahead;
     double cold = f->rho_in, hot = f->rho_out;
     return sp_fan_pressure(&p->duct->fan, p->in->fan_speed, m, cold + (hot - cold) * ahead);
 }
@@ -119,8 +119,8 @@ static void forward(const struct problem *p, double m, struct flow *f)
     f->diffuser = p->duct->diffuser_loss * inlet_head;
     f->core = through_core(p, m, f);
     f->fan = fan_at(p, m, f);
-    f->exit_head = head_in(p, m, f->rho_out, d->exit.area);
-    f->exit = d->exit.loss * f->exit_head;
+    f->exit_head = head_in(p, m, f->rho_out, d->exit[0].area);
+    f->exit = d->exit[0].loss * f->exit_head;
     f->balance = f->available - f->back + f->fan - f->lip - f->screen - f->diffuser - f->core.core -
                  f->core.heating - f->exit - f->exit_head;
 }
@@ -135,7 +135,7 @@ static void reverse(const struct problem *p, double m, struct flow *f)
     f->diffuser = p->duct->diffuser_loss * inlet_head;
     f->core = through_core(p, m, f);
     f->fan = fan_at(p, m, f);
-    f->exit = (d->exit.loss + reverse_entry) * head_in(p, m, f->rho_in, d->exit.area);
+    f->exit = (d->exit[0].loss + reverse_entry) * head_in(p, m, f->rho_in, d->exit[0].area);
     f->balance = f->available - f->back + f->fan + f->lip + f->screen + f->diffuser + f->core.core +
                  f->core.heating + f->exit;
 }
@@ -172,11 +172,11 @@ static void fill(const struct problem *p, double m, const struct flow *f, struct
     out->heat = f->heat;
     out->face_velocity = m / (p->density * p->duct->core.face);
     out->temperature_ratio = f->tau;
-    out->exit_velocity = m / ((m >= 0.0 ? f->rho_out : f->rho_in) * d->exit.area);
+    out->exit_velocity = m / ((m >= 0.0 ? f->rho_out : f->rho_in) * d->exit[0].area);
     out->fan_pressure = f->fan;
     /* In reverse the air is swallowed from behind and leaves forwards as a jet: both are drag. */
     double jet = m >= 0.0 ? out->exit_velocity * cos_a : m / (f->rho_out * d->inlet.area);
-    out->drag = fabs(m) * (p->speed - jet) - f->back * d->exit.area * cos_a;
+    out->drag = fabs(m) * (p->speed - jet) - f->back * d->exit[0].area * cos_a;
     out->diffuser_stalled = p->duct->diffuser_stalled && m > 0.0;
 }
 
@@ -244,12 +244,12 @@ void sp_duct_stations(const struct sp_duct *d, const struct sp_duct_inputs *in, 
     struct problem p = pose(d, in);
     double m = state->mass_flow, T2 = in->temperature, T3 = T2 * state->temperature_ratio;
     struct flow f = flow_at(&p, m);
-    double face = d->core.face, inlet = d->design.inlet.area, exit = d->design.exit.area;
+    double face = d->core.face, inlet = d->design.inlet.area, exit = d->design.exit[0].area;
     bool ahead = m >= 0.0;
     double front = ahead ? T2 : T3, rear = ahead ? T3 : T2, way = ahead ? 1.0 : -1.0;
     /* From the front backwards; in reverse flow the losses run the other way. */
     double at_inlet = ahead ? f.available - f.lip : f.available + f.lip;
-    double fan_front = d->design.fan.before_core ? f.fan : 0.0, fan_rear = f.fan - fan_front;
+    double fan_front = d->design.fan[0].before_core ? f.fan : 0.0, fan_rear = f.fan - fan_front;
     double at_face = at_inlet - way * (f.screen + f.diffuser) + fan_front;
     double at_back = at_face - way * (f.core.core + f.core.heating);
     double at_fan = at_back + fan_rear;
@@ -303,9 +303,9 @@ struct sp_duct *sp_duct_build(const struct sp_duct_design *design, const struct 
         return NULL;
     }
     d->design = *design;
-    bool good = sp_core_build(&d->design.core, coolant, &d->core, at, complaints);
-    good = sp_fan_build(&d->design.fan, d->core.face, &d->fan, at, complaints) && good;
-    d->cos_angle = cos(design->exit.angle);
+    bool good = sp_core_build(&d->design.core[0], coolant, &d->core, at, complaints);
+    good = sp_fan_build(&d->design.fan[0], d->core.face, &d->fan, at, complaints) && good;
+    d->cos_angle = cos(design->exit[0].angle);
     if (good) set_diffuser(d);
     if (good) return d;
     sp_duct_free(d);

@@ -112,10 +112,10 @@ static enum sp_status ask(const struct sp_arguments *a, struct sp_units *u, stru
     bool good = read_question(u, a, q);
     struct sp_design *d =
         sp_case_read(u, a->operand, a->sets.list, a->sets.count, SP_FOR_DUCT, &q->complaints, &q->cautions);
-    if (d && good && q->fan && !d->duct.fan.fitted)
+    if (d && good && q->fan && !d->duct[0].fan[0].fitted)
         complain(q, "--fan", "on, but the car has no fan", "car.duct.fan, or off");
     else if (d && good)
-        duct = sp_duct_build(&d->duct, &d->coolant.fluid, &at, &q->complaints);
+        duct = sp_duct_build(&d->duct[0], &d->coolant.fluid, &at, &q->complaints);
     if (duct) status = answer(a, d, duct, q);
     sp_duct_free(duct);
     sp_design_free(d);

@@ -32,7 +32,7 @@ static void note(struct sp_run *r, enum sp_event_kind kind)
 /* Whether the controller lets the fan run now; its on-time and its events follow from this alone. */
 void sp_run_follow_fan(struct sp_run *r)
 {
-    const struct sp_fan *f = &r->drive->design->duct.fan;
+    const struct sp_fan *f = &r->drive->design->duct[0].fan[0];
     bool allowed = f->fitted && (r->schedule->flags[r->segment] & SP_FLAG_FAN);
     bool asked = f->law == SP_FAN_ALWAYS || (f->law == SP_FAN_SWITCHED && r->modes.fan_on) ||
                  (f->law == SP_FAN_PROPORTIONAL && r->high[SP_W_FAN]);
@@ -62,7 +62,7 @@ static bool crossed(struct sp_run *r, int w, bool up)
     note(r, up ? sp_watch_event[w].rise : sp_watch_event[w].fall);
     switch (w) {
     case SP_W_FAN:
-        if (r->drive->design->duct.fan.law != SP_FAN_SWITCHED) return false;
+        if (r->drive->design->duct[0].fan[0].law != SP_FAN_SWITCHED) return false;
         if (up == r->modes.fan_on) return false;
         r->modes.fan_on = up;
         return r->schedule->flags[r->segment] & SP_FLAG_FAN;

@@ -36,7 +36,7 @@ static void flows(const struct sp_run *r, const struct sp_inputs *in, const doub
     v[SP_CH_AIR_OUT] = in->in[SP_IN_AMBIENT] * k->duct.temperature_ratio;
     v[SP_CH_FAN_SPEED] = y[SP_Y_FAN];
     v[SP_CH_FAN_PRESSURE] = k->duct.fan_pressure;
-    v[SP_CH_FAN_POWER] = sp_fan_power(&r->drive->design->duct.fan, y[SP_Y_FAN]);
+    v[SP_CH_FAN_POWER] = sp_fan_power(&r->drive->design->duct[0].fan[0], y[SP_Y_FAN]);
     v[SP_CH_DRAG] = k->duct.drag;
 }
 

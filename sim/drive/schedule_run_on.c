@@ -80,7 +80,7 @@ static void set_flags(struct sp_schedule *s, const struct windows *w)
 bool sp_schedule_run_on(struct sp_rows *r, const struct sp_design *d)
 {
     struct windows w = {window(d->pump.electric, d->pump.run_on),
-                        window(d->duct.fan.fitted, d->duct.fan.run_on)};
+                        window(d->duct[0].fan[0].fitted, d->duct[0].fan[0].run_on)};
     size_t count = find(&r->table, &w, NULL);
     if (count > 0) {
         struct sp_row_insertion *list = malloc(count * sizeof *list);

@@ -23,7 +23,7 @@ const struct sp_watch_events sp_watch_event[SP_WATCHES] = {
 
 static double fan_watch(const struct sp_circuit *c, const struct sp_modes *m, const double *y)
 {
-    const struct sp_fan *f = &c->design->duct.fan;
+    const struct sp_fan *f = &c->design->duct[0].fan[0];
     if (!f->fitted) return 1.0;
     double T = sp_circuit_place(c, f->sensor, y);
     if (f->law == SP_FAN_SWITCHED) return T - (m->fan_on ? f->off : f->on);

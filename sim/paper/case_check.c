@@ -54,7 +54,7 @@ static void check_order(struct sp_reader *r, const struct order *o)
 static void check_orders(struct sp_reader *r)
 {
     const struct sp_design *d = r->design;
-    const struct sp_fan *f = &d->duct.fan;
+    const struct sp_fan *f = &d->duct[0].fan[0];
     const struct order orders[] = {
         {"car.thermostat.opens", "car.thermostat.full", d->thermostat.opens, d->thermostat.full},
         {"car.engine.idle_speed", "car.engine.rated_speed", d->engine.idle_speed, d->engine.rated_speed},
@@ -179,7 +179,7 @@ static void check_pump(struct sp_reader *r)
 
 static void check_fan(struct sp_reader *r)
 {
-    const struct sp_fan *f = &r->design->duct.fan;
+    const struct sp_fan *f = &r->design->duct[0].fan[0];
     check_curve(r, "car.duct.fan.curve", &f->curve.pairs);
     if (f->fitted && f->static_basis && !sp_case_given(r, "car.duct.fan.diameter"))
         sp_case_fault(r, "car.duct.fan.diameter", "nothing",
@@ -194,7 +194,7 @@ static void check_diffuser(struct sp_reader *r)
         sp_case_fault(r, "car.duct.diffuser.kind", "both kind and loss", "one of them", NULL);
     if (length && !kind)
         sp_case_fault(r, "car.duct.diffuser.kind", "nothing", "\"conical\", for a length is given", NULL);
-    if (!length && kind && r->design->duct.diffuser.kind == SP_DIFFUSER_CONICAL)
+    if (!length && kind && r->design->duct[0].diffuser.kind == SP_DIFFUSER_CONICAL)
         sp_case_fault(r, "car.duct.diffuser.length", "nothing", "a length such as \"320 mm\"", NULL);
 }
 

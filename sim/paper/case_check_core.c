@@ -34,7 +34,7 @@ static void below(struct sp_reader *r, const char *key, double value, double bou
 
 static void check_geometry(struct sp_reader *r)
 {
-    const struct sp_core *c = &r->design->duct.core;
+    const struct sp_core *c = &r->design->duct[0].core[0];
     double gap = c->tube_pitch - c->tube_height;
     below(r, "tubes.height", c->tube_height, c->tube_pitch, "tube height below tube pitch");
     below(r, "tubes.wall", 2.0 * c->tube_wall, c->tube_height, "a wall below half the tube's height");
@@ -53,7 +53,7 @@ static void check_geometry(struct sp_reader *r)
 
 static void check_table(struct sp_reader *r)
 {
-    const struct sp_table *t = &r->design->duct.core.drop_table;
+    const struct sp_table *t = &r->design->duct[0].core[0].drop_table;
     for (size_t i = 0; i < t->rows; ++i) {
         bool fine = i ? t->cell[2 * i] > t->cell[2 * i - 2] && t->cell[2 * i + 1] > t->cell[2 * i - 1]
                       : (t->cell[0] > 0.0) == (t->cell[1] > 0.0);
@@ -101,7 +101,7 @@ static void check_list(struct sp_reader *r, const char *key, const struct sp_tab
 
 static void check_maker(struct sp_reader *r)
 {
-    const struct sp_core *c = &r->design->duct.core;
+    const struct sp_core *c = &r->design->duct[0].core[0];
     const struct sp_table *m = &c->heat_per_kelvin;
     if (!given(r, "heat.face_velocity"))
         lacks(r, "heat.face_velocity", "the face velocities of the rows of rejection");
@@ -147,7 +147,7 @@ static void check_heat(struct sp_reader *r)
 
 static void check_for_drive(struct sp_reader *r)
 {
-    const struct sp_core *c = &r->design->duct.core;
+    const struct sp_core *c = &r->design->duct[0].core[0];
     if (!given(r, "heat") && !given(r, "fins"))
         lacks(r, "heat", "heat data, or fins and tubes: a drive needs a core that conducts");
     if (given(r, "depth") || !(c->width > 0.0 && c->height > 0.0)) return;

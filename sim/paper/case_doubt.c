@@ -21,25 +21,25 @@ static void say(struct sp_reader *r, const struct doubt *list, size_t n)
 
 static void doubt_duct(struct sp_reader *r)
 {
-    const struct sp_duct_design *d = &r->design->duct;
-    double face = d->core.width * d->core.height;
-    bool fan = d->fan.fitted;
+    const struct sp_duct_design *d = &r->design->duct[0];
+    double face = d->core[0].width * d->core[0].height;
+    bool fan = d->fan[0].fitted;
     const struct doubt list[] = {
         {d->inlet.area > face, "car.duct.inlet.area", NULL,
          "an inlet smaller than the core's face, as a rule"},
-        {d->exit.area < 0.1 * face, "car.duct.exit.area", NULL,
+        {d->exit[0].area < 0.1 * face, "car.duct.exit.area", NULL,
          "an exit of more than a tenth of the core's face, as a rule"},
         {d->inlet.area < 0.05 * face, "car.duct.inlet.area", NULL,
          "an inlet of more than a twentieth of the core's face, as a rule"},
-        {fan && d->fan.diameter > 1.2 * fmin(d->core.width, d->core.height), "car.duct.fan.diameter", NULL,
+        {fan && d->fan[0].diameter > 1.2 * fmin(d->core[0].width, d->core[0].height), "car.duct.fan.diameter", NULL,
          "a fan that fits upon the core"},
-        {fan && d->fan.law == SP_FAN_SWITCHED && d->fan.on > r->design->limits.coolant,
+        {fan && d->fan[0].law == SP_FAN_SWITCHED && d->fan[0].on > r->design->limits.coolant,
          "car.duct.fan.switch.on", NULL, "a switch that closes below the limit of the coolant"},
-        {fan && d->fan.law == SP_FAN_PROPORTIONAL && d->fan.from > r->design->limits.coolant,
+        {fan && d->fan[0].law == SP_FAN_PROPORTIONAL && d->fan[0].from > r->design->limits.coolant,
          "car.duct.fan.proportional.from", NULL, "a fan that starts below the limit of the coolant"},
-        {fan && d->fan.law != SP_FAN_SWITCHED && sp_case_given(r, "car.duct.fan.switch"),
+        {fan && d->fan[0].law != SP_FAN_SWITCHED && sp_case_given(r, "car.duct.fan.switch"),
          "car.duct.fan.switch", NULL, "no switch with this control; it is not used"},
-        {fan && d->fan.law != SP_FAN_PROPORTIONAL && sp_case_given(r, "car.duct.fan.proportional"),
+        {fan && d->fan[0].law != SP_FAN_PROPORTIONAL && sp_case_given(r, "car.duct.fan.proportional"),
          "car.duct.fan.proportional", NULL, "control \"proportional\" with it; it is not used"},
     };
     say(r, list, sizeof list / sizeof *list);
@@ -78,7 +78,7 @@ static void doubt_engine(struct sp_reader *r)
 /* The correlations of fins rest on data of a certain range; beyond it they are a guess. */
 static void doubt_fins(struct sp_reader *r)
 {
-    const struct sp_core *c = &r->design->duct.core;
+    const struct sp_core *c = &r->design->duct[0].core[0];
     if (c->drop_law != SP_DROP_FINS && c->heat_law != SP_CORE_FINS) return;
     struct sp_louvre g = sp_core_louvre(c);
     const char *outside = sp_louvre_outside(&g);

@@ -8,7 +8,7 @@
 
 static void settle_core(struct sp_reader *r)
 {
-    struct sp_core *c = &r->design->duct.core;
+    struct sp_core *c = &r->design->duct[0].core[0];
     bool fins = sp_case_given(r, "car.duct.core.fins") && sp_case_given(r, "car.duct.core.tubes");
     if (!sp_case_given(r, "car.duct.core.pressure_drop"))
         c->drop_law = SP_DROP_FINS;

@@ -76,7 +76,7 @@ static double circle(double bore)
 static double circuit_volume(const struct sp_design *d)
 {
     const struct sp_hoses *h = &d->hoses;
-    return d->engine.coolant_volume + d->duct.core.coolant_volume + h->length_out * circle(h->bore_out) +
+    return d->engine.coolant_volume + d->duct[0].core[0].coolant_volume + h->length_out * circle(h->bore_out) +
            h->length_back * circle(h->bore_back);
 }
 
@@ -97,12 +97,12 @@ double sp_rule_tank_volume(const struct sp_design *d)
 /* The geometry has its own ratio: then NAN. */
 double sp_rule_free_area(const struct sp_design *d)
 {
-    return d->duct.core.drop_law == SP_DROP_FINS ? (double)NAN : 1.0;
+    return d->duct[0].core[0].drop_law == SP_DROP_FINS ? (double)NAN : 1.0;
 }
 
 double sp_rule_louvre_length(const struct sp_design *d)
 {
-    double gap = d->duct.core.tube_pitch - d->duct.core.tube_height;
+    double gap = d->duct[0].core[0].tube_pitch - d->duct[0].core[0].tube_height;
     return gap > 0.0 ? 0.85 * gap : (double)NAN; /* tubes that touch are complained of elsewhere */
 }
 
@@ -119,14 +119,14 @@ static double tanks(const struct sp_core *c)
 
 double sp_rule_core_metal(const struct sp_design *d)
 {
-    const struct sp_core *c = &d->duct.core;
+    const struct sp_core *c = &d->duct[0].core[0];
     const double aluminium = 900.0; /* J/kgK */
     return aluminium * (0.33 * core_volume(c) / litre + 2.5 * tanks(c));
 }
 
 double sp_rule_core_coolant(const struct sp_design *d)
 {
-    const struct sp_core *c = &d->duct.core;
+    const struct sp_core *c = &d->duct[0].core[0];
     return 0.13 * core_volume(c) + 1.3 * litre * tanks(c);
 }
 
@@ -137,22 +137,22 @@ static bool tubes_known(const struct sp_core *c)
 
 double sp_rule_core_drop_flow(const struct sp_design *d)
 {
-    return tubes_known(&d->duct.core) ? (double)NAN : 100.0 * litre / 60.0;
+    return tubes_known(&d->duct[0].core[0]) ? (double)NAN : 100.0 * litre / 60.0;
 }
 
 double sp_rule_core_drop(const struct sp_design *d)
 {
-    return tubes_known(&d->duct.core) ? (double)NAN : 18e3;
+    return tubes_known(&d->duct[0].core[0]) ? (double)NAN : 18e3;
 }
 
 /* ---- fan ------------------------------------------------------------------------------------------- */
 
 double sp_rule_fan_power(const struct sp_design *d)
 {
-    return best_power(&d->duct.fan.curve) / 0.23;
+    return best_power(&d->duct[0].fan[0].curve) / 0.23;
 }
 
 double sp_rule_fan_hub(const struct sp_design *d)
 {
-    return 0.35 * d->duct.fan.diameter;
+    return 0.35 * d->duct[0].fan[0].diameter;
 }

@@ -153,7 +153,7 @@ static void say_fan(const struct telling *t)
     size_t times = 0;
     for (size_t i = 0; i < out->events; ++i)
         times += out->event[i].kind == SP_EV_FAN_ON;
-    if (!t->report->design->duct.fan.fitted)
+    if (!t->report->design->duct[0].fan[0].fitted)
         sp_say(t->to, SP_LABEL_WIDTH, "Fan", "none");
     else if (!times)
         sp_say(t->to, SP_LABEL_WIDTH, "Fan", "never ran");

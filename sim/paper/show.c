@@ -227,9 +227,9 @@ static bool worth_showing(const struct entry *e)
 /* Keys of parts that are not there. */
 static bool of_absent_part(const struct sp_design *d, const char *path)
 {
-    return (!d->duct.fan.fitted && !strncmp(path, "car.duct.fan.", 13)) ||
-           (d->duct.core.drop_law == SP_DROP_FINS && !strncmp(path, "car.duct.core.pressure_drop.", 28)) ||
-           ((d->duct.core.heat_law == SP_CORE_FINS || d->duct.core.heat_law == SP_CORE_NO_HEAT) &&
+    return (!d->duct[0].fan[0].fitted && !strncmp(path, "car.duct.fan.", 13)) ||
+           (d->duct[0].core[0].drop_law == SP_DROP_FINS && !strncmp(path, "car.duct.core.pressure_drop.", 28)) ||
+           ((d->duct[0].core[0].heat_law == SP_CORE_FINS || d->duct[0].core[0].heat_law == SP_CORE_NO_HEAT) &&
             !strncmp(path, "car.duct.core.heat.", 19)) ||
            (d->thermostat.none && !strncmp(path, "car.thermostat.", 15));
 }
@@ -274,7 +274,7 @@ static void show_all(struct shower *s)
     const struct sp_key *row;
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
         if (row->shape == SP_SHAPE_STEPS) show_steps(s);
-        if (!strcmp(row->path, "car.duct.fan")) show_absent(s, row, !d->duct.fan.fitted);
+        if (!strcmp(row->path, "car.duct.fan")) show_absent(s, row, !d->duct[0].fan[0].fitted);
         if (!strcmp(row->path, "car.thermostat")) show_absent(s, row, d->thermostat.none);
         if (sp_key_of_step(row) || row->shape == SP_SHAPE_GROUP || row->shape == SP_SHAPE_STEPS) continue;
         struct entry e = {row, sp_case_node(s->reader->tree, row->path), row->path, sp_key_place(row, d, 0)};

@@ -221,7 +221,7 @@ static void settled_drive_rejects_the_table(void **state)
     struct sp_design d = *f.base;
     fixture_freeze(&d.coolant.fluid);
     d.coolant.fluid.cp[0] = table_cp;
-    struct sp_core *c = &d.duct.core;
+    struct sp_core *c = &d.duct[0].core[0];
     c->width = 0.6;
     c->height = 0.4;
     c->heat_law = SP_CORE_MAKER;
@@ -235,7 +235,7 @@ static void settled_drive_rejects_the_table(void **state)
     c->free_area_ratio = 0.7;
     d.air.humidity = 0.0;
     d.thermostat.none = true;
-    d.duct.fan.fitted = false;
+    d.duct[0].fan[0].fitted = false;
     d.hoses.skin = 0.0;
     struct sp_step s = fixture_hold(6000.0, 31.0, 30e3, 60.0);
     d.step = &s;

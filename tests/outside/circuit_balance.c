@@ -66,14 +66,14 @@ static void cold_film_is_weaker(void **state)
     (void)state;
     struct rig r;
     take(&r);
-    r.d.duct.core.heat_law = SP_CORE_POWER;
-    r.d.duct.core.air_conductance = 1e3;
-    r.d.duct.core.air_exponent = 0.5;
-    r.d.duct.core.at_face_velocity = 5.0;
-    r.d.duct.core.heat_at_density = 1.2;
-    r.d.duct.core.coolant_conductance = 5e3;
-    r.d.duct.core.coolant_exponent = 0.8;
-    r.d.duct.core.at_coolant_flow = 1.5;
+    r.d.duct[0].core[0].heat_law = SP_CORE_POWER;
+    r.d.duct[0].core[0].air_conductance = 1e3;
+    r.d.duct[0].core[0].air_exponent = 0.5;
+    r.d.duct[0].core[0].at_face_velocity = 5.0;
+    r.d.duct[0].core[0].heat_at_density = 1.2;
+    r.d.duct[0].core[0].coolant_conductance = 5e3;
+    r.d.duct[0].core[0].coolant_exponent = 0.8;
+    r.d.duct[0].core[0].at_coolant_flow = 1.5;
     prepare(&r);
     double re_ratio = 0.82 / 3.94, pr_ratio = (3281.0 * 3.94 / 0.380) / (3551.0 * 0.82 / 0.414);
     double want = 0.380 / 0.414 * pow(re_ratio, 0.8) * pow(pr_ratio, 0.4);
@@ -91,7 +91,7 @@ static void cold_coolant_is_harder_to_pump(void **state)
     (void)state;
     struct rig r;
     take(&r);
-    r.d.duct.core.drop = (struct sp_resistance){1e-3, 15e3};
+    r.d.duct[0].core[0].drop = (struct sp_resistance){1e-3, 15e3};
     prepare(&r);
     const struct sp_core_ready *core = &r.c.duct->core;
     const struct sp_coolant *f = &r.d.coolant.fluid;
@@ -150,7 +150,7 @@ static void core_cells_along_an_even_wall(void **state)
         take(&r);
         fixture_freeze(&r.d.coolant.fluid);
         r.d.thermostat.none = true;
-        r.d.duct.core.cells = cells;
+        r.d.duct[0].core[0].cells = cells;
         prepare(&r);
         const struct sp_layout *l = &r.c.layout;
         int n = l->cells;
@@ -172,7 +172,7 @@ static void core_cells_along_an_even_wall(void **state)
         double into_wall = 0.0;
         for (int i = 0; i < n; ++i) {
             check_close(dydt[l->core + i] * r.c.mass_core / n * 3551.0, 0.0, 0, 1e-8 * rate * (inlet - wall));
-            into_wall += dydt[l->wall + i] * r.d.duct.core.metal_capacity / n;
+            into_wall += dydt[l->wall + i] * r.d.duct[0].core[0].metal_capacity / n;
         }
         check_close(into_wall + k.duct.heat, rate * (inlet - r.y[l->core + n - 1]), 1e-8, 0);
         sp_circuit_free(&r.c);
@@ -242,7 +242,7 @@ static void fan_loads_the_engine(void **state)
     take(&r);
     r.d.engine.gas_temperature = NAN;
     r.d.electrics.alternator_efficiency = 0.55;
-    r.d.duct.fan.power = 300.0;
+    r.d.duct[0].fan[0].power = 300.0;
     r.in.in[SP_IN_HEAT_SLOPE] = 0.4;
     prepare(&r);
     struct sp_coupling k;

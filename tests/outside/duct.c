@@ -19,10 +19,10 @@ static struct rig plain(double K, double re, double cp_exit)
 {
     struct rig r;
     memset(&r, 0, sizeof r);
-    r.d.core = (struct sp_core){.width = 0.5, .height = 0.5, .free_area_ratio = 1.0, .coefficient = K,
+    r.d.core[0] = (struct sp_core){.width = 0.5, .height = 0.5, .free_area_ratio = 1.0, .coefficient = K,
                                 .at_temperature = NAN, .heat_factor = 1.0, .cells = 10};
     r.d.inlet = (struct sp_inlet){.area = 0.25, .recovery = 1.0, .lip_loss = 1.0};
-    r.d.exit = (struct sp_exit){.area = 0.25 / re, .pressure_coefficient = cp_exit};
+    r.d.exit[0] = (struct sp_exit){.area = 0.25 / re, .pressure_coefficient = cp_exit};
     r.in = (struct sp_duct_inputs){.speed = 40.0, .wake = 1.0, .temperature = 290.0, .R = SP_R_DRY,
                                    .cp = SP_CP_DRY};
     r.in.pressure = 1.2 * r.in.R * r.in.temperature;
@@ -65,7 +65,7 @@ static void cold_closed_forms(void **state)
     r.d.diffuser.loss = 0.177778;
     check_close(phi(&r), 0.297044, 0, 6e-7);
     r.d.diffuser.loss = 4.0 / 9.0; /* B6 */
-    r.d.exit.loss = 0.05;
+    r.d.exit[0].loss = 0.05;
     check_close(phi(&r), 0.272166, 0, 6e-7);
     r.d.diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_SUDDEN}; /* the same from its shape */
     check_close(phi(&r), 0.272166, 0, 6e-7);
@@ -78,10 +78,10 @@ static void makers_core_law(void **state)
 {
     (void)state;
     struct rig r = plain(0.0, 2.0, -0.15); /* B8 */
-    r.d.core.drop_law = SP_DROP_LINEAR;
-    r.d.core.linear = 60.0;
-    r.d.core.quadratic = 12.0;
-    r.d.core.at_density = 1.2;
+    r.d.core[0].drop_law = SP_DROP_LINEAR;
+    r.d.core[0].linear = 60.0;
+    r.d.core[0].quadratic = 12.0;
+    r.d.core[0].at_density = 1.2;
     struct sp_duct_state s = solve(&r);
     check_close(s.face_velocity, 6.917052, 0, 6e-7);
     check_close(60.0 * s.face_velocity + 12.0 * s.face_velocity * s.face_velocity, 989.1705, 0, 2e-4);
@@ -90,12 +90,12 @@ static void makers_core_law(void **state)
 static struct rig fan_rig(void)
 {
     struct rig r = plain(10.0, 1.0, 0.0);
-    r.d.core.width = 0.5;
-    r.d.core.height = 0.4;
+    r.d.core[0].width = 0.5;
+    r.d.core[0].height = 0.4;
     r.d.inlet.area = 0.08;
     r.d.inlet.lip_loss = 0.5;
-    r.d.exit.area = 0.12;
-    r.d.fan = (struct sp_fan){.fitted = true, .count = 1, .curve = {250.0, 0.8, {0, 0, NULL}}, .diameter = NAN,
+    r.d.exit[0].area = 0.12;
+    r.d.fan[0] = (struct sp_fan){.fitted = true, .count = 1, .curve = {250.0, 0.8, {0, 0, NULL}}, .diameter = NAN,
                               .windmill_loss = 1.0};
     r.in.speed = 0.0;
     r.in.fan_speed = 1.0;
@@ -114,7 +114,7 @@ static void fan_at_rest_and_with_ram(void **state)
     r.d.inlet.lip_loss = 0.1;
     check_close(solve(&r).mass_flow / 1.2, 0.650027, 0, 6e-7);
     r.d.inlet.lip_loss = 1.0; /* F2 */
-    r.d.exit.pressure_coefficient = -0.1;
+    r.d.exit[0].pressure_coefficient = -0.1;
     const double V[] = {3, 5, 10}, Q[] = {0.642959, 0.667920, 0.736670};
     for (int i = 0; i < 3; ++i) {
         r.in.speed = V[i];
@@ -141,14 +141,14 @@ static void windmilling_fan(void **state)
 {
     (void)state;
     struct rig r = plain(9.0, 0.25 / 0.15, -0.15);
-    r.d.fan = (struct sp_fan){.fitted = true, .count = 1, .curve = {280.0, 0.9, {0, 0, NULL}}, .diameter = 0.38,
+    r.d.fan[0] = (struct sp_fan){.fitted = true, .count = 1, .curve = {280.0, 0.9, {0, 0, NULL}}, .diameter = 0.38,
                               .hub = 0.13};
     const double k[] = {0, 1, 2, 4}, want[] = {0.312476, 0.252689, 0.217798, 0.176996};
     for (int i = 0; i < 4; ++i) {
-        r.d.fan.windmill_loss = k[i];
+        r.d.fan[0].windmill_loss = k[i];
         check_close(phi(&r), want[i], 0, 6e-7);
     }
-    r.d.fan.windmill_loss = 1.0;
+    r.d.fan[0].windmill_loss = 1.0;
     r.in.fan_speed = 1.0;
     const double V[] = {0, 10, 20, 30, 40}, Q[] = {0.781255, 0.872221, 1.263443, 1.895165, 2.526886};
     const double dp[] = {69.0114, 17.0177, -95.5130, -214.9042, -382.0520};
@@ -170,7 +170,7 @@ static void heated_closed_forms(void **state)
         {1.10, 1.0, 0.278423, 0.612531}, {1.20, 1.0, 0.269191, 0.646058}, {1.20, 0.75, 0.267686, NAN}};
     for (int i = 0; i < 3; ++i) {
         struct rig r = plain(8.0, 2.0, 0.0);
-        r.d.core.free_area_ratio = h[i].sigma;
+        r.d.core[0].free_area_ratio = h[i].sigma;
         double m = h[i].phi * r.in.speed * 1.2 * 0.25;
         r.in.heat_given = true;
         r.in.heat = (h[i].tau - 1.0) * m * r.in.cp * r.in.temperature;
@@ -222,7 +222,7 @@ static void drag(void **state)
     for (int i = 0; i < 5; ++i) {
         struct rig r = plain(8.0, c[i].re, c[i].cp);
         r.in.speed = 50.0;
-        r.d.exit.angle = c[i].angle * acos(-1.0) / 180.0;
+        r.d.exit[0].angle = c[i].angle * acos(-1.0) / 180.0;
         struct sp_duct_state s = solve(&r);
         check_close(s.face_velocity / 50.0, c[i].phi, 0, 6e-7);
         check_close(s.drag, c[i].D, 0, 2e-5);

@@ -25,7 +25,7 @@ static struct rig rig(double speed, double recovery, double back)
 {
     struct rig r;
     memset(&r, 0, sizeof r);
-    r.d.core = (struct sp_core){.width = 0.5,
+    r.d.core[0] = (struct sp_core){.width = 0.5,
                                 .height = 0.4,
                                 .free_area_ratio = sigma,
                                 .coefficient = K,
@@ -34,7 +34,7 @@ static struct rig rig(double speed, double recovery, double back)
                                 .cells = 10};
     r.d.inlet = (struct sp_inlet){inlet, recovery, 0.5, screen};
     r.d.diffuser.loss = diffuser;
-    r.d.exit = (struct sp_exit){outlet, exit_loss, back, 0.0};
+    r.d.exit[0] = (struct sp_exit){outlet, exit_loss, back, 0.0};
     r.in = (struct sp_duct_inputs){
         .speed = speed, .wake = 1.0, .temperature = 300.0, .R = SP_R_DRY, .cp = SP_CP_DRY};
     r.in.pressure = rho * r.in.R * r.in.temperature;
@@ -156,8 +156,8 @@ static void wind_from_behind(void **state)
     const double angle[] = {0.0, 45.0, 60.0};
     for (int i = 0; i < 3; ++i) {
         struct rig r = rig(-20.0, 0.9, -0.4);
-        r.d.exit.angle = angle[i] * acos(-1.0) / 180.0;
-        double q = 0.5 * rho * 400.0 * square(cos(r.d.exit.angle));
+        r.d.exit[0].angle = angle[i] * acos(-1.0) / 180.0;
+        double q = 0.5 * rho * 400.0 * square(cos(r.d.exit[0].angle));
         check_close(solve(&r).mass_flow, reverse_flow(q, 1.0), 3e-6, 0);
         r.in.wake = 0.25;
         check_close(solve(&r).mass_flow, reverse_flow(0.25 * q, 1.0), 1e-5, 0);
@@ -167,7 +167,7 @@ static void wind_from_behind(void **state)
 static struct rig with_fan(double speed, double fan_speed)
 {
     struct rig r = rig(speed, 0.9, 0.0);
-    r.d.fan = (struct sp_fan){.fitted = true,
+    r.d.fan[0] = (struct sp_fan){.fitted = true,
                               .count = 1,
                               .curve = {200.0, 0.9, {0, 0, NULL}},
                               .diameter = 0.4,
@@ -224,8 +224,8 @@ static void flat_static_curve(void **state)
     for (double n = 0.0; n <= 1.0; n += 1.0)
         for (double V = 60.0; V < 95.0; V += 10.0) {
             struct rig r = with_fan(V, n);
-            r.d.fan.curve = (struct sp_curve_design){20.0, 1.2, {0, 0, NULL}};
-            r.d.fan.static_basis = true;
+            r.d.fan[0].curve = (struct sp_curve_design){20.0, 1.2, {0, 0, NULL}};
+            r.d.fan[0].static_basis = true;
             r.d.inlet.lip_loss = 0.0;
             double pressure = 0.9 * 0.5 * rho * V * V + n * n * head;
             struct sp_duct_state s = solve(&r);
@@ -249,7 +249,7 @@ static void through_nil(void **state)
             i == 0 ? 0.0 : copysign(1e-9 * pow(10.0, 0.2 * (abs(i) - 1)), i); /* 1e-9 to 600 Pa */
         struct rig r = rig(30.0, 0.5, 0.5 - pressure / 540.0);
         r.d.inlet.lip_loss = 0.0;
-        double drive = (0.5 - r.d.exit.pressure_coefficient) * 540.0; /* as the doubles have it */
+        double drive = (0.5 - r.d.exit[0].pressure_coefficient) * 540.0; /* as the doubles have it */
         double m = solve(&r).mass_flow;
         assert_true(i == 0 ? m == 0.0 : m * i > 0.0);
         assert_true(m > before);
@@ -270,18 +270,18 @@ static void warm_through_nil(void **state)
 {
     (void)state;
     struct rig r = rig(30.0, 0.5, 0.0);
-    r.d.core.heat_law = SP_CORE_POWER;
-    r.d.core.air_conductance = 1200.0;
-    r.d.core.air_exponent = 0.5;
-    r.d.core.at_face_velocity = 6.0;
-    r.d.core.heat_at_density = 1.2;
-    r.d.core.coolant_conductance = 5e3;
-    r.d.core.at_coolant_flow = 1.0;
+    r.d.core[0].heat_law = SP_CORE_POWER;
+    r.d.core[0].air_conductance = 1200.0;
+    r.d.core[0].air_exponent = 0.5;
+    r.d.core[0].at_face_velocity = 6.0;
+    r.d.core[0].heat_at_density = 1.2;
+    r.d.core[0].coolant_conductance = 5e3;
+    r.d.core[0].at_coolant_flow = 1.0;
     r.d.inlet.lip_loss = 0.0;
     r.in.wall = 370.0;
     double m_before = 0.0, heat_before = 0.0;
     for (int i = -200; i <= 200; ++i) {
-        r.d.exit.pressure_coefficient = 0.5 - i * 1e-6 / 540.0;
+        r.d.exit[0].pressure_coefficient = 0.5 - i * 1e-6 / 540.0;
         struct sp_duct_state s = solve(&r);
         if (i > -200) {
             check_within(s.mass_flow - m_before, 0.0, 1e-4);

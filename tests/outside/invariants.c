@@ -116,12 +116,12 @@ static void draw_fan_pairs(gsl_rng *g, double pressure, double most, struct draw
         flow += between(g, 0.1, 0.22) * most;
         pressure *= between(g, 0.6, 1.0);
     }
-    x->d.duct.fan.curve = (struct sp_curve_design){NAN, NAN, {PAIRS, 2, x->fan_pairs}};
+    x->d.duct[0].fan[0].curve = (struct sp_curve_design){NAN, NAN, {PAIRS, 2, x->fan_pairs}};
 }
 
 static void draw_fan(gsl_rng *g, struct drawn *x)
 {
-    struct sp_fan *f = &x->d.duct.fan;
+    struct sp_fan *f = &x->d.duct[0].fan[0];
     f->fitted = chance(g, 0.75);
     f->count = 1.0 + (double)gsl_rng_uniform_int(g, 3);
     f->diameter = between(g, 0.2, 0.45);
@@ -149,7 +149,7 @@ static void draw_fan(gsl_rng *g, struct drawn *x)
 
 static void draw_drop(gsl_rng *g, struct drawn *x)
 {
-    struct sp_core *c = &x->d.duct.core;
+    struct sp_core *c = &x->d.duct[0].core[0];
     c->drop_law = (enum sp_drop_law)gsl_rng_uniform_int(g, 4);
     c->free_area_ratio = between(g, 0.5, 0.85);
     c->coefficient = spread(g, 3.0, 60.0);
@@ -170,7 +170,7 @@ static void draw_drop(gsl_rng *g, struct drawn *x)
 
 static void draw_core(gsl_rng *g, struct drawn *x)
 {
-    struct sp_core *c = &x->d.duct.core;
+    struct sp_core *c = &x->d.duct[0].core[0];
     c->width = between(g, 0.2, 0.8);
     c->height = between(g, 0.15, 0.6);
     c->depth = between(g, 0.016, 0.07);
@@ -197,16 +197,16 @@ static void draw_core(gsl_rng *g, struct drawn *x)
 
 static void draw_duct(gsl_rng *g, struct drawn *x)
 {
-    struct sp_duct_design *d = &x->d.duct;
+    struct sp_duct_design *d = &x->d.duct[0];
     draw_core(g, x);
-    double face = d->core.width * d->core.height;
+    double face = d->core[0].width * d->core[0].height;
     d->inlet = (struct sp_inlet){face * spread(g, 0.1, 1.5), gsl_rng_uniform(g), gsl_rng_uniform(g),
                                  chance(g, 0.5) ? 0.0 : between(g, 0.0, 3.0)};
     d->diffuser.kind = (enum sp_diffuser_law)gsl_rng_uniform_int(g, 3);
     d->diffuser.loss = gsl_rng_uniform(g);
     d->diffuser.length = between(g, 0.05, 0.8);
     d->diffuser.core_damping = chance(g, 0.5);
-    d->exit = (struct sp_exit){face * spread(g, 0.1, 1.5), between(g, 0.0, 2.0), between(g, -0.6, 0.5),
+    d->exit[0] = (struct sp_exit){face * spread(g, 0.1, 1.5), between(g, 0.0, 2.0), between(g, -0.6, 0.5),
                                between(g, 0.0, 1.6)};
     draw_fan(g, x);
 }
@@ -251,8 +251,8 @@ static void draw(unsigned long seed, struct drawn *x)
 static void show(const struct drawn *x)
 {
     const struct sp_design *d = &x->d;
-    const struct sp_core *c = &d->duct.core;
-    const struct sp_fan *f = &d->duct.fan;
+    const struct sp_core *c = &d->duct[0].core[0];
+    const struct sp_fan *f = &d->duct[0].fan[0];
     print_error(
         "  air %.6g K %.6g Pa wind %.4g; start %.6g K; engine %.4g W, metal %.4g J/K, jacket %.4g m3\n",
         d->air.ambient, d->air.pressure, d->air.wind, d->start.coolant, d->engine.rated_power,
@@ -265,13 +265,13 @@ static void show(const struct drawn *x)
     print_error(
         "  core %.3g x %.3g m, drop law %d, heat law %d, %g cells; inlet %.4g m2 recovery %.3g lip %.3g "
         "screen %.3g; diffuser %d\n",
-        c->width, c->height, (int)c->drop_law, (int)c->heat_law, c->cells, d->duct.inlet.area,
-        d->duct.inlet.recovery, d->duct.inlet.lip_loss, d->duct.inlet.screen, (int)d->duct.diffuser.kind);
+        c->width, c->height, (int)c->drop_law, (int)c->heat_law, c->cells, d->duct[0].inlet.area,
+        d->duct[0].inlet.recovery, d->duct[0].inlet.lip_loss, d->duct[0].inlet.screen, (int)d->duct[0].diffuser.kind);
     print_error(
         "  fan %s x%g law %d, static %d, before %d, pairs %zu; exit %.4g m2 loss %.3g Cp %.3g angle %.3g\n",
         f->fitted ? "fitted" : "none", f->count, (int)f->law, f->static_basis, f->before_core,
-        f->curve.pairs.rows, d->duct.exit.area, d->duct.exit.loss, d->duct.exit.pressure_coefficient,
-        d->duct.exit.angle);
+        f->curve.pairs.rows, d->duct[0].exit[0].area, d->duct[0].exit[0].loss, d->duct[0].exit[0].pressure_coefficient,
+        d->duct[0].exit[0].angle);
     for (size_t i = 0; i < d->steps; ++i)
         print_error("  step %d: %g s, %.4g m/s, %.5g W, %.4g rev/s\n", (int)d->step[i].kind, d->step[i].time,
                     d->step[i].speed, d->step[i].power, d->step[i].engine_speed);
@@ -370,10 +370,10 @@ static void hotter_day_never_cooler(void **state)
         x.d.thermostat.none = true;
         fixture_freeze(&x.d.coolant.fluid);
         x.d.air.wind = fabs(x.d.air.wind);
-        x.d.duct.exit.pressure_coefficient = -fabs(x.d.duct.exit.pressure_coefficient);
+        x.d.duct[0].exit[0].pressure_coefficient = -fabs(x.d.duct[0].exit[0].pressure_coefficient);
         for (int k = 0; k < STEPS; ++k)
             x.step[k].speed = fabs(x.step[k].speed);
-        x.d.duct.fan.law = i % 2 ? SP_FAN_ALWAYS : SP_FAN_NEVER;
+        x.d.duct[0].fan[0].law = i % 2 ? SP_FAN_ALWAYS : SP_FAN_NEVER;
         double start = x.d.start.coolant, radiator = x.d.start.radiator;
         struct fixture_drive cool = fixture_run(&fixture, &x.d, 0.0, 1e-7);
         x.d.air.ambient += 10.0;
@@ -397,7 +397,7 @@ static void hotter_day_never_cooler(void **state)
 static struct sp_duct *build(const struct drawn *x)
 {
     struct sp_complaints c = {0};
-    struct sp_duct *d = sp_duct_build(&x->d.duct, &x->d.coolant.fluid, NULL, &c);
+    struct sp_duct *d = sp_duct_build(&x->d.duct[0], &x->d.coolant.fluid, NULL, &c);
     sp_complaints_print(&c, false, stderr);
     sp_complaints_free(&c);
     assert_non_null(d);
@@ -428,10 +428,10 @@ static struct outer outer_of(const struct drawn *x, const struct sp_duct_inputs 
 {
     double rho = in->pressure / (in->R * in->temperature),
            head = 0.5 * rho * in->speed * in->speed * in->wake;
-    double cosine = cos(x->d.duct.exit.angle);
+    double cosine = cos(x->d.duct[0].exit[0].angle);
     bool ahead = in->speed >= 0.0;
-    return (struct outer){head, ahead ? x->d.duct.inlet.recovery * head : 0.0,
-                          (ahead ? x->d.duct.exit.pressure_coefficient : cosine * cosine) * head};
+    return (struct outer){head, ahead ? x->d.duct[0].inlet.recovery * head : 0.0,
+                          (ahead ? x->d.duct[0].exit[0].pressure_coefficient : cosine * cosine) * head};
 }
 
 static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *in,
@@ -447,7 +447,7 @@ static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *
     expect(x, fabs(left) <= 1e-9 * size + 1e-9, "balance %g Pa of %g, m %g kg/s at %g m/s", left, size,
            s->mass_flow, in->speed);
     /* Stations in the order of the flow; between them total pressure falls, but for the fan's own place. */
-    int fan_at = x->d.duct.fan.before_core ? 1 : 3;
+    int fan_at = x->d.duct[0].fan[0].before_core ? 1 : 3;
     double give = 1e-9 * in->pressure;
     for (int i = 1; i < SP_STATIONS - 1; ++i) {
         double fall = way * (st[i].total_pressure - st[i + 1].total_pressure);
@@ -466,8 +466,8 @@ static void check_pressures(const struct drawn *x, const struct sp_duct_inputs *
 
 static void check_masses(const struct drawn *x, const struct sp_duct_state *s, const struct sp_station *st)
 {
-    double face = x->d.duct.core.width * x->d.duct.core.height;
-    const double area[SP_STATIONS] = {NAN, x->d.duct.inlet.area, face, face, face, x->d.duct.exit.area};
+    double face = x->d.duct[0].core[0].width * x->d.duct[0].core[0].height;
+    const double area[SP_STATIONS] = {NAN, x->d.duct[0].inlet.area, face, face, face, x->d.duct[0].exit[0].area};
     for (int i = 1; i < SP_STATIONS; ++i) {
         double m = st[i].density * st[i].velocity * area[i];
         expect(x, fabs(m - s->mass_flow) <= 1e-12 * fabs(s->mass_flow), "mass at %d: %g of %g", i, m,
@@ -493,8 +493,8 @@ static void check_heat(const struct drawn *x, const struct sp_duct_inputs *in, c
 static bool several(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
 {
     struct outer o = outer_of(x, in);
-    if (x->d.duct.fan.fitted && in->fan_speed > 0.0 && o.front < o.back) return true;
-    return x->d.duct.core.drop_law == SP_DROP_FINS && fabs(s->face_velocity) < 4.0;
+    if (x->d.duct[0].fan[0].fitted && in->fan_speed > 0.0 && o.front < o.back) return true;
+    return x->d.duct[0].core[0].drop_law == SP_DROP_FINS && fabs(s->face_velocity) < 4.0;
 }
 
 static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in,
@@ -502,7 +502,7 @@ static void smaller_exit(const struct drawn *x, const struct sp_duct_inputs *in,
 {
     if (several(x, in, s)) return;
     struct drawn less = *x;
-    less.d.duct.exit.area *= 0.9;
+    less.d.duct[0].exit[0].area *= 0.9;
     struct sp_duct *d = build(&less);
     struct sp_duct_state small;
     expect(x, sp_duct_solve(d, in, &small) == SP_OK, "a smaller exit");
@@ -523,7 +523,7 @@ static void hotter_core(const struct drawn *x, const struct sp_duct *d, const st
     expect(x, sp_duct_solve(d, &hot, &h) == SP_OK, "a hotter core");
     if (!(s->mass_flow > 1e-3)) return;
     expect(x, h.mass_flow < s->mass_flow, "hotter core %.9g kg/s, before %.9g", h.mass_flow, s->mass_flow);
-    const struct sp_core *c = &x->d.duct.core;
+    const struct sp_core *c = &x->d.duct[0].core[0];
     bool viscous =
         c->drop_law == SP_DROP_FINS || (c->drop_law != SP_DROP_COEFFICIENT && isfinite(c->at_temperature));
     if (in->fan_speed > 0.0 || viscous) return;

@@ -36,7 +36,7 @@ static struct sp_design two_masses(double metal, double coolant, double between)
     d.tank.volume = d.tank.air_space;
     d.pump.electric = false;
     d.pump.ratio = 1e-9;
-    d.duct.fan.fitted = false;
+    d.duct[0].fan[0].fitted = false;
     d.limits.coolant = 5000.0;
     d.limits.boil_margin = NAN;
     d.start = (struct sp_start){d.air.ambient, NAN, NAN};
@@ -57,7 +57,7 @@ static struct sp_design with_sink(double metal, double coolant, double between, 
     d.hoses.bore_out = d.hoses.bore_back = 2.0;
     d.hoses.bends = 0.0;
     d.hoses.jacket = (struct sp_resistance){6.0, 100.0};
-    struct sp_core *c = &d.duct.core;
+    struct sp_core *c = &d.duct[0].core[0];
     c->width = 50.0;
     c->height = 40.0;
     c->drop_law = SP_DROP_COEFFICIENT;
@@ -75,9 +75,9 @@ static struct sp_design with_sink(double metal, double coolant, double between, 
     c->metal_capacity = 1e-3;
     c->coolant_volume = least;
     c->drop = (struct sp_resistance){6.0, 100.0};
-    d.duct.inlet = (struct sp_inlet){2000.0, 1.0, 0.0, 0.0};
-    d.duct.diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
-    d.duct.exit = (struct sp_exit){2000.0, 0.0, 0.0, 0.0};
+    d.duct[0].inlet = (struct sp_inlet){2000.0, 1.0, 0.0, 0.0};
+    d.duct[0].diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
+    d.duct[0].exit[0] = (struct sp_exit){2000.0, 0.0, 0.0, 0.0};
     return d;
 }
 
@@ -206,7 +206,7 @@ static double settled(struct sp_design *d)
     d->step = &s;
     d->steps = 1;
     d->thermostat.none = true;
-    d->duct.fan.law = SP_FAN_NEVER;
+    d->duct[0].fan[0].law = SP_FAN_NEVER;
     struct fixture_drive r = run(d, 3000.0);
     double T = fixture_last(&r, SP_CH_ENGINE_OUT);
     fixture_drop(&r);
@@ -295,7 +295,7 @@ static void quadratic_circuit(void **state)
     d.hoses.bore_out = d.hoses.bore_back = 0.03;
     d.hoses.bends = 6.0;
     d.hoses.jacket = (struct sp_resistance){1e-3, 20e3};
-    d.duct.core.drop = (struct sp_resistance){1.0, 1e-3};
+    d.duct[0].core[0].drop = (struct sp_resistance){1.0, 1e-3};
     d.tank.bleed = 0.0;
     struct sp_complaints c = {0};
     struct sp_circuit k;
@@ -332,7 +332,7 @@ static void parallel_branches(void **state)
     d.hoses.length_out = d.hoses.length_back = 1e-12;
     d.hoses.bends = 0.0;
     d.hoses.bypass = (struct sp_resistance){1e-3, 45e3};
-    d.duct.core.drop = (struct sp_resistance){1.0, 1e-3};
+    d.duct[0].core[0].drop = (struct sp_resistance){1.0, 1e-3};
     d.tank.bleed = 0.02;
     struct sp_complaints c = {0};
     struct sp_circuit k;

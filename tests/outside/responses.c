@@ -212,10 +212,10 @@ static void fan_spins_up(void **state)
     struct sp_design d = *fixture.base;
     d.electrics.voltage_running = 13.5;
     d.electrics.voltage_stopped = 12.0;
-    d.duct.fan.rated_voltage = 13.0;
-    d.duct.fan.spin_up = 1.5;
-    d.duct.fan.law = SP_FAN_ALWAYS;
-    d.duct.fan.run_on = 60.0;
+    d.duct[0].fan[0].rated_voltage = 13.0;
+    d.duct[0].fan[0].spin_up = 1.5;
+    d.duct[0].fan[0].law = SP_FAN_ALWAYS;
+    d.duct[0].fan[0].run_on = 60.0;
     struct sp_step s[] = {fixture_hold(30.0, 30.0, 20e3, 80.0),
                           {.kind = SP_STEP_SOAK, .time = 120.0, .repeat = 1.0}};
     struct fixture_drive r = drive(&d, s, 2, 0.5);
@@ -248,14 +248,14 @@ static struct fixture_drive along(const char *rows, double wind, double interval
     d.start = (struct sp_start){288.15, NAN, NAN};
     d.thermostat.opens = 400.0;
     d.thermostat.full = 410.0;
-    d.duct.fan.fitted = false;
-    d.duct.core.drop_law = SP_DROP_COEFFICIENT;
-    d.duct.core.coefficient = 8.0;
-    d.duct.core.free_area_ratio = 1.0;
-    double face = d.duct.core.width * d.duct.core.height;
-    d.duct.inlet = (struct sp_inlet){face, 1.0, 0.0, 0.0};
-    d.duct.diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
-    d.duct.exit = (struct sp_exit){0.5 * face, 0.0, -0.1, 0.0};
+    d.duct[0].fan[0].fitted = false;
+    d.duct[0].core[0].drop_law = SP_DROP_COEFFICIENT;
+    d.duct[0].core[0].coefficient = 8.0;
+    d.duct[0].core[0].free_area_ratio = 1.0;
+    double face = d.duct[0].core[0].width * d.duct[0].core[0].height;
+    d.duct[0].inlet = (struct sp_inlet){face, 1.0, 0.0, 0.0};
+    d.duct[0].diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
+    d.duct[0].exit[0] = (struct sp_exit){0.5 * face, 0.0, -0.1, 0.0};
     struct sp_step s = {.kind = SP_STEP_TRACE, .trace = path, .repeat = 1.0};
     struct fixture_drive r = try_drive(&d, &s, 1, interval);
     remove(path);
@@ -299,7 +299,7 @@ static void air_gets_thinner_uphill(void **state)
                                    "100,25,5,2000,1000\n",
                                    0.0, 50.0);
     const double pressure[] = {101325.0, 95461.0, 89876.0};
-    double face = fixture.base->duct.core.width * fixture.base->duct.core.height;
+    double face = fixture.base->duct[0].core[0].width * fixture.base->duct[0].core[0].height;
     for (int i = 0; i < 3; ++i) {
         const double *v = fixture_at(&r, 50.0 * i)->value;
         check_close(v[SP_CH_AIR_FLOW] / (v[SP_CH_FACE_VELOCITY] * face), pressure[i] / (287.053 * 288.15),

@@ -37,16 +37,16 @@ static void duct_case_in_si(void **state)
     /* US Standard Atmosphere 1976, H = 239.990939 m geopotential:
      * 101325 (1 - 0.0065 H/288.15)^(9.80665 0.0289644/(8.31432 0.0065)), worked out apart */
     check_close(d->air.pressure, 98474.97, 1e-7, 0.0);
-    check_close(d->duct.inlet.area, 0.045, 1e-14, 0.0);
-    check_close(d->duct.inlet.recovery, 1.0, 0.0, 0.0);
-    check_close(d->duct.inlet.lip_loss, 1.0, 0.0, 0.0);
-    check_close(d->duct.core.coefficient, 8.0, 0.0, 0.0);
-    check_close(d->duct.core.free_area_ratio, 1.0, 0.0, 0.0);
-    check_close(d->duct.exit.loss, 0.0, 0.0, 0.0);
-    assert_int_equal(d->duct.core.drop_law, SP_DROP_COEFFICIENT);
-    assert_int_equal(d->duct.core.heat_law, SP_CORE_NO_HEAT);
-    assert_int_equal(d->duct.diffuser.kind, SP_DIFFUSER_GIVEN);
-    assert_false(d->duct.fan.fitted);
+    check_close(d->duct[0].inlet.area, 0.045, 1e-14, 0.0);
+    check_close(d->duct[0].inlet.recovery, 1.0, 0.0, 0.0);
+    check_close(d->duct[0].inlet.lip_loss, 1.0, 0.0, 0.0);
+    check_close(d->duct[0].core[0].coefficient, 8.0, 0.0, 0.0);
+    check_close(d->duct[0].core[0].free_area_ratio, 1.0, 0.0, 0.0);
+    check_close(d->duct[0].exit[0].loss, 0.0, 0.0, 0.0);
+    assert_int_equal(d->duct[0].core[0].drop_law, SP_DROP_COEFFICIENT);
+    assert_int_equal(d->duct[0].core[0].heat_law, SP_CORE_NO_HEAT);
+    assert_int_equal(d->duct[0].diffuser.kind, SP_DIFFUSER_GIVEN);
+    assert_false(d->duct[0].fan[0].fitted);
     assert_string_equal(d->file, "dir/c.json");
     drop(&r);
 }
@@ -89,15 +89,15 @@ static void defaults_by_rule(void **state)
     check_close(d->engine.conductance_flow, 120e-3 / 60.0, 1e-12, 0.0);
     check_close(d->thermostat.full - d->thermostat.opens, 12.0, 1e-12, 0.0);
     check_close(d->coolant.share, 0.5, 0.0, 0.0);
-    check_close(d->duct.core.louvre_length, 6.8e-3, 1e-12, 0.0);
+    check_close(d->duct[0].core[0].louvre_length, 6.8e-3, 1e-12, 0.0);
     /* 6.8544 l of core: 0.33 kg/l and 2.5 kg of tanks at 0.34/0.4 of the height, at 900 J/kgK */
-    check_close(d->duct.core.metal_capacity, 900.0 * (0.33 * 6.8544 + 2.5 * 0.85), 1e-12, 0.0);
-    check_close(d->duct.core.coolant_volume, 1e-3 * (0.13 * 6.8544 + 1.3 * 0.85), 1e-12, 0.0);
+    check_close(d->duct[0].core[0].metal_capacity, 900.0 * (0.33 * 6.8544 + 2.5 * 0.85), 1e-12, 0.0);
+    check_close(d->duct[0].core[0].coolant_volume, 1e-3 * (0.13 * 6.8544 + 1.3 * 0.85), 1e-12, 0.0);
     /* parabola: most power at Q0/sqrt 3, 0.3849 dp0 Q0 */
     check_close(d->pump.power, 0.38490018 * 120e3 * 0.2 / 60.0 / 0.32, 1e-8, 0.0);
     check_close(d->tank.volume, 2.0 * d->tank.air_space, 1e-12, 0.0);
-    assert_true(isnan(d->duct.core.free_area_ratio) && isnan(d->duct.core.drop.flow));
-    assert_int_equal(d->duct.core.heat_law, SP_CORE_FINS);
+    assert_true(isnan(d->duct[0].core[0].free_area_ratio) && isnan(d->duct[0].core[0].drop.flow));
+    assert_int_equal(d->duct[0].core[0].heat_law, SP_CORE_FINS);
     /* friction: 1.55 bar + 0.046 bar N^2, N in 1000 rev/min: at 6000 rpm 3.206 bar (practice: 3.2) */
     const double *p = d->engine.friction_pressure;
     check_close(p[0] + p[1] * 100.0 + p[2] * 1e4, 3.206e5, 1e-12, 0.0);
@@ -116,19 +116,19 @@ static void lips_thermostat_fan(void **state)
                                                         "[\"0.63 m3/s\", \"0 Pa\"]], \"before\": \"core\","
                                                         "\"diameter\": \"305 mm\"}"}},
                                3);
-    check_close(r.design->duct.inlet.lip_loss, 0.3, 0.0, 0.0);
+    check_close(r.design->duct[0].inlet.lip_loss, 0.3, 0.0, 0.0);
     assert_true(r.design->thermostat.none);
-    assert_true(r.design->duct.fan.fitted && r.design->duct.fan.before_core);
-    assert_int_equal(r.design->duct.fan.curve.pairs.rows, 2);
-    check_close(r.design->duct.fan.curve.pairs.cell[2], 0.63, 1e-14, 0.0);
-    assert_true(isnan(r.design->duct.fan.curve.shutoff));
-    check_close(r.design->duct.fan.hub, 0.35 * 0.305, 1e-12, 0.0);
+    assert_true(r.design->duct[0].fan[0].fitted && r.design->duct[0].fan[0].before_core);
+    assert_int_equal(r.design->duct[0].fan[0].curve.pairs.rows, 2);
+    check_close(r.design->duct[0].fan[0].curve.pairs.cell[2], 0.63, 1e-14, 0.0);
+    assert_true(isnan(r.design->duct[0].fan[0].curve.shutoff));
+    check_close(r.design->duct[0].fan[0].hub, 0.35 * 0.305, 1e-12, 0.0);
     drop(&r);
     r = must_set(
         DUCT_CASE, SP_FOR_DUCT,
         (char *const[]){(char[]){"duct.inlet={\"area\": \"1 m2\", \"lip\": \"folded\", \"lip_loss\": 0.7}"}},
         1);
-    check_close(r.design->duct.inlet.lip_loss, 0.7, 0.0, 0.0); /* the number wins over the word */
+    check_close(r.design->duct[0].inlet.lip_loss, 0.7, 0.0, 0.0); /* the number wins over the word */
     drop(&r);
 }
 
@@ -140,10 +140,10 @@ static void core_laws(void **state)
                                             "\"quadratic\": \"12 Pa.s2/m2\", \"at_density\": \"1.1 kg/m3\", "
                                             "\"at_temperature\": \"20 degC\"}") "}}",
              SP_FOR_DUCT);
-    assert_int_equal(r.design->duct.core.drop_law, SP_DROP_LINEAR);
-    check_close(r.design->duct.core.linear, 60.0, 0.0, 0.0);
-    check_close(r.design->duct.core.at_density, 1.1, 0.0, 0.0);
-    check_close(r.design->duct.core.at_temperature, 293.15, 1e-14, 0.0);
+    assert_int_equal(r.design->duct[0].core[0].drop_law, SP_DROP_LINEAR);
+    check_close(r.design->duct[0].core[0].linear, 60.0, 0.0, 0.0);
+    check_close(r.design->duct[0].core[0].at_density, 1.1, 0.0, 0.0);
+    check_close(r.design->duct[0].core[0].at_temperature, 293.15, 1e-14, 0.0);
     drop(&r);
     r = must("{" AIR ", \"car\": {" DUCT_OF(
                  "\"pressure_drop\": {\"table\": [[\"2 m/s\", \"35 Pa\"], [\"4 m/s\", \"100 Pa\"]]}, "
@@ -151,7 +151,7 @@ static void core_laws(void **state)
                  "\"1.5 kg/s\"], "
                  "\"rejection\": [[\"500 W/K\", \"60 kW/100K\"], [\"700 W/K\", \"900 W/K\"]]}") "}}",
              SP_FOR_DUCT);
-    const struct sp_core *c = &r.design->duct.core;
+    const struct sp_core *c = &r.design->duct[0].core[0];
     assert_int_equal(c->drop_law, SP_DROP_TABLE);
     assert_int_equal(c->heat_law, SP_CORE_MAKER);
     assert_true(isnan(c->at_temperature));
@@ -174,8 +174,8 @@ static void settings(void **state)
                                  (char[]){"limits.boil_margin=8 K"}, (char[]){"start.coolant=0 degC"},
                                  (char[]){"title=a=b"}, (char[]){"drive[1].layout.delimiter=;"}},
                  7);
-    check_close(r.design->duct.exit.area, 0.045, 1e-14, 0.0);
-    check_close(r.design->duct.inlet.area, 0.03, 1e-14, 0.0);
+    check_close(r.design->duct[0].exit[0].area, 0.045, 1e-14, 0.0);
+    check_close(r.design->duct[0].inlet.area, 0.03, 1e-14, 0.0);
     check_close(r.design->step[1].repeat, 7.0, 0.0, 0.0);
     check_close(r.design->limits.boil_margin, 8.0, 0.0, 0.0);
     check_close(r.design->start.coolant, 273.15, 1e-14, 0.0);
@@ -230,24 +230,24 @@ static void cars_in_files(void **state)
     write_file("case.json", "{" AIR ", \"car\": \"sub/car.json\"}");
     struct result r = read_file("case.json", NULL, 0);
     assert_non_null(r.design);
-    check_close(r.design->duct.exit.loss, 1.7, 0.0, 0.0);
-    check_close(r.design->duct.exit.area, 0.06, 1e-14, 0.0);
+    check_close(r.design->duct[0].exit[0].loss, 1.7, 0.0, 0.0);
+    check_close(r.design->duct[0].exit[0].area, 0.06, 1e-14, 0.0);
     drop(&r);
     r = read_file("case.json", (char *const[]){(char[]){"duct.exit.area=1 m2"}}, 1);
     assert_non_null(r.design);
-    check_close(r.design->duct.exit.area, 1.0, 1e-14, 0.0);
+    check_close(r.design->duct[0].exit[0].area, 1.0, 1e-14, 0.0);
     drop(&r);
     write_file("over.json",
                "{" AIR
                ", \"car\": {\"from\": \"sub/car.json\", \"duct\": {\"exit\": {\"area\": \"2 m2\"}}}}");
     r = read_file("over.json", NULL, 0);
     assert_non_null(r.design);
-    check_close(r.design->duct.exit.area, 2.0, 1e-14, 0.0);
-    check_close(r.design->duct.exit.loss, 1.7, 0.0, 0.0);
+    check_close(r.design->duct[0].exit[0].area, 2.0, 1e-14, 0.0);
+    check_close(r.design->duct[0].exit[0].loss, 1.7, 0.0, 0.0);
     drop(&r);
     r = read_file("case.json", (char *const[]){(char[]){"car=sub/base.json"}}, 1);
     assert_non_null(r.design);
-    check_close(r.design->duct.exit.loss, 0.0, 0.0, 0.0);
+    check_close(r.design->duct[0].exit[0].loss, 0.0, 0.0, 0.0);
     drop(&r);
 }
 

@@ -14,9 +14,9 @@ static struct sp_design busy(struct sp_step *s, int n)
     }
     d.step = s;
     d.steps = (size_t)n;
-    d.duct.fan.law = SP_FAN_SWITCHED;
-    d.duct.fan.on = 362.0;
-    d.duct.fan.off = 358.0;
+    d.duct[0].fan[0].law = SP_FAN_SWITCHED;
+    d.duct[0].fan[0].on = 362.0;
+    d.duct[0].fan[0].off = 358.0;
     d.thermostat.opens = 352.0;
     d.thermostat.full = 362.0;
     d.thermostat.hysteresis = 3.0;
@@ -225,14 +225,14 @@ static void soak_with_run_on(void **state)
     s[0].time = 300.0;
     s[0].power = 100e3;
     s[1] = (struct sp_step){.kind = SP_STEP_SOAK, .time = 300.0, .repeat = 1.0};
-    d.duct.fan.run_on = 60.0;
-    d.duct.fan.off = 300.0;
+    d.duct[0].fan[0].run_on = 60.0;
+    d.duct[0].fan[0].off = 300.0;
     d.pump.electric = true;
     d.pump.run_on = 100.0;
     struct fixture_drive r = run(&d, 1.0, 0.0);
     const double *early = fixture_at(&r, 350.0)->value, *later = fixture_at(&r, 390.0)->value,
                  *late = fixture_at(&r, 450.0)->value;
-    double stopped = pow(d.electrics.voltage_stopped / d.duct.fan.rated_voltage, 0.9);
+    double stopped = pow(d.electrics.voltage_stopped / d.duct[0].fan[0].rated_voltage, 0.9);
     check_close(early[SP_CH_FAN_SPEED], stopped, 1e-6, 0);
     assert_true(later[SP_CH_FAN_SPEED] < 1e-3 && later[SP_CH_PUMP_FLOW] > 0.0 &&
                 late[SP_CH_PUMP_FLOW] == 0.0);
@@ -292,7 +292,7 @@ static void drives_that_cannot_be_built(void **state)
     d.steps = 1;
     assert_null(sp_drive_build(fixture.units, &d, &c, &cautions));
     assert_int_equal(c.count, 2);
-    d.duct.core.heat_law = SP_CORE_NO_HEAT; /* both the car and the drive: both are said */
+    d.duct[0].core[0].heat_law = SP_CORE_NO_HEAT; /* both the car and the drive: both are said */
     assert_null(sp_drive_build(fixture.units, &d, &c, &cautions));
     assert_int_equal(c.count, 4);
     sp_complaints_free(&c);

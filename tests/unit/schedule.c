@@ -342,8 +342,8 @@ static void run_on(void **state)
     begin(&d);
     d.design.pump.electric = true;
     d.design.pump.run_on = 5.0;
-    d.design.duct.fan.fitted = true;
-    d.design.duct.fan.run_on = 20.0;
+    d.design.duct[0].fan[0].fitted = true;
+    d.design.duct[0].fan[0].run_on = 20.0;
     add_text(
         &d,
         "time [s],speed [m/s],power [kW],engine_speed [rpm],mark\n0,10,10,1500,\n10,10,10,1500,\n11,0,0,0,"
@@ -387,8 +387,8 @@ static void run_on_edges(void **state)
     struct drive d;
     begin(&d);
     d.design.pump.run_on = 5.0; /* not electric */
-    d.design.duct.fan.fitted = true;
-    d.design.duct.fan.run_on = 20.0;
+    d.design.duct[0].fan[0].fitted = true;
+    d.design.duct[0].fan[0].run_on = 20.0;
     add(&d, SP_STEP_SOAK, 30.0);
     add(&d, SP_STEP_IDLE, 10.0);
     add(&d, SP_STEP_SOAK, 20.0)->repeat = 3.0; /* one row at the window's very end */

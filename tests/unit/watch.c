@@ -45,7 +45,7 @@ static void fan_switch(void **state)
 {
     (void)state;
     struct rig r = {.d = *fixture.base};
-    struct sp_fan *f = &r.d.duct.fan;
+    struct sp_fan *f = &r.d.duct[0].fan[0];
     f->law = SP_FAN_SWITCHED;
     f->on = 369.0;
     f->off = 364.0;
