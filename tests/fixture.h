@@ -166,4 +166,13 @@ static inline const struct sp_sample *fixture_at(const struct fixture_drive *r, 
     return NULL;
 }
 
+/* Limits of four quantities and none else. */
+static inline struct sp_limits only_limits(double coolant, double gauge, double metal, double boil_margin)
+{
+    const struct sp_tiers none = {NAN, NAN, NAN};
+    return (struct sp_limits){.coolant = {NAN, NAN, coolant}, .gauge = {NAN, NAN, gauge}, .metal = {NAN, NAN, metal},
+                              .oil = none, .gearbox = none, .charge = none, .boil_margin = boil_margin,
+                              .least_coolant = NAN, .least_oil = NAN, .load = NAN};
+}
+
 #endif

@@ -29,7 +29,7 @@ struct drive {
 static inline void begin(struct drive *d)
 {
     memset(d, 0, sizeof *d);
-    d->design.air = (struct sp_air_design){300.0, 101325.0, 0.0, 0.0, 0.0};
+    d->design.air = (struct sp_air_design){.ambient = 300.0, .pressure = 101325.0};
     d->design.body = (struct sp_body){.mass = NAN,
                                       .frontal_area = 1.0,
                                       .drag_coefficient = NAN,

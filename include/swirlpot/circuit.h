@@ -28,10 +28,14 @@ struct sp_duct_inputs {
     double temperature;   /* K, free stream */
     double pressure;      /* Pa, free stream */
     double R, cp;         /* J/kgK of the (moist) air */
-    double fan_speed;     /* share of rated speed, 0..; negative is taken as 0 */
-    bool heat_given;      /* heat is given below, instead of a wall temperature */
-    double heat;          /* W to the air, >= 0 */
-    double wall;          /* K, mean of the core's metal; only when the core has heat data */
+    double cross_wind;    /* m/s across the car; 0: none */
+    double fan_speed[SP_FANS]; /* share of rated speed, 0..; negative is taken as 0 */
+    bool heat_given;      /* heat is given below, instead of wall temperatures */
+    double heat;          /* W to the air, >= 0, shared by the cores with the air that meets them */
+    double wall[SP_CORES]; /* K, mean of each core's metal; only where the core has heat data */
+    double bay_heat;      /* W from the engine's skin into the air behind the cores */
+    double blower;        /* m3/s that a blower on the ground puts into the inlet; 0: none */
+    bool bonnet_up;       /* the bay is open to still air: no exit resists */
 };
 
 /* One station's state. Pressures are absolute. */
@@ -48,7 +52,25 @@ struct sp_duct_losses {
     double exit_head;   /* dynamic head thrown away with the jet */
 };
 
+/* The air side of one core. heat = rate (wall - air_in). */
+struct sp_core_air {
+    double mass_flow;     /* kg/s through it, net, backwards negative */
+    double rate;          /* W/K; 0 where it has no heat data, or its heat is given */
+    double air_in;        /* K of the air that meets it, mean as the heat sees it */
+    double heat;          /* W to the air */
+    double face_velocity; /* m/s, mean at its front */
+    double drop;          /* Pa of total pressure, mean over the air that meets it */
+};
+
 struct sp_duct_state {
+    struct sp_core_air core[SP_CORES];
+    double fresh;          /* kg/s in at the inlet, negative when air comes out of it */
+    double leak_past, leak_outside; /* kg/s past the cores, and to outside */
+    double backwards;      /* kg/s that come back through open parts of the cores */
+    double bay_temperature, bay_pressure; /* K, Pa over ambient: behind cores and fans, ahead of the exits */
+    double inlet_temperature;             /* K of the air in the inlet: preheat, wake and recirculation included */
+    double fan_flow[SP_FANS]; /* kg/s through each kind of fan, all of that kind */
+    double spill_drag, thrust; /* N: drag of spilled air; share of the jet's thrust that the heat brings. `drag` holds both */
     double mass_flow;      /* kg/s through the core, negative in reverse */
     double effectiveness;  /* heat over (m cp (wall - T2)), 0 cold */
     double heat;           /* W to the air */

@@ -9,17 +9,11 @@
 #ifndef SWIRLPOT_PART_H
 #define SWIRLPOT_PART_H
 
-#include "swirlpot/fluid.h"
+#include "swirlpot/duct.h"
 
 #ifdef __cplusplus
 extern "C" {
 #endif
-
-/* A table of numbers as read from a case: `rows` x `columns`, row by row. Owned by the design. */
-struct sp_table {
-    size_t rows, columns;
-    double *cell;
-};
 
 /* ---- air and body ----------------------------------------------------------------------------- */
 
@@ -29,6 +23,7 @@ struct sp_air_design {
     double altitude; /* m geometric; NAN when pressure was given */
     double humidity; /* 0..1 */
     double wind;     /* m/s, head wind positive */
+    double cross_wind; /* m/s */
 };
 
 struct sp_body {
@@ -44,7 +39,12 @@ struct sp_body {
 
 /* ---- engine ------------------------------------------------------------------------------------ */
 
-enum sp_heat_law { SP_HEAT_RATED, SP_HEAT_TABLE, SP_HEAT_FUEL, SP_HEAT_AIR };
+enum sp_heat_law {
+    SP_HEAT_RATED, SP_HEAT_TABLE, SP_HEAT_FUEL, SP_HEAT_AIR,
+    SP_HEAT_CORRELATION, /* Taylor and Toong */
+    SP_HEAT_GIVEN        /* no engine: heat_given + heat_loss |power| */
+};
+enum sp_friction_law { SP_FRICTION_POLYNOMIAL, SP_FRICTION_CHEN_FLYNN, SP_FRICTION_DIESEL, SP_FRICTION_SI };
 
 struct sp_engine {
     double displacement;              /* m3 */
@@ -63,8 +63,17 @@ struct sp_engine {
     double overrun_share;             /* of motoring work that heats the coolant */
     double gas_temperature;           /* K; NAN: heat does not depend on the metal */
     double gas_reference;             /* K, metal at which the heat law holds */
+    double cylinders, bore, stroke, compression; /* -, m, m, - */
+    double correlation_constant;      /* C of the correlation, 10.4 */
+
+    enum sp_friction_law overrun_law;
+    double chen_flynn[4];             /* Pa, -, Pa s/m, Pa s2/m2 */
+    double heat_given, heat_loss;     /* W; share of |power| */
+    double energy_cap;                /* most of the fuel's energy that may leave as work, coolant and oil heat; 0: none */
     double metal_capacity;            /* J/K */
     double coolant_volume;            /* m3 in the jacket */
+    double wetted_area;               /* m2 of jacket that boils first; 0: local boiling is not judged */
+    double breathes_bay;              /* share of the intake air that comes from the bay of the first duct */
     double conductance;               /* W/K metal to coolant at conductance_flow, 50/50 glycol at 90 degC */
     double conductance_flow;          /* m3/s */
     double conductance_still;         /* share of `conductance` left without flow */
@@ -74,15 +83,37 @@ struct sp_engine {
 struct sp_electrics {
     double voltage_running, voltage_stopped; /* V at the consumers */
     double alternator_efficiency;            /* battery power over crank power */
+    double battery;                          /* C (ampere seconds) of charge usable; 0: not watched */
+    double idle_load;                        /* W of other consumers with the key on and the engine off */
+};
+
+/* Oil with heat and coolers of its own: the engine's, or that of gearbox or final drive. */
+struct sp_oil {
+    bool fitted;
+    double volume;                   /* m3 */
+    double heat_share;               /* of brake power (gearbox: of the power through it) that heats it */
+    double friction_share;           /* of motoring power at the engine's speed that heats it, fired or not */
+    double block;                    /* W/K to the engine's metal */
+    double skin_standing, skin_moving; /* W/K to the air, at 0 and at 100 km/h and above */
+    double flow, flow_speed;         /* m3/s through its coolers at that engine speed [rev/s], proportional below ... */
+    double flow_most;                /* ... and never above this, m3/s (relief valve) */
+    double plate;                    /* W/K of a plate cooler to the coolant entering the engine; 0: none */
+    double opens, full;              /* K of its thermostat to the air cooler; NAN: none, the cooler stands open */
+    double still;                    /* share of the flow that passes the cooler with the thermostat shut */
+};
+
+/* Charge air: what the compressor makes of it. Its cooler is a core that carries it. */
+struct sp_charge {
+    bool fitted;
+    double pressure_ratio;  /* at rated power; falls to 1 with air flow squared */
+    double efficiency;      /* isentropic, of the compressor */
+    double intake_rise;     /* K over ambient of the air it breathes */
+    double air_flow;        /* kg/s at rated power; goes with fuel flow */
 };
 
 /* ---- coolant circuit ---------------------------------------------------------------------------- */
 
-/* Head or pressure over volume flow: either the parabola a0 - c Q^2 or pairs. See curve.h. */
-struct sp_curve_design {
-    double shutoff, free_flow; /* Pa, m3/s; NAN when pairs are given */
-    struct sp_table pairs;     /* [m3/s, Pa] */
-};
+enum sp_pump_law { SP_PUMP_FIXED, SP_PUMP_OVER_TEMPERATURE, SP_PUMP_OVER_SPEED, SP_PUMP_PULSING };
 
 struct sp_pump {
     bool electric;
@@ -92,6 +123,13 @@ struct sp_pump {
     double power;                 /* W electrical at full speed (electric) */
     double rated_voltage;         /* V for which the curve holds (electric) */
     double run_on;                /* s the electric pump runs after the engine stops */
+    enum sp_pump_law law;         /* electric */
+    double from, to, least;       /* K, K, share of full speed up to `from` (over temperature) */
+    double full_at;               /* rev/s of the engine from which it runs at full speed (over engine speed) */
+    double target, pulse_on, pulse_off; /* K below which it runs for so many s and stands for so many (pulsing) */
+    bool failed;                  /* belt off or motor dead */
+    double npsh;                  /* m of head it needs at its inlet at rated speed, with speed squared; 0: not watched */
+    double suction_drop, suction_flow; /* Pa at m3/s lost between tank and pump inlet beyond the hoses */
 };
 
 struct sp_thermostat {
@@ -102,11 +140,12 @@ struct sp_thermostat {
     double bore, lift;          /* m: the valve's curtain area is pi * bore * lift */
     double discharge;           /* discharge coefficient of the valve */
     double leak;                /* share of the full opening left when shut */
+    double restrictor;          /* m bore of a plate in its place; 0: none. The radiator branch stands open */
+    bool inlet_side;            /* stands where the coolant enters the engine and senses the mix there */
+    double mapped_shift;        /* K by which it opens earlier ... */
+    double mapped_power;        /* ... at brake power above this, W; 0: not mapped */
     double bypass_shut;         /* lift (0..1) at which the bypass disc has closed; > 1 never */
 };
-
-/* One hydraulic resistance: drop at a flow, for coolant of 1000 kg/m3 and viscosity 0.7 mPa s. */
-struct sp_resistance { double flow, drop; }; /* m3/s, Pa */
 
 struct sp_hoses {
     double length_out, bore_out;   /* m: engine to radiator */
@@ -115,6 +154,11 @@ struct sp_hoses {
     struct sp_resistance jacket;   /* engine passages */
     struct sp_resistance bypass;   /* bypass branch with its disc fully open */
     double skin;                   /* W/K to the air, both hoses together */
+    double pot;                    /* m3 of a swirl pot in the hose to the radiator; 0: none */
+    struct sp_resistance heater;   /* heater or auxiliary branch, flow 0: none */
+    double heater_conductance;     /* W/K from its coolant to `heater_air` */
+    double heater_air;             /* K; NAN: ambient */
+    bool heater_off;
 };
 
 struct sp_tank {
@@ -124,7 +168,10 @@ struct sp_tank {
     double cap;              /* Pa gauge at which the cap opens */
     double vacuum;           /* Pa below ambient at which it lets air in */
     double compliance;       /* m3/Pa of hoses */
-    double bleed;            /* share of the pump flow that goes through the tank */
+    double bleed;            /* share of the pump flow that goes through the tank, where bleed_bore is 0 */
+    double bleed_bore;       /* m of the restrictor in the bleed line: the flow follows from the pressures */
+    double lost;             /* m3 of coolant missing at the start, or lost by a change */
+    double catch_can;        /* m3; 0: not watched */
     double skin;             /* W/K */
 };
 
@@ -132,90 +179,6 @@ struct sp_coolant_design {
     enum sp_coolant_kind kind;
     double share; /* glycol by volume */
     struct sp_coolant fluid;
-};
-
-/* ---- duct ---------------------------------------------------------------------------------------- */
-
-struct sp_inlet {
-    double area;      /* m2 */
-    double recovery;  /* (total pressure available - ambient)/q */
-    double lip_loss;  /* k on rho/2 max(V1-V,0)^2 */
-    double screen;    /* loss coefficient of mesh on inlet head */
-};
-
-enum sp_diffuser_law { SP_DIFFUSER_GIVEN, SP_DIFFUSER_SUDDEN, SP_DIFFUSER_CONICAL };
-
-struct sp_diffuser_design {
-    enum sp_diffuser_law kind;
-    double loss;       /* on inlet head, when given */
-    double length;     /* m */
-    bool core_damping; /* the core's resistance damps the stall (DA 3.4 proposal) */
-};
-
-enum sp_drop_law { SP_DROP_COEFFICIENT, SP_DROP_LINEAR, SP_DROP_TABLE, SP_DROP_FINS };
-enum sp_core_heat_law { SP_CORE_NO_HEAT, SP_CORE_POWER, SP_CORE_MAKER, SP_CORE_FINS };
-
-struct sp_core {
-    double width, height, depth;    /* m */
-    double free_area_ratio;         /* sigma */
-    enum sp_drop_law drop_law;
-    double coefficient;             /* on face head, front density */
-    double linear, quadratic;       /* Pa s/m, Pa s2/m2 */
-    struct sp_table drop_table;     /* [m/s, Pa] */
-    double at_density;              /* kg/m3 */
-    double at_temperature;          /* K; NAN: no viscosity correction */
-    /* fins and tubes (louvred fin, flat tube) */
-    double fin_pitch, fin_thickness, fin_conductivity;
-    double louvre_pitch, louvre_angle, louvre_length; /* angle in rad */
-    double tube_pitch, tube_height, tube_wall;
-    double rows, passes;
-    /* heat */
-    enum sp_core_heat_law heat_law;
-    double air_conductance, air_exponent, at_face_velocity, heat_at_density;
-    double coolant_conductance, coolant_exponent, at_coolant_flow; /* at 50/50 glycol 90 degC; kg/s */
-    struct sp_table heat_velocity, heat_flow; /* m/s, kg/s: one column each */
-    struct sp_table heat_per_kelvin;          /* W/K, velocity rows x flow columns */
-    double heat_factor;                       /* on the air-side and coolant-side conductance */
-    double metal_capacity, coolant_volume;    /* J/K, m3 */
-    struct sp_resistance drop;                /* coolant side; flow NAN: from tubes */
-    double cells;                             /* number of cells along the coolant path */
-};
-
-enum sp_place_of { SP_AT_ENGINE_OUT, SP_AT_RADIATOR_OUT };
-enum sp_fan_law { SP_FAN_SWITCHED, SP_FAN_PROPORTIONAL, SP_FAN_ALWAYS, SP_FAN_NEVER };
-
-struct sp_fan {
-    bool fitted;
-    double count;
-    struct sp_curve_design curve; /* one fan, at rated speed, 1.2 kg/m3 */
-    bool static_basis;            /* curve is static pressure; else total */
-    bool before_core;
-    double diameter, hub;         /* m; diameter NAN: not known */
-    double windmill_loss;         /* on annulus head */
-    double rated_voltage;         /* V */
-    double power;                 /* W electrical, one fan at rated voltage */
-    double spin_up;               /* s */
-    enum sp_fan_law law;
-    double on, off;               /* K (switched) */
-    double from, to, least;       /* K, K, share of full speed at `from` (proportional) */
-    enum sp_place_of sensor;
-    double run_on;                /* s after the engine stops during which it may run */
-};
-
-struct sp_exit {
-    double area, loss;           /* m2; k on exit head */
-    double pressure_coefficient; /* Cp */
-    double angle;                /* rad to the stream */
-};
-
-enum { SP_DUCTS = 4, SP_CORES = 5, SP_FANS = 3, SP_EXITS = 8 }; /* at most, in a car or a duct */
-
-struct sp_duct_design {
-    struct sp_inlet inlet;
-    struct sp_diffuser_design diffuser;
-    struct sp_core core[SP_CORES];
-    struct sp_fan fan[SP_FANS];
-    struct sp_exit exit[SP_EXITS];
 };
 
 #ifdef __cplusplus

@@ -30,7 +30,7 @@ static struct sp_duct_inputs duct_inputs(const struct sp_circuit *c, const struc
 {
     return (struct sp_duct_inputs){.speed = in->in[SP_IN_AIR_SPEED], .wake = in->in[SP_IN_WAKE],
                                    .temperature = in->in[SP_IN_AMBIENT], .pressure = in->in[SP_IN_PRESSURE],
-                                   .R = c->air.R, .cp = c->air.cp, .fan_speed = s->fan, .wall = s->wall};
+                                   .R = c->air.R, .cp = c->air.cp, .fan_speed = {s->fan}, .wall = {s->wall}};
 }
 
 /* Metal to coolant: grows with flow^0.8 and the coolant's properties, a share is left without flow. The

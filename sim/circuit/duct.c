@@ -73,11 +73,11 @@ static void heat_the_air(const struct problem *p, double m, struct flow *f)
         f->heat = in->heat;
         f->tau = in->heat == 0.0 ? 1.0 : 1.0 + in->heat / (rate * in->temperature);
     } else if (sp_core_has_heat(&p->duct->core)) {
-        double film = 0.5 * (in->temperature + in->wall);
+        double film = 0.5 * (in->temperature + in->wall[0]);
         double hA = sp_core_air_conductance(&p->duct->core, fabs(m) / p->duct->core.face, film);
         f->effectiveness = sp_cells_air_effectiveness(hA, rate);
-        f->heat = rate * f->effectiveness * (in->wall - in->temperature);
-        f->tau = 1.0 + f->effectiveness * (in->wall / in->temperature - 1.0);
+        f->heat = rate * f->effectiveness * (in->wall[0] - in->temperature);
+        f->tau = 1.0 + f->effectiveness * (in->wall[0] / in->temperature - 1.0);
     } else {
         f->tau = 1.0;
     }
@@ -106,7 +106,7 @@ static double fan_at(const struct problem *p, double m, const struct flow *f)
     double ahead = fmin(fmax(0.5 + 0.5 * m / (p->density * p->duct->core.face * creeping), 0.0), 1.0);
     if (p->duct->design.fan[0].before_core) ahead = 1.0 - ahead;
     double cold = f->rho_in, hot = f->rho_out;
-    return sp_fan_pressure(&p->duct->fan, p->in->fan_speed, m, cold + (hot - cold) * ahead);
+    return sp_fan_pressure(&p->duct->fan, p->in->fan_speed[0], m, cold + (hot - cold) * ahead);
 }
 
 static void forward(const struct problem *p, double m, struct flow *f)
@@ -178,6 +178,12 @@ static void fill(const struct problem *p, double m, const struct flow *f, struct
     double jet = m >= 0.0 ? out->exit_velocity * cos_a : m / (f->rho_out * d->inlet.area);
     out->drag = fabs(m) * (p->speed - jet) - f->back * d->exit[0].area * cos_a;
     out->diffuser_stalled = p->duct->diffuser_stalled && m > 0.0;
+    out->fresh = out->fan_flow[0] = m;
+    out->inlet_temperature = p->in->temperature;
+    out->bay_temperature = p->in->temperature * (m >= 0.0 ? f->tau : 1.0);
+    out->core[0] = (struct sp_core_air){.mass_flow = m, .rate = fabs(m) * p->in->cp * f->effectiveness, .heat = f->heat,
+                                        .air_in = p->in->temperature, .face_velocity = out->face_velocity,
+                                        .drop = f->core.core + f->core.heating};
 }
 
 enum sp_status sp_duct_solve_from(const struct sp_duct *d, const struct sp_duct_inputs *in,

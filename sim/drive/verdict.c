@@ -40,9 +40,9 @@ static void judge(struct sp_run *r)
 {
     struct sp_result *out = r->result;
     const struct sp_limits *l = &r->drive->design->limits;
-    const struct limit all[] = {{"limits.coolant", l->coolant - out->coolant.value, SP_EV_COOLANT_OVER},
-                                {"limits.gauge", l->gauge - out->gauge.value, SP_EV_GAUGE_OVER},
-                                {"limits.metal", l->metal - out->metal.value, SP_EV_METAL_OVER},
+    const struct limit all[] = {{"limits.coolant", l->coolant.stop - out->coolant.value, SP_EV_COOLANT_OVER},
+                                {"limits.gauge", l->gauge.stop - out->gauge.value, SP_EV_GAUGE_OVER},
+                                {"limits.metal", l->metal.stop - out->metal.value, SP_EV_METAL_OVER},
                                 {"limits.boil_margin", out->boil_margin.value - l->boil_margin, SP_EV_BOIL_MARGIN_UNDER}};
     double least = INFINITY, earliest = INFINITY;
     out->survives = true;

@@ -61,9 +61,9 @@ void sp_watch(const struct sp_circuit *c, const struct sp_inputs *in, const stru
     struct sp_tank_inputs tank;
     out->tank_pressure = sp_circuit_tank(c, in, y, &tank).pressure;
     g[SP_W_CAP] = out->tank_pressure - tank.ambient - d->tank.cap;
-    g[SP_W_COOLANT] = over(y[SP_Y_JACKET], d->limits.coolant);
-    g[SP_W_GAUGE] = over(y[SP_Y_GAUGE] + d->gauge.offset, d->limits.gauge);
-    g[SP_W_METAL] = over(y[SP_Y_METAL], d->limits.metal);
+    g[SP_W_COOLANT] = over(y[SP_Y_JACKET], d->limits.coolant.stop);
+    g[SP_W_GAUGE] = over(y[SP_Y_GAUGE] + d->gauge.offset, d->limits.gauge.stop);
+    g[SP_W_METAL] = over(y[SP_Y_METAL], d->limits.metal.stop);
     out->boil_margin = sp_circuit_boil_margin(c, y, k, out->tank_pressure);
     g[SP_W_MARGIN] = isfinite(d->limits.boil_margin) ? d->limits.boil_margin - out->boil_margin : -1.0;
     g[SP_W_BOIL] = -out->boil_margin;

@@ -20,10 +20,10 @@ enum sp_status sp_duct_point_solve(const struct sp_duct *duct, const struct sp_a
                                       .pressure = air->pressure,
                                       .R = moist.R,
                                       .cp = moist.cp,
-                                      .fan_speed = fan_speed,
+                                      .fan_speed = {fan_speed},
                                       .heat_given = true,
                                       .heat = heat,
-                                      .wall = air->ambient};
+                                      .wall = {air->ambient}};
     enum sp_status status = sp_duct_solve(duct, &out->in, &out->state);
     if (status == SP_OK) sp_duct_stations(duct, &out->in, &out->state, out->station, &out->losses);
     return status;
@@ -119,7 +119,7 @@ static void print_sums(const struct sp_duct_point *p, FILE *to)
     double wake = sp_duct_wake_drag(&p->state, p->station);
     if (isfinite(wake)) fprintf(to, " from momentum; %.3f N from losses (far wake)", tidy(wake, 5e-4));
     fputc('\n', to);
-    if (p->in.fan_speed > 0.0 || p->state.fan_pressure != 0.0)
+    if (p->in.fan_speed[0] > 0.0 || p->state.fan_pressure != 0.0)
         fprintf(to, "  fan pressure    %.2f Pa\n", tidy(p->state.fan_pressure, 0.005));
     if (p->state.diffuser_stalled) fputs("  The diffuser stalls: it opens too fast for its length.\n", to);
     if (p->state.mass_flow < 0.0) fputs("  The air flows backwards: in at the exit, out of the inlet.\n", to);
@@ -129,7 +129,7 @@ void sp_duct_point_text(const struct sp_duct_point *p, FILE *to)
 {
     fprintf(to, "%.6g m/s (%.6g km/h)", p->speed, p->speed * 3.6);
     if (p->in.speed != p->speed) fprintf(to, ", %.6g m/s through the air", p->in.speed);
-    fputs(p->in.fan_speed > 0.0 ? ", fan on" : ", fan off", to);
+    fputs(p->in.fan_speed[0] > 0.0 ? ", fan on" : ", fan off", to);
     if (p->in.heat > 0.0)
         fprintf(to, ", %.6g kW to the air\n\n", p->in.heat / 1e3);
     else
@@ -162,7 +162,7 @@ static void write_point(struct sp_writer *w, const struct sp_duct_point *p)
     sp_write_number(w, "speed_m_s", p->speed);
     sp_write_number(w, "air_speed_m_s", p->in.speed);
     sp_write_number(w, "heat_W", p->in.heat);
-    sp_write_bool(w, "fan_on", p->in.fan_speed > 0.0);
+    sp_write_bool(w, "fan_on", p->in.fan_speed[0] > 0.0);
     sp_write_number(w, "mass_flow_kg_s", p->state.mass_flow);
     sp_write_number(w, "face_velocity_m_s", p->state.face_velocity);
     sp_write_number(w, "velocity_ratio", velocity_ratio(p));

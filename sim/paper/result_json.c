@@ -25,9 +25,9 @@ static void write_peak(struct sp_writer *w, const char *name, const char *key, d
 static void write_limits(struct sp_writer *w, const struct sp_limits *l)
 {
     sp_write_open(w, "limits", '{');
-    sp_write_number(w, "coolant_degC", l->coolant - SP_ZERO_C);
-    sp_write_number(w, "gauge_degC", l->gauge - SP_ZERO_C);
-    sp_write_number(w, "metal_degC", l->metal - SP_ZERO_C);
+    sp_write_number(w, "coolant_degC", l->coolant.stop - SP_ZERO_C);
+    sp_write_number(w, "gauge_degC", l->gauge.stop - SP_ZERO_C);
+    sp_write_number(w, "metal_degC", l->metal.stop - SP_ZERO_C);
     sp_write_number(w, "boil_margin_K", l->boil_margin);
     sp_write_close(w, '}');
 }
@@ -42,7 +42,7 @@ static void write_verdict(struct sp_writer *w, const struct sp_report *r)
     sp_write_number(w, "boil_margin_K", out->boil_margin.value);
     sp_write_bool(w, "boils", out->boil_margin.value < 0.0);
     sp_write_number(w, "over_ambient_K", out->over_ambient);
-    sp_write_number(w, "time_over_limit_s", isfinite(r->design->limits.coolant) ? out->time_over_limit : NAN);
+    sp_write_number(w, "time_over_limit_s", isfinite(r->design->limits.coolant.stop) ? out->time_over_limit : NAN);
     sp_write_number(w, "time_above_band_s", r->design->thermostat.none ? NAN : out->time_above_band);
     write_limits(w, &r->design->limits);
     write_peak(w, "gauge_peak", "reading_degC", out->gauge.value - SP_ZERO_C, &out->gauge);

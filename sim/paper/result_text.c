@@ -24,9 +24,9 @@ static void list_limits(const struct sp_report *r, struct judged out[LIMITS])
     const struct sp_limits *l = &r->design->limits;
     const struct sp_result *s = r->result;
     const struct judged all[LIMITS] = {
-        {"limits.coolant", "coolant", l->coolant, s->coolant.value, l->coolant - s->coolant.value},
-        {"limits.gauge", "the gauge", l->gauge, s->gauge.value, l->gauge - s->gauge.value},
-        {"limits.metal", "the metal", l->metal, s->metal.value, l->metal - s->metal.value},
+        {"limits.coolant", "coolant", l->coolant.stop, s->coolant.value, l->coolant.stop - s->coolant.value},
+        {"limits.gauge", "the gauge", l->gauge.stop, s->gauge.value, l->gauge.stop - s->gauge.value},
+        {"limits.metal", "the metal", l->metal.stop, s->metal.value, l->metal.stop - s->metal.value},
         {"limits.boil_margin", "boil margin", l->boil_margin, s->boil_margin.value,
          s->boil_margin.value - l->boil_margin}};
     memcpy(out, all, sizeof all);

@@ -322,7 +322,7 @@ static void tank_gas_and_vapour(void **state)
     r.d.coolant.fluid.density[0] = 1050.0;
     r.d.tank.compliance = 1e-18;
     r.d.tank.fill_temperature = 293.15;
-    r.d.start = (struct sp_start){293.15, NAN, NAN};
+    r.d.start = (struct sp_start){.coolant = 293.15, .metal = NAN, .radiator = NAN};
     prepare(&r);
     struct sp_tank_inputs inputs;
     check_close(sp_circuit_tank(&r.c, &r.in, r.y, &inputs).pressure, 101.325e3, 1e-9, 0);

@@ -98,7 +98,7 @@ static struct rig fan_rig(void)
     r.d.fan[0] = (struct sp_fan){.fitted = true, .count = 1, .curve = {250.0, 0.8, {0, 0, NULL}}, .diameter = NAN,
                               .windmill_loss = 1.0};
     r.in.speed = 0.0;
-    r.in.fan_speed = 1.0;
+    r.in.fan_speed[0] = 1.0;
     return r;
 }
 
@@ -149,7 +149,7 @@ static void windmilling_fan(void **state)
         check_close(phi(&r), want[i], 0, 6e-7);
     }
     r.d.fan[0].windmill_loss = 1.0;
-    r.in.fan_speed = 1.0;
+    r.in.fan_speed[0] = 1.0;
     const double V[] = {0, 10, 20, 30, 40}, Q[] = {0.781255, 0.872221, 1.263443, 1.895165, 2.526886};
     const double dp[] = {69.0114, 17.0177, -95.5130, -214.9042, -382.0520};
     for (int i = 0; i < 5; ++i) {

@@ -32,7 +32,7 @@ static struct rig rig(double speed, double recovery, double back)
                                 .at_temperature = NAN,
                                 .heat_factor = 1.0,
                                 .cells = 10};
-    r.d.inlet = (struct sp_inlet){inlet, recovery, 0.5, screen};
+    r.d.inlet = (struct sp_inlet){.area = inlet, .recovery = recovery, .lip_loss = 0.5, .screen = screen};
     r.d.diffuser.loss = diffuser;
     r.d.exit[0] = (struct sp_exit){outlet, exit_loss, back, 0.0};
     r.in = (struct sp_duct_inputs){
@@ -173,7 +173,7 @@ static struct rig with_fan(double speed, double fan_speed)
                               .diameter = 0.4,
                               .hub = 0.14,
                               .windmill_loss = 1.5};
-    r.in.fan_speed = fan_speed;
+    r.in.fan_speed[0] = fan_speed;
     return r;
 }
 
@@ -278,7 +278,7 @@ static void warm_through_nil(void **state)
     r.d.core[0].coolant_conductance = 5e3;
     r.d.core[0].at_coolant_flow = 1.0;
     r.d.inlet.lip_loss = 0.0;
-    r.in.wall = 370.0;
+    r.in.wall[0] = 370.0;
     double m_before = 0.0, heat_before = 0.0;
     for (int i = -200; i <= 200; ++i) {
         r.d.exit[0].pressure_coefficient = 0.5 - i * 1e-6 / 540.0;

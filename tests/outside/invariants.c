@@ -200,8 +200,8 @@ static void draw_duct(gsl_rng *g, struct drawn *x)
     struct sp_duct_design *d = &x->d.duct[0];
     draw_core(g, x);
     double face = d->core[0].width * d->core[0].height;
-    d->inlet = (struct sp_inlet){face * spread(g, 0.1, 1.5), gsl_rng_uniform(g), gsl_rng_uniform(g),
-                                 chance(g, 0.5) ? 0.0 : between(g, 0.0, 3.0)};
+    d->inlet = (struct sp_inlet){.area = face * spread(g, 0.1, 1.5), .recovery = gsl_rng_uniform(g), .lip_loss = gsl_rng_uniform(g),
+                                 .screen = chance(g, 0.5) ? 0.0 : between(g, 0.0, 3.0)};
     d->diffuser.kind = (enum sp_diffuser_law)gsl_rng_uniform_int(g, 3);
     d->diffuser.loss = gsl_rng_uniform(g);
     d->diffuser.length = between(g, 0.05, 0.8);
@@ -407,15 +407,15 @@ static struct sp_duct *build(const struct drawn *x)
 /* Hostile on purpose: tail winds, dead air, altitude, fan at rest and overspeeding, cold walls. */
 static struct sp_duct_inputs condition(gsl_rng *g)
 {
-    struct sp_duct_inputs in = {.speed = chance(g, 0.2) ? 0.0 : between(g, -25.0, 90.0), .fan_speed = 0.0};
+    struct sp_duct_inputs in = {.speed = chance(g, 0.2) ? 0.0 : between(g, -25.0, 90.0), .fan_speed = {0.0}};
     in.wake = chance(g, 0.2) ? 0.0 : between(g, 0.0, 1.5);
     in.temperature = between(g, 243.15, 323.15);
     in.pressure = sp_isa_pressure(between(g, 0.0, 5000.0));
     struct sp_moist air = sp_moist_air(in.temperature, in.pressure, gsl_rng_uniform(g));
     in.R = air.R;
     in.cp = air.cp;
-    if (chance(g, 0.5)) in.fan_speed = between(g, 0.0, 1.2);
-    in.wall = in.temperature + (chance(g, 0.15) ? between(g, -40.0, 0.0) : between(g, 0.0, 120.0));
+    if (chance(g, 0.5)) in.fan_speed[0] = between(g, 0.0, 1.2);
+    in.wall[0] = in.temperature + (chance(g, 0.15) ? between(g, -40.0, 0.0) : between(g, 0.0, 120.0));
     return in;
 }
 
@@ -493,7 +493,7 @@ static void check_heat(const struct drawn *x, const struct sp_duct_inputs *in, c
 static bool several(const struct drawn *x, const struct sp_duct_inputs *in, const struct sp_duct_state *s)
 {
     struct outer o = outer_of(x, in);
-    if (x->d.duct[0].fan[0].fitted && in->fan_speed > 0.0 && o.front < o.back) return true;
+    if (x->d.duct[0].fan[0].fitted && in->fan_speed[0] > 0.0 && o.front < o.back) return true;
     return x->d.duct[0].core[0].drop_law == SP_DROP_FINS && fabs(s->face_velocity) < 4.0;
 }
 
@@ -519,14 +519,14 @@ static void hotter_core(const struct drawn *x, const struct sp_duct *d, const st
 {
     struct sp_duct_inputs hot = *in;
     struct sp_duct_state h;
-    hot.wall += 20.0;
+    hot.wall[0] += 20.0;
     expect(x, sp_duct_solve(d, &hot, &h) == SP_OK, "a hotter core");
     if (!(s->mass_flow > 1e-3)) return;
     expect(x, h.mass_flow < s->mass_flow, "hotter core %.9g kg/s, before %.9g", h.mass_flow, s->mass_flow);
     const struct sp_core *c = &x->d.duct[0].core[0];
     bool viscous =
         c->drop_law == SP_DROP_FINS || (c->drop_law != SP_DROP_COEFFICIENT && isfinite(c->at_temperature));
-    if (in->fan_speed > 0.0 || viscous) return;
+    if (in->fan_speed[0] > 0.0 || viscous) return;
     expect(x, h.exit_velocity > s->exit_velocity, "hotter core %.9g m/s, before %.9g", h.exit_velocity,
            s->exit_velocity);
 }
@@ -562,7 +562,7 @@ static void random_ducts(void **state)
             struct sp_station st[SP_STATIONS];
             struct sp_duct_losses l;
             enum sp_status status = sp_duct_solve(d, &in, &s);
-            expect(&x, status == SP_OK, "status %d at %g m/s, fan %g", (int)status, in.speed, in.fan_speed);
+            expect(&x, status == SP_OK, "status %d at %g m/s, fan %g", (int)status, in.speed, in.fan_speed[0]);
             if (status) continue;
             sp_duct_stations(d, &in, &s, st, &l);
             check_masses(&x, &s, st);

@@ -37,9 +37,9 @@ static struct sp_design two_masses(double metal, double coolant, double between)
     d.pump.electric = false;
     d.pump.ratio = 1e-9;
     d.duct[0].fan[0].fitted = false;
-    d.limits.coolant = 5000.0;
+    d.limits.coolant.stop = 5000.0;
     d.limits.boil_margin = NAN;
-    d.start = (struct sp_start){d.air.ambient, NAN, NAN};
+    d.start = (struct sp_start){.coolant = d.air.ambient, .metal = NAN, .radiator = NAN};
     return d;
 }
 
@@ -75,7 +75,7 @@ static struct sp_design with_sink(double metal, double coolant, double between, 
     c->metal_capacity = 1e-3;
     c->coolant_volume = least;
     c->drop = (struct sp_resistance){6.0, 100.0};
-    d.duct[0].inlet = (struct sp_inlet){2000.0, 1.0, 0.0, 0.0};
+    d.duct[0].inlet = (struct sp_inlet){.area = 2000.0, .recovery = 1.0, .lip_loss = 0.0, .screen = 0.0};
     d.duct[0].diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
     d.duct[0].exit[0] = (struct sp_exit){2000.0, 0.0, 0.0, 0.0};
     return d;
@@ -173,7 +173,7 @@ static void soak_equalises(void **state)
     struct sp_step s = {.kind = SP_STEP_SOAK, .time = 3600.0, .repeat = 1.0};
     d.step = &s;
     d.steps = 1;
-    d.start = (struct sp_start){378.15, 398.15, 300.0};
+    d.start = (struct sp_start){.coolant = 378.15, .metal = 398.15, .radiator = 300.0};
     struct fixture_drive r = run(&d, 60.0);
     check_close(fixture_last(&r, SP_CH_ENGINE_OUT) - 273.15, 122.142857, 0, 2e-5);
     check_close(fixture_last(&r, SP_CH_METAL) - 273.15, 122.142857, 0, 2e-5);
@@ -401,7 +401,7 @@ static void vents_then_cools(void **state)
     d.hoses.skin = 60.0;
     d.tank.skin = 60.0;
     d.engine.skin_standing = 60.0;
-    d.start = (struct sp_start){d.air.ambient, NAN, NAN};
+    d.start = (struct sp_start){.coolant = d.air.ambient, .metal = NAN, .radiator = NAN};
     struct sp_step s[] = {fixture_hold(900.0, 30.0, 40e3, 80.0),
                           {.kind = SP_STEP_SOAK, .time = 60000.0, .repeat = 1.0}};
     d.step = s;

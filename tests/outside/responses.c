@@ -136,7 +136,7 @@ static void shuts_below_where_it_opens(void **state)
     d.thermostat.opens = 355.15;
     d.thermostat.full = 367.15;
     d.thermostat.hysteresis = 3.0;
-    d.start = (struct sp_start){343.15, NAN, NAN};
+    d.start = (struct sp_start){.coolant = 343.15, .metal = NAN, .radiator = NAN};
     struct sp_step s[] = {fixture_hold(600.0, 20.0, 60e3, 80.0), fixture_hold(1800.0, 40.0, 0.0, 80.0)};
     struct fixture_drive r = drive(&d, s, 2, 0.5);
     const enum sp_event_kind kind[] = {SP_EV_THERMOSTAT_OPENS, SP_EV_THERMOSTAT_SHUT};
@@ -245,7 +245,7 @@ static struct fixture_drive along(const char *rows, double wind, double interval
     d.air.pressure = 101325.0;
     d.air.ambient = 288.15;
     d.air.wind = wind;
-    d.start = (struct sp_start){288.15, NAN, NAN};
+    d.start = (struct sp_start){.coolant = 288.15, .metal = NAN, .radiator = NAN};
     d.thermostat.opens = 400.0;
     d.thermostat.full = 410.0;
     d.duct[0].fan[0].fitted = false;
@@ -253,7 +253,7 @@ static struct fixture_drive along(const char *rows, double wind, double interval
     d.duct[0].core[0].coefficient = 8.0;
     d.duct[0].core[0].free_area_ratio = 1.0;
     double face = d.duct[0].core[0].width * d.duct[0].core[0].height;
-    d.duct[0].inlet = (struct sp_inlet){face, 1.0, 0.0, 0.0};
+    d.duct[0].inlet = (struct sp_inlet){.area = face, .recovery = 1.0, .lip_loss = 0.0, .screen = 0.0};
     d.duct[0].diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
     d.duct[0].exit[0] = (struct sp_exit){0.5 * face, 0.0, -0.1, 0.0};
     struct sp_step s = {.kind = SP_STEP_TRACE, .trace = path, .repeat = 1.0};

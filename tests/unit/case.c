@@ -69,8 +69,8 @@ static void drive_case_in_si(void **state)
     check_close(d->step[2].power, 12e3, 1e-14, 0.0);
     assert_true(isnan(d->step[2].engine_speed));
     assert_int_equal(d->step[3].kind, SP_STEP_SOAK);
-    check_close(d->limits.coolant, 383.15, 1e-14, 0.0);
-    assert_true(isnan(d->limits.boil_margin) && isnan(d->limits.gauge));
+    check_close(d->limits.coolant.stop, 383.15, 1e-14, 0.0);
+    assert_true(isnan(d->limits.boil_margin) && isnan(d->limits.gauge.stop));
     check_close(d->start.coolant, 306.15, 1e-14, 0.0); /* as ambient */
     assert_true(isnan(d->start.metal));
     assert_false(d->thermostat.none);

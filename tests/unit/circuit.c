@@ -315,7 +315,7 @@ static void cold_car_rests(void **state)
     r.in.in[SP_IN_SPEED] = r.in.in[SP_IN_AIR_SPEED] = 0.0;
     r.in.in[SP_IN_HEAT_GAS] = r.in.in[SP_IN_HEAT_FRICTION] = 0.0;
     r.in.flags = 0;
-    r.d.start = (struct sp_start){298.15, NAN, NAN};
+    r.d.start = (struct sp_start){.coolant = 298.15, .metal = NAN, .radiator = NAN};
     sp_circuit_start(&r.c, &r.in, r.y);
     struct sp_coupling k;
     double f[SP_Y_MOST];
@@ -333,23 +333,23 @@ static void start_state(void **state)
     warm(&r);
     prepare(&r);
     const struct sp_layout *l = &r.c.layout;
-    r.d.start = (struct sp_start){350.0, 365.0, 310.0};
+    r.d.start = (struct sp_start){.coolant = 350.0, .metal = 365.0, .radiator = 310.0};
     sp_circuit_start(&r.c, &r.in, r.y);
     check_close(r.y[SP_Y_METAL], 365.0, 0, 0);
     check_close(r.y[SP_Y_JACKET], 350.0, 0, 0);
     check_close(r.y[l->core], 310.0, 0, 0);
     check_close(r.y[l->wall + l->cells - 1], 310.0, 0, 0);
-    r.d.start = (struct sp_start){350.0, NAN, NAN};
+    r.d.start = (struct sp_start){.coolant = 350.0, .metal = NAN, .radiator = NAN};
     sp_circuit_start(&r.c, &r.in, r.y);
     check_close(r.y[SP_Y_METAL], 350.0, 0, 0);
     check_close(r.y[l->back], 350.0, 0, 0);
     /* Filled at 20 degC and started there: ambient pressure. Started hotter: more, but not over the cap. */
     struct sp_tank_inputs ti;
-    r.d.start = (struct sp_start){r.d.tank.fill_temperature, NAN, NAN};
+    r.d.start = (struct sp_start){.coolant = r.d.tank.fill_temperature, .metal = NAN, .radiator = NAN};
     sp_circuit_start(&r.c, &r.in, r.y);
     check_close(sp_circuit_tank(&r.c, &r.in, r.y, &ti).pressure, 101325.0, 1e-9, 0);
     for (double T = 300.0; T < 410.0; T += 10.0) {
-        r.d.start = (struct sp_start){T, NAN, NAN};
+        r.d.start = (struct sp_start){.coolant = T, .metal = NAN, .radiator = NAN};
         sp_circuit_start(&r.c, &r.in, r.y);
         double p = sp_circuit_tank(&r.c, &r.in, r.y, &ti).pressure;
         assert_true(p > 101325.0);

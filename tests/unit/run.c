@@ -88,7 +88,7 @@ static void accounts(void **state)
     (void)state;
     struct sp_step s[10];
     struct sp_design d = busy(s, 10);
-    d.limits.coolant = 361.0;
+    d.limits.coolant.stop = 361.0;
     struct fixture_drive r = run(&d, 0.05, 1e-7);
     assert_int_equal(r.status, SP_NOT);
     assert_string_equal(r.result.limit, "limits.coolant");
@@ -305,13 +305,13 @@ static void which_limit(void **state)
     (void)state;
     struct sp_step s[4];
     struct sp_design d = busy(s, 4);
-    d.limits = (struct sp_limits){500.0, 450.0, 520.0, NAN};
+    d.limits = only_limits(500.0, 450.0, 520.0, NAN);
     struct fixture_drive r = run(&d, 0.0, 0.0);
     assert_true(r.result.survives && r.status == SP_OK);
     assert_string_equal(r.result.limit, "limits.gauge");
     double metal = r.result.metal.value, coolant = r.result.coolant.value;
     fixture_drop(&r);
-    d.limits = (struct sp_limits){coolant - 0.5, NAN, metal - 8.0, NAN};
+    d.limits = only_limits(coolant - 0.5, NAN, metal - 8.0, NAN);
     r = run(&d, 0.0, 0.0);
     assert_false(r.result.survives);
     double first_metal = NAN, first_coolant = NAN;
@@ -322,7 +322,7 @@ static void which_limit(void **state)
     assert_true(isfinite(first_metal) && isfinite(first_coolant));
     assert_string_equal(r.result.limit, first_metal < first_coolant ? "limits.metal" : "limits.coolant");
     fixture_drop(&r);
-    d.limits = (struct sp_limits){300.0, NAN, NAN, NAN}; /* broken before it begins */
+    d.limits = only_limits(300.0, NAN, NAN, NAN); /* broken before it begins */
     r = run(&d, 0.0, 0.0);
     assert_int_equal(r.status, SP_NOT);
     check_close(r.result.time_over_limit, r.result.duration, 1e-9, 0);

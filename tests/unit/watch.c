@@ -124,7 +124,7 @@ static void limits(void **state)
 {
     (void)state;
     struct rig r = {.d = *fixture.base};
-    r.d.limits = (struct sp_limits){370.0, 380.0, 390.0, 10.0};
+    r.d.limits = only_limits(370.0, 380.0, 390.0, 10.0);
     r.d.gauge.offset = 2.0;
     prepare(&r);
     r.y[SP_Y_JACKET] = 371.0;
@@ -137,7 +137,7 @@ static void limits(void **state)
     check_close(g[SP_W_MARGIN], 10.0 - r.seen.boil_margin, 1e-12, 0);
     check_close(g[SP_W_BOIL], -r.seen.boil_margin, 1e-12, 0);
     check_close(g[SP_W_CAP], r.seen.tank_pressure - 101325.0 - r.d.tank.cap, 1e-12, 1e-9);
-    r.d.limits = (struct sp_limits){NAN, NAN, NAN, NAN};
+    r.d.limits = only_limits(NAN, NAN, NAN, NAN);
     g = look(&r);
     assert_true(g[SP_W_COOLANT] < 0.0 && g[SP_W_GAUGE] < 0.0 && g[SP_W_METAL] < 0.0 && g[SP_W_MARGIN] < 0.0);
     sp_circuit_free(&r.c);
