@@ -66,7 +66,12 @@ struct sp_duct_state {
     struct sp_core_air core[SP_CORES];
     double fresh;          /* kg/s in at the inlet, negative when air comes out of it */
     double leak_past, leak_outside; /* kg/s past the cores, and to outside */
-    double backwards;      /* kg/s that come back through open parts of the cores */
+    double backwards;      /* kg/s that come back through open parts of the cores, against the main flow */
+    double exit_flow[SP_EXITS]; /* kg/s out at each exit */
+    double flap_flow;      /* kg/s through flaps in shrouds */
+    double front_pressure, front_temperature; /* Pa over ambient, K: ahead of cores and of fans before them */
+    double face_pressure, back_pressure;      /* Pa over ambient, mean over the air at the cores' front and back */
+    double heating_loss;   /* Pa that heating costs, mean over the air that passes the cores */
     double bay_temperature, bay_pressure; /* K, Pa over ambient: behind cores and fans, ahead of the exits */
     double inlet_temperature;             /* K of the air in the inlet: preheat, wake and recirculation included */
     double fan_flow[SP_FANS]; /* kg/s through each kind of fan, all of that kind */

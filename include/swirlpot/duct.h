@@ -145,7 +145,11 @@ struct sp_exit {
 enum { SP_DUCTS = 4, SP_CORES = 5, SP_FANS = 3, SP_EXITS = 8 }; /* at most, in a car or a duct */
 
 /* A gap: flow through an opening with loss coefficient k on the speed in it. */
-struct sp_leak { double area, coefficient, pressure_coefficient; }; /* m2; 0: none; Cp where it leads */
+struct sp_leak {
+    double area;        /* m2; 0: gap times length ... */
+    double gap, length; /* m; ... and where that is 0 too there is none */
+    double coefficient, pressure_coefficient; /* k; Cp of where it leads */
+};
 
 struct sp_duct_design {
     double count;       /* equal ducts; 0: one */

@@ -60,6 +60,8 @@ static const struct sp_kind_row kinds[SP_KINDS] = {
                          {4, -1, 2}},
     [SP_K_FRICTION] = {"drag per speed squared", "N s2/m2",
                         "a drag per speed squared such as \"0.45 N.s2/m2\"", false, NULL, {-1, 1}},
+    [SP_K_FOULING] = {"fouling resistance", "m2K/W", "a fouling resistance such as \"1.76e-4 m2K/W\"", false, NULL,
+                      {0, -1, 3, 0, 1}},
 };
 
 const struct sp_kind_row *sp_kind_row(enum sp_kind kind)
@@ -114,6 +116,9 @@ static const struct sp_spelling spellings[] = {
     {SP_K_CONDUCTIVITY, "W/mK", 1.0, 0.0},
     {SP_K_CONDUCTIVITY, "W/m K", 1.0, 0.0},
     {SP_K_CONDUCTIVITY, "W/m.K", 1.0, 0.0},
+    {SP_K_FOULING, "m2K/W", 1.0, 0.0},
+    {SP_K_FOULING, "m2 K/W", 1.0, 0.0},
+    {SP_K_FOULING, "m2.K/W", 1.0, 0.0},
     {SP_K_TORQUE, "lb-ft", LBF * 0.3048, 0.0},
     {SP_K_TORQUE, "lb.ft", LBF * 0.3048, 0.0},
     {SP_K_TORQUE, "lb ft", LBF * 0.3048, 0.0},

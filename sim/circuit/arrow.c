@@ -9,30 +9,60 @@ enum { WIDTH = 5, OWN = 3, LOWER = 3 }; /* diagonals[row][OWN + (column - row)] 
 
 /* ---- places ------------------------------------------------------------------------------------------ */
 
-/* State index of row p of the band: hose out, then coolant and wall of each core cell in turn, hose back. */
-static int state_of(const struct sp_layout *l, int p)
+static void add_rows(struct sp_arrow *a, int first, int count)
 {
-    if (p < SP_HOSE_CELLS) return l->out + p;
-    int in_core = p - SP_HOSE_CELLS;
-    if (in_core >= 2 * l->cells) return l->back + in_core - 2 * l->cells;
-    return in_core % 2 ? l->wall + in_core / 2 : l->core + in_core / 2;
+    for (int i = 0; i < count; ++i) a->state[a->band++] = first + i;
 }
 
-static int wall_row(int cell) { return SP_HOSE_CELLS + 2 * cell + 1; }
-static int core_row(int cell) { return SP_HOSE_CELLS + 2 * cell; }
+static void add_core(struct sp_arrow *a, int e)
+{
+    const struct sp_cells_at *c = &a->layout.exchanger[e];
+    a->row_of[e] = a->band;
+    for (int i = 0; i < c->cells; ++i) {
+        a->state[a->band++] = c->fluid + i;
+        a->state[a->band++] = c->wall + i;
+    }
+}
+
+/* Hose out, the cores between the hoses, hose back; then the other cores. */
+static void place_band(struct sp_arrow *a)
+{
+    const struct sp_layout *l = &a->layout;
+    if (l->chained) add_rows(a, l->out, SP_HOSE_CELLS);
+    for (int e = 0; e < l->chained; ++e) add_core(a, e);
+    if (l->chained) add_rows(a, l->back, SP_HOSE_CELLS);
+    for (int e = l->chained; e < l->exchangers; ++e) add_core(a, e);
+}
+
+static void place_border(struct sp_arrow *a)
+{
+    const struct sp_layout *l = &a->layout;
+    for (int i = 0; i <= SP_Y_FAN; ++i) a->border_state[a->states++] = i;
+    for (int f = 1; f < l->fans; ++f) a->border_state[a->states++] = l->fan[f];
+    if (l->oil >= 0) a->border_state[a->states++] = l->oil;
+    if (l->gearbox >= 0) a->border_state[a->states++] = l->gearbox;
+    for (int i = 0; !l->chained && i < SP_HOSE_CELLS; ++i) {
+        a->border_state[a->states++] = l->out + i;
+        a->border_state[a->states++] = l->back + i;
+    }
+    a->border = a->states + 2 * l->exchangers;
+    for (int i = SP_Y_GAUGE; i < SP_Y_CHAIN; ++i) a->passive_state[a->passives++] = i;
+    if (l->battery >= 0) a->passive_state[a->passives++] = l->battery;
+}
 
 static int passive_width(const struct sp_arrow *a)
 {
-    return SP_BORDER + a->band + SP_PASSIVE;
+    return a->border + a->band + a->passives;
 }
 
 bool sp_arrow_open(struct sp_layout layout, struct sp_arrow *out)
 {
-    int band = layout.count - SP_Y_CHAIN;
-    *out = (struct sp_arrow){.layout = layout, .band = band};
-    for (int p = 0; p < band; ++p) out->state[p] = state_of(&layout, p);
-    int lengths[] = {band * WIDTH, band * SP_BORDER, SP_BORDER_STATES * band, SP_BORDER_STATES * SP_BORDER,
-                     SP_PASSIVE * passive_width(out)};
+    memset(out, 0, sizeof *out);
+    out->layout = layout;
+    place_band(out);
+    place_border(out);
+    int lengths[] = {out->band * WIDTH, out->band * out->border, out->states * out->band, out->states * out->border,
+                     out->passives * passive_width(out)};
     double **part[] = {&out->diagonals, &out->columns, &out->rows, &out->corner, &out->passive};
     for (int i = 0; i < 5; ++i) out->entries += lengths[i];
     out->entry = calloc((size_t)out->entries, sizeof *out->entry);
@@ -53,38 +83,38 @@ void sp_arrow_close(struct sp_arrow *a)
 
 /* ---- filling ------------------------------------------------------------------------------------------- */
 
-static void fill_band(struct sp_arrow *a, double *const *jac, const double *wall, const double *core)
+/* One row of what the border does: its states, then the means. */
+static void fill_border(const struct sp_arrow *a, int row, double *const *jac, double *const *mean, double *c)
+{
+    for (int j = 0; j < a->states; ++j) c[j] = jac[a->border_state[j]][row];
+    for (int j = a->states; j < a->border; ++j) c[j] = mean[j - a->states][row];
+}
+
+static void fill_band(struct sp_arrow *a, double *const *jac, double *const *mean)
 {
     for (int p = 0; p < a->band; ++p) {
         int row = a->state[p];
         for (int q = p - LOWER; q <= p + 1; ++q)
             a->diagonals[p * WIDTH + OWN + q - p] =
                 q >= 0 && q < a->band ? jac[a->state[q]][row] : 0.0;
-        double *c = a->columns + p * SP_BORDER;
-        for (int j = 0; j < SP_BORDER_STATES; ++j) c[j] = jac[j][row];
-        c[SP_BORDER_WALL] = wall[row];
-        c[SP_BORDER_CORE] = core[row];
+        fill_border(a, row, jac, mean, a->columns + p * a->border);
     }
 }
 
-void sp_arrow_fill(struct sp_arrow *a, double *const *jac, const double *wall, const double *core)
+void sp_arrow_fill(struct sp_arrow *a, double *const *jac, double *const *mean)
 {
-    fill_band(a, jac, wall, core);
-    for (int i = 0; i < SP_BORDER_STATES; ++i) {
-        for (int p = 0; p < a->band; ++p) a->rows[i * a->band + p] = jac[a->state[p]][i];
-        double *c = a->corner + i * SP_BORDER;
-        for (int j = 0; j < SP_BORDER_STATES; ++j) c[j] = jac[j][i];
-        c[SP_BORDER_WALL] = wall[i];
-        c[SP_BORDER_CORE] = core[i];
+    fill_band(a, jac, mean);
+    for (int i = 0; i < a->states; ++i) {
+        int row = a->border_state[i];
+        for (int p = 0; p < a->band; ++p) a->rows[i * a->band + p] = jac[a->state[p]][row];
+        fill_border(a, row, jac, mean, a->corner + i * a->border);
     }
-    for (int i = 0; i < SP_PASSIVE; ++i) {
-        int row = SP_BORDER_STATES + i;
+    for (int i = 0; i < a->passives; ++i) {
+        int row = a->passive_state[i];
         double *c = a->passive + i * passive_width(a);
-        for (int j = 0; j < SP_BORDER_STATES; ++j) c[j] = jac[j][row];
-        c[SP_BORDER_WALL] = wall[row];
-        c[SP_BORDER_CORE] = core[row];
-        for (int p = 0; p < a->band; ++p) c[SP_BORDER + p] = jac[a->state[p]][row];
-        for (int j = 0; j < SP_PASSIVE; ++j) c[SP_BORDER + a->band + j] = jac[SP_BORDER_STATES + j][row];
+        fill_border(a, row, jac, mean, c);
+        for (int p = 0; p < a->band; ++p) c[a->border + p] = jac[a->state[p]][row];
+        for (int j = 0; j < a->passives; ++j) c[a->border + a->band + j] = jac[a->passive_state[j]][row];
     }
 }
 
@@ -92,8 +122,8 @@ void sp_arrow_scale_add(struct sp_arrow *a, double scale)
 {
     for (int i = 0; i < a->entries; ++i) a->entry[i] *= scale;
     for (int p = 0; p < a->band; ++p) a->diagonals[p * WIDTH + OWN] += 1.0;
-    for (int i = 0; i < SP_BORDER_STATES; ++i) a->corner[i * SP_BORDER + i] += 1.0;
-    for (int i = 0; i < SP_PASSIVE; ++i) a->passive[i * passive_width(a) + SP_BORDER + a->band + i] += 1.0;
+    for (int i = 0; i < a->states; ++i) a->corner[i * a->border + i] += 1.0;
+    for (int i = 0; i < a->passives; ++i) a->passive[i * passive_width(a) + a->border + a->band + i] += 1.0;
 }
 
 /* ---- band ------------------------------------------------------------------------------------------------ */
@@ -129,108 +159,110 @@ static void backward(const double *d, int n, double *x, int step)
 
 /* ---- corner ---------------------------------------------------------------------------------------------- */
 
-static bool factor_corner(double *m, int *pivot)
+static bool factor_corner(double *m, int n, int *pivot)
 {
-    for (int k = 0; k < SP_BORDER; ++k) {
+    for (int k = 0; k < n; ++k) {
         int best = k;
-        for (int i = k + 1; i < SP_BORDER; ++i)
-            if (fabs(m[i * SP_BORDER + k]) > fabs(m[best * SP_BORDER + k])) best = i;
+        for (int i = k + 1; i < n; ++i)
+            if (fabs(m[i * n + k]) > fabs(m[best * n + k])) best = i;
         pivot[k] = best;
-        if (!(fabs(m[best * SP_BORDER + k]) > 0.0)) return false;
-        for (int j = 0; best != k && j < SP_BORDER; ++j) {
-            double swap = m[k * SP_BORDER + j];
-            m[k * SP_BORDER + j] = m[best * SP_BORDER + j];
-            m[best * SP_BORDER + j] = swap;
+        if (!(fabs(m[best * n + k]) > 0.0)) return false;
+        for (int j = 0; best != k && j < n; ++j) {
+            double swap = m[k * n + j];
+            m[k * n + j] = m[best * n + j];
+            m[best * n + j] = swap;
         }
-        for (int i = k + 1; i < SP_BORDER; ++i) {
-            double by = m[i * SP_BORDER + k] /= m[k * SP_BORDER + k];
-            for (int j = k + 1; j < SP_BORDER; ++j) m[i * SP_BORDER + j] -= by * m[k * SP_BORDER + j];
+        for (int i = k + 1; i < n; ++i) {
+            double by = m[i * n + k] /= m[k * n + k];
+            for (int j = k + 1; j < n; ++j) m[i * n + j] -= by * m[k * n + j];
         }
     }
     return true;
 }
 
-static void solve_corner(const double *m, const int *pivot, double *x)
+static void solve_corner(const double *m, int n, const int *pivot, double *x)
 {
-    for (int k = 0; k < SP_BORDER; ++k) { /* rows were swapped whole, so all swaps come first */
+    for (int k = 0; k < n; ++k) { /* rows were swapped whole, so all swaps come first */
         double swap = x[k];
         x[k] = x[pivot[k]];
         x[pivot[k]] = swap;
     }
-    for (int i = 1; i < SP_BORDER; ++i)
-        for (int j = 0; j < i; ++j) x[i] -= m[i * SP_BORDER + j] * x[j];
-    for (int i = SP_BORDER - 1; i >= 0; --i) {
-        for (int j = i + 1; j < SP_BORDER; ++j) x[i] -= m[i * SP_BORDER + j] * x[j];
-        x[i] /= m[i * SP_BORDER + i];
+    for (int i = 1; i < n; ++i)
+        for (int j = 0; j < i; ++j) x[i] -= m[i * n + j] * x[j];
+    for (int i = n - 1; i >= 0; --i) {
+        for (int j = i + 1; j < n; ++j) x[i] -= m[i * n + j] * x[j];
+        x[i] /= m[i * n + i];
     }
 }
 
 /* ---- the whole ------------------------------------------------------------------------------------------- */
 
-/* rows * x for border row i, with x spaced by `step`; the two means are rows of equal weights. */
+/* rows * x for border row i, with x spaced by `step`; the means are rows of equal weights. */
 static double border_row(const struct sp_arrow *a, int i, const double *x, int step)
 {
     double sum = 0.0;
-    if (i < SP_BORDER_STATES) {
+    if (i < a->states) {
         const double *row = a->rows + i * a->band;
         for (int p = 0; p < a->band; ++p) sum += row[p] * x[p * step];
         return sum;
     }
-    for (int c = 0; c < a->layout.cells; ++c) sum += x[(i == SP_BORDER_WALL ? wall_row(c) : core_row(c)) * step];
-    return -sum / a->layout.cells; /* mean - sum/n = 0 */
+    int e = (i - a->states) / 2, cells = a->layout.exchanger[e].cells;
+    int first = a->row_of[e] + ((i - a->states) % 2 ? 0 : 1); /* coolant cells stand before their walls */
+    for (int c = 0; c < cells; ++c) sum += x[(first + 2 * c) * step];
+    return -sum / cells; /* mean - sum/n = 0 */
 }
 
 bool sp_arrow_factor(const struct sp_arrow *a, struct sp_arrow_factor *f)
 {
-    int n = a->band;
+    int n = a->band, m = a->border;
     memcpy(f->diagonals, a->diagonals, (size_t)(n * WIDTH) * sizeof *f->diagonals);
-    memcpy(f->inverse, a->columns, (size_t)(n * SP_BORDER) * sizeof *f->inverse);
+    memcpy(f->inverse, a->columns, (size_t)(n * m) * sizeof *f->inverse);
     if (!factor_band(f->diagonals, n)) return false;
-    for (int j = 0; j < SP_BORDER; ++j) {
-        forward(f->diagonals, n, f->inverse + j, SP_BORDER);
-        backward(f->diagonals, n, f->inverse + j, SP_BORDER);
+    for (int j = 0; j < m; ++j) {
+        forward(f->diagonals, n, f->inverse + j, m);
+        backward(f->diagonals, n, f->inverse + j, m);
     }
-    for (int i = 0; i < SP_BORDER; ++i)
-        for (int j = 0; j < SP_BORDER; ++j) {
-            double own = i < SP_BORDER_STATES ? a->corner[i * SP_BORDER + j] : (i == j ? 1.0 : 0.0);
-            f->corner[i * SP_BORDER + j] = own - border_row(a, i, f->inverse + j, SP_BORDER);
+    for (int i = 0; i < m; ++i)
+        for (int j = 0; j < m; ++j) {
+            double own = i < a->states ? a->corner[i * m + j] : (i == j ? 1.0 : 0.0);
+            f->corner[i * m + j] = own - border_row(a, i, f->inverse + j, m);
         }
-    return factor_corner(f->corner, f->pivot);
+    return factor_corner(f->corner, m, f->pivot);
 }
 
 /* Passive states: the trapped air and the lost liquid act on each other, the rest stand alone. */
 static void solve_passive(const struct sp_arrow *a, const double *border, const double *z, const double *b, double *x)
 {
-    enum { AIR = SP_Y_AIR - SP_BORDER_STATES, LOST = SP_Y_LOST - SP_BORDER_STATES };
-    double rest[SP_PASSIVE];
-    for (int i = 0; i < SP_PASSIVE; ++i) {
+    enum { AIR = SP_Y_AIR - SP_Y_GAUGE, LOST = SP_Y_LOST - SP_Y_GAUGE };
+    double rest[SP_PASSIVE_MOST];
+    for (int i = 0; i < a->passives; ++i) {
         const double *row = a->passive + i * passive_width(a);
-        rest[i] = b[SP_BORDER_STATES + i];
-        for (int j = 0; j < SP_BORDER; ++j) rest[i] -= row[j] * border[j];
-        for (int p = 0; p < a->band; ++p) rest[i] -= row[SP_BORDER + p] * z[p];
+        rest[i] = b[a->passive_state[i]];
+        for (int j = 0; j < a->border; ++j) rest[i] -= row[j] * border[j];
+        for (int p = 0; p < a->band; ++p) rest[i] -= row[a->border + p] * z[p];
     }
-    const double *air = a->passive + AIR * passive_width(a) + SP_BORDER + a->band;
-    const double *lost = a->passive + LOST * passive_width(a) + SP_BORDER + a->band;
+    const double *air = a->passive + AIR * passive_width(a) + a->border + a->band;
+    const double *lost = a->passive + LOST * passive_width(a) + a->border + a->band;
     double det = air[AIR] * lost[LOST] - air[LOST] * lost[AIR];
-    for (int i = 0; i < SP_PASSIVE; ++i)
-        x[SP_BORDER_STATES + i] = rest[i] / a->passive[i * passive_width(a) + SP_BORDER + a->band + i];
+    for (int i = 0; i < a->passives; ++i)
+        x[a->passive_state[i]] = rest[i] / a->passive[i * passive_width(a) + a->border + a->band + i];
     x[SP_Y_AIR] = (rest[AIR] * lost[LOST] - rest[LOST] * air[LOST]) / det;
     x[SP_Y_LOST] = (rest[LOST] * air[AIR] - rest[AIR] * lost[AIR]) / det;
 }
 
 void sp_arrow_solve(const struct sp_arrow *a, struct sp_arrow_factor *f, const double *b, double *x)
 {
-    double border[SP_BORDER] = {0.0};
+    double border[SP_BORDER_MOST] = {0.0};
     for (int p = 0; p < a->band; ++p) f->z[p] = b[a->state[p]];
     forward(f->diagonals, a->band, f->z, 1);
     backward(f->diagonals, a->band, f->z, 1);
-    for (int i = 0; i < SP_BORDER; ++i)
-        border[i] = (i < SP_BORDER_STATES ? b[i] : 0.0) - border_row(a, i, f->z, 1);
-    solve_corner(f->corner, f->pivot, border);
+    for (int i = 0; i < a->border; ++i)
+        border[i] = (i < a->states ? b[a->border_state[i]] : 0.0) - border_row(a, i, f->z, 1);
+    solve_corner(f->corner, a->border, f->pivot, border);
     for (int p = 0; p < a->band; ++p) {
-        for (int j = 0; j < SP_BORDER; ++j) f->z[p] -= f->inverse[p * SP_BORDER + j] * border[j];
+        for (int j = 0; j < a->border; ++j) f->z[p] -= f->inverse[p * a->border + j] * border[j];
     }
     solve_passive(a, border, f->z, b, x); /* reads b before the rest of x is written */
-    for (int j = 0; j < SP_BORDER_STATES; ++j) x[j] = border[j];
+    for (int j = 0; j < a->states; ++j) x[a->border_state[j]] = border[j];
     for (int p = 0; p < a->band; ++p) x[a->state[p]] = f->z[p];
 }

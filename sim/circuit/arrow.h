@@ -1,11 +1,12 @@
 /* The Jacobian's true structure, and the Newton systems solved in it. Internal.
  *
- * The coolant chain with the core's metal is a band: a cell sees the one before it and its own wall. Metal,
- * jacket, tank, wax and fan see and are seen by much of it, and two means (of the core's walls, of its
- * coolant) stand for what every cell does to the air path and the coolant split: together a border of
- * seven. Gauge, trapped air, lost liquid and the integrals are driven by all and drive nothing but
- * themselves: they follow by substitution. A factorisation costs a few thousand operations where the dense
- * one of the same matrix takes ten times that.
+ * A core's fluid and metal cells are a band: a cell sees the one before it and its own wall; cores one after the
+ * other, and the hoses when there is but one string of them, join it. Metal, jacket, tank, wax, fans, oils, and the
+ * hoses where strings stand side by side, see and are seen by much of it, and two means a core (of its walls, of its
+ * fluid) stand for what every cell does to the air path and the coolant split: together the border. Gauge, trapped
+ * air, lost liquid and the integrals are driven by all and drive nothing but themselves: they follow by
+ * substitution. A factorisation costs a few thousand operations where the dense one of the same matrix takes ten
+ * times that.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_CIRCUIT_ARROW_H
 #define SP_CIRCUIT_ARROW_H
@@ -15,41 +16,46 @@
 #include "circuit/state.h"
 
 enum {
-    SP_BORDER_STATES = SP_Y_FAN + 1, /* metal, jacket, tank, wax, fan: the first states */
-    SP_BORDER = SP_BORDER_STATES + 2,
-    SP_BORDER_WALL = SP_BORDER_STATES, SP_BORDER_CORE, /* the two means */
-    SP_BAND_MOST = 2 * SP_HOSE_CELLS + 2 * SP_CELLS_MAX,
-    SP_PASSIVE = SP_Y_CHAIN - SP_BORDER_STATES /* gauge, air, lost, integrals */
+    SP_BORDER_STATES_MOST = SP_Y_FAN + 1 + 2 * SP_HOSE_CELLS + SP_FAN_KINDS - 1 + 2,
+    SP_BORDER_MOST = SP_BORDER_STATES_MOST + 2 * SP_EXCHANGERS,
+    SP_BAND_MOST = 2 * SP_HOSE_CELLS + 2 * SP_CELLS_MAX * SP_EXCHANGERS,
+    SP_PASSIVE_MOST = SP_Y_CHAIN - SP_Y_GAUGE + 1
 };
 
 /* A matrix of this structure; all entries in one block so that it is copied and scaled as a vector. */
 struct sp_arrow {
     struct sp_layout layout;
-    int band; /* rows in the band: chain and walls */
-    int state[SP_BAND_MOST]; /* state index of each row of the band */
+    int band;         /* rows in the band */
+    int states;       /* states in the border */
+    int border;       /* states and means */
+    int passives;
+    int state[SP_BAND_MOST];                  /* state index of each row of the band ... */
+    int border_state[SP_BORDER_STATES_MOST];  /* ... of the border */
+    int passive_state[SP_PASSIVE_MOST];       /* ... of what follows by substitution */
+    int row_of[SP_EXCHANGERS];                /* band row of each core's first cell */
     int entries;
     double *entry; /* owned */
     double *diagonals;  /* band x 5: lower 3, 2, 1, own, upper 1 */
-    double *columns;    /* band x SP_BORDER: what the border does to the band */
-    double *rows;       /* SP_BORDER_STATES x band: what the band does to the border */
-    double *corner;     /* SP_BORDER_STATES x SP_BORDER */
-    double *passive;    /* SP_PASSIVE x (SP_BORDER + band + SP_PASSIVE) */
+    double *columns;    /* band x border: what the border does to the band */
+    double *rows;       /* states x band: what the band does to the border */
+    double *corner;     /* states x border */
+    double *passive;    /* passives x (border + band + passives) */
 };
 
 struct sp_arrow_factor {
-    double diagonals[SP_BAND_MOST * 5];   /* of the band, L below, U above */
-    double inverse[SP_BAND_MOST * SP_BORDER]; /* band^-1 columns */
-    double corner[SP_BORDER * SP_BORDER]; /* Schur complement, factored */
-    int pivot[SP_BORDER];
-    double z[SP_BAND_MOST];               /* room for a solve */
+    double diagonals[SP_BAND_MOST * 5];            /* of the band, L below, U above */
+    double inverse[SP_BAND_MOST * SP_BORDER_MOST]; /* band^-1 columns */
+    double corner[SP_BORDER_MOST * SP_BORDER_MOST]; /* Schur complement, factored */
+    int pivot[SP_BORDER_MOST];
+    double z[SP_BAND_MOST];                        /* room for a solve */
 };
 
 bool sp_arrow_open(struct sp_layout layout, struct sp_arrow *out);
 void sp_arrow_close(struct sp_arrow *a);
 
-/* Takes the Jacobian from columns, jac[j][i] = d f_i / d y_j with the two means held, and the effect of
- * the means, wall[i] and core[i]. */
-void sp_arrow_fill(struct sp_arrow *a, double *const *jac, const double *wall, const double *core);
+/* Takes the Jacobian from columns, jac[j][i] = d f_i / d y_j with all means held, and the effect of the means,
+ * mean[2 e][i] of the walls and mean[2 e + 1][i] of the fluid of core e. */
+void sp_arrow_fill(struct sp_arrow *a, double *const *jac, double *const *mean);
 
 /* a = scale a + I. */
 void sp_arrow_scale_add(struct sp_arrow *a, double scale);

@@ -4,104 +4,78 @@
 #include <math.h>
 
 #include "part/cells.h"
+#include "part/charge.h"
 #include "part/engine.h"
+#include "part/oil.h"
 
 static const double quickest_gauge = 0.05; /* s: a lag of nil would be no ODE */
 static const double full_skin_speed = 100.0 / 3.6; /* m/s at which the moving skin loss is reached */
 
-/* ---- coupling -------------------------------------------------------------------------------------- */
-
-static double mean(const double *y, int n)
-{
-    double sum = 0.0;
-    for (int i = 0; i < n; ++i) sum += y[i];
-    return sum / n;
-}
-
-void sp_circuit_signals(const struct sp_circuit *c, const double *y, struct sp_signals *out)
-{
-    const struct sp_layout *l = &c->layout;
-    *out = (struct sp_signals){.wall = mean(y + l->wall, l->cells), .fan = y[SP_Y_FAN], .wax = y[SP_Y_WAX],
-                               .jacket = y[SP_Y_JACKET], .core = mean(y + l->core, l->cells)};
-}
-
-static struct sp_duct_inputs duct_inputs(const struct sp_circuit *c, const struct sp_inputs *in,
-                                         const struct sp_signals *s)
-{
-    return (struct sp_duct_inputs){.speed = in->in[SP_IN_AIR_SPEED], .wake = in->in[SP_IN_WAKE],
-                                   .temperature = in->in[SP_IN_AMBIENT], .pressure = in->in[SP_IN_PRESSURE],
-                                   .R = c->air.R, .cp = c->air.cp, .fan_speed = {s->fan}, .wall = {s->wall}};
-}
-
-/* Metal to coolant: grows with flow^0.8 and the coolant's properties, a share is left without flow. The
- * fourth powers join the two smoothly. */
-static double jacket_conductance(const struct sp_design *d, double flow, double T)
-{
-    const struct sp_engine *e = &d->engine;
-    double x = fmax(flow, 0.0) / e->conductance_flow;
-    double moving = x > 0.0 ? pow(x, 0.8) : 0.0;
-    double m2 = moving * moving, s2 = e->conductance_still * e->conductance_still;
-    /* The reference is volume flow; the mass flow that goes with it follows density. */
-    double denser = sp_coolant_density(&d->coolant.fluid, T) / SP_COOLANT_REFERENCE;
-    double ratio = sp_coolant_film_ratio(&d->coolant.fluid, T, 0.8) * pow(denser, 0.8);
-    return e->conductance * ratio * sqrt(sqrt(m2 * m2 + s2 * s2));
-}
-
-enum sp_status sp_circuit_split(const struct sp_circuit *c, const struct sp_inputs *in,
-                                const struct sp_modes *modes, const struct sp_signals *s,
-                                struct sp_guess *guess, struct sp_coupling *out)
-{
-    const struct sp_design *d = c->design;
-    out->lift = sp_thermostat_lift(
-        &d->thermostat, sp_thermostat_effective(&d->thermostat, modes->play, s->wax, modes->held));
-    double speed = sp_pump_speed(d, in->in[SP_IN_ENGINE_SPEED], in->flags & SP_FLAG_ENGINE, in->flags & SP_FLAG_PUMP);
-    enum sp_status status = sp_loop_solve(&c->loop, speed, out->lift, s->jacket, s->core, guess, &out->loop);
-    double rho = sp_coolant_density(&d->coolant.fluid, s->jacket);
-    out->mass_pump = rho * out->loop.pump;
-    out->mass_radiator = rho * out->loop.radiator;
-    out->mass_bypass = rho * out->loop.bypass;
-    out->mass_bleed = rho * out->loop.bleed;
-    return status;
-}
-
-enum sp_status sp_circuit_couple(const struct sp_circuit *c, const struct sp_inputs *in,
-                                 const struct sp_modes *modes, const struct sp_signals *s,
-                                 struct sp_guesses *guesses, struct sp_coupling *out)
-{
-    const struct sp_coolant *fluid = &c->design->coolant.fluid;
-    struct sp_duct_inputs air = duct_inputs(c, in, s);
-    if (sp_duct_solve_from(c->duct, &air, &guesses->duct, &out->duct)) return SP_NUMERICS;
-    if (sp_circuit_split(c, in, modes, s, &guesses->loop, out)) return SP_NUMERICS;
-    out->jacket_conductance = jacket_conductance(c->design, out->loop.pump, s->jacket);
-    out->core_rate = out->mass_radiator * sp_coolant_cp(fluid, s->core);
-    out->core_conductance = sp_core_coolant_conductance(&c->duct->core, fluid, out->mass_radiator, s->core);
-    return SP_OK;
-}
-
-/* ---- rates ----------------------------------------------------------------------------------------- */
+/* ---- places and controllers ------------------------------------------------------------------------ */
 
 double sp_circuit_place(const struct sp_circuit *c, enum sp_place_of place, const double *y)
 {
     return place == SP_AT_ENGINE_OUT ? y[SP_Y_JACKET] : y[c->layout.core + c->layout.cells - 1];
 }
 
+/* Of the hose behind the radiators: what comes back. */
+static double returning(const struct sp_circuit *c, const double *y)
+{
+    return y[c->layout.back + SP_HOSE_CELLS - 1];
+}
+
+double sp_circuit_heater(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                         const struct sp_coupling *k, double *returns)
+{
+    const struct sp_hoses *h = &c->design->hoses;
+    double T = y[SP_Y_JACKET];
+    *returns = T;
+    if (!(k->mass_heater > 0.0)) return 0.0;
+    double air = isfinite(h->heater_air) ? h->heater_air : in->in[SP_IN_AMBIENT];
+    double rate = k->mass_heater * sp_coolant_cp(&c->design->coolant.fluid, T);
+    double heat = -rate * expm1(-h->heater_conductance / rate) * (T - air);
+    *returns = T - heat / rate;
+    return heat;
+}
+
 double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const struct sp_coupling *k)
 {
     if (!(k->mass_pump > 0.0)) return y[SP_Y_JACKET];
-    return (k->mass_radiator * y[c->layout.wall - 1] + k->mass_bypass * y[SP_Y_JACKET] +
+    return (k->mass_radiator * returning(c, y) + (k->mass_bypass + k->mass_heater) * y[SP_Y_JACKET] +
             k->mass_bleed * y[SP_Y_TANK]) / k->mass_pump;
 }
 
-double sp_circuit_fan_wish(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
-                           const double *y)
+double sp_circuit_wax_sees(const struct sp_circuit *c, const double *y, const struct sp_coupling *k)
 {
-    const struct sp_fan *f = &c->design->duct[0].fan[0];
-    if (!f->fitted || !(in->flags & SP_FLAG_FAN)) return 0.0;
-    const struct sp_electrics *e = &c->design->electrics;
-    double full = sp_motor_speed(in->flags & SP_FLAG_ENGINE ? e->voltage_running : e->voltage_stopped, f->rated_voltage);
+    return c->design->thermostat.inlet_side ? sp_circuit_pump_inlet(c, y, k) : y[SP_Y_JACKET];
+}
+
+double sp_circuit_charge_in(const struct sp_circuit *c, const struct sp_inputs *in)
+{
+    const struct sp_charge *g = &c->design->charge;
+    if (!g->fitted) return NAN;
+    return (in->in[SP_IN_AMBIENT] + g->intake_rise) * (1.0 + in->in[SP_IN_CHARGE_HEATING]);
+}
+
+double sp_circuit_charge_out(const struct sp_circuit *c, const struct sp_inputs *in, const double *y)
+{
+    for (int e = c->exchangers - 1; e >= 0; --e) {
+        const struct sp_cells_at *at = &c->layout.exchanger[e];
+        if (c->exchanger[e].carries == SP_CARRIES_CHARGE) return y[at->fluid + at->cells - 1];
+    }
+    return sp_circuit_charge_in(c, in);
+}
+
+double sp_circuit_fan_wish(const struct sp_circuit *c, int kind, const struct sp_inputs *in,
+                           const struct sp_modes *modes, const double *y)
+{
+    if (kind >= c->fans || !(in->flags & SP_FLAG_FAN)) return 0.0;
+    const struct sp_fan *f = c->fan[kind].design;
+    if (f->health != SP_FAN_SOUND) return 0.0;
+    double full = sp_fan_full_speed(f, sp_circuit_volts(c, in));
     switch (f->law) {
     case SP_FAN_ALWAYS: return full;
-    case SP_FAN_SWITCHED: return modes->fan_on ? full : 0.0;
+    case SP_FAN_SWITCHED: return modes->fan_on[kind] ? full : 0.0;
     case SP_FAN_PROPORTIONAL: {
         double share = (sp_circuit_place(c, f->sensor, y) - f->from) / (f->to - f->from);
         /* Below `from` it stands; the jump to `least` is spread over a twentieth of the band. */
@@ -112,22 +86,47 @@ double sp_circuit_fan_wish(const struct sp_circuit *c, const struct sp_inputs *i
     }
 }
 
-/* Electrical power [W] of an electric pump, with its speed cubed. */
-static double pump_power(const struct sp_design *d, const struct sp_inputs *in)
+double sp_circuit_fan_power(const struct sp_circuit *c, const double *y)
 {
-    if (!d->pump.electric) return 0.0;
-    double speed = sp_pump_speed(d, 0.0, in->flags & SP_FLAG_ENGINE, in->flags & SP_FLAG_PUMP);
-    return d->pump.power * speed * speed * speed;
+    double sum = 0.0;
+    for (int f = 0; f < c->fans; ++f)
+        sum += c->fan[f].copies * sp_fan_power(c->fan[f].design, y[c->layout.fan[f]]);
+    return sum;
 }
 
-double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs *in, const double *y)
+double sp_circuit_pump_power(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
+                             const double *y)
+{
+    const struct sp_pump *p = &c->design->pump;
+    if (!p->electric) return 0.0;
+    double speed = sp_circuit_pump_speed(c, in, modes, y[SP_Y_JACKET]);
+    return p->power * speed * speed * speed;
+}
+
+/* ---- engine and tank ------------------------------------------------------------------------------- */
+
+double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
+                              const double *y)
 {
     const struct sp_design *d = c->design;
     double load = 0.0;
     if (in->flags & SP_FLAG_ENGINE)
-        load = (sp_fan_power(&d->duct[0].fan[0], y[SP_Y_FAN]) + pump_power(d, in)) / d->electrics.alternator_efficiency;
+        load = (sp_circuit_fan_power(c, y) + sp_circuit_pump_power(c, in, modes, y)) / d->electrics.alternator_efficiency;
     double gas = in->in[SP_IN_HEAT_GAS] + load * in->in[SP_IN_HEAT_SLOPE];
     return gas * sp_engine_gas_factor(&d->engine, y[SP_Y_METAL]) + in->in[SP_IN_HEAT_FRICTION];
+}
+
+/* Conductance of a skin [W/K] that grows with speed through the air. */
+static double skin(const struct sp_inputs *in, double standing, double moving)
+{
+    double share = fmin(fabs(in->in[SP_IN_AIR_SPEED]) / full_skin_speed, 1.0);
+    return standing + (moving - standing) * share;
+}
+
+double sp_circuit_skin(const struct sp_circuit *c, const struct sp_inputs *in, double metal)
+{
+    const struct sp_engine *e = &c->design->engine;
+    return skin(in, e->skin_standing, e->skin_moving) * (metal - in->in[SP_IN_AMBIENT]);
 }
 
 struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
@@ -136,12 +135,17 @@ struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp
     const struct sp_coolant *f = &c->design->coolant.fluid;
     const struct sp_layout *l = &c->layout;
     double liquid = c->mass_jacket / sp_coolant_density(f, y[SP_Y_JACKET]) +
-                    c->mass_tank / sp_coolant_density(f, y[SP_Y_TANK]) +
-                    c->mass_core / sp_coolant_density(f, mean(y + l->core, l->cells)) +
-                    c->mass_out / sp_coolant_density(f, mean(y + l->out, SP_HOSE_CELLS)) +
-                    c->mass_back / sp_coolant_density(f, mean(y + l->back, SP_HOSE_CELLS));
-    *inputs = (struct sp_tank_inputs){.air = y[SP_Y_AIR], .liquid = liquid - y[SP_Y_LOST], .system = c->system_volume,
-                                      .temperature = y[SP_Y_TANK], .ambient = in->in[SP_IN_PRESSURE],
+                    c->mass_tank / sp_coolant_density(f, y[SP_Y_TANK]);
+    for (int e = 0; e < c->exchangers && c->exchanger[e].string >= 0; ++e) {
+        const struct sp_cells_at *at = &l->exchanger[e];
+        liquid += c->exchanger[e].copies * c->exchanger[e].mass /
+                  sp_coolant_density(f, sp_circuit_mean(y + at->fluid, at->cells));
+    }
+    liquid += c->mass_out / sp_coolant_density(f, sp_circuit_mean(y + l->out, SP_HOSE_CELLS));
+    liquid += c->mass_back / sp_coolant_density(f, sp_circuit_mean(y + l->back, SP_HOSE_CELLS));
+    *inputs = (struct sp_tank_inputs){.air = y[SP_Y_AIR], .liquid = liquid - y[SP_Y_LOST] - c->design->tank.lost,
+                                      .system = c->system_volume, .temperature = y[SP_Y_TANK],
+                                      .ambient = in->in[SP_IN_PRESSURE],
                                       .vapour = sp_coolant_vapour_pressure(f, y[SP_Y_TANK])};
     struct sp_tank_state s = sp_tank_state(&c->design->tank, inputs);
     s.pressure = fmin(s.pressure, sp_tank_most(&c->design->tank, inputs->ambient));
@@ -152,90 +156,215 @@ static void tank_rates(const struct sp_circuit *c, const struct sp_inputs *in, c
 {
     struct sp_tank_inputs inputs;
     struct sp_tank_state s = sp_circuit_tank(c, in, y, &inputs);
-    double held = c->mass_tank / sp_coolant_density(&c->design->coolant.fluid, y[SP_Y_TANK]) - y[SP_Y_LOST];
+    double held = c->mass_tank / sp_coolant_density(&c->design->coolant.fluid, y[SP_Y_TANK]) - y[SP_Y_LOST] -
+                  c->design->tank.lost;
     struct sp_tank_vent vent = sp_tank_vent(&c->design->tank, &inputs, &s, held);
     dydt[SP_Y_AIR] = -vent.air;
     dydt[SP_Y_LOST] = vent.liquid;
 }
 
-/* One coolant cell: `through` kg/s arrive with enthalpy h_in. Returns its own enthalpy. */
-static double cell(const struct sp_coolant *f, double mass, double through, double h_in, double T, double lost,
-                   double *rate)
+/* ---- cells ----------------------------------------------------------------------------------------- */
+
+/* A fluid's enthalpy [J/kg] and heat capacity [J/kgK]. */
+struct fluid { double enthalpy, cp; };
+
+static struct fluid fluid_at(const struct sp_circuit *c, enum sp_medium m, double T)
 {
-    double h = sp_coolant_enthalpy(f, T);
-    *rate = (through * (h_in - h) - lost) / (mass * sp_coolant_cp(f, T));
-    return h;
+    const struct sp_coolant *f = &c->design->coolant.fluid;
+    switch (m) {
+    case SP_CARRIES_OIL:
+    case SP_CARRIES_GEARBOX: return (struct fluid){sp_oil_enthalpy(T), sp_oil_cp(T)};
+    case SP_CARRIES_CHARGE: return (struct fluid){SP_CHARGE_CP * T, SP_CHARGE_CP};
+    default: return (struct fluid){sp_coolant_enthalpy(f, T), sp_coolant_cp(f, T)};
+    }
+}
+
+/* One fluid cell: `through` kg/s arrive with enthalpy h_in. */
+static double cell(struct fluid own, double mass, double through, double h_in, double lost)
+{
+    return (through * (h_in - own.enthalpy) - lost) / (mass * own.cp);
 }
 
 static double hose(const struct sp_circuit *c, const struct sp_coupling *k, double mass, double h, double ambient,
-                   int first, const double *y, double *dydt, double *skin)
+                   int first, const double *y, double *dydt, double *lost)
 {
     double each = c->design->hoses.skin / (2 * SP_HOSE_CELLS);
     for (int i = first; i < first + SP_HOSE_CELLS; ++i) {
-        double lost = each * (y[i] - ambient);
-        *skin += lost;
-        h = cell(&c->design->coolant.fluid, mass / SP_HOSE_CELLS, k->mass_radiator, h, y[i], lost, &dydt[i]);
+        double loses = each * (y[i] - ambient);
+        struct fluid own = fluid_at(c, SP_CARRIES_COOLANT, y[i]);
+        *lost += loses;
+        dydt[i] = cell(own, mass / SP_HOSE_CELLS, k->mass_radiator, h, loses);
+        h = own.enthalpy;
     }
     return h;
 }
 
-static double core(const struct sp_circuit *c, const struct sp_coupling *k, double h, double ambient,
+/* One core; `before` is the temperature and h the enthalpy of what enters. Returns what leaves, by enthalpy. */
+static double core(const struct sp_circuit *c, const struct sp_coupling *k, int e, double before, double h,
                    const double *y, double *dydt)
 {
-    const struct sp_layout *l = &c->layout;
-    const struct sp_coolant *f = &c->design->coolant.fluid;
-    int n = l->cells;
-    double film = k->core_conductance / n, mass = c->mass_core / n;
-    double to_air = fabs(k->duct.mass_flow) * c->air.cp * k->duct.effectiveness / n;
-    double metal = c->design->duct[0].core[0].metal_capacity / n;
-    double w = sp_cells_weight(k->core_rate > 0.0 ? film / k->core_rate : INFINITY);
-    double before = y[l->core - 1];
+    const struct sp_exchanger *x = &c->exchanger[e];
+    const struct sp_cells_at *at = &c->layout.exchanger[e];
+    const struct sp_core_flow *flow = &k->core[e];
+    const struct sp_core_air *air = &k->duct[x->run].core[x->slot];
+    int n = at->cells;
+    double film = flow->conductance / n, mass = x->mass / n, to_air = air->rate / n;
+    double metal = x->design->metal_capacity / n;
+    double w = sp_cells_weight(flow->rate > 0.0 ? film / flow->rate : INFINITY);
     for (int i = 0; i < n; ++i) {
-        double T = y[l->core + i], wall = y[l->wall + i];
+        double T = y[at->fluid + i], wall = y[at->wall + i];
         double given = film * (w * before + (1.0 - w) * T - wall);
-        h = cell(f, mass, k->mass_radiator, h, T, given, &dydt[l->core + i]);
-        dydt[l->wall + i] = (given - to_air * (wall - ambient)) / metal;
+        struct fluid own = fluid_at(c, x->carries, T);
+        dydt[at->fluid + i] = cell(own, mass, flow->flow, h, given);
+        dydt[at->wall + i] = (given - to_air * (wall - air->air_in)) / metal;
+        h = own.enthalpy;
         before = T;
     }
     return h;
+}
+
+/* All strings of the loop; returns the enthalpy of their mix. */
+static double strings(const struct sp_circuit *c, const struct sp_coupling *k, double h_hose, const double *y,
+                      double *dydt)
+{
+    const struct sp_layout *l = &c->layout;
+    double h = h_hose, sum = 0.0, flow = 0.0;
+    for (int e = 0; e < c->exchangers && c->exchanger[e].string >= 0; ++e) {
+        const struct sp_exchanger *x = &c->exchanger[e];
+        const struct sp_cells_at *last = e > 0 ? &l->exchanger[e - 1] : NULL;
+        if (x->first) h = h_hose;
+        h = core(c, k, e, x->first ? y[l->out + SP_HOSE_CELLS - 1] : y[last->fluid + last->cells - 1], h, y, dydt);
+        bool ends = e + 1 == c->exchangers || c->exchanger[e + 1].string != x->string;
+        if (!ends) continue;
+        sum += k->loop.string[x->string] * h;
+        flow += k->loop.string[x->string];
+    }
+    return l->chained || !(flow > 0.0) ? h : sum / flow;
+}
+
+/* All cores that carry `medium`, one after the other, from T_in. Returns the heat [W] the medium has given up on
+ * the way. */
+static double others(const struct sp_circuit *c, const struct sp_coupling *k, enum sp_medium medium, double T_in,
+                     const double *y, double *dydt)
+{
+    double before = T_in, h_in = fluid_at(c, medium, T_in).enthalpy, h = h_in, flow = 0.0;
+    for (int e = 0; e < c->exchangers; ++e) {
+        const struct sp_cells_at *at = &c->layout.exchanger[e];
+        if (c->exchanger[e].carries != medium) continue;
+        h = core(c, k, e, before, h, y, dydt);
+        before = y[at->fluid + at->cells - 1];
+        flow = k->core[e].flow * c->exchanger[e].copies;
+    }
+    return flow * (h_in - h);
+}
+
+/* ---- oil ------------------------------------------------------------------------------------------- */
+
+/* What a body of oil gives the rest, W. */
+struct oil_heat { double to_metal, to_coolant, to_air, to_cooler; };
+
+static struct oil_heat oil_rates(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_coupling *k,
+                                 bool engine, const double *y, double *dydt)
+{
+    const struct sp_oil *o = engine ? &c->design->oil : &c->design->gearbox;
+    int at = engine ? c->layout.oil : c->layout.gearbox;
+    struct oil_heat q = {0.0, 0.0, 0.0, 0.0};
+    if (at < 0) return q;
+    double T = y[at], mass = engine ? c->mass_oil : c->mass_gearbox;
+    double speed = in->flags & SP_FLAG_ENGINE ? in->in[SP_IN_ENGINE_SPEED] : 0.0;
+    q.to_metal = o->block * (T - y[SP_Y_METAL]);
+    q.to_coolant = sp_oil_plate(o, speed) * (T - sp_circuit_pump_inlet(c, y, k));
+    q.to_air = skin(in, o->skin_standing, o->skin_moving) * (T - in->in[SP_IN_AMBIENT]);
+    q.to_cooler = others(c, k, engine ? SP_CARRIES_OIL : SP_CARRIES_GEARBOX, T, y, dydt);
+    double heat = in->in[engine ? SP_IN_OIL_HEAT : SP_IN_GEARBOX_HEAT];
+    dydt[at] = (heat - q.to_metal - q.to_coolant - q.to_air - q.to_cooler) / (mass * sp_oil_cp(T));
+    return q;
+}
+
+/* ---- rates ----------------------------------------------------------------------------------------- */
+
+/* Heat [W] that the air takes up in all ducts, and the part of it that comes from given loads. */
+static double to_air(const struct sp_circuit *c, const struct sp_coupling *k, double *loads)
+{
+    double sum = 0.0;
+    *loads = 0.0;
+    for (int r = 0; r < c->runs; ++r) {
+        const struct sp_duct_run *run = &c->run[r];
+        sum += run->copies * k->duct[r].heat;
+        for (int i = 0; i < SP_CORES; ++i)
+            if (run->design->core[i].carries == SP_CARRIES_LOAD) *loads += run->copies * k->duct[r].core[i].heat;
+    }
+    return sum;
+}
+
+double sp_circuit_drag(const struct sp_circuit *c, const struct sp_coupling *k)
+{
+    double sum = 0.0;
+    for (int r = 0; r < c->runs; ++r) sum += c->run[r].copies * k->duct[r].drag;
+    return sum;
+}
+
+static void follow(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
+                   const double *y, const struct sp_coupling *k, double *dydt)
+{
+    const struct sp_design *d = c->design;
+    dydt[SP_Y_WAX] = (sp_circuit_wax_sees(c, y, k) - y[SP_Y_WAX]) *
+                     sp_thermostat_rate(&d->thermostat, k->loop.pump, c->reference_flow);
+    dydt[SP_Y_FAN] = 0.0;
+    for (int f = 0; f < c->fans; ++f) {
+        int at = c->layout.fan[f];
+        dydt[at] = (sp_circuit_fan_wish(c, f, in, modes, y) - y[at]) / c->fan[f].design->spin_up;
+    }
+    dydt[SP_Y_GAUGE] = (sp_circuit_place(c, d->gauge.place, y) - y[SP_Y_GAUGE]) / fmax(d->gauge.lag, quickest_gauge);
+}
+
+/* Electrical power [W] drawn from the battery while nothing charges it. */
+static double battery_load(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
+                           const double *y)
+{
+    if (in->flags & SP_FLAG_ENGINE) return 0.0;
+    double load = in->flags & SP_FLAG_KEY ? c->design->electrics.idle_load : 0.0;
+    return load + sp_circuit_fan_power(c, y) + sp_circuit_pump_power(c, in, modes, y);
 }
 
 void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
                       const double *y, const struct sp_coupling *k, double *dydt)
 {
     const struct sp_design *d = c->design;
-    const struct sp_coolant *f = &d->coolant.fluid;
-    const struct sp_engine *e = &d->engine;
-    double ambient = in->in[SP_IN_AMBIENT], wind = fabs(in->in[SP_IN_AIR_SPEED]);
-    double moving = fmin(wind / full_skin_speed, 1.0);
-    double h_jacket = sp_coolant_enthalpy(f, y[SP_Y_JACKET]), skin = 0.0;
+    double ambient = in->in[SP_IN_AMBIENT], lost = 0.0, loads, returns;
+    struct fluid jacket = fluid_at(c, SP_CARRIES_COOLANT, y[SP_Y_JACKET]);
+    struct fluid tank = fluid_at(c, SP_CARRIES_COOLANT, y[SP_Y_TANK]);
 
-    double heat = sp_circuit_engine_heat(c, in, y);
-    double metal_skin = (e->skin_standing + (e->skin_moving - e->skin_standing) * moving) * (y[SP_Y_METAL] - ambient);
+    struct oil_heat oil = oil_rates(c, in, k, true, y, dydt), gearbox = oil_rates(c, in, k, false, y, dydt);
+    double heat = sp_circuit_engine_heat(c, in, modes, y);
+    double metal_skin = sp_circuit_skin(c, in, y[SP_Y_METAL]);
     double to_coolant = k->jacket_conductance * (y[SP_Y_METAL] - y[SP_Y_JACKET]);
-    dydt[SP_Y_METAL] = (heat - to_coolant - metal_skin) / e->metal_capacity;
+    dydt[SP_Y_METAL] = (heat + oil.to_metal + gearbox.to_metal - to_coolant - metal_skin) / d->engine.metal_capacity;
 
-    double h = hose(c, k, c->mass_out, h_jacket, ambient, c->layout.out, y, dydt, &skin);
-    h = core(c, k, h, ambient, y, dydt);
-    double h_back = hose(c, k, c->mass_back, h, ambient, c->layout.back, y, dydt, &skin);
+    double h = hose(c, k, c->mass_out, jacket.enthalpy, ambient, c->layout.out, y, dydt, &lost);
+    h = strings(c, k, h, y, dydt);
+    double h_back = hose(c, k, c->mass_back, h, ambient, c->layout.back, y, dydt, &lost);
 
     double tank_skin = d->tank.skin * (y[SP_Y_TANK] - ambient);
-    double h_tank = cell(f, c->mass_tank, k->mass_bleed, h_jacket, y[SP_Y_TANK], tank_skin, &dydt[SP_Y_TANK]);
+    dydt[SP_Y_TANK] = cell(tank, c->mass_tank, k->mass_bleed, jacket.enthalpy, tank_skin);
 
     /* Bypassed coolant comes back as it left: it drops out of the jacket's balance. */
-    double carried = k->mass_radiator * (h_back - h_jacket) + k->mass_bleed * (h_tank - h_jacket);
-    dydt[SP_Y_JACKET] = (carried + to_coolant) / (c->mass_jacket * sp_coolant_cp(f, y[SP_Y_JACKET]));
+    double heater = sp_circuit_heater(c, in, y, k, &returns);
+    double carried = k->mass_radiator * (h_back - jacket.enthalpy) + k->mass_bleed * (tank.enthalpy - jacket.enthalpy);
+    dydt[SP_Y_JACKET] = (carried + to_coolant + oil.to_coolant + gearbox.to_coolant - heater) /
+                        (c->mass_jacket * jacket.cp);
 
-    dydt[SP_Y_WAX] = (y[SP_Y_JACKET] - y[SP_Y_WAX]) * sp_thermostat_rate(&d->thermostat, k->loop.pump, c->reference_flow);
-    dydt[SP_Y_FAN] = d->duct[0].fan[0].fitted ? (sp_circuit_fan_wish(c, in, modes, y) - y[SP_Y_FAN]) / d->duct[0].fan[0].spin_up : 0.0;
-    dydt[SP_Y_GAUGE] = (sp_circuit_place(c, d->gauge.place, y) - y[SP_Y_GAUGE]) / fmax(d->gauge.lag, quickest_gauge);
+    follow(c, in, modes, y, k, dydt);
     tank_rates(c, in, y, dydt);
 
-    dydt[SP_Y_HEAT_IN] = heat;
-    dydt[SP_Y_HEAT_AIR] = k->duct.heat;
-    dydt[SP_Y_HEAT_SKIN] = metal_skin + skin + tank_skin;
-    dydt[SP_Y_FAN_ENERGY] = sp_fan_power(&d->duct[0].fan[0], y[SP_Y_FAN]);
-    dydt[SP_Y_DRAG_WORK] = k->duct.drag * in->in[SP_IN_SPEED];
+    double charge = d->charge.fitted ? others(c, k, SP_CARRIES_CHARGE, sp_circuit_charge_in(c, in), y, dydt) : 0.0;
+    dydt[SP_Y_HEAT_AIR] = to_air(c, k, &loads);
+    dydt[SP_Y_HEAT_IN] = heat + loads + charge + (c->layout.oil >= 0 ? in->in[SP_IN_OIL_HEAT] : 0.0) +
+                         (c->layout.gearbox >= 0 ? in->in[SP_IN_GEARBOX_HEAT] : 0.0);
+    dydt[SP_Y_HEAT_SKIN] = metal_skin + lost + tank_skin + heater + oil.to_air + gearbox.to_air;
+    dydt[SP_Y_FAN_ENERGY] = sp_circuit_fan_power(c, y);
+    dydt[SP_Y_DRAG_WORK] = sp_circuit_drag(c, k) * in->in[SP_IN_SPEED];
     double rho = in->in[SP_IN_PRESSURE] / (c->air.R * ambient), V = in->in[SP_IN_AIR_SPEED];
     dydt[SP_Y_HEAD_WORK] = 0.5 * rho * V * V * in->in[SP_IN_SPEED];
+    if (c->layout.battery >= 0) dydt[c->layout.battery] = battery_load(c, in, modes, y);
 }

@@ -16,57 +16,136 @@
 #include "part/tank.h"
 #include "part/thermostat.h"
 
+enum { SP_DUCT_RUNS = 6 }; /* ducts solved one by one, at most: equal ones side by side count once */
+
+/* A core with a fluid of its own; one of `copies` equal ones. */
+struct sp_exchanger {
+    int run, slot; /* which duct, which core of it */
+    enum sp_medium carries;
+    const struct sp_core *design;
+    const struct sp_core_ready *ready;
+    double copies;
+    int string;    /* of the coolant loop; -1: another fluid */
+    bool first;    /* its fluid comes from the hose, sump or compressor, not from the core before it */
+    double mass;   /* kg of fluid in one copy */
+};
+
+/* A duct as it is solved. Equal ducts that the coolant passes one after the other are runs of their own. */
+struct sp_duct_run {
+    const struct sp_duct *duct;
+    const struct sp_duct_design *design;
+    double copies;
+    int exchanger[SP_CORES]; /* of each core; -1: none */
+    int fan[SP_FANS];        /* kind in the car's list, of each fan; -1: none */
+};
+
+/* A kind of fan, with the speed of one. */
+struct sp_fan_kind {
+    const struct sp_fan *design;
+    int duct, slot; /* place in the design */
+    double copies;  /* equal ducts; each holds design->count of it */
+};
+
 /* A car made ready; read-only during a drive, so that several drives may share it. */
 struct sp_circuit {
     const struct sp_design *design;
-    struct sp_duct *duct;
+    struct sp_duct *duct[SP_DUCTS]; /* owned */
+    struct sp_duct_run run[SP_DUCT_RUNS];
+    struct sp_exchanger exchanger[SP_EXCHANGERS]; /* coolant string by string, then oil, gearbox oil, charge air */
+    struct sp_fan_kind fan[SP_FAN_KINDS];
+    int ducts, runs, exchangers, fans;
     struct sp_loop loop;
     struct sp_layout layout;
     struct sp_moist air;
-    double mass_jacket, mass_tank, mass_out, mass_back, mass_core; /* kg of coolant, when filled */
-    double system_volume;                                         /* m3, liquid when filled and air space */
-    double reference_flow;                                        /* m3/s at which the wax follows fastest */
+    double mass_jacket, mass_tank, mass_out, mass_back; /* kg of coolant, when filled */
+    double mass_oil, mass_gearbox;                      /* kg */
+    double system_volume;  /* m3, liquid when filled and air space */
+    double reference_flow; /* m3/s at which the wax follows fastest */
+    bool warms_bay;        /* some bay takes up heat of the engine's skin */
 };
 
+/* Fills ducts, runs, fans, exchangers, layout and loop of *c from its design. */
+bool sp_circuit_plan(struct sp_circuit *c, struct sp_complaints *complaints);
+
+/* False with complaints; *out is freed with sp_circuit_free either way. */
 bool sp_circuit_build(const struct sp_design *d, struct sp_circuit *out, struct sp_complaints *complaints);
 void sp_circuit_free(struct sp_circuit *c);
 
 /* What changes only at events. */
 struct sp_modes {
     enum sp_play play;
-    double held;  /* K, effective wax temperature while held */
-    bool fan_on;  /* the switch, for a switched fan */
+    double held;                 /* K, effective wax temperature while held */
+    bool fan_on[SP_FAN_KINDS];   /* the switch, for a switched fan */
+    bool pulse_off;              /* a pulsing electric pump stands */
+    double pulse_until;          /* s at which that changes */
 };
 
-struct sp_signals { double wall, fan, wax, jacket, core; }; /* K, -, K, K, K */
-enum { SP_SIGNALS = 5 };
+/* What the coupled solvers see of the state: means and single states, K; fans over rated speed. */
+struct sp_signals {
+    double wall[SP_EXCHANGERS], fluid[SP_EXCHANGERS], fan[SP_FAN_KINDS], wax, jacket, metal, oil, gearbox;
+    double tank; /* Pa absolute, where cavitation is watched; else NAN */
+};
+
+/* The fluid side of one core. */
+struct sp_core_flow {
+    double flow;        /* kg/s through one copy */
+    double rate;        /* W/K, of that flow */
+    double conductance; /* W/K, fluid to metal, one copy */
+};
 
 struct sp_coupling {
-    struct sp_duct_state duct;
+    struct sp_duct_state duct[SP_DUCT_RUNS];
     struct sp_loop_state loop;
+    struct sp_core_flow core[SP_EXCHANGERS];
     double lift;
-    double mass_pump, mass_radiator, mass_bypass, mass_bleed; /* kg/s */
-    double jacket_conductance, core_conductance;              /* W/K */
-    double core_rate;                                         /* W/K, of the coolant through the core */
+    double mass_pump, mass_radiator, mass_bypass, mass_bleed, mass_heater; /* kg/s */
+    double jacket_conductance;                                             /* W/K */
 };
 
-struct sp_guesses { struct sp_guess duct, loop; };
+struct sp_guesses {
+    struct sp_duct_guess duct[SP_DUCT_RUNS];
+    struct sp_loop_guess loop;
+};
 
-void sp_circuit_signals(const struct sp_circuit *c, const double *y, struct sp_signals *out);
+void sp_circuit_signals(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                        struct sp_signals *out);
+
+/* Mean of n states. */
+double sp_circuit_mean(const double *y, int n);
+
+/* Speed of the pump over its rated speed, with the coolant at so many kelvin. */
+double sp_circuit_pump_speed(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
+                             double coolant);
 
 /* The coolant side alone: lift, flows and pressures. Fills only these of *out. */
 enum sp_status sp_circuit_split(const struct sp_circuit *c, const struct sp_inputs *in,
                                 const struct sp_modes *modes, const struct sp_signals *s,
-                                struct sp_guess *guess, struct sp_coupling *out);
+                                struct sp_loop_guess *guess, struct sp_coupling *out);
 
-/* Both sides. SP_NUMERICS when a solver fails. */
+/* One duct: fills out->duct[run]. */
+enum sp_status sp_circuit_air(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_signals *s,
+                              int run, struct sp_duct_guess *guess, struct sp_coupling *out);
+
+/* The fluid side of every core, once the split is known: fills out->core and the jacket's conductance. */
+void sp_circuit_fluids(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_signals *s,
+                       struct sp_coupling *out);
+
+/* All sides. SP_NUMERICS when a solver fails. */
 enum sp_status sp_circuit_couple(const struct sp_circuit *c, const struct sp_inputs *in,
                                  const struct sp_modes *modes, const struct sp_signals *s,
                                  struct sp_guesses *guesses, struct sp_coupling *out);
 
-/* Fan speed over rated that the controller asks for. */
-double sp_circuit_fan_wish(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
-                           const double *y);
+/* Speed over rated that the controller asks of a kind of fan. */
+double sp_circuit_fan_wish(const struct sp_circuit *c, int kind, const struct sp_inputs *in,
+                           const struct sp_modes *modes, const double *y);
+
+/* Volts between battery and consumers. */
+double sp_circuit_volts(const struct sp_circuit *c, const struct sp_inputs *in);
+
+/* Electrical power [W] of all fans, and of an electric pump. */
+double sp_circuit_fan_power(const struct sp_circuit *c, const double *y);
+double sp_circuit_pump_power(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
+                             const double *y);
 
 /* Temperature at a sensor's place. */
 double sp_circuit_place(const struct sp_circuit *c, enum sp_place_of place, const double *y);
@@ -74,23 +153,40 @@ double sp_circuit_place(const struct sp_circuit *c, enum sp_place_of place, cons
 /* Temperature [K] of what enters the pump: the mix of radiator, bypass and tank; the jacket's when it stands. */
 double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const struct sp_coupling *k);
 
+/* Temperature [K] that the thermostat's wax follows: the jacket's outlet, or the mix entering the pump. */
+double sp_circuit_wax_sees(const struct sp_circuit *c, const double *y, const struct sp_coupling *k);
+
+/* Temperature [K] of the charge air as it leaves the compressor, and its coolers; NAN without charge air. */
+double sp_circuit_charge_in(const struct sp_circuit *c, const struct sp_inputs *in);
+double sp_circuit_charge_out(const struct sp_circuit *c, const struct sp_inputs *in, const double *y);
+
+/* Heat [W] that a heater or auxiliary branch takes, and the temperature [K] at which its coolant returns. */
+double sp_circuit_heater(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                         const struct sp_coupling *k, double *returns);
+
+/* Drag [N] of all ducts. */
+double sp_circuit_drag(const struct sp_circuit *c, const struct sp_coupling *k);
+
+/* Heat [W] from the engine's skin to the air. */
+double sp_circuit_skin(const struct sp_circuit *c, const struct sp_inputs *in, double metal);
+
 /* Tank pressure and gas from the state. */
 struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
                                      struct sp_tank_inputs *inputs);
 
 /* Heat [W] that the engine gives its metal, the alternator's load by fans and electric pump included. */
-double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs *in, const double *y);
+double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
+                              const double *y);
 
 void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
                       const double *y, const struct sp_coupling *k, double *dydt);
 
-/* Jacobian by columns, jac[j][i] = d f_i / d y_j with the mean wall and mean core coolant of the coupling
- * held, and the effect of these two means, wall[i] and core[i]. Differences of the rates with the coupling
- * held, and of the coupling along its five signals. `work` holds 3 * layout.count doubles. */
+/* Jacobian by columns, jac[j][i] = d f_i / d y_j with the means of walls and fluids held, and the effect of these
+ * means, mean[2 e][i] of the walls and mean[2 e + 1][i] of the fluid of core e. Differences of the rates with the
+ * coupling held, and of the coupling along its signals. `work` holds 3 * layout.count doubles. */
 enum sp_status sp_circuit_jacobian(const struct sp_circuit *c, const struct sp_inputs *in,
                                    const struct sp_modes *modes, const double *y,
-                                   const struct sp_guesses *guesses, double **jac, double *wall, double *core,
-                                   double *work);
+                                   const struct sp_guesses *guesses, double **jac, double **mean, double *work);
 
 /* Heat held [J] by coolant and metals, from 0 degC. */
 double sp_circuit_heat_held(const struct sp_circuit *c, const double *y);

@@ -1,5 +1,7 @@
 /* Making a car ready, and its state at the start. SPDX-License-Identifier: GPL-3.0-or-later */
 #include "circuit/circuit.h"
+#include "part/charge.h"
+#include "part/oil.h"
 
 #include <gsl/gsl_math.h>
 #include <math.h>
@@ -14,46 +16,36 @@ static double bore_volume(double length, double bore)
     return fmax(M_PI / 4.0 * bore * bore * length, smallest);
 }
 
+static void fill_masses(struct sp_circuit *c)
+{
+    const struct sp_design *d = c->design;
+    double rho = sp_coolant_density(&d->coolant.fluid, d->tank.fill_temperature), cores = 0.0;
+    c->mass_jacket = rho * fmax(d->engine.coolant_volume, smallest);
+    for (int e = 0; e < c->exchangers && c->exchanger[e].string >= 0; ++e)
+        cores += c->exchanger[e].copies * c->exchanger[e].mass;
+    c->mass_tank = rho * fmax(d->tank.volume - d->tank.air_space, smallest);
+    c->mass_out = rho * (bore_volume(d->hoses.length_out, d->hoses.bore_out) + d->hoses.pot);
+    c->mass_back = rho * bore_volume(d->hoses.length_back, d->hoses.bore_back);
+    double liquid = (c->mass_jacket + cores + c->mass_tank + c->mass_out + c->mass_back) / rho;
+    c->system_volume = liquid + d->tank.air_space;
+    c->mass_oil = d->oil.volume * sp_oil_density(SP_ZERO_C + 20.0);
+    c->mass_gearbox = d->gearbox.volume * sp_oil_density(SP_ZERO_C + 20.0);
+}
+
 bool sp_circuit_build(const struct sp_design *d, struct sp_circuit *out, struct sp_complaints *complaints)
 {
     memset(out, 0, sizeof *out);
-    struct sp_place at = {.file = d->file, .path = "car.duct.core.cells"};
-    if (!(d->duct[0].core[0].cells >= 1.0 && d->duct[0].core[0].cells <= SP_CELLS_MAX)) { /* a design filled by hand */
-        sp_complain(complaints, &at, "a number of cells that cannot be", "1 to 50 cells", NULL);
-        return false;
-    }
-    at.path = "car.duct";
     out->design = d;
     out->air = sp_moist_air(d->air.ambient, d->air.pressure, d->air.humidity);
-    out->duct = sp_duct_build(&d->duct[0], &d->coolant.fluid, &at, complaints);
-    if (!out->duct) return false;
-    if (!sp_core_has_heat(&out->duct->core)) {
-        at.path = "car.duct.core.heat";
-        sp_complain(complaints, &at, "a core without heat data", "a heat table, conductances, or fins and tubes", NULL);
-        return false;
-    }
-    at.path = "car.pump.curve";
-    if (!sp_loop_build(d, &out->duct->core, &out->loop, &at, complaints)) return false;
-    out->layout = sp_layout_of((int)d->duct[0].core[0].cells);
+    if (!sp_circuit_plan(out, complaints)) return false;
     out->reference_flow = out->loop.pump.free_flow;
-
-    double rho = sp_coolant_density(&d->coolant.fluid, d->tank.fill_temperature);
-    double tank_liquid = fmax(d->tank.volume - d->tank.air_space, smallest);
-    double hose_out = bore_volume(d->hoses.length_out, d->hoses.bore_out);
-    double hose_back = bore_volume(d->hoses.length_back, d->hoses.bore_back);
-    out->mass_jacket = rho * fmax(d->engine.coolant_volume, smallest);
-    out->mass_core = rho * fmax(d->duct[0].core[0].coolant_volume, smallest);
-    out->mass_tank = rho * tank_liquid;
-    out->mass_out = rho * hose_out;
-    out->mass_back = rho * hose_back;
-    double liquid = (out->mass_jacket + out->mass_core + out->mass_tank + out->mass_out + out->mass_back) / rho;
-    out->system_volume = liquid + d->tank.air_space;
+    fill_masses(out);
     return true;
 }
 
 void sp_circuit_free(struct sp_circuit *c)
 {
-    sp_duct_free(c->duct);
+    for (int i = 0; i < c->ducts; ++i) sp_duct_free(c->duct[i]);
     sp_loop_free(&c->loop);
     memset(c, 0, sizeof *c);
 }
@@ -75,22 +67,62 @@ static void vent_at_start(const struct sp_circuit *c, const struct sp_inputs *in
     y[SP_Y_AIR] = fmax(most - ti.vapour, 0.0) * gas / (SP_R_MOLAR * ti.temperature);
 }
 
+static double or_else(double given, double otherwise)
+{
+    return isfinite(given) ? given : otherwise;
+}
+
+/* Fluids and metals of the cores; a charge cooler starts at ambient. */
+static void start_cores(const struct sp_circuit *c, const struct sp_inputs *in, double radiator, double *y)
+{
+    const struct sp_layout *l = &c->layout;
+    for (int e = 0; e < c->exchangers; ++e) {
+        const struct sp_cells_at *at = &l->exchanger[e];
+        double T = radiator;
+        if (c->exchanger[e].carries == SP_CARRIES_OIL) T = y[l->oil];
+        if (c->exchanger[e].carries == SP_CARRIES_GEARBOX) T = y[l->gearbox];
+        if (c->exchanger[e].carries == SP_CARRIES_CHARGE) T = in->in[SP_IN_AMBIENT];
+        for (int i = 0; i < at->cells; ++i) y[at->fluid + i] = y[at->wall + i] = T;
+    }
+}
+
 void sp_circuit_start(const struct sp_circuit *c, const struct sp_inputs *in, double *y)
 {
     const struct sp_design *d = c->design;
     const struct sp_layout *l = &c->layout;
-    double coolant = d->start.coolant;
-    double metal = isfinite(d->start.metal) ? d->start.metal : coolant;
-    double radiator = isfinite(d->start.radiator) ? d->start.radiator : coolant;
+    double coolant = d->start.coolant, radiator = or_else(d->start.radiator, coolant);
     memset(y, 0, (size_t)l->count * sizeof *y);
-    y[SP_Y_METAL] = metal;
+    y[SP_Y_METAL] = or_else(d->start.metal, coolant);
     y[SP_Y_JACKET] = y[SP_Y_TANK] = y[SP_Y_WAX] = coolant;
-    for (int i = l->out; i < l->core; ++i) y[i] = coolant;
-    for (int i = l->core; i < l->count; ++i) y[i] = radiator;
+    for (int i = 0; i < SP_HOSE_CELLS; ++i) {
+        y[l->out + i] = coolant;
+        y[l->back + i] = radiator;
+    }
+    if (l->oil >= 0) y[l->oil] = or_else(d->start.oil, coolant);
+    if (l->gearbox >= 0) y[l->gearbox] = or_else(d->start.gearbox, coolant);
+    start_cores(c, in, radiator, y);
     y[SP_Y_GAUGE] = sp_circuit_place(c, d->gauge.place, y);
     double vapour = sp_coolant_vapour_pressure(&d->coolant.fluid, d->tank.fill_temperature);
     y[SP_Y_AIR] = sp_tank_filling(&d->tank, vapour, in->in[SP_IN_PRESSURE]);
+    /* What is missing from the start was not filled in: air stands in its place. */
+    if (d->tank.lost > 0.0) y[SP_Y_AIR] *= 1.0 + d->tank.lost / d->tank.air_space;
     vent_at_start(c, in, y);
+}
+
+/* Heat [J] in the fluid and the metal of one core. */
+static double held_in_core(const struct sp_circuit *c, int e, const double *y)
+{
+    const struct sp_exchanger *x = &c->exchanger[e];
+    const struct sp_cells_at *at = &c->layout.exchanger[e];
+    const struct sp_coolant *f = &c->design->coolant.fluid;
+    double sum = 0.0;
+    for (int i = 0; i < at->cells; ++i) {
+        double T = y[at->fluid + i], h = sp_coolant_enthalpy(f, T);
+        if (x->carries == SP_CARRIES_CHARGE) h = SP_CHARGE_CP * T;
+        else if (x->carries != SP_CARRIES_COOLANT) h = sp_oil_enthalpy(T);
+        sum += (x->mass * h + x->design->metal_capacity * (y[at->wall + i] - SP_ZERO_C)) / at->cells;
+    }
+    return x->copies * sum;
 }
 
 double sp_circuit_heat_held(const struct sp_circuit *c, const double *y)
@@ -103,9 +135,9 @@ double sp_circuit_heat_held(const struct sp_circuit *c, const double *y)
     for (int i = 0; i < SP_HOSE_CELLS; ++i)
         sum += (c->mass_out * sp_coolant_enthalpy(f, y[l->out + i]) +
                 c->mass_back * sp_coolant_enthalpy(f, y[l->back + i])) / SP_HOSE_CELLS;
-    for (int i = 0; i < l->cells; ++i)
-        sum += (c->mass_core * sp_coolant_enthalpy(f, y[l->core + i]) +
-                c->design->duct[0].core[0].metal_capacity * (y[l->wall + i] - SP_ZERO_C)) / l->cells;
+    for (int e = 0; e < c->exchangers; ++e) sum += held_in_core(c, e, y);
+    if (l->oil >= 0) sum += c->mass_oil * sp_oil_enthalpy(y[l->oil]);
+    if (l->gearbox >= 0) sum += c->mass_gearbox * sp_oil_enthalpy(y[l->gearbox]);
     return sum;
 }
 

@@ -17,8 +17,7 @@ static bool sensible(const struct sp_run *r, const double *y)
     const struct sp_layout *l = &r->circuit->layout;
     for (int i = 0; i < l->count; ++i) {
         if (!isfinite(y[i])) return false;
-        bool temperature = i <= SP_Y_WAX || i == SP_Y_GAUGE || i >= SP_Y_CHAIN;
-        if (temperature && !(y[i] > coldest && y[i] < hottest)) return false;
+        if (sp_layout_kelvin(l, i) && !(y[i] > coldest && y[i] < hottest)) return false;
     }
     return true;
 }
@@ -31,7 +30,7 @@ static int rates(double t, const double *y, double *dydt, void *context)
     struct sp_coupling k;
     if (!sensible(r, y)) return 1;
     sp_schedule_at(r->schedule, r->segment, t, &in);
-    sp_circuit_signals(r->circuit, y, &s);
+    sp_circuit_signals(r->circuit, &in, y, &s);
     if (sp_circuit_couple(r->circuit, &in, &r->modes, &s, &r->guesses, &k)) return 1; /* a smaller step may do */
     sp_circuit_rates(r->circuit, &in, &r->modes, y, &k, dydt);
     return 0;
@@ -41,12 +40,11 @@ static int jacobian(double t, const double *y, struct sp_arrow *out, void *conte
 {
     struct sp_run *r = context;
     struct sp_inputs in;
-    int n = r->circuit->layout.count;
     if (!sensible(r, y)) return 1;
     sp_schedule_at(r->schedule, r->segment, t, &in);
-    double *wall = r->means, *core = r->means + n;
-    if (sp_circuit_jacobian(r->circuit, &in, &r->modes, y, &r->guesses, r->column, wall, core, r->scratch)) return -1;
-    sp_arrow_fill(out, r->column, wall, core);
+    double **mean = r->column + r->circuit->layout.count;
+    if (sp_circuit_jacobian(r->circuit, &in, &r->modes, y, &r->guesses, r->column, mean, r->scratch)) return -1;
+    sp_arrow_fill(out, r->column, mean);
     return 0;
 }
 
@@ -121,10 +119,11 @@ static void set_tolerances(const struct sp_run *r, double tolerance, const doubl
 {
     const struct sp_layout *l = &r->circuit->layout;
     for (int i = 0; i < l->count; ++i) absolute[i] = 10.0 * tolerance; /* K */
-    absolute[SP_Y_FAN] = 10.0 * tolerance;
+    for (int f = 0; f < l->fans; ++f) absolute[l->fan[f]] = 10.0 * tolerance;
     absolute[SP_Y_AIR] = tolerance * (y[SP_Y_AIR] + 1e-3);
     absolute[SP_Y_LOST] = 1e-3 * tolerance;
     for (int i = SP_Y_HEAT_IN; i <= SP_Y_HEAD_WORK; ++i) absolute[i] = 1e6 * tolerance;
+    if (l->battery >= 0) absolute[l->battery] = 1e6 * tolerance;
 }
 
 static bool open_run(struct sp_run *r, double tolerance, double *start)
@@ -133,9 +132,8 @@ static bool open_run(struct sp_run *r, double tolerance, double *start)
     int n = l->count;
     r->absolute = start + n;
     r->before = start + 2 * n;
-    r->means = start + 3 * n;
-    r->scratch = start + 5 * n;
-    for (int j = 0; j < n; ++j) r->column[j] = start + (8 + j) * n;
+    r->scratch = start + 3 * n;
+    for (int j = 0; j < n + 2 * l->exchangers; ++j) r->column[j] = start + (6 + j) * n; /* then the means */
     const double nothing = -INFINITY;
     r->coolant.best = r->gauge.best = r->metal.best = r->margin.best = nothing;
     r->pressure.best = r->over_ambient.best = nothing;
@@ -169,8 +167,9 @@ static enum sp_status attempt(const struct sp_drive *drive, const struct sp_run_
     struct sp_run r = {.drive = drive, .circuit = &drive->circuit, .schedule = &drive->schedule, .result = out,
                        .interval = options->interval > 0.0 ? options->interval : 1.0, .sink = options->sink};
     memset(out, 0, sizeof *out);
-    double *room = calloc((8 + n) * n, sizeof *room);
-    r.column = calloc(n, sizeof *r.column);
+    size_t columns = n + 2 * (size_t)drive->circuit.layout.exchangers;
+    double *room = calloc((6 + columns) * n, sizeof *room);
+    r.column = calloc(columns, sizeof *r.column);
     enum sp_status status = SP_NUMERICS;
     if (room && r.column && open_run(&r, tolerance, room)) {
         status = run_all(&r);

@@ -31,7 +31,7 @@ struct sp_run {
     bool fan_runs;
     double fan_since, over_since, full_since;
     double *absolute, *scratch, *before; /* states; scratch holds three lots */
-    double *means, **column;             /* of the Jacobian */
+    double **column;                     /* of the Jacobian, then the effects of the means */
     double slope_before;
     size_t samples;              /* taken so far */
     double interval;

@@ -34,7 +34,7 @@ void sp_run_follow_fan(struct sp_run *r)
 {
     const struct sp_fan *f = &r->drive->design->duct[0].fan[0];
     bool allowed = f->fitted && (r->schedule->flags[r->segment] & SP_FLAG_FAN);
-    bool asked = f->law == SP_FAN_ALWAYS || (f->law == SP_FAN_SWITCHED && r->modes.fan_on) ||
+    bool asked = f->law == SP_FAN_ALWAYS || (f->law == SP_FAN_SWITCHED && r->modes.fan_on[0]) ||
                  (f->law == SP_FAN_PROPORTIONAL && r->high[SP_W_FAN]);
     bool runs = allowed && asked;
     if (runs == r->fan_runs) return;
@@ -63,8 +63,8 @@ static bool crossed(struct sp_run *r, int w, bool up)
     switch (w) {
     case SP_W_FAN:
         if (r->drive->design->duct[0].fan[0].law != SP_FAN_SWITCHED) return false;
-        if (up == r->modes.fan_on) return false;
-        r->modes.fan_on = up;
+        if (up == r->modes.fan_on[0]) return false;
+        r->modes.fan_on[0] = up;
         return r->schedule->flags[r->segment] & SP_FLAG_FAN;
     case SP_W_PLAY:
     case SP_W_PLAY_SHUT:

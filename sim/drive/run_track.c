@@ -9,7 +9,7 @@ int sp_run_look(struct sp_run *r, double t, const double *y, struct sp_watched *
     struct sp_signals s;
     struct sp_coupling k; /* watches look at the coolant only */
     sp_schedule_at(r->schedule, r->segment, t, &in);
-    sp_circuit_signals(r->circuit, y, &s);
+    sp_circuit_signals(r->circuit, &in, y, &s);
     if (sp_circuit_split(r->circuit, &in, &r->modes, &s, &r->looking.loop, &k)) return -1;
     sp_watch(r->circuit, &in, &r->modes, y, &k, out);
     return 0;

@@ -6,7 +6,7 @@
 enum sp_status sp_run_couple(struct sp_run *r, const struct sp_inputs *in, const double *y, struct sp_coupling *k)
 {
     struct sp_signals s;
-    sp_circuit_signals(r->circuit, y, &s);
+    sp_circuit_signals(r->circuit, in, y, &s);
     return sp_circuit_couple(r->circuit, in, &r->modes, &s, &r->looking, k);
 }
 
@@ -30,14 +30,14 @@ static void flows(const struct sp_run *r, const struct sp_inputs *in, const doub
     v[SP_CH_PUMP_FLOW] = k->loop.pump;
     v[SP_CH_RADIATOR_FLOW] = k->loop.radiator;
     v[SP_CH_BYPASS_FLOW] = k->loop.bypass;
-    v[SP_CH_AIR_FLOW] = k->duct.mass_flow;
-    v[SP_CH_FACE_VELOCITY] = k->duct.face_velocity;
-    v[SP_CH_EXIT_VELOCITY] = k->duct.exit_velocity;
-    v[SP_CH_AIR_OUT] = in->in[SP_IN_AMBIENT] * k->duct.temperature_ratio;
+    v[SP_CH_AIR_FLOW] = k->duct[0].mass_flow;
+    v[SP_CH_FACE_VELOCITY] = k->duct[0].face_velocity;
+    v[SP_CH_EXIT_VELOCITY] = k->duct[0].exit_velocity;
+    v[SP_CH_AIR_OUT] = in->in[SP_IN_AMBIENT] * k->duct[0].temperature_ratio;
     v[SP_CH_FAN_SPEED] = y[SP_Y_FAN];
-    v[SP_CH_FAN_PRESSURE] = k->duct.fan_pressure;
-    v[SP_CH_FAN_POWER] = sp_fan_power(&r->drive->design->duct[0].fan[0], y[SP_Y_FAN]);
-    v[SP_CH_DRAG] = k->duct.drag;
+    v[SP_CH_FAN_PRESSURE] = k->duct[0].fan_pressure;
+    v[SP_CH_FAN_POWER] = sp_circuit_fan_power(r->circuit, y);
+    v[SP_CH_DRAG] = sp_circuit_drag(r->circuit, k);
 }
 
 enum sp_status sp_run_sample(struct sp_run *r, size_t k, double t, const double *y, struct sp_sample *out)

@@ -26,7 +26,7 @@ static double fan_watch(const struct sp_circuit *c, const struct sp_modes *m, co
     const struct sp_fan *f = &c->design->duct[0].fan[0];
     if (!f->fitted) return 1.0;
     double T = sp_circuit_place(c, f->sensor, y);
-    if (f->law == SP_FAN_SWITCHED) return T - (m->fan_on ? f->off : f->on);
+    if (f->law == SP_FAN_SWITCHED) return T - (m->fan_on[0] ? f->off : f->on);
     return f->law == SP_FAN_PROPORTIONAL ? T - f->from : 1.0;
 }
 

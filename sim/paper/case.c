@@ -32,16 +32,18 @@ bool sp_case_open(struct sp_reader *r, const char *text, size_t size, char *cons
     sp_case_settle(r);
     sp_case_check(r);
     sp_case_check_drive(r);
+    if (!faulty(r) && !r->no_car && !r->no_memory) sp_case_doubt(r);
+    sp_case_changes(r);
     if (r->no_memory) return lacks_memory(r);
-    if (faulty(r) || r->no_car) return false;
-    sp_case_doubt(r);
-    return true;
+    return !faulty(r) && !r->no_car;
 }
 
 void sp_case_close(struct sp_reader *r)
 {
     sp_json_free(r->tree);
     sp_design_free(r->design);
+    free(r->turn);
+    r->turn = NULL;
     r->tree = NULL;
     r->design = NULL;
 }

@@ -8,14 +8,16 @@
 
 /* One value that has to be below another. */
 struct order {
-    const char *low, *high;
-    double below, above; /* SI */
+    const char *low, *high; /* patterns, of the element at `at` */
+    double below, above;    /* SI */
+    struct sp_key_spot at;
 };
 
 /* A value as its user knows it: the text written, the default's text, or the number a rule gave. */
-static void in_words(const struct sp_reader *r, const char *path, double value, char *out, size_t size)
+static void in_words(const struct sp_reader *r, const char *path, const struct sp_key_spot *at, double value,
+                     char *out, size_t size)
 {
-    const struct sp_json *node = sp_case_node(r->tree, path);
+    const struct sp_json *node = sp_case_node_at(r, path, at);
     const struct sp_key *row = sp_key_find(path);
     if (node && node->text)
         snprintf(out, size, "%.80s", node->text);
@@ -29,11 +31,14 @@ static void in_words(const struct sp_reader *r, const char *path, double value, 
         snprintf(out, size, "%.6g %s by default", value, sp_kind_si(row->kind));
 }
 
-/* How much a user has to do with a value: nothing, in a file, on the command line. */
-static int weight(const struct sp_reader *r, const char *path)
+/* How much a user has to do with a value: nothing, in a file, on the command line, by a change. */
+static int weight(const struct sp_reader *r, const char *pattern, const struct sp_key_spot *at)
 {
+    char path[SP_PATH_MAX], source[2 * SP_PATH_MAX];
+    sp_case_path(r->tree, pattern, at, path, sizeof path);
     const struct sp_json *node = sp_case_node(r->tree, path);
     if (!node) return 0;
+    if (sp_case_source(r, path, source, sizeof source)) return 3;
     return node->file && !strncmp(node->file, "--set ", 6) ? 2 : 1;
 }
 
@@ -41,27 +46,23 @@ static int weight(const struct sp_reader *r, const char *path)
 static void check_order(struct sp_reader *r, const struct order *o)
 {
     if (isnan(o->below) || isnan(o->above) || o->below < o->above) return;
-    bool low = weight(r, o->low) >= weight(r, o->high);
+    bool low = weight(r, o->low, &o->at) >= weight(r, o->high, &o->at);
     const char *blamed = low ? o->low : o->high, *other = low ? o->high : o->low;
     char bound[120], found[120], expected[260];
-    in_words(r, other, low ? o->above : o->below, bound, sizeof bound);
-    in_words(r, blamed, low ? o->below : o->above, found, sizeof found);
+    in_words(r, other, &o->at, low ? o->above : o->below, bound, sizeof bound);
+    in_words(r, blamed, &o->at, low ? o->below : o->above, found, sizeof found);
     snprintf(expected, sizeof expected, "%s %s %s, which is %s", sp_key_name(sp_key_find(blamed)),
              low ? "below" : "above", sp_key_name(sp_key_find(other)), bound);
-    sp_case_fault(r, blamed, sp_case_given(r, blamed) ? NULL : found, expected, NULL);
+    sp_case_fault_of(r, blamed, &o->at, sp_case_given_at(r, blamed, &o->at) ? NULL : found, expected, NULL);
 }
 
 static void check_orders(struct sp_reader *r)
 {
     const struct sp_design *d = r->design;
-    const struct sp_fan *f = &d->duct[0].fan[0];
     const struct order orders[] = {
-        {"car.thermostat.opens", "car.thermostat.full", d->thermostat.opens, d->thermostat.full},
-        {"car.engine.idle_speed", "car.engine.rated_speed", d->engine.idle_speed, d->engine.rated_speed},
-        {"car.tank.air_space", "car.tank.volume", d->tank.air_space, d->tank.volume},
-        {"car.duct.fan.hub", "car.duct.fan.diameter", f->hub, f->diameter},
-        {"car.duct.fan.switch.off", "car.duct.fan.switch.on", f->off, f->on},
-        {"car.duct.fan.proportional.from", "car.duct.fan.proportional.to", f->from, f->to},
+        {"car.thermostat.opens", "car.thermostat.full", d->thermostat.opens, d->thermostat.full, {0}},
+        {"car.engine.idle_speed", "car.engine.rated_speed", d->engine.idle_speed, d->engine.rated_speed, {0}},
+        {"car.tank.air_space", "car.tank.volume", d->tank.air_space, d->tank.volume, {0}},
     };
     for (size_t i = 0; i < sizeof orders / sizeof *orders; ++i)
         check_order(r, &orders[i]);
@@ -177,25 +178,51 @@ static void check_pump(struct sp_reader *r)
                       NULL);
 }
 
-static void check_fan(struct sp_reader *r)
+/* ---- ducts ----------------------------------------------------------------------------------------- */
+
+static void check_fan(struct sp_reader *r, const struct sp_key_spot *at)
 {
-    const struct sp_fan *f = &r->design->duct[0].fan[0];
-    check_curve(r, "car.duct.fan.curve", &f->curve.pairs);
-    if (f->fitted && f->static_basis && !sp_case_given(r, "car.duct.fan.diameter"))
-        sp_case_fault(r, "car.duct.fan.diameter", "nothing",
-                      "a length such as \"305 mm\", for the curve is of static pressure", NULL);
+    const struct sp_fan *f = &r->design->duct[at->outer].fan[at->inner];
+    const struct order orders[] = {
+        {"car.duct.fan.hub", "car.duct.fan.diameter", f->hub, f->diameter, *at},
+        {"car.duct.fan.switch.off", "car.duct.fan.switch.on", f->off, f->on, *at},
+        {"car.duct.fan.proportional.from", "car.duct.fan.proportional.to", f->from, f->to, *at},
+    };
+    char path[SP_PATH_MAX];
+    for (size_t i = 0; i < sizeof orders / sizeof *orders; ++i)
+        check_order(r, &orders[i]);
+    sp_case_path(r->tree, "car.duct.fan.curve", at, path, sizeof path);
+    check_curve(r, path, &f->curve.pairs);
+    if (f->fitted && f->static_basis && !sp_case_given_at(r, "car.duct.fan.diameter", at))
+        sp_case_fault_of(r, "car.duct.fan.diameter", at, "nothing",
+                         "a length such as \"305 mm\", for the curve is of static pressure", NULL);
 }
 
-static void check_diffuser(struct sp_reader *r)
+static void check_diffuser(struct sp_reader *r, const struct sp_key_spot *at)
 {
-    bool kind = sp_case_given(r, "car.duct.diffuser.kind"),
-         length = sp_case_given(r, "car.duct.diffuser.length");
-    if (kind && sp_case_given(r, "car.duct.diffuser.loss"))
-        sp_case_fault(r, "car.duct.diffuser.kind", "both kind and loss", "one of them", NULL);
+    bool kind = sp_case_given_at(r, "car.duct.diffuser.kind", at),
+         length = sp_case_given_at(r, "car.duct.diffuser.length", at);
+    if (kind && sp_case_given_at(r, "car.duct.diffuser.loss", at))
+        sp_case_fault_of(r, "car.duct.diffuser.kind", at, "both kind and loss", "one of them", NULL);
     if (length && !kind)
-        sp_case_fault(r, "car.duct.diffuser.kind", "nothing", "\"conical\", for a length is given", NULL);
-    if (!length && kind && r->design->duct[0].diffuser.kind == SP_DIFFUSER_CONICAL)
-        sp_case_fault(r, "car.duct.diffuser.length", "nothing", "a length such as \"320 mm\"", NULL);
+        sp_case_fault_of(r, "car.duct.diffuser.kind", at, "nothing", "\"conical\", for a length is given", NULL);
+    if (!length && kind && r->design->duct[at->outer].diffuser.kind == SP_DIFFUSER_CONICAL)
+        sp_case_fault_of(r, "car.duct.diffuser.length", at, "nothing", "a length such as \"320 mm\"", NULL);
+}
+
+/* Each part of each duct. */
+static void check_ducts(struct sp_reader *r)
+{
+    static const struct {
+        const char *group;
+        void (*check)(struct sp_reader *r, const struct sp_key_spot *at);
+    } parts[] = {{"car.duct", check_diffuser}, {"car.duct.fan", check_fan}, {"car.duct.core", sp_case_check_core}};
+    for (size_t i = 0; i < sizeof parts / sizeof *parts; ++i) {
+        struct sp_key_spot at = {0};
+        do
+            parts[i].check(r, &at);
+        while (sp_case_next(r->tree, parts[i].group, &at));
+    }
 }
 
 /* Moist air is known over water only where the saturation formula is. */
@@ -214,7 +241,6 @@ void sp_case_check(struct sp_reader *r)
     check_body(r);
     check_engine(r);
     check_pump(r);
-    check_diffuser(r);
-    check_fan(r);
-    sp_case_check_core(r);
+    check_ducts(r);
+    sp_case_check_fitted(r);
 }

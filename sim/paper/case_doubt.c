@@ -7,42 +7,63 @@
 #include <math.h>
 #include <string.h>
 
-/* A doubt: said when `doubtful`, which is false on NAN. */
+/* A doubt: said when `doubtful`, which is false on NAN. The path is a row's. */
 struct doubt {
     bool doubtful;
     const char *path, *found, *expected;
 };
 
-static void say(struct sp_reader *r, const struct doubt *list, size_t n)
+static void say(struct sp_reader *r, const struct doubt *list, size_t n, const struct sp_key_spot *at)
 {
     for (size_t i = 0; i < n; ++i)
-        if (list[i].doubtful) sp_case_caution(r, list[i].path, list[i].found, list[i].expected);
+        if (list[i].doubtful) sp_case_caution_of(r, list[i].path, at, list[i].found, list[i].expected);
 }
 
-static void doubt_duct(struct sp_reader *r)
+static size_t at_least_one(size_t n)
 {
-    const struct sp_duct_design *d = &r->design->duct[0];
-    double face = d->core[0].width * d->core[0].height;
-    bool fan = d->fan[0].fitted;
+    return n ? n : 1;
+}
+
+/* Of several cores each has air of its own, or the same: the largest face and all exits count. */
+static void doubt_duct(struct sp_reader *r, const struct sp_key_spot *at)
+{
+    const struct sp_duct_design *d = &r->design->duct[at->outer];
+    double face = 0.0, exits = 0.0;
+    for (size_t i = 0; i < at_least_one(d->cores); ++i)
+        face = fmax(face, d->core[i].width * d->core[i].height);
+    for (size_t i = 0; i < at_least_one(d->exits); ++i)
+        exits += d->exit[i].area;
     const struct doubt list[] = {
         {d->inlet.area > face, "car.duct.inlet.area", NULL,
          "an inlet smaller than the core's face, as a rule"},
-        {d->exit[0].area < 0.1 * face, "car.duct.exit.area", NULL,
+        {exits < 0.1 * face, "car.duct.exit.area", NULL,
          "an exit of more than a tenth of the core's face, as a rule"},
         {d->inlet.area < 0.05 * face, "car.duct.inlet.area", NULL,
          "an inlet of more than a twentieth of the core's face, as a rule"},
-        {fan && d->fan[0].diameter > 1.2 * fmin(d->core[0].width, d->core[0].height), "car.duct.fan.diameter", NULL,
-         "a fan that fits upon the core"},
-        {fan && d->fan[0].law == SP_FAN_SWITCHED && d->fan[0].on > r->design->limits.coolant.stop,
-         "car.duct.fan.switch.on", NULL, "a switch that closes below the limit of the coolant"},
-        {fan && d->fan[0].law == SP_FAN_PROPORTIONAL && d->fan[0].from > r->design->limits.coolant.stop,
-         "car.duct.fan.proportional.from", NULL, "a fan that starts below the limit of the coolant"},
-        {fan && d->fan[0].law != SP_FAN_SWITCHED && sp_case_given(r, "car.duct.fan.switch"),
-         "car.duct.fan.switch", NULL, "no switch with this control; it is not used"},
-        {fan && d->fan[0].law != SP_FAN_PROPORTIONAL && sp_case_given(r, "car.duct.fan.proportional"),
+    };
+    say(r, list, sizeof list / sizeof *list, at);
+}
+
+static void doubt_fan(struct sp_reader *r, const struct sp_key_spot *at)
+{
+    const struct sp_duct_design *d = &r->design->duct[at->outer];
+    const struct sp_fan *f = &d->fan[at->inner];
+    double limit = r->design->limits.coolant.stop, side = 0.0;
+    if (!f->fitted) return;
+    for (size_t i = 0; i < at_least_one(d->cores); ++i)
+        side = fmax(side, fmin(d->core[i].width, d->core[i].height));
+    const struct doubt list[] = {
+        {f->diameter > 1.2 * side, "car.duct.fan.diameter", NULL, "a fan that fits upon the core"},
+        {f->law == SP_FAN_SWITCHED && f->on > limit, "car.duct.fan.switch.on", NULL,
+         "a switch that closes below the limit of the coolant"},
+        {f->law == SP_FAN_PROPORTIONAL && f->from > limit, "car.duct.fan.proportional.from", NULL,
+         "a fan that starts below the limit of the coolant"},
+        {f->law != SP_FAN_SWITCHED && sp_case_given_at(r, "car.duct.fan.switch", at), "car.duct.fan.switch",
+         NULL, "no switch with this control; it is not used"},
+        {f->law != SP_FAN_PROPORTIONAL && sp_case_given_at(r, "car.duct.fan.proportional", at),
          "car.duct.fan.proportional", NULL, "control \"proportional\" with it; it is not used"},
     };
-    say(r, list, sizeof list / sizeof *list);
+    say(r, list, sizeof list / sizeof *list, at);
 }
 
 static void doubt_engine(struct sp_reader *r)
@@ -72,25 +93,37 @@ static void doubt_engine(struct sp_reader *r)
         {d->start.coolant > sp_coolant_boiling(&d->coolant.fluid, d->air.pressure + fmax(d->tank.cap, 0.0)),
          "start.coolant", NULL, "a start below boiling"},
     };
-    say(r, list, sizeof list / sizeof *list);
+    say(r, list, sizeof list / sizeof *list, &(struct sp_key_spot){0});
 }
 
 /* The correlations of fins rest on data of a certain range; beyond it they are a guess. */
-static void doubt_fins(struct sp_reader *r)
+static void doubt_fins(struct sp_reader *r, const struct sp_key_spot *at)
 {
-    const struct sp_core *c = &r->design->duct[0].core[0];
+    const struct sp_core *c = &r->design->duct[at->outer].core[at->inner];
     if (c->drop_law != SP_DROP_FINS && c->heat_law != SP_CORE_FINS) return;
-    struct sp_louvre g = sp_core_louvre(c);
-    const char *outside = sp_louvre_outside(&g);
+    struct sp_louvre louvre = sp_core_louvre(c);
+    struct sp_plate plate = sp_core_plate(c);
+    const char *outside = c->fin_kind == SP_FINS_PLATE ? sp_plate_outside(&plate) : sp_louvre_outside(&louvre);
     char found[80];
     if (!outside) return;
     snprintf(found, sizeof found, "%s outside the correlations' data", outside);
-    sp_case_caution(r, "car.duct.core.fins", found, "fins such as those measured; expect more than 15 % off");
+    sp_case_caution_of(r, "car.duct.core.fins", at, found,
+                       "fins such as those measured; expect more than 15 % off");
+}
+
+static void doubt_each(struct sp_reader *r, const char *group,
+                       void (*doubt)(struct sp_reader *r, const struct sp_key_spot *at))
+{
+    struct sp_key_spot at = {0};
+    do
+        doubt(r, &at);
+    while (sp_case_next(r->tree, group, &at));
 }
 
 void sp_case_doubt(struct sp_reader *r)
 {
-    doubt_fins(r);
-    doubt_duct(r);
+    doubt_each(r, "car.duct.core", doubt_fins);
+    doubt_each(r, "car.duct", doubt_duct);
+    doubt_each(r, "car.duct.fan", doubt_fan);
     doubt_engine(r);
 }

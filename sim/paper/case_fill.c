@@ -36,15 +36,21 @@ static void missing(struct sp_reader *r, const struct sp_key *row, const char *p
     sp_case_fault(r, path, "nothing", expected, NULL);
 }
 
-/* Is the group that a row stands in there, as an object? */
-static bool group_there(const struct sp_reader *r, const struct sp_key *row)
+/* Is the group that a value stands in there, as an object? */
+static bool group_there(const struct sp_reader *r, const char *path)
 {
     char group[SP_PATH_MAX];
-    const char *dot = strrchr(row->path, '.');
+    const char *dot = strrchr(path, '.');
     if (!dot) return true;
-    snprintf(group, sizeof group, "%.*s", (int)(dot - row->path), row->path);
+    snprintf(group, sizeof group, "%.*s", (int)(dot - path), path);
     const struct sp_json *node = sp_case_node(r->tree, group);
     return node && node->type == SP_JSON_OBJECT;
+}
+
+/* An element of a list: what is wrong with the list is said already. */
+static bool of_list(const char *path)
+{
+    return path[strlen(path) - 1] == ']';
 }
 
 /* ---- defaults -------------------------------------------------------------------------------------- */
@@ -90,36 +96,47 @@ static void blank(const struct sp_key *row, void *to)
 
 /* ---- filling --------------------------------------------------------------------------------------- */
 
-static void fill_group(struct sp_reader *r, const struct sp_key *row)
+/* How many a list holds; 0 where none stands. */
+static void fill_count(struct sp_reader *r, const struct sp_key *list, const struct sp_key_spot *at)
 {
-    const struct sp_json *node = sp_case_node(r->tree, row->path);
-    if (!node && needed(r, row) && group_there(r, row)) missing(r, row, row->path);
-    if (row->keep != SP_KEEP_BOOL) return;
-    bool object = node && node->type == SP_JSON_OBJECT;
-    sp_key_store(row, sp_key_place(row, r->design, 0), row->or_none ? node && !object : object);
+    size_t *count = sp_key_count_place(list, r->design, at);
+    if (count && sp_case_list(r->tree, list, at)) *count = sp_case_elements(r->tree, list, at);
 }
 
-static void fill_row(struct sp_reader *r, const struct sp_key *row)
+static void fill_group(struct sp_reader *r, const struct sp_key *row, const struct sp_key_spot *at,
+                       const char *path)
 {
-    void *to = sp_key_place(row, r->design, 0);
-    const struct sp_json *node = sp_case_node(r->tree, row->path);
-    if (row->shape == SP_SHAPE_STEPS) {
-        if (!node && needed(r, row)) missing(r, row, row->path);
+    const struct sp_json *node = sp_case_node(r->tree, path);
+    if (row->plural) fill_count(r, row, at);
+    if (!node && needed(r, row) && group_there(r, path) && !of_list(path)) missing(r, row, path);
+    if (row->keep != SP_KEEP_BOOL) return;
+    bool object = node && node->type == SP_JSON_OBJECT;
+    sp_key_store(row, sp_key_place(row, r->design, at), row->or_none ? node && !object : object);
+}
+
+static void fill_row(struct sp_reader *r, const struct sp_key *row, const struct sp_key_spot *at,
+                     const char *path)
+{
+    void *to = sp_key_place(row, r->design, at);
+    const struct sp_json *node = sp_case_node(r->tree, path);
+    if (row->shape == SP_SHAPE_STEPS || row->shape == SP_SHAPE_CHANGES) {
+        if (!node && needed(r, row)) missing(r, row, path);
         return;
     }
     if (row->or_object && node && node->type == SP_JSON_OBJECT) return;
     if (node)
-        sp_case_value(r, row, node, row->path, to);
-    else if (needed(r, row) && group_there(r, row))
-        missing(r, row, row->path);
+        sp_case_value(r, row, node, path, to);
+    else if (needed(r, row) && group_there(r, path))
+        missing(r, row, path);
     else
         set_default(r, row, to);
 }
 
 static void fill_step(struct sp_reader *r, const struct sp_json *node, size_t i)
 {
+    const struct sp_key_spot at = {i, 0};
     for (const struct sp_key *row = sp_keys_drive; row->path; ++row)
-        if (sp_key_of_step(row)) blank(row, sp_key_place(row, r->design, i));
+        if (sp_key_of_step(row)) blank(row, sp_key_place(row, r->design, &at));
     for (const struct sp_key *row = sp_keys_drive; row->path; ++row) {
         if (!sp_key_of_step(row) || row->shape == SP_SHAPE_GROUP) continue;
         const char *rest = row->path + strlen("drive[].");
@@ -127,11 +144,11 @@ static void fill_step(struct sp_reader *r, const struct sp_json *node, size_t i)
         char path[SP_PATH_MAX];
         snprintf(path, sizeof path, "drive[%zu].%s", i, rest);
         if (!value)
-            set_default(r, row, sp_key_place(row, r->design, i));
+            set_default(r, row, sp_key_place(row, r->design, &at));
         else if (row->shape == SP_SHAPE_COLUMNS)
             sp_case_columns(r, value, path, &r->design->step[i]);
         else
-            sp_case_value(r, row, value, path, sp_key_place(row, r->design, i));
+            sp_case_value(r, row, value, path, sp_key_place(row, r->design, &at));
     }
 }
 
@@ -139,7 +156,7 @@ static void fill_steps(struct sp_reader *r)
 {
     const struct sp_json *drive = sp_json_member(r->tree, "drive");
     size_t n = 0, i = 0;
-    if (!drive || drive->type != SP_JSON_ARRAY) return;
+    if (!drive || drive->type != SP_JSON_ARRAY || r->changed) return;
     for (const struct sp_json *c = drive->child; c; c = c->next)
         ++n;
     if (!n) {
@@ -159,21 +176,35 @@ static void fill_steps(struct sp_reader *r)
 
 static bool passed_over(const struct sp_reader *r, const struct sp_key *row)
 {
-    return sp_key_of_step(row) || !strcmp(row->path, "drive[]") ||
+    return sp_key_of_step(row) || !strcmp(row->path, "drive[]") || sp_key_of_change(row) ||
+           (r->changed && row->shape == SP_SHAPE_STEPS) ||
            (r->no_car && (sp_key_of_car(row) || !strcmp(row->path, "car")));
+}
+
+static void fill_elements(struct sp_reader *r, const struct sp_key *row)
+{
+    struct sp_key_spot at = {0};
+    do {
+        char path[SP_PATH_MAX];
+        sp_case_path(r->tree, row->path, &at, path, sizeof path);
+        if (row->shape == SP_SHAPE_GROUP)
+            fill_group(r, row, &at, path);
+        else
+            fill_row(r, row, &at, path);
+    } while (sp_case_next(r->tree, row->path, &at));
 }
 
 void sp_case_fill(struct sp_reader *r)
 {
     const struct sp_key *row;
-    for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i)
-        if (!sp_key_of_step(row)) blank(row, sp_key_place(row, r->design, 0));
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
-        if (passed_over(r, row)) continue;
-        if (row->shape == SP_SHAPE_GROUP)
-            fill_group(r, row);
-        else
-            fill_row(r, row);
+        struct sp_key_spot at = {0};
+        if (sp_key_of_step(row) || sp_key_of_change(row)) continue;
+        do
+            blank(row, sp_key_place(row, r->design, &at));
+        while (sp_case_next(r->tree, row->path, &at));
     }
+    for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i)
+        if (!passed_over(r, row)) fill_elements(r, row);
     fill_steps(r);
 }

@@ -25,8 +25,10 @@ static struct sp_json *go(const struct sp_json *from, const char **path)
     }
     if (*p == '.') ++p;
     char name[SP_PATH_MAX];
-    size_t length = strcspn(p, ".[");
-    *path = p + length;
+    bool quoted = *p == '"';
+    if (quoted) ++p;
+    size_t length = strcspn(p, quoted ? "\"" : ".[");
+    *path = p + length + (quoted && p[length]);
     if (length >= sizeof name) return NULL;
     memcpy(name, p, length);
     name[length] = '\0';
@@ -65,15 +67,34 @@ static const char *as_in_file(const struct sp_reader *r, const char *file, const
     return strcmp(file, r->name) ? path + 4 : path;
 }
 
+static bool leads_to(const char *above, const char *path)
+{
+    size_t length = strlen(above);
+    return !strncmp(above, path, length) && (!path[length] || strchr(".[", path[length]));
+}
+
+const char *sp_case_source(const struct sp_reader *r, const char *path, char *out, size_t size)
+{
+    for (size_t i = r->places; i-- > 0;) {
+        const struct sp_placed *p = &r->placed[i];
+        if (!leads_to(p->path, path)) continue;
+        snprintf(out, size, "%s%.120s", p->source, path + strlen(p->path));
+        return out;
+    }
+    return NULL;
+}
+
 /* `node` is NULL where nothing stands; `above` is it, or the nearest one above. */
 static void complain(struct sp_reader *r, struct sp_complaints *to, const struct sp_json *node,
                      const struct sp_json *above, const char *path, const char *found, const char *expected,
                      const char *hint)
 {
     const char *file = above && above->file ? above->file : r->name;
+    char own[2 * SP_PATH_MAX];
+    const char *source = sp_case_source(r, path, own, sizeof own);
     struct sp_place at = {.file = file,
                           .line = above ? above->line : 0,
-                          .path = as_in_file(r, file, path),
+                          .path = source ? source : as_in_file(r, file, path),
                           .named_by = above ? above->named_by : NULL};
     char text[300];
     sp_json_describe(node, text, sizeof text);

@@ -1,136 +1,166 @@
-/* --set PATH=VALUE: looking the path up in the tables and putting the value into the tree.
+/* --set PATH=VALUE, and what a change sets: putting a value into the tree.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "case.h"
 
 #include <stdlib.h>
 #include <string.h>
 
-/* One part of a path: a name, or an index. */
-struct part {
-    char name[80];
-    bool is_index;
-    size_t index;
-};
-
-/* Takes the next part; false at the end, or with *bad when the text is no path. */
-static bool next_part(const char **path, bool first, struct part *out, bool *bad)
+static bool complain(struct sp_reader *r, const struct sp_setting *s, const char *found, const char *expected,
+                     const char *hint)
 {
-    const char *p = *path;
-    if (!*p) return false;
-    out->is_index = *p == '[';
-    if (out->is_index) {
-        size_t digits = strspn(p + 1, "0123456789");
-        *bad = first || digits < 1 || digits > 9 || p[1 + digits] != ']';
-        if (*bad) return false;
-        out->index = strtoul(p + 1, NULL, 10);
-        *path = p + digits + 2;
-        return true;
-    }
-    if (!first && *p++ != '.') *bad = true;
-    size_t length = strcspn(p, ".[");
-    if (length < 1 || length >= sizeof out->name) *bad = true;
-    if (*bad) return false;
-    memcpy(out->name, p, length);
-    out->name[length] = '\0';
-    *path = p + length;
-    return true;
-}
-
-static void label_of(const char *text, char *out, size_t size)
-{
-    snprintf(out, size, "--set %s", text);
-}
-
-/* Labels are the whole setting; a long one is cut. */
-enum { LABEL_MAX = 600 };
-
-static bool complain(struct sp_reader *r, const char *text, const char *path, const char *found,
-                     const char *expected, const char *hint)
-{
-    char label[LABEL_MAX];
-    label_of(text, label, sizeof label);
-    struct sp_place at = {.file = label, .path = path};
-    sp_complain(r->complaints, &at, found, expected, hint);
+    sp_complain(r->complaints, &s->source, found, expected, hint);
     return false;
-}
-
-static bool unknown(struct sp_reader *r, const char *text, const char *path, const char *group,
-                    const char *name)
-{
-    char hint[200];
-    const char *nearest = sp_key_nearest(group, name);
-    const char *of_car = *group ? NULL : sp_key_nearest("car", name); /* may stand without "car." */
-    if (of_car && (!nearest || sp_edit_distance(of_car, name) < sp_edit_distance(nearest, name)))
-        nearest = of_car;
-    snprintf(hint, sizeof hint, "nearest known key is \"%s\"", nearest ? nearest : "");
-    return complain(r, text, path, "an unknown key", "a key of the case or car", nearest ? hint : NULL);
-}
-
-/* The pattern ("drive[].speed") of a path, part by part; false with a complaint if no row has it. */
-static bool known(struct sp_reader *r, const char *text, const char *shown, const char *path)
-{
-    char pattern[SP_PATH_MAX] = "", group[SP_PATH_MAX];
-    const struct sp_key *row = NULL;
-    struct part part;
-    bool bad = false, inside = false;
-    for (bool first = true; next_part(&path, first, &part, &bad); first = false) {
-        size_t length = strlen(pattern);
-        memcpy(group, pattern, length + 1);
-        if (inside) continue; /* within a table's rows, or a trace's columns */
-        if (part.is_index) {
-            if (!row) return complain(r, text, shown, "an index", "a key before it", NULL);
-            if (row->shape == SP_SHAPE_STEPS)
-                snprintf(pattern + length, sizeof pattern - length, "[]");
-            else
-                inside = row->shape == SP_SHAPE_TABLE || row->shape == SP_SHAPE_LIST ||
-                         row->shape == SP_SHAPE_MATRIX || row->shape == SP_SHAPE_THREE;
-            if (!inside && row->shape != SP_SHAPE_STEPS)
-                return complain(r, text, shown, "an index", "a key that holds no list to have none", NULL);
-            row = sp_key_find(pattern);
-            continue;
-        }
-        if (length + strlen(part.name) + 2 > sizeof pattern) return unknown(r, text, shown, group, part.name);
-        snprintf(pattern + length, sizeof pattern - length, "%s%s", length ? "." : "", part.name);
-        row = sp_key_find(pattern);
-        if (!row) return unknown(r, text, shown, group, part.name);
-        inside = row->shape == SP_SHAPE_COLUMNS;
-    }
-    return !bad ||
-           complain(r, text, shown, "no path", "keys with points between, such as duct.exit.area", NULL);
 }
 
 bool sp_setting_read(struct sp_reader *r, const char *text, struct sp_setting *out)
 {
     const char *equals = strchr(text, '=');
-    char path[SP_PATH_MAX - 4], first[SP_PATH_MAX];
-    if (!equals || equals == text) return complain(r, text, NULL, "no path with a value", "PATH=VALUE", NULL);
+    *out = (struct sp_setting){.text = equals ? equals + 1 : NULL};
+    snprintf(out->label, sizeof out->label, "--set %s", text);
+    out->source.file = out->label;
+    if (!equals || equals == text) return complain(r, out, "no path with a value", "PATH=VALUE", NULL);
     size_t length = (size_t)(equals - text);
-    if (length >= sizeof path) return complain(r, text, NULL, "too long a path", "a key of the case", NULL);
-    memcpy(path, text, length);
-    path[length] = '\0';
-    snprintf(first, sizeof first, "car.%.*s", (int)strcspn(path, ".["), path);
-    bool of_car = !sp_key_find(first + 4) && sp_key_find(first);
-    snprintf(out->path, sizeof out->path, "%s%s", of_car ? "car." : "", path);
-    out->text = text;
-    return known(r, text, path, out->path);
+    if (length >= SP_PATH_MAX - 4) return complain(r, out, "too long a path", "a key of the case", NULL);
+    memcpy(out->written, text, length);
+    char path[SP_PATH_MAX];
+    snprintf(path, sizeof path, "%s", out->written);
+    struct sp_place source = {.file = out->label, .path = out->written};
+    return sp_setting_look_up(r, path, &source, out);
 }
-
-/* ---- into the tree --------------------------------------------------------------------------------- */
 
 static bool misplaced(struct sp_reader *r, const struct sp_setting *s, const struct sp_json *node,
                       const char *expected)
 {
-    char found[300], path[SP_PATH_MAX];
+    char found[300];
     sp_json_describe(node, found, sizeof found);
-    snprintf(path, sizeof path, "%.*s", (int)strcspn(s->text, "="), s->text);
-    return complain(r, s->text, path, found, expected, NULL);
+    return complain(r, s, found, expected, NULL);
 }
+
+/* ---- one or a list --------------------------------------------------------------------------------- */
+
+/* On the way along a path: what is found so far, and where that is. */
+struct way {
+    struct sp_reader *r;
+    struct sp_setting *s;
+    const struct sp_json *node; /* NULL: not there yet */
+    char pattern[SP_PATH_MAX];
+};
+
+static void add(struct way *w, const char *text)
+{
+    size_t length = strlen(w->s->place);
+    snprintf(w->s->place + length, sizeof w->s->place - length, "%s", text);
+    w->node = *w->s->place ? sp_case_node(w->r->tree, w->s->place) : w->r->tree;
+}
+
+static void add_name(struct way *w, const char *name)
+{
+    char text[90];
+    bool quote = strpbrk(name, ".[") != NULL;
+    snprintf(text, sizeof text, "%s%s%s%s", *w->s->place ? "." : "", quote ? "\"" : "", name,
+             quote ? "\"" : "");
+    add(w, text);
+}
+
+static void add_index(struct way *w, size_t index)
+{
+    char text[40];
+    snprintf(text, sizeof text, "[%zu]", index);
+    add(w, text);
+}
+
+static size_t length_of(const struct sp_json *array)
+{
+    size_t n = 0;
+    for (const struct sp_json *c = array->type == SP_JSON_ARRAY ? array->child : NULL; c; c = c->next)
+        ++n;
+    return n;
+}
+
+/* "cores[0]..." was written where there is one `core`, or none. */
+static bool element_of_one(struct way *w, const struct sp_key *row, size_t index, const struct sp_json *one)
+{
+    char found[60], expected[160];
+    if (one && index == 0) {
+        add_name(w, sp_key_name(row));
+        return true;
+    }
+    snprintf(found, sizeof found, "index %zu", index);
+    if (one)
+        snprintf(expected, sizeof expected, "index 0, for there is 1, as \"%s\"", sp_key_name(row));
+    else
+        snprintf(expected, sizeof expected, "no index, for there are none; %s as a whole", row->plural);
+    return complain(w->r, w->s, found, expected, NULL);
+}
+
+/* "core..." was written where there is a list. */
+static bool one_of_list(struct way *w, const struct sp_key *row, const struct sp_json *list)
+{
+    char expected[160], hint[100];
+    size_t n = length_of(list);
+    if (list->type != SP_JSON_ARRAY) return misplaced(w->r, w->s, list, "a list there");
+    add_name(w, row->plural);
+    if (n == 1) {
+        add_index(w, 0);
+        return true;
+    }
+    snprintf(expected, sizeof expected, "an index, for %s is a list of %zu", row->plural, n);
+    snprintf(hint, sizeof hint, "the first is \"%s[0]\"", row->plural);
+    char found[100];
+    snprintf(found, sizeof found, "\"%s\" alone", sp_key_name(row));
+    return complain(w->r, w->s, found, expected, n ? hint : NULL);
+}
+
+/* A group that may be a list; takes the index after the list's name along. */
+static bool resolve_group(struct way *w, const struct sp_key *row, bool plural, const char **path)
+{
+    const struct sp_json *one = sp_json_member(w->node, sp_key_name(row)),
+                         *list = sp_json_member(w->node, row->plural);
+    struct sp_path_part part;
+    bool bad = false;
+    if (plural && **path == '[' && !list) {
+        sp_path_next(path, false, &part, &bad);
+        return element_of_one(w, row, part.index, one);
+    }
+    if (!plural && list && !one) return one_of_list(w, row, list);
+    add_name(w, plural ? row->plural : sp_key_name(row));
+    return true;
+}
+
+bool sp_setting_resolve(struct sp_reader *r, struct sp_setting *s)
+{
+    struct way w = {.r = r, .s = s, .node = r->tree};
+    const char *path = s->path;
+    struct sp_path_part part;
+    const struct sp_key *row = NULL;
+    bool bad = false, known = true;
+    *s->place = '\0';
+    for (bool first = true; sp_path_next(&path, first, &part, &bad); first = false) {
+        bool plural = false;
+        if (part.is_index) {
+            add_index(&w, part.index);
+            bool entry = row && (row->shape == SP_SHAPE_STEPS || row->shape == SP_SHAPE_CHANGES);
+            if (entry) snprintf(w.pattern, sizeof w.pattern, "%s[]", row->path);
+            continue;
+        }
+        row = known ? sp_key_named(w.pattern, part.name, &plural) : NULL;
+        known = row != NULL;
+        if (row) snprintf(w.pattern, sizeof w.pattern, "%s", row->path);
+        if (!row || !row->plural)
+            add_name(&w, part.name);
+        else if (!resolve_group(&w, row, plural, &path))
+            return false;
+    }
+    return true;
+}
+
+/* ---- into the tree --------------------------------------------------------------------------------- */
 
 /* The link to the element, NULL with a complaint if there is no such element. */
 static struct sp_json **element(struct sp_reader *r, const struct sp_setting *s, struct sp_json *array,
                                 size_t index)
 {
-    char found[60], expected[80], path[SP_PATH_MAX];
+    char found[60], expected[100];
     size_t n = 0;
     if (array->type != SP_JSON_ARRAY) {
         misplaced(r, s, array, "a list to have that index");
@@ -141,15 +171,15 @@ static struct sp_json **element(struct sp_reader *r, const struct sp_setting *s,
         link = &(*link)->next;
     if (*link) return link;
     snprintf(found, sizeof found, "index %zu", index);
-    if (n)
-        snprintf(expected, sizeof expected, "an index of 0 to %zu", n - 1);
+    if (n > 1)
+        snprintf(expected, sizeof expected, "an index of 0 to %zu, for there are %zu", n - 1, n);
     else
-        snprintf(expected, sizeof expected, "no index, for the list is empty");
-    snprintf(path, sizeof path, "%.*s", (int)strcspn(s->text, "="), s->text);
-    complain(r, s->text, path, found, expected, NULL);
+        snprintf(expected, sizeof expected, n ? "index 0, for there is 1" : "no index, for the list is empty");
+    complain(r, s, found, expected, NULL);
     return NULL;
 }
 
+/* What cannot stand beside the new value. */
 static void drop_opposite(struct sp_reader *r, const struct sp_setting *s)
 {
     struct sp_json *air = sp_json_member(r->tree, "air");
@@ -159,7 +189,7 @@ static void drop_opposite(struct sp_reader *r, const struct sp_setting *s)
 
 /* Goes one part down, making objects on the way; NULL with a complaint if it cannot. */
 static struct sp_json *down(struct sp_reader *r, const struct sp_setting *s, struct sp_json *node,
-                            const struct part *part, const char *label)
+                            const struct sp_path_part *part)
 {
     if (part->is_index) {
         struct sp_json **link = element(r, s, node, part->index);
@@ -171,7 +201,8 @@ static struct sp_json *down(struct sp_reader *r, const struct sp_setting *s, str
     }
     struct sp_json *child = sp_json_member(node, part->name);
     if (child) return child;
-    child = sp_json_value(label, "{}");
+    child = sp_json_value(s->source.file, "{}");
+    if (child) child->line = s->source.line;
     if (!child || !sp_json_put(node, part->name, child)) {
         r->no_memory = true;
         return NULL;
@@ -180,46 +211,50 @@ static struct sp_json *down(struct sp_reader *r, const struct sp_setting *s, str
 }
 
 /* Puts the value at the last part of the path; takes it over. */
-static void put(struct sp_reader *r, const struct sp_setting *s, struct sp_json *node,
-                const struct part *part, struct sp_json *value)
+static bool put(struct sp_reader *r, const struct sp_setting *s, struct sp_json *node,
+                const struct sp_path_part *part, struct sp_json *value)
 {
     if (part->is_index) {
         struct sp_json **link = element(r, s, node, part->index), *old = link ? *link : NULL;
         if (!old) {
             sp_json_free(value);
-            return;
+            return false;
         }
         value->next = old->next;
         old->next = NULL;
         *link = value;
         sp_json_free(old);
-    } else if (node->type != SP_JSON_OBJECT) {
-        misplaced(r, s, node, "an object to hold that key");
-        sp_json_free(value);
-    } else if (!sp_json_put(node, part->name, value)) {
-        r->no_memory = true;
+        return true;
     }
+    if (node->type != SP_JSON_OBJECT) {
+        sp_json_free(value);
+        return misplaced(r, s, node, "an object to hold that key");
+    }
+    if (s->list) sp_json_drop(node, sp_key_name(s->row)); /* the list stands for the one */
+    if (sp_json_put(node, part->name, value)) return true;
+    r->no_memory = true;
+    return false;
 }
 
-void sp_setting_apply(struct sp_reader *r, const struct sp_setting *s)
+bool sp_setting_apply(struct sp_reader *r, struct sp_setting *s)
 {
-    char label[LABEL_MAX];
-    label_of(s->text, label, sizeof label);
-    struct sp_json *node = r->tree, *value = sp_json_value(label, strchr(s->text, '=') + 1);
-    const char *path = s->path;
-    struct part part;
+    if (!sp_setting_resolve(r, s)) return false;
+    struct sp_json *node = r->tree, *value = s->node ? sp_case_copy(s->node) : sp_json_value(s->label, s->text);
+    const char *path = s->place;
+    struct sp_path_part part;
     bool bad = false;
     if (!value) {
         r->no_memory = true;
-        return;
+        return false;
     }
-    for (bool first = true; node && next_part(&path, first, &part, &bad); first = false) {
+    for (bool first = true; node && sp_path_next(&path, first, &part, &bad); first = false) {
         if (!*path) {
-            put(r, s, node, &part, value);
+            bool fine = put(r, s, node, &part, value);
             drop_opposite(r, s);
-            return;
+            return fine;
         }
-        node = down(r, s, node, &part, label);
+        node = down(r, s, node, &part);
     }
     sp_json_free(value);
+    return false;
 }

@@ -6,28 +6,43 @@
 #include <stdlib.h>
 #include <string.h>
 
-static void settle_core(struct sp_reader *r)
+#define CORE "car.duct.core"
+
+static bool given(const struct sp_reader *r, const char *path, const struct sp_key_spot *at)
 {
-    struct sp_core *c = &r->design->duct[0].core[0];
-    bool fins = sp_case_given(r, "car.duct.core.fins") && sp_case_given(r, "car.duct.core.tubes");
-    if (!sp_case_given(r, "car.duct.core.pressure_drop"))
+    return sp_case_given_at(r, path, at);
+}
+
+static void settle_core(struct sp_reader *r, const struct sp_key_spot *at)
+{
+    struct sp_core *c = &r->design->duct[at->outer].core[at->inner];
+    bool fins = given(r, CORE ".fins", at) && given(r, CORE ".tubes", at);
+    if (!given(r, CORE ".pressure_drop", at))
         c->drop_law = SP_DROP_FINS;
-    else if (sp_case_given(r, "car.duct.core.pressure_drop.coefficient"))
+    else if (given(r, CORE ".pressure_drop.coefficient", at))
         c->drop_law = SP_DROP_COEFFICIENT;
-    else if (sp_case_given(r, "car.duct.core.pressure_drop.table"))
+    else if (given(r, CORE ".pressure_drop.table", at))
         c->drop_law = SP_DROP_TABLE;
     else
         c->drop_law = SP_DROP_LINEAR;
-    if (!sp_case_given(r, "car.duct.core.heat"))
+    if (!given(r, CORE ".heat", at))
         c->heat_law = fins ? SP_CORE_FINS : SP_CORE_NO_HEAT;
-    else if (sp_case_given(r, "car.duct.core.heat.rejection"))
+    else if (given(r, CORE ".heat.rejection", at))
         c->heat_law = SP_CORE_MAKER;
     else
         c->heat_law = SP_CORE_POWER;
 }
 
+static void settle_cores(struct sp_reader *r)
+{
+    struct sp_key_spot at = {0};
+    do
+        settle_core(r, &at);
+    while (sp_case_next(r->tree, CORE, &at));
+}
+
 /* A default by rule that comes out of range speaks of odd values elsewhere. */
-static void judge(struct sp_reader *r, const struct sp_key *row, double value)
+static void judge(struct sp_reader *r, const struct sp_key *row, const struct sp_key_spot *at, double value)
 {
     struct sp_range range;
     char found[200];
@@ -35,17 +50,26 @@ static void judge(struct sp_reader *r, const struct sp_key *row, double value)
     if (sp_range_holds(&range, value)) return;
     snprintf(found, sizeof found, "%.6g %s, by the default \"%.100s\"", value, sp_kind_si(row->kind),
              row->fallback);
-    sp_case_fault(r, row->path, found, row->range, NULL);
+    sp_case_fault_of(r, row->path, at, found, row->range, NULL);
+}
+
+static void apply_rule(struct sp_reader *r, const struct sp_key *row, const struct sp_key_spot *at)
+{
+    if (sp_case_given_at(r, row->path, at)) return;
+    double value = row->rule(r->design, at);
+    sp_key_store(row, sp_key_place(row, r->design, at), value);
+    judge(r, row, at, value);
 }
 
 static void apply_rules(struct sp_reader *r)
 {
     const struct sp_key *row;
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
-        if (!row->rule || sp_case_given(r, row->path)) continue;
-        double value = row->rule(r->design);
-        sp_key_store(row, sp_key_place(row, r->design, 0), value);
-        judge(r, row, value);
+        struct sp_key_spot at = {0};
+        if (!row->rule) continue;
+        do
+            apply_rule(r, row, &at);
+        while (sp_case_next(r->tree, row->path, &at));
     }
 }
 
@@ -92,7 +116,7 @@ void sp_case_settle(struct sp_reader *r)
     settle_traces(r);
     settle_air(r);
     if (r->no_car) return;
-    settle_core(r);
+    settle_cores(r);
     apply_rules(r);
     settle_coolant(r);
 }

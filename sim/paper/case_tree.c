@@ -66,6 +66,21 @@ static struct sp_json *car_of(struct sp_reader *r, const struct sp_json *name, c
     return car;
 }
 
+/* Where a list is laid over a single group, or over another list, it stands for all of it. */
+static void give_way(struct sp_json *under, const struct sp_json *over, const char *group)
+{
+    for (const struct sp_json *c = over->child; c; c = c->next) {
+        bool plural;
+        const struct sp_key *row = sp_key_named(group, c->key, &plural);
+        struct sp_json *below = row ? sp_json_member(under, sp_key_name(row)) : NULL;
+        if (!row || !below) continue;
+        if (plural)
+            sp_json_drop(under, sp_key_name(row));
+        else if (c->type == SP_JSON_OBJECT && below->type == SP_JSON_OBJECT)
+            give_way(below, c, row->path);
+    }
+}
+
 /* Lays a car that has `from` over the one named there. */
 static bool base_on(struct sp_reader *r, struct sp_json **car, const char *namer, int depth)
 {
@@ -74,6 +89,7 @@ static bool base_on(struct sp_reader *r, struct sp_json **car, const char *namer
     struct sp_json *under = car_of(r, from, namer, depth);
     sp_json_free(from);
     if (!under) return false;
+    give_way(under, *car, "car");
     *car = sp_json_merge(under, *car);
     return *car != NULL;
 }
@@ -123,7 +139,7 @@ static void apply(struct sp_reader *r, char *const *set, size_t sets, bool of_ca
 /* A car's file where a case belongs, which would be a complaint for each of its keys. */
 static bool is_car(struct sp_reader *r)
 {
-    static const char *const telling[] = {"body", "engine", "duct"};
+    static const char *const telling[] = {"body", "engine", "duct", "ducts"};
     const struct sp_json *key = NULL;
     if (sp_json_member(r->tree, "car")) return false;
     for (size_t i = 0; i < sizeof telling / sizeof *telling && !key; ++i)

@@ -10,25 +10,6 @@
  * which heat data are given (ASHRAE's table). */
 static const double reference_density = SP_COOLANT_REFERENCE;
 
-void *sp_key_place(const struct sp_key *row, struct sp_design *d, size_t step)
-{
-    return (sp_key_of_step(row) ? (char *)&d->step[step] : (char *)d) + row->at;
-}
-
-double sp_key_double(const struct sp_key *row, const struct sp_design *d, size_t step)
-{
-    const char *base = sp_key_of_step(row) ? (const char *)&d->step[step] : (const char *)d;
-    double value = NAN;
-    int whole;
-    if (row->shape != SP_SHAPE_QUANTITY) return value;
-    if (row->keep == SP_KEEP_INT) {
-        memcpy(&whole, base + row->at, sizeof whole);
-        return whole;
-    }
-    memcpy(&value, base + row->at, sizeof value);
-    return value;
-}
-
 void sp_key_store(const struct sp_key *row, void *to, double value)
 {
     if (row->keep == SP_KEEP_DOUBLE) {

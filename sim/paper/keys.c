@@ -9,7 +9,8 @@
 /* The order matters: a rule may use what stands in an earlier table. */
 static const struct sp_key *const tables[] = {sp_keys_case,   sp_keys_drive,   sp_keys_body,
                                               sp_keys_engine, sp_keys_circuit, sp_keys_duct,
-                                              sp_keys_core,   sp_keys_fan,     sp_keys_tank};
+                                              sp_keys_core,   sp_keys_fan,     sp_keys_tank,
+                                              sp_keys_change};
 enum { TABLES = sizeof tables / sizeof *tables };
 
 const struct sp_key *sp_key_row(size_t i)
@@ -41,6 +42,39 @@ const char *sp_key_name(const struct sp_key *row)
 {
     const char *dot = strrchr(row->path, '.');
     return dot ? dot + 1 : row->path;
+}
+
+const struct sp_key *sp_key_named(const char *group, const char *key, bool *plural)
+{
+    *plural = false;
+    for (size_t t = 0; t < TABLES; ++t)
+        for (const struct sp_key *row = tables[t]; row->path; ++row) {
+            bool list = row->plural && !strcmp(row->plural, key);
+            if ((!list && strcmp(sp_key_name(row), key)) || !sp_key_child(row, group)) continue;
+            *plural = list;
+            return row;
+        }
+    return NULL;
+}
+
+static bool leads_to(const char *group, const char *path)
+{
+    size_t length = strlen(group);
+    return !strncmp(group, path, length) && (!path[length] || path[length] == '.');
+}
+
+size_t sp_key_lists(const char *path, const struct sp_key *lists[SP_KEY_LISTS])
+{
+    size_t n = 0;
+    for (size_t t = 0; t < TABLES; ++t)
+        for (const struct sp_key *row = tables[t]; row->path; ++row)
+            if (row->plural && n < SP_KEY_LISTS && leads_to(row->path, path)) lists[n++] = row;
+    return n;
+}
+
+bool sp_key_of_change(const struct sp_key *row)
+{
+    return !strncmp(row->path, "changes[]", 9);
 }
 
 bool sp_key_of_step(const struct sp_key *row)
@@ -93,11 +127,14 @@ const char *sp_key_nearest(const char *group, const char *key)
     size_t distance = 0;
     const struct sp_key *row;
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
+        const char *const names[] = {sp_key_name(row), row->plural};
         if (!sp_key_child(row, group)) continue;
-        size_t d = sp_edit_distance(sp_key_name(row), key);
-        if (best && d >= distance) continue;
-        best = sp_key_name(row);
-        distance = d;
+        for (size_t k = 0; k < 2 && names[k]; ++k) {
+            size_t d = sp_edit_distance(names[k], key);
+            if (best && d >= distance) continue;
+            best = names[k];
+            distance = d;
+        }
     }
     return best && sp_key_near(key, distance) ? best : NULL;
 }

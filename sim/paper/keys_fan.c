@@ -14,8 +14,12 @@ static const struct sp_word places[] = {
 static const struct sp_key_column curve_columns[] = {{SP_K_VOLUME_FLOW, "0 m3/s to 100 m3/s"},
                                                      {SP_K_PRESSURE, "0 Pa to 100 kPa"}};
 
+static const struct sp_word healths[] = {
+    {"sound", SP_FAN_SOUND}, {"dead", SP_FAN_DEAD}, {"locked", SP_FAN_LOCKED}, {NULL, 0}};
+
 const struct sp_key sp_keys_fan[] = {
-    {FITTED_GROUP("car.duct.fan", duct[0].fan[0].fitted), OPTIONAL, SAYS("fan or fans; absent: none")},
+    {FITTED_GROUP("car.duct.fan", duct[0].fan[0].fitted), OPTIONAL,
+     LISTED("fans", sp_fan, SP_FANS, "side by side, unlike one another"), SAYS("fan or fans; absent: none")},
     {QUANTITY("car.duct.fan.count", NUMBER, duct[0].fan[0].count), DEFAULT("1"), RANGE("1 to 20"), .whole = true,
      SAYS("equal fans side by side"), DEFINITION},
     {TABLE("car.duct.fan.curve", curve_columns, duct[0].fan[0].curve.pairs), REQUIRED, .or_object = true,
@@ -37,8 +41,26 @@ const struct sp_key sp_keys_fan[] = {
     {QUANTITY("car.duct.fan.hub", LENGTH, duct[0].fan[0].hub), RULE(sp_rule_fan_hub, "0.35 of the diameter"),
      RANGE("0 m to 2.9 m"), SAYS("diameter of the hub"), PRACTICE},
     {QUANTITY("car.duct.fan.windmill_loss", NUMBER, duct[0].fan[0].windmill_loss), DEFAULT("1.2"),
-     RANGE("0 to 100"), SAYS("loss of the freely turning fan on the head in its annulus; locked 3"),
+     RANGE("0 to 100"), SAYS("loss of the freely turning fan on the head in its annulus"), PRACTICE},
+    {WORD("car.duct.fan.health", healths, ENUM, duct[0].fan[0].health), DEFAULT("sound"),
+     RANGE("sound, dead, locked"), SAYS("a dead fan only windmills, a locked one stands; neither draws current"),
+     DEFINITION},
+    {QUANTITY("car.duct.fan.locked_loss", NUMBER, duct[0].fan[0].locked_loss), DEFAULT("3"), RANGE("0 to 100"),
+     SAYS("loss of the locked fan on the head in its annulus; 2 to 5"), MEMORY},
+    {QUANTITY("car.duct.fan.span_from", NUMBER, duct[0].fan[0].span_from), DEFAULT("0"), RANGE("0 to 1"),
+     SAYS("the share of the duct's section under its shroud begins here"), DEFINITION},
+    {QUANTITY("car.duct.fan.span_to", NUMBER, duct[0].fan[0].span_to), DEFAULT("0"), RANGE("0 to 1"),
+     SAYS("and ends here; both 0: all of it. Fans of one duct with the same span share a shroud"), DEFINITION},
+    {QUANTITY("car.duct.fan.flap_area", AREA, duct[0].fan[0].flap_area), DEFAULT("0 m2"), RANGE("0 m2 to 10 m2"),
+     SAYS("one-way flaps in the shroud, which ram air opens past the fan"), DEFINITION},
+    {QUANTITY("car.duct.fan.flap_loss", NUMBER, duct[0].fan[0].flap_loss), DEFAULT("2"), RANGE("0.5 to 100"),
+     SAYS("loss of the open flaps on the head in them"), PRACTICE},
+    {QUANTITY("car.duct.fan.wiring_drop", VOLTAGE, duct[0].fan[0].wiring_drop), DEFAULT("0 V"), RANGE("0 V to 100 V"),
+     SAYS("lost between battery and plug at rated current (rated power over rated voltage), and with the current; "
+          "0.3 V to 0.5 V in a good loom, 1 V to 2 V in an old one"),
      PRACTICE},
+    {QUANTITY("car.duct.fan.current_limit", CURRENT, duct[0].fan[0].current_limit), DEFAULT("0 A"),
+     RANGE("0 A to 2000 A"), SAYS("what the fuse or winding of one fan bears; 0: not watched"), DEFINITION},
     {QUANTITY("car.duct.fan.rated_voltage", VOLTAGE, duct[0].fan[0].rated_voltage), DEFAULT("13 V"),
      RANGE("1 V to 1000 V"), SAYS("voltage for which the curve holds"), PRACTICE},
     {QUANTITY("car.duct.fan.power", POWER, duct[0].fan[0].power),

@@ -22,6 +22,11 @@
     .path = path_, .shape = SP_SHAPE_TABLE, .columns = list, .width = sizeof(list) / sizeof(*(list)),        \
     AT(field)
 
+/* A group that may be a list; COUNTED where its length is kept. */
+#define LISTED(name, element, limit, text)                                                                   \
+    .plural = name, .stride = sizeof(struct element), .most = limit, .listed = text
+#define COUNTED(field) .count_at = offsetof(struct sp_design, field)
+
 #define REQUIRED             .need = SP_NEED_ALWAYS
 #define FOR_DRIVE            .need = SP_NEED_DRIVE
 #define OPTIONAL             .need = SP_NEED_NOT

@@ -20,7 +20,15 @@ const struct sp_key sp_keys_tank[] = {
     {QUANTITY("car.tank.compliance", COMPLIANCE, tank.compliance), DEFAULT("0.03 l/bar"),
      RANGE("0.0001 l/bar to 5 l/bar"), SAYS("how the hoses give under pressure"), PRACTICE},
     {QUANTITY("car.tank.bleed", NUMBER, tank.bleed), DEFAULT("1.5 %"), RANGE("0 % to 50 %"),
-     SAYS("share of the pump's flow that goes through the tank"), PRACTICE},
+     SAYS("share of the pump's flow that goes through the tank, without bleed_bore"), PRACTICE},
+    {QUANTITY("car.tank.bleed_bore", LENGTH, tank.bleed_bore), DEFAULT("0 mm"), RANGE("0 mm to 50 mm"),
+     SAYS("bore of the restrictor in the line from engine out to the tank, 1.5 mm to 4 mm: the flow follows "
+          "from the pressures, and bleed does not count. 0: none"),
+     PRACTICE},
+    {QUANTITY("car.tank.lost", VOLUME, tank.lost), DEFAULT("0 l"), RANGE("0 l to 100 l"),
+     SAYS("coolant that is missing from the start, or from a change on"), DEFINITION},
+    {QUANTITY("car.tank.catch_can", VOLUME, tank.catch_can), DEFAULT("0 l"), RANGE("0 l to 200 l"),
+     SAYS("of the can that takes what the cap lets out, 0.9 l to 2 l; 0: not watched"), PRACTICE},
     {QUANTITY("car.tank.skin", CONDUCTANCE, tank.skin), DEFAULT("2 W/K"), RANGE("0 W/K to 500 W/K"),
      SAYS("heat from the tank to the air"), PRACTICE},
     END_OF_KEYS};

@@ -1,6 +1,5 @@
 /* Every input as understood: the user's own text, the value in SI, what a default rests on.
  * SPDX-License-Identifier: GPL-3.0-or-later */
-#include "base/text.h"
 #include "case.h"
 
 #include <math.h>
@@ -22,25 +21,6 @@ struct shower {
 };
 
 /* ---- pieces ---------------------------------------------------------------------------------------- */
-
-/* A text inside JSON quotes, or bare with '?' for what a terminal should not get. */
-static void put_text(FILE *to, const char *text, bool json)
-{
-    const char *end = text + strlen(text);
-    while (text < end) {
-        long code = 0;
-        size_t n = sp_text_code(text, end, &code);
-        bool odd = n == 0 || sp_text_unprintable(code);
-        if (!odd && json && (*text == '"' || *text == '\\')) fputc('\\', to);
-        if (!odd)
-            fwrite(text, 1, n, to);
-        else if (json && n)
-            fprintf(to, "\\u%04lx", (unsigned long)code & 0xffffUL);
-        else
-            fputc('?', to);
-        text += n ? n : 1;
-    }
-}
 
 /* The shortest digits that read back as the same double. */
 static void put_number(FILE *to, double x)
@@ -79,37 +59,6 @@ static void put_table(FILE *to, const struct sp_table *t)
         put_numbers(to, &t->cell[i * t->columns], t->columns);
     }
     fputc(']', to);
-}
-
-/* What the user wrote. `quoted`: within a JSON text. */
-static void put_written(FILE *to, const struct sp_json *node, bool json, bool inner)
-{
-    const char *quote = !inner ? "" : json ? "\\\"" : "\"";
-    if (node->type == SP_JSON_STRING) {
-        fputs(quote, to);
-        put_text(to, node->text, json);
-        fputs(quote, to);
-    } else if (node->type == SP_JSON_NUMBER) {
-        put_text(to, node->text, json);
-    } else if (node->type == SP_JSON_ARRAY) {
-        fputc('[', to);
-        for (const struct sp_json *c = node->child; c; c = c->next) {
-            put_written(to, c, json, true);
-            if (c->next) fputs(", ", to);
-        }
-        fputc(']', to);
-    } else if (node->type == SP_JSON_OBJECT) {
-        fputc('{', to);
-        for (const struct sp_json *c = node->child; c; c = c->next) {
-            put_text(to, c->key, json);
-            fputs(": ", to);
-            put_written(to, c, json, true);
-            if (c->next) fputs(", ", to);
-        }
-        fputc('}', to);
-    } else {
-        fputs(node->type == SP_JSON_TRUE ? "true" : node->type == SP_JSON_FALSE ? "false" : "null", to);
-    }
 }
 
 static bool is_number(const struct sp_key *row)
@@ -159,10 +108,10 @@ static const char *unit_of(const struct sp_key *row)
 static void put_basis(FILE *to, const struct entry *e, bool json)
 {
     if (!e->node) {
-        put_text(to, e->row->fallback ? e->row->basis : "worked out from other inputs", json);
+        sp_written_text(to, e->row->fallback ? e->row->basis : "worked out from other inputs", json);
         return;
     }
-    put_text(to, e->node->file ? e->node->file : "", json);
+    sp_written_text(to, e->node->file ? e->node->file : "", json);
     if (e->node->line) fprintf(to, " line %ld", e->node->line);
 }
 
@@ -172,9 +121,9 @@ static void put_json(struct shower *s, const struct entry *e)
     if (e->node || e->row->fallback) {
         fputc('"', s->to);
         if (e->node)
-            put_written(s->to, e->node, true, false);
+            sp_written_node(s->to, e->node, true, false);
         else
-            put_text(s->to, e->row->fallback, true);
+            sp_written_text(s->to, e->row->fallback, true);
         fputc('"', s->to);
     } else {
         fputs("null", s->to);
@@ -191,7 +140,7 @@ static void put_line(struct shower *s, const struct entry *e)
 {
     fprintf(s->to, "%-44s ", e->path);
     if (e->node)
-        put_written(s->to, e->node, false, false);
+        sp_written_node(s->to, e->node, false, false);
     else
         fputs(e->row->fallback ? e->row->fallback : "-", s->to);
     if (is_number(e->row)) {
@@ -225,13 +174,15 @@ static bool worth_showing(const struct entry *e)
 }
 
 /* Keys of parts that are not there. */
-static bool of_absent_part(const struct sp_design *d, const char *path)
+static bool of_absent_part(const struct sp_design *d, const char *path, const struct sp_key_spot *at)
 {
-    return (!d->duct[0].fan[0].fitted && !strncmp(path, "car.duct.fan.", 13)) ||
-           (d->duct[0].core[0].drop_law == SP_DROP_FINS && !strncmp(path, "car.duct.core.pressure_drop.", 28)) ||
-           ((d->duct[0].core[0].heat_law == SP_CORE_FINS || d->duct[0].core[0].heat_law == SP_CORE_NO_HEAT) &&
-            !strncmp(path, "car.duct.core.heat.", 19)) ||
-           (d->thermostat.none && !strncmp(path, "car.thermostat.", 15));
+    if (d->thermostat.none && !strncmp(path, "car.thermostat.", 15)) return true;
+    if (!strncmp(path, "car.duct.fan.", 13)) return !d->duct[at->outer].fan[at->inner].fitted;
+    if (strncmp(path, "car.duct.core.", 14)) return false;
+    const struct sp_core *c = &d->duct[at->outer].core[at->inner];
+    return (c->drop_law == SP_DROP_FINS && !strncmp(path + 14, "pressure_drop.", 14)) ||
+           ((c->heat_law == SP_CORE_FINS || c->heat_law == SP_CORE_NO_HEAT) &&
+            !strncmp(path + 14, "heat.", 5));
 }
 
 static bool of_other_step(const struct sp_step *step, const char *key)
@@ -249,37 +200,88 @@ static void show_steps(struct shower *s)
             if (!sp_key_of_step(row) || row->shape == SP_SHAPE_GROUP) continue;
             const char *key = row->path + strlen("drive[].");
             snprintf(path, sizeof path, "drive[%zu].%s", i, key);
-            struct entry e = {row, sp_case_node(s->reader->tree, path), path, sp_key_place(row, d, i)};
+            struct entry e = {row, sp_case_node(s->reader->tree, path), path,
+                              sp_key_place(row, d, &(struct sp_key_spot){i, 0})};
             if (worth_showing(&e) && (e.node || !of_other_step(&d->step[i], key))) put_entry(s, &e);
         }
     }
 }
 
-static void show_absent(struct shower *s, const struct sp_key *row, bool absent)
+static void show_absent(struct shower *s, const char *path, bool absent)
 {
     if (!absent) return;
     if (s->json)
         fprintf(s->to,
                 "%s\n  {\"path\": \"%s\", \"text\": \"none\", \"si\": null, \"unit\": \"\", \"basis\": \"\", "
                 "\"default\": %s}",
-                s->first ? "" : ",", row->path, sp_case_given(s->reader, row->path) ? "false" : "true");
+                s->first ? "" : ",", path, sp_case_given(s->reader, path) ? "false" : "true");
     else
-        fprintf(s->to, "%-44s none\n", row->path);
+        fprintf(s->to, "%-44s none\n", path);
     s->first = false;
+}
+
+/* A part that may be left out, for each duct. */
+static void show_part(struct shower *s, const struct sp_key *row, const struct sp_key_spot *at,
+                      const char *path)
+{
+    const struct sp_design *d = s->reader->design;
+    if (!strcmp(row->path, "car.duct.fan")) show_absent(s, path, !d->duct[at->outer].fan[at->inner].fitted);
+    if (!strcmp(row->path, "car.thermostat")) show_absent(s, path, d->thermostat.none);
+}
+
+static void show_element(struct shower *s, const struct sp_key *row, const struct sp_key_spot *at)
+{
+    struct sp_design *d = s->reader->design;
+    char path[SP_PATH_MAX];
+    sp_case_path(s->reader->tree, row->path, at, path, sizeof path);
+    if (row->shape == SP_SHAPE_GROUP) {
+        show_part(s, row, at, path);
+        return;
+    }
+    struct entry e = {row, sp_case_node(s->reader->tree, path), path, sp_key_place(row, d, at)};
+    if (worth_showing(&e) && !of_absent_part(d, row->path, at)) put_entry(s, &e);
+}
+
+/* One change as it comes to pass: its time, and what is set. */
+static void show_change(struct shower *s, const struct sp_turn *turn, const struct sp_change *change)
+{
+    char path[60];
+    snprintf(path, sizeof path, "changes[%zu]", turn->entry);
+    const char *before = s->json ? "\"," : " = ", *unit = s->json ? ", \"unit\": \"s\", \"basis\": \"" : " s  (";
+    if (s->json)
+        fprintf(s->to, "%s\n  {\"path\": \"%s\", \"text\": \"", s->first ? "" : ",", path);
+    else
+        fprintf(s->to, "%-44s ", path);
+    sp_written_text(s->to, change->text, s->json);
+    fprintf(s->to, "%s%s", before, s->json ? " \"si\": " : "");
+    put_number(s->to, change->at);
+    fputs(unit, s->to);
+    sp_written_text(s->to, turn->node->file ? turn->node->file : "", s->json);
+    if (turn->node->line) fprintf(s->to, " line %ld", turn->node->line);
+    fputs(s->json ? "\", \"default\": false}" : ")\n", s->to);
+    s->first = false;
+}
+
+static void show_row(struct shower *s, const struct sp_key *row)
+{
+    struct sp_key_spot at = {0};
+    do
+        show_element(s, row, &at);
+    while (sp_case_next(s->reader->tree, row->path, &at));
 }
 
 static void show_all(struct shower *s)
 {
-    struct sp_design *d = s->reader->design;
+    const struct sp_design *d = s->reader->design;
     const struct sp_key *row;
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
-        if (row->shape == SP_SHAPE_STEPS) show_steps(s);
-        if (!strcmp(row->path, "car.duct.fan")) show_absent(s, row, !d->duct[0].fan[0].fitted);
-        if (!strcmp(row->path, "car.thermostat")) show_absent(s, row, d->thermostat.none);
-        if (sp_key_of_step(row) || row->shape == SP_SHAPE_GROUP || row->shape == SP_SHAPE_STEPS) continue;
-        struct entry e = {row, sp_case_node(s->reader->tree, row->path), row->path, sp_key_place(row, d, 0)};
-        if (worth_showing(&e) && !of_absent_part(d, row->path)) put_entry(s, &e);
+        if (row->shape == SP_SHAPE_STEPS)
+            show_steps(s);
+        else if (!sp_key_of_step(row) && !sp_key_of_change(row) && row->shape != SP_SHAPE_CHANGES)
+            show_row(s, row);
     }
+    for (size_t i = 0; i < d->changes; ++i)
+        show_change(s, &s->reader->turn[i], &d->change[i]);
 }
 
 void sp_case_show_all(struct sp_reader *r, FILE *to, bool json)

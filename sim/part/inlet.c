@@ -34,6 +34,42 @@ double sp_layer_recovery(double height, double thickness)
     return 1.0 - 0.175 * thickness / (height - 0.125 * thickness);
 }
 
+/* Straight lines; level beyond the last pair, and below the first unless the table rises from there. */
+static double of_table(const struct sp_table *t, double x)
+{
+    size_t i = 0, last = t->rows - 1;
+    const double *c = t->cell;
+    if (last == 0 || x >= c[2 * last]) return c[2 * last + 1];
+    if (x <= c[0] && c[3] <= c[1]) return c[1];
+    while (x > c[2 * i + 2])
+        ++i;
+    return c[2 * i + 1] + (c[2 * i + 3] - c[2 * i + 1]) * (x - c[2 * i]) / (c[2 * i + 2] - c[2 * i]);
+}
+
+double sp_inlet_recovery(const struct sp_inlet *d, double capture_ratio)
+{
+    double eta = d->recovery;
+    if (d->recovery_table.rows) eta = of_table(&d->recovery_table, fmax(capture_ratio, 0.0));
+    if (d->layer_thickness > 0.0 && eta > 0.0) eta *= sp_layer_recovery(d->height, d->layer_thickness);
+    return eta;
+}
+
+bool sp_inlet_recovery_single(const struct sp_table *t)
+{
+    double before = INFINITY;
+    for (size_t i = 1; i < t->rows; ++i) {
+        double slope = (t->cell[2 * i + 1] - t->cell[2 * i - 1]) / (t->cell[2 * i] - t->cell[2 * i - 2]);
+        if (slope > 0.0 && slope > before * (1.0 + 1e-9)) return false;
+        before = slope;
+    }
+    return true;
+}
+
+double sp_inlet_area(const struct sp_inlet *d)
+{
+    return d->area * (1.0 - d->blocked);
+}
+
 double sp_layer_thickness(double x, double velocity, double kinematic_viscosity)
 {
     if (!(x >= 0.0 && velocity > 0.0 && kinematic_viscosity > 0.0)) return NAN;

@@ -3,6 +3,8 @@
 
 #include <math.h>
 
+static const double map_blend = 0.1; /* of its power over which a mapped thermostat goes over; choice */
+
 double sp_thermostat_effective(const struct sp_thermostat *t, enum sp_play play, double wax, double held)
 {
     if (!(t->hysteresis > 0.0)) return wax;
@@ -15,8 +17,15 @@ double sp_thermostat_effective(const struct sp_thermostat *t, enum sp_play play,
 
 double sp_thermostat_lift(const struct sp_thermostat *t, double effective)
 {
-    if (t->none) return 1.0;
+    if (t->none || t->restrictor > 0.0) return 1.0;
     return fmin(fmax((effective - t->opens) / (t->full - t->opens), 0.0), 1.0);
+}
+
+double sp_thermostat_mapped(const struct sp_thermostat *t, double power)
+{
+    if (!(t->mapped_power > 0.0)) return 0.0;
+    double x = fmin(fmax((power / t->mapped_power - 1.0) / map_blend, 0.0), 1.0);
+    return t->mapped_shift * x * x * (3.0 - 2.0 * x);
 }
 
 double sp_thermostat_rate(const struct sp_thermostat *t, double flow, double full_flow)

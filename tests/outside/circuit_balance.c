@@ -40,8 +40,9 @@ static void prepare(struct rig *r)
 static void rates(struct rig *r, struct sp_coupling *k, double *dydt)
 {
     struct sp_signals s;
-    struct sp_guesses guesses = {{0.0, 0.0}, {0.0, 0.0}};
-    sp_circuit_signals(&r->c, r->y, &s);
+    struct sp_guesses guesses;
+    memset(&guesses, 0, sizeof guesses);
+    sp_circuit_signals(&r->c, &r->in, r->y, &s);
     assert_int_equal(sp_circuit_couple(&r->c, &r->in, &r->modes, &s, &guesses, k), SP_OK);
     sp_circuit_rates(&r->c, &r->in, &r->modes, r->y, k, dydt);
 }
@@ -79,9 +80,9 @@ static void cold_film_is_weaker(void **state)
     double want = 0.380 / 0.414 * pow(re_ratio, 0.8) * pow(pr_ratio, 0.4);
     check_close(want, 0.4912, 0, 6e-5);
     const struct sp_coolant *f = &r.d.coolant.fluid;
-    double warm = sp_core_coolant_conductance(&r.c.duct->core, f, 2.0, 363.15);
-    check_close(sp_core_coolant_conductance(&r.c.duct->core, f, 2.0, 293.15) / warm, want, 6e-3, 0);
-    check_close(sp_core_coolant_conductance(&r.c.duct->core, f, 4.0, 363.15) / warm, pow(2.0, 0.8), 1e-6, 0);
+    double warm = sp_core_coolant_conductance(&r.c.duct[0]->core[0], f, 2.0, 363.15);
+    check_close(sp_core_coolant_conductance(&r.c.duct[0]->core[0], f, 2.0, 293.15) / warm, want, 6e-3, 0);
+    check_close(sp_core_coolant_conductance(&r.c.duct[0]->core[0], f, 4.0, 363.15) / warm, pow(2.0, 0.8), 1e-6, 0);
     sp_circuit_free(&r.c);
 }
 
@@ -93,7 +94,7 @@ static void cold_coolant_is_harder_to_pump(void **state)
     take(&r);
     r.d.duct[0].core[0].drop = (struct sp_resistance){1e-3, 15e3};
     prepare(&r);
-    const struct sp_core_ready *core = &r.c.duct->core;
+    const struct sp_core_ready *core = &r.c.duct[0]->core[0];
     const struct sp_coolant *f = &r.d.coolant.fluid;
     double warm = sp_core_coolant_drop(core, f, 1e-3, 363.15);
     double want = pow(1073.35 / 1030.95, 0.75) * pow(3.94 / 0.82, 0.25);
@@ -163,18 +164,18 @@ static void core_cells_along_an_even_wall(void **state)
             r.y[l->wall + i] = wall;
         rates(&r, &k,
               dydt); /* for the flow and the conductance, which the frozen coolant leaves as they are */
-        double rate = k.mass_radiator * 3551.0, number = k.core_conductance / rate;
+        double rate = k.mass_radiator * 3551.0, number = k.core[0].conductance / rate;
         for (int i = 0; i < n; ++i)
             r.y[l->core + i] = wall + (inlet - wall) * exp(-number * (i + 1) / n);
         rates(&r, &k, dydt);
-        check_close(k.core_conductance / (k.mass_radiator * 3551.0), number, 1e-9, 0);
+        check_close(k.core[0].conductance / (k.mass_radiator * 3551.0), number, 1e-9, 0);
         assert_true(number > 0.1);
         double into_wall = 0.0;
         for (int i = 0; i < n; ++i) {
-            check_close(dydt[l->core + i] * r.c.mass_core / n * 3551.0, 0.0, 0, 1e-8 * rate * (inlet - wall));
+            check_close(dydt[l->core + i] * r.c.exchanger[0].mass / n * 3551.0, 0.0, 0, 1e-8 * rate * (inlet - wall));
             into_wall += dydt[l->wall + i] * r.d.duct[0].core[0].metal_capacity / n;
         }
-        check_close(into_wall + k.duct.heat, rate * (inlet - r.y[l->core + n - 1]), 1e-8, 0);
+        check_close(into_wall + k.duct[0].heat, rate * (inlet - r.y[l->core + n - 1]), 1e-8, 0);
         sp_circuit_free(&r.c);
     }
 }

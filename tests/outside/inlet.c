@@ -101,12 +101,82 @@ static void edges(void **state)
     assert_true(isnan(sp_spill_drag(600, 0.1, NAN, 0)));
 }
 
+/* Layer: what a slot of h/d = 0.25 to 8 is left with, times the recovery ahead of it. */
+static void recovery_in_a_layer(void **state)
+{
+    (void)state;
+    static const struct { double ratio, eta; } rows[] = {{0.25, 0.538360}, {0.5, 0.656268}, {1, 0.800000},
+                                                         {2, 0.906667},    {4, 0.954839},   {8, 0.977778}};
+    struct sp_inlet d = {.recovery = 0.9, .layer_thickness = 0.02};
+    for (size_t i = 0; i < sizeof rows / sizeof *rows; ++i) {
+        d.height = rows[i].ratio * 0.02;
+        check_close(sp_inlet_recovery(&d, 0.6), 0.9 * rows[i].eta, 1e-6, 0);
+    }
+    d.recovery = -0.2; /* no head is left to lose in a separated place */
+    assert_true(sp_inlet_recovery(&d, 0.6) == -0.2);
+    d = (struct sp_inlet){.recovery = 0.87};
+    assert_true(sp_inlet_recovery(&d, INFINITY) == 0.87);
+}
+
+/* A submerged inlet's table: straight lines, the first carried to standstill where it rises, level at the end. */
+static void recovery_of_a_table(void **state)
+{
+    (void)state;
+    double cell[] = {0.2, 0.55, 0.4, 0.85, 0.7, 0.90, 1.0, 0.80}, falling[] = {0.2, 0.9, 0.6, 0.7};
+    struct sp_inlet d = {.recovery = 1.0, .recovery_table = {4, 2, cell}};
+    static const struct { double mu, eta; } rows[] = {{0.0, 0.25},   {0.1, 0.40}, {0.2, 0.55}, {0.3, 0.70}, {0.4, 0.85},
+                                                      {0.55, 0.875}, {0.7, 0.90}, {0.9, 5.0 / 6.0}, {1.0, 0.80},
+                                                      {3.0, 0.80},   {INFINITY, 0.80}, {-2.0, 0.25}};
+    for (size_t i = 0; i < sizeof rows / sizeof *rows; ++i)
+        check_close(sp_inlet_recovery(&d, rows[i].mu), rows[i].eta, 1e-14, 0);
+    assert_true(sp_inlet_recovery_single(&d.recovery_table));
+    d.recovery_table = (struct sp_table){2, 2, falling};
+    assert_true(sp_inlet_recovery(&d, 0.0) == 0.9 && sp_inlet_recovery_single(&d.recovery_table));
+    d.recovery_table.rows = 1;
+    assert_true(sp_inlet_recovery(&d, 0.0) == 0.9 && sp_inlet_recovery(&d, 9.0) == 0.9);
+    double bent[] = {0.0, 0.1, 0.4, 0.2, 0.6, 0.9}, again[] = {0.0, 0.5, 0.4, 0.3, 0.6, 0.9};
+    assert_false(sp_inlet_recovery_single(&(struct sp_table){3, 2, bent}));
+    assert_false(sp_inlet_recovery_single(&(struct sp_table){3, 2, again}));
+}
+
+/* Those tables leave eta - Cp - B mu^2 one root from standstill on, and the refused ones need not. */
+static void one_flow(void **state)
+{
+    (void)state;
+    double cell[] = {0.0, 0.25, 0.4, 0.85, 0.7, 0.90, 1.0, 0.80}, bent[] = {0.0, 0.1, 0.4, 0.2, 0.6, 0.9, 2.0, 0.9};
+    struct sp_inlet d = {.recovery_table = {4, 2, cell}}, e = {.recovery_table = {4, 2, bent}};
+    int most = 0;
+    for (double B = 0.01; B < 100.0; B *= 1.1)
+        for (double Cp = -0.5; Cp < 0.2; Cp += 0.05) {
+            int roots = 0, bad = 0;
+            for (double mu = 0.001; mu < 12.0; mu += 0.001) {
+                double f = sp_inlet_recovery(&d, mu) - Cp - B * mu * mu, g = sp_inlet_recovery(&e, mu) - Cp - B * mu * mu;
+                double up = mu + 0.001;
+                roots += (f > 0.0) != (sp_inlet_recovery(&d, up) - Cp - B * up * up > 0.0);
+                bad += (g > 0.0) != (sp_inlet_recovery(&e, up) - Cp - B * up * up > 0.0);
+            }
+            assert_true(roots <= 1);
+            if (bad > most) most = bad;
+        }
+    assert_int_equal(most, 3);
+}
+
+static void taped(void **state)
+{
+    (void)state;
+    struct sp_inlet d = {.area = 0.08, .blocked = 0.25};
+    check_close(sp_inlet_area(&d), 0.06, 1e-15, 0);
+    d.blocked = 0.0;
+    assert_true(sp_inlet_area(&d) == 0.08);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(sharp_lip),       cmocka_unit_test(sharp_lip_compressible),
         cmocka_unit_test(lip_coefficient), cmocka_unit_test(boundary_layer),
-        cmocka_unit_test(spillage),        cmocka_unit_test(edges),
+        cmocka_unit_test(spillage),        cmocka_unit_test(edges), cmocka_unit_test(recovery_in_a_layer),
+        cmocka_unit_test(recovery_of_a_table), cmocka_unit_test(one_flow), cmocka_unit_test(taped),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

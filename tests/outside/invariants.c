@@ -534,7 +534,7 @@ static void hotter_core(const struct drawn *x, const struct sp_duct *d, const st
 /* The answer must not depend on where the search began, here: at the answer of quite another condition. */
 static void same_from_elsewhere(const struct drawn *x, const struct sp_duct *d,
                                 const struct sp_duct_inputs *in, const struct sp_duct_state *s,
-                                struct sp_guess *guess)
+                                struct sp_duct_guess *guess)
 {
     struct sp_duct_state again;
     if (several(x, in, s)) return;
@@ -555,7 +555,8 @@ static void random_ducts(void **state)
         assert_non_null(g);
         gsl_rng_set(g, 7 * x.seed + 3);
         struct sp_duct *d = build(&x);
-        struct sp_guess guess = {0.0, 0.0};
+        struct sp_duct_guess guess;
+        memset(&guess, 0, sizeof guess);
         for (int k = 0; k < CONDITIONS; ++k) {
             struct sp_duct_inputs in = condition(g);
             struct sp_duct_state s;

@@ -15,72 +15,107 @@ static double any(void)
     return 2.0 * gsl_rng_uniform(dice) - 1.0;
 }
 
-/* Position of a state in the band, or -1: hose out, coolant and wall by turns, hose back. */
-static int band_place(const struct sp_layout *l, int state)
+/* What a state is in the structure, as the head of arrow.h says it: a place in the band, border or follower. */
+enum { BORDER = -1, PASSIVE = -2 };
+
+static void kinds(const struct sp_layout *l, int *place)
 {
-    if (state >= l->wall) return SP_HOSE_CELLS + 2 * (state - l->wall) + 1;
-    if (state >= l->back) return SP_HOSE_CELLS + 2 * l->cells + state - l->back;
-    if (state >= l->core) return SP_HOSE_CELLS + 2 * (state - l->core);
-    return state >= l->out ? state - l->out : -1;
+    int p = 0;
+    for (int i = 0; i < l->count; ++i)
+        place[i] = (i > SP_Y_FAN && i < SP_Y_CHAIN) || i == l->battery ? PASSIVE : BORDER;
+    for (int i = 0; l->chained && i < SP_HOSE_CELLS; ++i) place[l->out + i] = p++;
+    for (int e = 0; e <= l->exchangers; ++e) {
+        if (l->chained && e == l->chained)
+            for (int i = 0; i < SP_HOSE_CELLS; ++i) place[l->back + i] = p++;
+        for (int i = 0; e < l->exchangers && i < l->exchanger[e].cells; ++i) {
+            place[l->exchanger[e].fluid + i] = p++;
+            place[l->exchanger[e].wall + i] = p++;
+        }
+    }
 }
 
-/* Which entries a circuit may have: what the head of arrow.h says of it. */
-static bool allowed(const struct sp_layout *l, int row, int column)
+/* Which entries a circuit may have. */
+static bool allowed(const int *place, int row, int column)
 {
-    int p = band_place(l, row), q = band_place(l, column);
-    bool passive_column =
-        column > SP_Y_FAN && column<SP_Y_CHAIN, passive_row = row> SP_Y_FAN && row < SP_Y_CHAIN;
-    if (passive_column) {
+    int p = place[row], q = place[column];
+    if (q == PASSIVE) {
         bool tank = (row == SP_Y_AIR || row == SP_Y_LOST) && (column == SP_Y_AIR || column == SP_Y_LOST);
-        return passive_row && (row == column || tank);
+        return p == PASSIVE && (row == column || tank);
     }
     if (p >= 0 && q >= 0) return q >= p - 3 && q <= p + 1;
     return true;
 }
 
-/* A matrix with the columns, the effects of the two means, and the dense one of both together. */
+/* A matrix with the columns, the effects of the means, and the dense one of all together. */
 struct random {
     struct sp_layout l;
-    int n;
-    double *block, **jac, *wall, *core;
+    int n, place[SP_Y_MOST];
+    double *block, **jac, **mean;
     gsl_matrix *dense;
 };
 
-static struct random draw(int cells, double size)
+/* Effect of the mean that state j has a part in, on state i. */
+static double through_mean(const struct random *r, int i, int j)
 {
-    struct random r = {.l = sp_layout_of(cells)};
-    r.n = r.l.count;
-    r.block = calloc((size_t)(r.n * (r.n + 2)), sizeof *r.block);
+    for (int e = 0; e < r->l.exchangers; ++e) {
+        const struct sp_cells_at *at = &r->l.exchanger[e];
+        if (j >= at->wall && j < at->wall + at->cells) return r->mean[2 * e][i] / at->cells;
+        if (j >= at->fluid && j < at->fluid + at->cells) return r->mean[2 * e + 1][i] / at->cells;
+    }
+    return 0.0;
+}
+
+static struct random draw(struct sp_layout l, double size)
+{
+    struct random r = {.l = l, .n = l.count};
+    int means = 2 * l.exchangers;
+    r.block = calloc((size_t)(r.n * (r.n + means)), sizeof *r.block);
     r.jac = calloc((size_t)r.n, sizeof *r.jac);
+    r.mean = calloc((size_t)means, sizeof *r.mean);
     r.dense = gsl_matrix_calloc((size_t)r.n, (size_t)r.n);
-    assert_true(r.block && r.jac && r.dense);
-    r.wall = r.block + r.n * r.n;
-    r.core = r.wall + r.n;
+    assert_true(r.block && r.jac && r.mean && r.dense);
+    kinds(&l, r.place);
     for (int j = 0; j < r.n; ++j) {
         r.jac[j] = r.block + j * r.n;
         for (int i = 0; i < r.n; ++i)
-            r.jac[j][i] = allowed(&r.l, i, j) ? size * any() : 0.0;
+            r.jac[j][i] = allowed(r.place, i, j) ? size * any() : 0.0;
         r.jac[j][j] -= 4.0 * size; /* every cell of a circuit decays */
     }
-    for (int i = 0; i < r.n; ++i) {
-        r.wall[i] = size * any();
-        r.core[i] = size * any();
+    for (int m = 0; m < means; ++m) {
+        r.mean[m] = r.block + (r.n + m) * r.n;
+        for (int i = 0; i < r.n; ++i)
+            r.mean[m][i] = size * any();
     }
     for (int i = 0; i < r.n; ++i)
-        for (int j = 0; j < r.n; ++j) {
-            double v = r.jac[j][i];
-            if (j >= r.l.wall) v += r.wall[i] / cells;
-            if (j >= r.l.core && j < r.l.back) v += r.core[i] / cells;
-            gsl_matrix_set(r.dense, (size_t)i, (size_t)j, v);
-        }
+        for (int j = 0; j < r.n; ++j)
+            gsl_matrix_set(r.dense, (size_t)i, (size_t)j, r.jac[j][i] + through_mean(&r, i, j));
     return r;
 }
 
 static void drop(struct random *r)
 {
     gsl_matrix_free(r->dense);
+    free(r->mean);
     free(r->jac);
     free(r->block);
+}
+
+/* Cars plain and fitted out. */
+enum { LAYOUTS = 9 };
+static struct sp_layout layout(int i)
+{
+    const struct sp_layout_wish wish[LAYOUTS] = {
+        {.exchangers = 1, .cells = {1}, .chained = 1},
+        {.exchangers = 1, .cells = {2}, .chained = 1},
+        {.exchangers = 1, .cells = {3}, .chained = 1},
+        {.exchangers = 1, .cells = {10}, .chained = 1},
+        {.exchangers = 1, .cells = {50}, .chained = 1},
+        {.exchangers = 2, .cells = {3, 4}, .chained = 2, .fans = 3},                     /* one after the other */
+        {.exchangers = 2, .cells = {2, 5}, .chained = 0, .fans = 2, .battery = true},    /* side by side */
+        {.exchangers = 3, .cells = {4, 3, 1}, .chained = 1, .oil = true, .gearbox = true}, /* with coolers for oil */
+        {.exchangers = 5, .cells = {2, 3, 1, 4, 2}, .chained = 0, .fans = 6, .oil = true, .battery = true},
+    };
+    return sp_layout_make(&wish[i]);
 }
 
 /* x of (I + scale dense) x = b by GSL. */
@@ -105,16 +140,15 @@ static void dense_solve(const struct random *r, double scale, const double *b, d
 static void against_dense(void **state)
 {
     (void)state;
-    const int cells[] = {1, 2, 3, 10, 50};
     const double gamma[] = {1e-6, 0.01, 0.3, 10.0, 1e3};
-    for (int c = 0; c < 5; ++c)
+    for (int c = 0; c < LAYOUTS; ++c)
         for (int g = 0; g < 5; ++g) {
-            struct random r = draw(cells[c], 1.0);
+            struct random r = draw(layout(c), 1.0);
             struct sp_arrow a;
             struct sp_arrow_factor *f = malloc(sizeof *f);
             assert_non_null(f);
             assert_true(sp_arrow_open(r.l, &a));
-            sp_arrow_fill(&a, r.jac, r.wall, r.core);
+            sp_arrow_fill(&a, r.jac, r.mean);
             sp_arrow_scale_add(&a, -gamma[g]);
             assert_true(sp_arrow_factor(&a, f));
             double b[SP_Y_MOST], x[SP_Y_MOST], want[SP_Y_MOST], norm = 0.0;
@@ -138,10 +172,9 @@ static void against_dense(void **state)
 }
 
 /* Every allowed entry matters, and reaches the solution as the dense matrix has it: one entry at a time. */
-static void entry_by_entry(void **state)
+static void entries_of(struct sp_layout l)
 {
-    (void)state;
-    struct random r = draw(2, 0.2);
+    struct random r = draw(l, 0.2 / l.exchangers);
     struct sp_arrow a;
     struct sp_arrow_factor *f = malloc(sizeof *f);
     assert_non_null(f);
@@ -151,11 +184,11 @@ static void entry_by_entry(void **state)
         b[i] = 1.0 + i;
     for (int i = 0; i < r.n; ++i)
         for (int j = 0; j < r.n; ++j) {
-            if (!allowed(&r.l, i, j)) continue;
+            if (!allowed(r.place, i, j)) continue;
             r.jac[j][i] += 0.5;
             gsl_matrix_set(r.dense, (size_t)i, (size_t)j,
                            gsl_matrix_get(r.dense, (size_t)i, (size_t)j) + 0.5);
-            sp_arrow_fill(&a, r.jac, r.wall, r.core);
+            sp_arrow_fill(&a, r.jac, r.mean);
             sp_arrow_scale_add(&a, -0.3);
             assert_true(sp_arrow_factor(&a, f));
             dense_solve(&r, -0.3, b, want);
@@ -166,6 +199,15 @@ static void entry_by_entry(void **state)
     sp_arrow_close(&a);
     free(f);
     drop(&r);
+}
+
+static void entry_by_entry(void **state)
+{
+    (void)state;
+    entries_of(layout(1));
+    entries_of(layout(5));
+    entries_of(layout(6));
+    entries_of(layout(7));
 }
 
 static void scale_and_identity(void **state)

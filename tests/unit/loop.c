@@ -17,9 +17,10 @@ static void prepare(struct rig *r)
 
 static struct sp_loop_state solve(const struct rig *r, double speed, double lift, double hot, double cool)
 {
-    struct sp_guess guess = {0.0, 0.0};
+    struct sp_loop_guess guess = {.flow = {0.0, 0.0}};
+    struct sp_loop_inputs in = {.speed = speed, .lift = lift, .hot = hot, .cool = {cool}};
     struct sp_loop_state s;
-    assert_int_equal(sp_loop_solve(&r->c.loop, speed, lift, hot, cool, &guess, &s), SP_OK);
+    assert_int_equal(sp_loop_solve(&r->c.loop, &in, &guess, &s), SP_OK);
     return s;
 }
 
@@ -33,6 +34,7 @@ static void flows_and_pressures_close(void **state)
             for (double hot = 240.0; hot < 400.0; hot += 30.0) {
                 struct sp_loop_state s = solve(&r, speed, lift, hot, hot - 8.0);
                 check_close(s.radiator + s.bypass + s.bleed, s.pump, 1e-12, 0);
+                assert_true(s.string[0] == s.radiator && s.heater == 0.0 && s.head_factor == 1.0);
                 check_close(s.bleed, r.d.tank.bleed * s.pump, 1e-12, 0);
                 assert_true(s.radiator > 0.0 && s.bypass >= 0.0 && s.rise > 0.0 && s.jacket_drop > 0.0);
                 check_close(s.rise, sp_curve_at(&r.c.loop.pump, speed, s.pump), 1e-12, 0);
@@ -107,14 +109,15 @@ static void whatever_the_guess(void **state)
     struct rig r = {.d = *fixture.base};
     r.d.thermostat.leak = 0.0;
     prepare(&r);
-    struct sp_guess kept = {0.0, 0.0};
+    struct sp_loop_guess kept = {.flow = {0.0, 0.0}};
     unsigned long dice = 12345;
     for (int i = 0; i < 20000; ++i) {
         dice = dice * 1103515245UL + 12345UL;
         double lift = (dice >> 16) % 3 ? pow(10.0, -9.0 * (double)((dice >> 18) % 1000) / 1000.0) : 0.0;
         double speed = 0.02 + (double)((dice >> 20) % 100) / 100.0;
         struct sp_loop_state a, b = solve(&r, speed, lift, 363.0, 350.0);
-        assert_int_equal(sp_loop_solve(&r.c.loop, speed, lift, 363.0, 350.0, &kept, &a), SP_OK);
+        struct sp_loop_inputs in = {.speed = speed, .lift = lift, .hot = 363.0, .cool = {350.0}};
+        assert_int_equal(sp_loop_solve(&r.c.loop, &in, &kept, &a), SP_OK);
         check_close(a.radiator, b.radiator, 1e-7, 1e-15);
         check_close(a.pump, b.pump, 1e-7, 0);
     }
@@ -141,15 +144,65 @@ static void pump_speed(void **state)
     d.pump.electric = false;
     d.pump.ratio = 1.2;
     d.pump.speed = 100.0;
-    check_close(sp_pump_speed(&d, 50.0, true, true), 0.6, 1e-15, 0);
-    assert_true(sp_pump_speed(&d, 50.0, false, true) == 0.0);
+    struct sp_pump_wish w = {.engine_speed = 50.0, .engine_on = true, .allowed = true, .volts = 14.0};
+    check_close(sp_pump_speed(&d, &w), 0.6, 1e-15, 0);
+    w.engine_on = false;
+    assert_true(sp_pump_speed(&d, &w) == 0.0);
     d.pump.electric = true;
     d.pump.rated_voltage = 13.0;
-    d.electrics.voltage_running = 14.0;
-    d.electrics.voltage_stopped = 12.0;
-    check_close(sp_pump_speed(&d, 50.0, true, true), pow(14.0 / 13.0, 0.9), 1e-12, 0);
-    check_close(sp_pump_speed(&d, 0.0, false, true), pow(12.0 / 13.0, 0.9), 1e-12, 0);
-    assert_true(sp_pump_speed(&d, 50.0, true, false) == 0.0);
+    check_close(sp_pump_speed(&d, &w), pow(14.0 / 13.0, 0.9), 1e-12, 0);
+    w.volts = 12.0;
+    check_close(sp_pump_speed(&d, &w), pow(12.0 / 13.0, 0.9), 1e-12, 0);
+    w.allowed = false;
+    assert_true(sp_pump_speed(&d, &w) == 0.0);
+    w.allowed = w.engine_on = true;
+    d.pump.failed = true;
+    assert_true(sp_pump_speed(&d, &w) == 0.0);
+    d.pump.electric = false;
+    assert_true(sp_pump_speed(&d, &w) == 0.0);
+}
+
+/* Each controller at its corners and half way, at rated voltage; and no step on the way. */
+static void controllers(void **state)
+{
+    (void)state;
+    struct sp_design d = *fixture.base;
+    struct sp_pump *p = &d.pump;
+    p->electric = true;
+    p->rated_voltage = 13.0;
+    p->least = 0.2;
+    struct sp_pump_wish w = {.engine_on = true, .allowed = true, .volts = 13.0, .coolant = 300.0};
+    p->law = SP_PUMP_OVER_TEMPERATURE;
+    p->from = 350.0;
+    p->to = 370.0;
+    check_close(sp_pump_speed(&d, &w), 0.2, 1e-15, 0);
+    w.coolant = 360.0;
+    check_close(sp_pump_speed(&d, &w), 0.6, 1e-15, 0);
+    w.coolant = 400.0;
+    check_close(sp_pump_speed(&d, &w), 1.0, 1e-15, 0);
+    w.volts = 6.5; /* the controller has what the voltage leaves */
+    check_close(sp_pump_speed(&d, &w), pow(0.5, 0.9), 1e-15, 0);
+    w.volts = 13.0;
+    p->law = SP_PUMP_OVER_SPEED;
+    p->full_at = 80.0;
+    const double turns[] = {0.0, 10.0, 40.0, 80.0, 150.0}, share[] = {0.2, 0.2, 0.5, 1.0, 1.0};
+    for (int i = 0; i < 5; ++i) {
+        w.engine_speed = turns[i];
+        check_close(sp_pump_speed(&d, &w), share[i], 1e-15, 0);
+    }
+    p->law = SP_PUMP_PULSING;
+    p->target = 358.0;
+    double before = 0.0;
+    for (w.coolant = 300.0; w.coolant < 370.0; w.coolant += 0.01) {
+        w.pulse_off = false;
+        assert_true(sp_pump_speed(&d, &w) == 1.0);
+        w.pulse_off = true;
+        double rest = sp_pump_speed(&d, &w);
+        assert_true(w.coolant > 357.0 || rest == 0.0);
+        assert_true(w.coolant < 358.001 || rest == 1.0);
+        check_within(rest - before, 0.0, 0.0101);
+        before = rest;
+    }
 }
 
 static int begin(void **state)
@@ -176,6 +229,7 @@ int main(void)
         cmocka_unit_test(whatever_the_guess),
         cmocka_unit_test(standing_pump),
         cmocka_unit_test(pump_speed),
+        cmocka_unit_test(controllers),
     };
     return cmocka_run_group_tests(tests, begin, end);
 }

@@ -16,6 +16,30 @@ static void lift(void **state)
     struct sp_thermostat none = wax;
     none.none = true;
     assert_true(sp_thermostat_lift(&none, 250.0) == 1.0);
+    struct sp_thermostat plate = wax;
+    plate.restrictor = 0.018;
+    assert_true(sp_thermostat_lift(&plate, 250.0) == 1.0);
+}
+
+/* Nothing up to its power, all of it from a tenth above, half in the middle; no kink at either end. */
+static void mapped(void **state)
+{
+    (void)state;
+    assert_true(sp_thermostat_mapped(&wax, 1e6) == 0.0);
+    struct sp_thermostat m = wax;
+    m.mapped_shift = 18.0;
+    m.mapped_power = 60e3;
+    assert_true(sp_thermostat_mapped(&m, -20e3) == 0.0 && sp_thermostat_mapped(&m, 60e3) == 0.0);
+    assert_true(sp_thermostat_mapped(&m, 66.1e3) == 18.0 && sp_thermostat_mapped(&m, 1e9) == 18.0);
+    check_close(sp_thermostat_mapped(&m, 63e3), 9.0, 1e-12, 0);
+    double before = 0.0, slope = 0.0;
+    for (double power = 59e3; power < 67e3; power += 10.0) {
+        double now = sp_thermostat_mapped(&m, power), rise = now - before;
+        check_within(rise - slope, -1e-3, 1e-3);
+        before = now;
+        slope = rise;
+    }
+    check_close(sp_thermostat_lift(&m, 349.0 + sp_thermostat_mapped(&m, 63e3)), 0.25, 1e-12, 0);
 }
 
 static void play(void **state)
@@ -51,6 +75,7 @@ static void lag(void **state)
 
 int main(void)
 {
-    const struct CMUnitTest tests[] = {cmocka_unit_test(lift), cmocka_unit_test(play), cmocka_unit_test(lag)};
+    const struct CMUnitTest tests[] = {cmocka_unit_test(lift), cmocka_unit_test(mapped), cmocka_unit_test(play),
+                                       cmocka_unit_test(lag)};
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

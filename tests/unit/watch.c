@@ -31,9 +31,10 @@ static void prepare(struct rig *r)
 static const double *look(struct rig *r)
 {
     struct sp_signals s;
-    struct sp_guesses guesses = {{0.0, 0.0}, {0.0, 0.0}};
+    struct sp_guesses guesses;
+    memset(&guesses, 0, sizeof guesses);
     struct sp_coupling k;
-    sp_circuit_signals(&r->c, r->y, &s);
+    sp_circuit_signals(&r->c, &r->in, r->y, &s);
     assert_int_equal(sp_circuit_couple(&r->c, &r->in, &r->modes, &s, &guesses, &k), SP_OK);
     sp_watch(&r->c, &r->in, &r->modes, r->y, &k, &r->seen);
     for (int i = 0; i < SP_WATCHES; ++i)
@@ -52,7 +53,7 @@ static void fan_switch(void **state)
     prepare(&r);
     r.y[SP_Y_JACKET] = 368.0;
     check_close(look(&r)[SP_W_FAN], -1.0, 1e-12, 0);
-    r.modes.fan_on = true; /* now it waits for `off` */
+    r.modes.fan_on[0] = true; /* now it waits for `off` */
     check_close(look(&r)[SP_W_FAN], 4.0, 1e-12, 0);
     f->sensor = SP_AT_RADIATOR_OUT;
     r.y[r.c.layout.core + r.c.layout.cells - 1] = 350.0;

@@ -1,0 +1,129 @@
+/* Solves the network: from where it was, else from thick air. SPDX-License-Identifier: GPL-3.0-or-later */
+#include <math.h>
+#include <string.h>
+
+#include "circuit/duct_network.h"
+
+/* Face velocity [m/s] below which losses are linear at the start of the long way: then the network is nearly linear. */
+static const double thick = 100.0;
+
+static void recall(const struct sp_duct_guess *g, struct sp_net_state *x)
+{
+    memcpy(x->pressure, g->pressure, sizeof x->pressure);
+    memcpy(x->temperature, g->temperature, sizeof x->temperature);
+    memcpy(x->flow, g->flow, sizeof x->flow);
+}
+
+static void remember(const struct sp_net_state *x, struct sp_duct_guess *g)
+{
+    memcpy(g->pressure, x->pressure, sizeof g->pressure);
+    memcpy(g->temperature, x->temperature, sizeof g->temperature);
+    memcpy(g->flow, x->flow, sizeof g->flow);
+    g->known = true;
+}
+
+static void rest(const struct sp_network *n, struct sp_net_state *x)
+{
+    memset(x, 0, sizeof *x);
+    for (int i = 0; i < SP_DUCT_WARMTHS; ++i) x->temperature[i] = n->p.in->temperature;
+    x->temperature[SP_INLET_AIR] = n->fresh;
+}
+
+static bool driven(const struct sp_network *n)
+{
+    bool any = n->blown > 0.0;
+    for (int b = 0; b < n->branches; ++b) any = any || n->outside[b] != 0.0;
+    for (int i = 0; i < n->p.duct->fans; ++i) any = any || (n->p.duct->fan[i].design && n->p.in->fan_speed[i] > 0.0);
+    return any;
+}
+
+/* Flows alone, at the temperatures of x: every loss rises with its flow, so that there is one answer. From linear
+ * losses to the true ones, in steps that shorten where one fails. */
+static bool find_flows(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+{
+    struct sp_network easy = *n;
+    double factor = 0.1, done = thick;
+    easy.frozen = true;
+    easy.p.floor = thick;
+    if (!sp_network_newton(&easy, x, look)) return false;
+    while (done > n->p.floor && factor < 0.995) {
+        struct sp_net_state next = *x;
+        easy.p.floor = fmax(done * factor, n->p.floor);
+        if (sp_network_newton(&easy, &next, look)) {
+            *x = next;
+            done = easy.p.floor;
+            factor = fmax(factor * factor, 0.1);
+        } else {
+            factor = sqrt(factor);
+        }
+    }
+    return done <= n->p.floor;
+}
+
+/* Temperatures by a share of the way to what the flows mix. */
+static void warm(const struct sp_network *n, double share, struct sp_net_state *x, struct sp_net_look *look)
+{
+    sp_network_look(n, x, look);
+    for (int i = 0; i < n->nodes; ++i) x->temperature[i] -= share * look->warmth[i];
+    x->temperature[SP_INLET_AIR] -= share * look->warmth[SP_INLET_AIR];
+}
+
+/* Flows and temperatures in turn, until Newton's method gets hold of both. */
+static bool long_way(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+{
+    struct sp_network frozen = *n;
+    frozen.frozen = true;
+    rest(n, x);
+    if (!find_flows(n, x, look)) return false;
+    for (int i = 0; i < 60; ++i) {
+        for (int sweep = 0; sweep < 4; ++sweep) warm(n, i < 20 ? 1.0 : 0.5, x, look);
+        struct sp_net_state both = *x;
+        if (sp_network_newton(n, &both, look)) {
+            *x = both;
+            return true;
+        }
+        struct sp_net_state flows = *x;
+        if (sp_network_newton(&frozen, &flows, look)) *x = flows;
+        else if (!find_flows(n, x, look)) return false;
+    }
+    return false;
+}
+
+static bool find(const struct sp_network *n, struct sp_duct_guess *guess, struct sp_net_state *x,
+                 struct sp_net_look *look)
+{
+    if (!driven(n)) { /* the answer is exactly nil; only the temperatures of standing air are to be found */
+        rest(n, x);
+        return sp_network_newton(n, x, look);
+    }
+    if (guess->known) {
+        recall(guess, x);
+        if (sp_network_newton(n, x, look)) return true;
+    }
+    return long_way(n, x, look);
+}
+
+/* Given heat that the air does not take: no flow, or so little that it comes out five times as hot. */
+static bool too_hot(const struct sp_duct_inputs *in, const struct sp_duct_state *out)
+{
+    const double hottest_ratio = 5.0;
+    if (!in->heat_given || !(in->heat > 0.0)) return false;
+    return out->heat < in->heat * (1.0 - 1e-4) || out->temperature_ratio > hottest_ratio;
+}
+
+enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                                struct sp_duct_guess *guess, struct sp_duct_state *out)
+{
+    struct sp_network n = sp_network_pose(d, in);
+    struct sp_net_state x;
+    struct sp_net_look look;
+    memset(out, 0, sizeof *out);
+    if (!isfinite(n.p.head + n.p.across + n.blown + n.given) || !find(&n, guess, &x, &look)) {
+        guess->known = false;
+        return SP_NUMERICS;
+    }
+    remember(&x, guess);
+    sp_network_report(&n, &x, &look, out);
+    if (too_hot(in, out)) return SP_INPUT;
+    return isfinite(out->mass_flow) && isfinite(out->heat) && isfinite(out->drag) ? SP_OK : SP_NUMERICS;
+}

@@ -1,0 +1,264 @@
+/* Newton's method on all of the network at once: the global gradient method of Todini & Pilati (1988), in which the
+ * flows are eliminated branch by branch and only the nodes remain, with the nodes' temperatures beside their
+ * pressures. SPDX-License-Identifier: GPL-3.0-or-later */
+#include <math.h>
+
+#include "circuit/duct_network.h"
+
+enum { MOST = SP_DUCT_NODES + SP_DUCT_WARMTHS, ITERATIONS = 60, HALVINGS = 14 };
+
+/* A branch linearized: dq = yield (balance + dp_from - dp_to - loss_T dT), dT_out = out_q dq + out_T dT. */
+struct tangent {
+    double yield, loss_T, out_q, out_T;
+    int upstream; /* index of the temperature that enters; -1: constant */
+};
+
+struct step {
+    double pressure[SP_DUCT_NODES], temperature[SP_DUCT_WARMTHS], flow[SP_DUCT_BRANCHES];
+};
+
+struct system {
+    int size;
+    double a[MOST][MOST + 1]; /* the last column is the right-hand side */
+};
+
+/* ---- linearizing ----------------------------------------------------------------------------------- */
+
+static int upstream_of(const struct sp_network *n, int b, double m)
+{
+    const struct sp_branch *branch = &n->p.duct->branch[b];
+    int node = m >= 0.0 ? branch->from : branch->to;
+    if (node >= 0) return node;
+    return branch->kind == SP_BRANCH_INLET ? SP_INLET_AIR : -1;
+}
+
+static struct tangent tangent_at(const struct sp_network *n, int b, const struct sp_net_state *x,
+                                 const struct sp_net_look *look)
+{
+    const double flattest = 1e-7; /* Pa per m/s of face velocity: a fan's curve may be level */
+    double m = x->flow[b], from = sp_network_end(n, b, false, x), to = sp_network_end(n, b, true, x);
+    double dm = copysign(1e-7 * (fabs(m) + 1e-2 * n->small), m), dT = 1e-3, T = m >= 0.0 ? from : to;
+    struct sp_branch_does more = sp_network_branch(n, b, m + dm, from, to, look);
+    double slope = (more.loss - look->loss[b]) / dm, least = flattest / (n->p.density * n->p.duct->section);
+    struct tangent t = {.upstream = upstream_of(n, b, m)};
+    t.yield = 1.0 / fmax(slope, least);
+    t.out_q = (more.out - look->out[b]) / dm;
+    if (t.upstream < 0) return t;
+    struct sp_branch_does warmer =
+        sp_network_branch(n, b, m, m >= 0.0 ? T + dT : from, m >= 0.0 ? to : T + dT, look);
+    t.loss_T = (warmer.loss - look->loss[b]) / dT;
+    t.out_T = (warmer.out - look->out[b]) / dT;
+    return t;
+}
+
+/* Column of a temperature in the system. */
+static int warmth_column(const struct sp_network *n, int i)
+{
+    return n->nodes + (i == SP_INLET_AIR ? n->nodes : i);
+}
+
+/* Adds `factor` times dq of the branch to a row. */
+static void add_flow(const struct sp_network *n, int b, const struct tangent *t, double balance, double factor,
+                     double *row, int size)
+{
+    const struct sp_branch *branch = &n->p.duct->branch[b];
+    double y = factor * t->yield;
+    if (branch->from >= 0) row[branch->from] += y;
+    if (branch->to >= 0) row[branch->to] -= y;
+    if (t->upstream >= 0) row[warmth_column(n, t->upstream)] -= y * t->loss_T;
+    row[size] -= y * balance;
+}
+
+/* Slopes of a mixed temperature with the flow that enters and with the warmth it brings. */
+struct mixing { double with_flow, with_gain; };
+
+static struct mixing mixing_at(const struct sp_network *n, int node, const struct sp_net_look *look)
+{
+    double slope, soft = sp_network_soft(n, look->inflow[node], &slope);
+    struct mixing m = {-look->gain[node] / (soft * soft) * slope, 1.0 / soft};
+    if (node != SP_NODE_BAY || n->p.in->bay_heat == 0.0) return m;
+    /* the skin's heat: by differences, of a smooth function */
+    const struct sp_duct_inputs *in = n->p.in;
+    double mixed = look->gain[node] / soft, S = look->inflow[node], dS = 1e-6 * (S + n->small), dT = 1e-3, most = 200.0;
+    double rise = sp_network_rise(in->bay_heat, S * in->cp, most - mixed);
+    double with_S = (sp_network_rise(in->bay_heat, (S + dS) * in->cp, most - mixed) - rise) / dS;
+    double with_T = (sp_network_rise(in->bay_heat, S * in->cp, most - mixed - dT) - rise) / dT;
+    return (struct mixing){m.with_flow * (1.0 + with_T) + with_S, m.with_gain * (1.0 + with_T)};
+}
+
+/* Row of a temperature: what branch b brings to it. */
+static void add_warmth(const struct sp_network *n, int b, const struct tangent *t, const struct sp_net_look *look,
+                       double m, double base, const struct mixing *mix, double share, double *row, int size)
+{
+    double way = m >= 0.0 ? 1.0 : -1.0;
+    double by_flow = way * (mix->with_flow + mix->with_gain * (look->out[b] - base));
+    double with_q = share * (by_flow + mix->with_gain * fabs(m) * t->out_q);
+    add_flow(n, b, t, look->balance[b], -with_q, row, size);
+    if (t->upstream >= 0) row[warmth_column(n, t->upstream)] -= share * mix->with_gain * fabs(m) * t->out_T;
+}
+
+static void assemble(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
+                     const struct tangent *t, struct system *s)
+{
+    struct mixing mix[SP_DUCT_WARMTHS];
+    double ambient = n->p.in->temperature;
+    *s = (struct system){.size = 2 * n->nodes + 1};
+    for (int i = 0; i < n->nodes; ++i) {
+        mix[i] = mixing_at(n, i, look);
+        s->a[i][s->size] = -look->mass[i];
+        s->a[n->nodes + i][n->nodes + i] = 1.0;
+        s->a[n->nodes + i][s->size] = n->frozen ? 0.0 : -look->warmth[i];
+    }
+    int last = warmth_column(n, SP_INLET_AIR);
+    mix[SP_INLET_AIR] = mixing_at(n, SP_INLET_AIR, look);
+    s->a[last][last] = 1.0;
+    s->a[last][s->size] = n->frozen ? 0.0 : -look->warmth[SP_INLET_AIR];
+    for (int b = 0; b < n->branches; ++b) {
+        const struct sp_branch *branch = &n->p.duct->branch[b];
+        double m = x->flow[b], balance = look->balance[b];
+        int into = m >= 0.0 ? branch->to : branch->from;
+        if (branch->from >= 0) add_flow(n, b, &t[b], balance, -1.0, s->a[branch->from], s->size);
+        if (branch->to >= 0) add_flow(n, b, &t[b], balance, 1.0, s->a[branch->to], s->size);
+        if (n->frozen) continue;
+        if (into >= 0)
+            add_warmth(n, b, &t[b], look, m, ambient, &mix[into], 1.0, s->a[n->nodes + into], s->size);
+        if (branch->kind == SP_BRANCH_LANE && m >= 0.0 && n->recirculated > 0.0)
+            add_warmth(n, b, &t[b], look, m, n->fresh, &mix[SP_INLET_AIR], n->recirculated, s->a[last], s->size);
+    }
+}
+
+/* ---- solving --------------------------------------------------------------------------------------- */
+
+static void swap_rows(struct system *s, int i, int j)
+{
+    for (int k = 0; i != j && k <= s->size; ++k) {
+        double keep = s->a[i][k];
+        s->a[i][k] = s->a[j][k];
+        s->a[j][k] = keep;
+    }
+}
+
+/* Gauss with row pivots; the solution lands in the last column. */
+static bool eliminate(struct system *s)
+{
+    for (int c = 0; c < s->size; ++c) {
+        int best = c;
+        for (int i = c + 1; i < s->size; ++i)
+            if (fabs(s->a[i][c]) > fabs(s->a[best][c])) best = i;
+        if (!(fabs(s->a[best][c]) > 0.0) || !isfinite(s->a[best][c])) return false;
+        swap_rows(s, c, best);
+        for (int i = c + 1; i < s->size; ++i) {
+            double f = s->a[i][c] / s->a[c][c];
+            for (int k = c; f != 0.0 && k <= s->size; ++k) s->a[i][k] -= f * s->a[c][k];
+        }
+    }
+    for (int c = s->size - 1; c >= 0; --c) {
+        for (int k = c + 1; k < s->size; ++k) s->a[c][s->size] -= s->a[c][k] * s->a[k][s->size];
+        s->a[c][s->size] /= s->a[c][c];
+    }
+    return true;
+}
+
+static bool find_step(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
+                      struct step *out)
+{
+    struct tangent t[SP_DUCT_BRANCHES];
+    struct system s;
+    for (int b = 0; b < n->branches; ++b) t[b] = tangent_at(n, b, x, look);
+    assemble(n, x, look, t, &s);
+    if (!eliminate(&s)) return false;
+    for (int i = 0; i < n->nodes; ++i) {
+        out->pressure[i] = s.a[i][s.size];
+        out->temperature[i] = s.a[n->nodes + i][s.size];
+    }
+    out->temperature[SP_INLET_AIR] = s.a[2 * n->nodes][s.size];
+    for (int b = 0; b < n->branches; ++b) {
+        const struct sp_branch *branch = &n->p.duct->branch[b];
+        double drive = look->balance[b] + (branch->from >= 0 ? out->pressure[branch->from] : 0.0) -
+                       (branch->to >= 0 ? out->pressure[branch->to] : 0.0);
+        if (t[b].upstream >= 0) drive -= t[b].loss_T * out->temperature[t[b].upstream];
+        out->flow[b] = t[b].yield * drive;
+    }
+    return true;
+}
+
+/* ---- damping --------------------------------------------------------------------------------------- */
+
+/* Typical pressure [Pa]: what drives. */
+static double driving(const struct sp_network *n)
+{
+    const struct sp_duct *d = n->p.duct;
+    double most = 1e-9;
+    for (int b = 0; b < n->branches; ++b) most = fmax(most, fabs(n->outside[b]));
+    for (int i = 0; i < d->fans; ++i) {
+        double speed = n->p.in->fan_speed[i];
+        if (d->fan[i].design) most = fmax(most, speed * speed * d->fan[i].curve.shutoff);
+    }
+    return most;
+}
+
+static double square(double x)
+{
+    return x * x;
+}
+
+static double size_of(const struct sp_network *n, const struct sp_net_look *look, double pressure)
+{
+    double flow = n->p.density * n->p.duct->section * sqrt(pressure), sum = 0.0;
+    for (int b = 0; b < n->branches; ++b) sum += square(look->balance[b] / pressure);
+    for (int i = 0; i < n->nodes; ++i) sum += square(look->mass[i] / flow);
+    if (n->frozen) return sum;
+    for (int i = 0; i < n->nodes; ++i) sum += square(look->warmth[i] / 10.0);
+    return sum + square(look->warmth[SP_INLET_AIR] / 10.0);
+}
+
+static void go(const struct sp_network *n, const struct sp_net_state *from, const struct step *step, double t,
+               struct sp_net_state *to)
+{
+    double coldest = 0.5 * n->p.in->temperature;
+    *to = *from;
+    for (int i = 0; i < n->nodes; ++i) to->pressure[i] += t * step->pressure[i];
+    for (int i = 0; i < n->nodes; ++i) to->temperature[i] = fmax(to->temperature[i] + t * step->temperature[i], coldest);
+    to->temperature[SP_INLET_AIR] = fmax(to->temperature[SP_INLET_AIR] + t * step->temperature[SP_INLET_AIR], coldest);
+    for (int b = 0; b < n->branches; ++b) to->flow[b] += t * step->flow[b];
+}
+
+/* Largest change, in shares of the largest flow and of 1000 K. */
+static double length_of(const struct sp_network *n, const struct sp_net_state *x, const struct step *step)
+{
+    double flow = 1e-9 * n->small, moved = 0.0, warmed = fabs(step->temperature[SP_INLET_AIR]);
+    for (int b = 0; b < n->branches; ++b) {
+        flow = fmax(flow, fabs(x->flow[b]));
+        moved = fmax(moved, fabs(step->flow[b]));
+    }
+    for (int i = 0; i < n->nodes; ++i) warmed = fmax(warmed, fabs(step->temperature[i]));
+    return fmax(moved / flow, warmed / 1000.0);
+}
+
+bool sp_network_newton(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+{
+    const double near = 1e-9; /* a step shorter than this leaves an error far smaller */
+    double pressure = driving(n);
+    sp_network_look(n, x, look);
+    double size = size_of(n, look, pressure);
+    for (int i = 0; i < ITERATIONS; ++i) {
+        struct step step;
+        struct sp_net_state next;
+        if (!isfinite(size) || !find_step(n, x, look, &step)) return false;
+        double length = length_of(n, x, &step);
+        if (!isfinite(length)) return false;
+        double t = 1.0, new_size = INFINITY;
+        for (int h = 0; h < HALVINGS; ++h, t *= 0.5) {
+            go(n, x, &step, t, &next);
+            sp_network_look(n, &next, look);
+            new_size = size_of(n, look, pressure);
+            if (length <= near || new_size < size * (1.0 - 1e-3 * t) || new_size == 0.0) break;
+            new_size = INFINITY;
+        }
+        if (!isfinite(new_size)) return false;
+        *x = next;
+        size = new_size;
+        if (length <= near) return true;
+    }
+    return false;
+}
