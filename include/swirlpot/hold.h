@@ -89,8 +89,8 @@ SP_API enum sp_status sp_hold_solve(struct sp_units *u, const struct sp_design *
                                     struct sp_complaints *cautions);
 
 /* The air temperature [K] at which the point just holds limits.coolant, solved anew at each trial: the air thins
- * and the thermostat opens on the way. Good to 1 mK, -60 degC to 70 degC; -INFINITY or INFINITY beyond that, then and
- * without a limit (NAN) SP_NOT. */
+ * and the thermostat opens on the way. Good to 1 mK, -60 degC to 70 degC (moist air: -45 degC to 59.8 degC); -INFINITY or
+ * INFINITY beyond that, then and without a limit (NAN) SP_NOT. */
 SP_API enum sp_status sp_hold_ceiling(struct sp_units *u, const struct sp_design *d, const struct sp_hold_wish *w,
                                       double *ambient, struct sp_complaints *complaints);
 

@@ -86,11 +86,18 @@ double sp_circuit_fan_wish(const struct sp_circuit *c, int kind, const struct sp
     }
 }
 
-double sp_circuit_fan_power(const struct sp_circuit *c, const double *y)
+/* With what the wiring takes: from the battery, not at the plugs. */
+static double kind_power(const struct sp_fan *f, double speed, double volts)
+{
+    if (!(f->wiring_drop > 0.0)) return sp_fan_power(f, speed);
+    return f->count * volts * sp_fan_current(f, speed, volts);
+}
+
+double sp_circuit_fan_power(const struct sp_circuit *c, const struct sp_inputs *in, const double *y)
 {
     double sum = 0.0;
     for (int f = 0; f < c->fans; ++f)
-        sum += c->fan[f].copies * sp_fan_power(c->fan[f].design, y[c->layout.fan[f]]);
+        sum += c->fan[f].copies * kind_power(c->fan[f].design, y[c->layout.fan[f]], sp_circuit_volts(c, in));
     return sum;
 }
 
@@ -111,7 +118,7 @@ double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs
     const struct sp_design *d = c->design;
     double load = 0.0;
     if (in->flags & SP_FLAG_ENGINE)
-        load = (sp_circuit_fan_power(c, y) + sp_circuit_pump_power(c, in, modes, y)) / d->electrics.alternator_efficiency;
+        load = (sp_circuit_fan_power(c, in, y) + sp_circuit_pump_power(c, in, modes, y)) / d->electrics.alternator_efficiency;
     double gas = in->in[SP_IN_HEAT_GAS] + load * in->in[SP_IN_HEAT_SLOPE];
     return gas * sp_engine_gas_factor(&d->engine, y[SP_Y_METAL]) + in->in[SP_IN_HEAT_FRICTION];
 }
@@ -324,7 +331,7 @@ static double battery_load(const struct sp_circuit *c, const struct sp_inputs *i
 {
     if (in->flags & SP_FLAG_ENGINE) return 0.0;
     double load = in->flags & SP_FLAG_KEY ? c->design->electrics.idle_load : 0.0;
-    return load + sp_circuit_fan_power(c, y) + sp_circuit_pump_power(c, in, modes, y);
+    return load + sp_circuit_fan_power(c, in, y) + sp_circuit_pump_power(c, in, modes, y);
 }
 
 void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
@@ -362,7 +369,7 @@ void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, co
     dydt[SP_Y_HEAT_IN] = heat + loads + charge + (c->layout.oil >= 0 ? in->in[SP_IN_OIL_HEAT] : 0.0) +
                          (c->layout.gearbox >= 0 ? in->in[SP_IN_GEARBOX_HEAT] : 0.0);
     dydt[SP_Y_HEAT_SKIN] = metal_skin + lost + tank_skin + heater + oil.to_air + gearbox.to_air;
-    dydt[SP_Y_FAN_ENERGY] = sp_circuit_fan_power(c, y);
+    dydt[SP_Y_FAN_ENERGY] = sp_circuit_fan_power(c, in, y);
     dydt[SP_Y_DRAG_WORK] = sp_circuit_drag(c, k) * in->in[SP_IN_SPEED];
     double rho = in->in[SP_IN_PRESSURE] / (c->air.R * ambient), V = in->in[SP_IN_AIR_SPEED];
     dydt[SP_Y_HEAD_WORK] = 0.5 * rho * V * V * in->in[SP_IN_SPEED];

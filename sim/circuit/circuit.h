@@ -83,7 +83,7 @@ struct sp_modes {
 /* What the coupled solvers see of the state: means and single states, K; fans over rated speed. */
 struct sp_signals {
     double wall[SP_EXCHANGERS], fluid[SP_EXCHANGERS], fan[SP_FAN_KINDS], wax, jacket, metal, oil, gearbox;
-    double tank; /* Pa absolute, where cavitation is watched; else NAN */
+    double tank, returns; /* Pa absolute, and K of the hose back: where cavitation is watched; else 0 */
 };
 
 /* The fluid side of one core. */
@@ -122,6 +122,10 @@ enum sp_status sp_circuit_split(const struct sp_circuit *c, const struct sp_inpu
                                 const struct sp_modes *modes, const struct sp_signals *s,
                                 struct sp_loop_guess *guess, struct sp_coupling *out);
 
+/* What the duct of a run is given. */
+struct sp_duct_inputs sp_circuit_duct_inputs(const struct sp_circuit *c, const struct sp_inputs *in,
+                                             const struct sp_signals *s, int of);
+
 /* One duct: fills out->duct[run]. */
 enum sp_status sp_circuit_air(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_signals *s,
                               int run, struct sp_duct_guess *guess, struct sp_coupling *out);
@@ -142,8 +146,8 @@ double sp_circuit_fan_wish(const struct sp_circuit *c, int kind, const struct sp
 /* Volts between battery and consumers. */
 double sp_circuit_volts(const struct sp_circuit *c, const struct sp_inputs *in);
 
-/* Electrical power [W] of all fans, and of an electric pump. */
-double sp_circuit_fan_power(const struct sp_circuit *c, const double *y);
+/* Electrical power [W] at the battery of all fans, and of an electric pump. */
+double sp_circuit_fan_power(const struct sp_circuit *c, const struct sp_inputs *in, const double *y);
 double sp_circuit_pump_power(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
                              const double *y);
 

@@ -28,14 +28,17 @@ void sp_circuit_signals(const struct sp_circuit *c, const struct sp_inputs *in, 
     out->oil = l->oil >= 0 ? y[l->oil] : NAN;
     out->gearbox = l->gearbox >= 0 ? y[l->gearbox] : NAN;
     struct sp_tank_inputs tank;
-    out->tank = c->design->pump.npsh > 0.0 ? sp_circuit_tank(c, in, y, &tank).pressure : NAN;
+    bool watched = c->design->pump.npsh > 0.0;
+    out->tank = watched ? sp_circuit_tank(c, in, y, &tank).pressure : 0.0;
+    out->returns = watched ? y[l->back + SP_HOSE_CELLS - 1] : 0.0;
 }
 
 /* ---- air ------------------------------------------------------------------------------------------- */
 
-static struct sp_duct_inputs duct_inputs(const struct sp_circuit *c, const struct sp_inputs *in,
-                                         const struct sp_signals *s, const struct sp_duct_run *run)
+struct sp_duct_inputs sp_circuit_duct_inputs(const struct sp_circuit *c, const struct sp_inputs *in,
+                                             const struct sp_signals *s, int of)
 {
+    const struct sp_duct_run *run = &c->run[of];
     struct sp_duct_inputs air = {.speed = in->in[SP_IN_AIR_SPEED], .wake = in->in[SP_IN_WAKE],
                                  .temperature = in->in[SP_IN_AMBIENT], .pressure = in->in[SP_IN_PRESSURE],
                                  .R = c->air.R, .cp = c->air.cp, .cross_wind = c->design->air.cross_wind,
@@ -52,7 +55,7 @@ static struct sp_duct_inputs duct_inputs(const struct sp_circuit *c, const struc
 enum sp_status sp_circuit_air(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_signals *s,
                               int run, struct sp_duct_guess *guess, struct sp_coupling *out)
 {
-    struct sp_duct_inputs air = duct_inputs(c, in, s, &c->run[run]);
+    struct sp_duct_inputs air = sp_circuit_duct_inputs(c, in, s, run);
     return sp_duct_solve_from(c->run[run].duct, &air, guess, &out->duct[run]);
 }
 
@@ -95,7 +98,7 @@ enum sp_status sp_circuit_split(const struct sp_circuit *c, const struct sp_inpu
     double effective = sp_thermostat_effective(&d->thermostat, modes->play, s->wax, modes->held);
     out->lift = sp_thermostat_lift(&d->thermostat, effective + sp_thermostat_mapped(&d->thermostat, in->in[SP_IN_POWER]));
     struct sp_loop_inputs want = {.speed = sp_circuit_pump_speed(c, in, modes, s->jacket), .lift = out->lift,
-                                  .hot = s->jacket, .tank = s->tank};
+                                  .hot = s->jacket, .tank = s->tank, .returns = s->returns};
     double share[SP_LOOP_STRINGS] = {0.0};
     for (int e = 0; e < c->exchangers && c->exchanger[e].string >= 0; ++e) {
         int i = c->exchanger[e].string; /* a string is as warm as its cores are in the mean */

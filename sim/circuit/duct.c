@@ -27,7 +27,7 @@ enum sp_status sp_duct_solve(const struct sp_duct *d, const struct sp_duct_input
     enum sp_status status = sp_duct_solve_from(d, &cold, &guess, out);
     if (status) return status;
     if (by_one_equation(d, in)) return sp_plain_solve_heated(d, in, out->mass_flow, out);
-    return sp_network_solve(d, in, &guess, out);
+    return sp_network_solve_heated(d, in, &guess, out);
 }
 
 void sp_duct_stations(const struct sp_duct *d, const struct sp_duct_inputs *in, const struct sp_duct_state *state,

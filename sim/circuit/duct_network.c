@@ -11,7 +11,6 @@ static const double most_by_load = 200.0;  /* K over ambient that a load or the 
 static const double most_by_given = 40.0;  /* times ambient, over it, that heat given from outside can */
 static const double most_cooling = 50.0;   /* K */
 static const double shut = 1e10;           /* k of flaps against their way, times that along it */
-static const double speck = 1e-10;         /* heads that a fan costs, so that two idle ones share the air evenly */
 static const double hardly = 0.005;        /* m/s of face velocity; see sp_network_soft */
 static const double given_floor = 1e-6;    /* m/s, laminar floor with given heat, which is itself linear there */
 static const double preheat_from = 50.0 / 3.6; /* m/s, from which preheat is that of the road */
@@ -96,6 +95,7 @@ struct sp_network sp_network_pose(const struct sp_duct *d, const struct sp_duct_
     n.p = sp_duct_pose(d, in);
     if (in->heat_given && in->heat > 0.0) n.p.floor = given_floor;
     n.nodes = d->nodes;
+    n.speck = SP_SPECK;
     n.branches = branches_in_use(&n);
     for (int b = 0; b < n.branches; ++b) n.outside[b] = outside_of(&n, &d->branch[b]);
     n.fresh = in->temperature + preheat(&d->design.inlet, in->speed);
@@ -189,7 +189,8 @@ static double inlet_loss(const struct sp_network *n, double m, double rho)
 {
     struct sp_inlet_loss loss = sp_duct_inlet_loss(&n->p, m, rho);
     double unrecovered = n->p.recovery * n->p.head - sp_duct_available(&n->p, m);
-    return unrecovered + copysign(loss.lip + loss.screen + loss.diffuser, m);
+    double speck = n->speck * sp_duct_head(&n->p, m, rho, n->p.duct->inlet_area);
+    return unrecovered + copysign(loss.lip + loss.screen + loss.diffuser + speck, m);
 }
 
 static double exit_loss(const struct sp_network *n, const struct sp_branch *b, double m, double rho)
@@ -204,7 +205,7 @@ static double fan_loss(const struct sp_network *n, const struct sp_branch *b, do
 {
     double before = density_at(n, from), behind = density_at(n, to);
     double head = sp_duct_head(&n->p, m, m >= 0.0 ? before : behind, b->area);
-    return copysign(speck * head, m) - sp_duct_fan(&n->p, b->index, m, before, behind);
+    return copysign(n->speck * head, m) - sp_duct_fan(&n->p, b->index, m, before, behind);
 }
 
 struct sp_branch_does sp_network_branch(const struct sp_network *n, int b, double m, double from, double to,
@@ -217,11 +218,8 @@ struct sp_branch_does sp_network_branch(const struct sp_network *n, int b, doubl
     case SP_BRANCH_INLET: loss = inlet_loss(n, m, rho); break;
     case SP_BRANCH_EXIT: loss = exit_loss(n, branch, m, rho); break;
     case SP_BRANCH_FAN: loss = fan_loss(n, branch, m, from, to); break;
-    case SP_BRANCH_FLAP:
-    case SP_BRANCH_LEAK: {
-        double k = branch->kind == SP_BRANCH_FLAP && m < 0.0 ? shut * branch->loss : branch->loss;
-        loss = copysign(k * sp_duct_head(&n->p, m, rho, branch->area), m);
-    }
+    case SP_BRANCH_LEAK: loss = copysign(branch->loss * sp_duct_head(&n->p, m, rho, branch->area), m); break;
+    case SP_BRANCH_FLAP: break; /* see sp_network_flap */
     }
     return (struct sp_branch_does){loss, upstream};
 }
@@ -246,9 +244,25 @@ static void add_passing(const struct sp_network *n, const struct sp_net_state *x
     }
 }
 
+/* k rho/2 v |v| with the laminar floor, solved for the flow: m sqrt(m^2 + floor^2) = c. */
+struct sp_flap_does sp_network_flap(const struct sp_network *n, int b, double drop, const struct sp_net_state *x)
+{
+    const struct sp_branch *branch = &n->p.duct->branch[b];
+    double rho = density_at(n, sp_network_end(n, b, drop < 0.0, x)), floor = n->p.density * n->p.duct->section * n->p.floor;
+    double k = drop < 0.0 ? shut * branch->loss : branch->loss, per = 2.0 * rho * branch->area * branch->area / k;
+    double c = per * fabs(drop), f2 = floor * floor, m = c * sqrt(2.0 / (f2 + sqrt(f2 * f2 + 4.0 * c * c)));
+    return (struct sp_flap_does){copysign(m, drop), per * sqrt(m * m + f2) / (2.0 * m * m + f2)};
+}
+
 static double pressure_end(const struct sp_network *n, int b, int node, const struct sp_net_state *x)
 {
     return node >= 0 ? x->pressure[node] : n->outside[b];
+}
+
+double sp_network_drop(const struct sp_network *n, int b, const struct sp_net_state *x)
+{
+    const struct sp_branch *branch = &n->p.duct->branch[b];
+    return pressure_end(n, b, branch->from, x) - pressure_end(n, b, branch->to, x);
 }
 
 /* Flow into and out of nodes, and the warmth it brings. */
@@ -287,12 +301,13 @@ void sp_network_look(const struct sp_network *n, const struct sp_net_state *x, s
     add_passing(n, x, look);
     look->mass[SP_NODE_FRONT] = look->inflow[SP_NODE_FRONT] = n->blown;
     for (int b = 0; b < n->branches; ++b) {
-        const struct sp_branch *branch = &n->p.duct->branch[b];
         struct sp_branch_does does = sp_network_branch(n, b, x->flow[b], sp_network_end(n, b, false, x),
                                                        sp_network_end(n, b, true, x), look);
         look->loss[b] = does.loss;
         look->out[b] = does.out;
-        look->balance[b] = pressure_end(n, b, branch->from, x) - pressure_end(n, b, branch->to, x) - does.loss;
+        double drop = sp_network_drop(n, b, x);
+        bool flap = n->p.duct->branch[b].kind == SP_BRANCH_FLAP;
+        look->balance[b] = flap ? sp_network_flap(n, b, drop, x).flow - x->flow[b] : drop - does.loss;
         add_flow(n, b, x->flow[b], look);
     }
     look_at_warmth(n, x, look);

@@ -10,6 +10,8 @@
 
 enum { SP_DUCT_WARMTHS = SP_DUCT_NODES + 1, SP_INLET_AIR = SP_DUCT_NODES }; /* temperatures; the inlet's is last */
 
+#define SP_SPECK 1e-10 /* heads: two idle fans share the air evenly, and an inlet without loss has a slope */
+
 struct sp_network {
     struct sp_duct_problem p;
     int nodes, branches;
@@ -21,6 +23,7 @@ struct sp_network {
     double most_rise;                 /* K over ambient that given heat reaches at most */
     double given;                     /* W per share of face of the cores that take given heat */
     bool takes_given[SP_CORES];
+    double speck;                     /* heads that fans and inlet cost beside what they do */
     bool frozen;                      /* temperatures of nodes stay as they are; only flows are sought */
 };
 
@@ -33,7 +36,8 @@ struct sp_net_state {
 struct sp_net_look {
     double loss[SP_DUCT_BRANCHES], out[SP_DUCT_BRANCHES];
     double passing[SP_CORES]; /* kg/s through each core, all lanes, either way */
-    double balance[SP_DUCT_BRANCHES], mass[SP_DUCT_NODES], warmth[SP_DUCT_WARMTHS]; /* Pa, kg/s, K */
+    double balance[SP_DUCT_BRANCHES]; /* Pa; of flaps kg/s */
+    double mass[SP_DUCT_NODES], warmth[SP_DUCT_WARMTHS]; /* kg/s, K */
     double inflow[SP_DUCT_WARMTHS], gain[SP_DUCT_WARMTHS]; /* kg/s into a node; sum of flow times rise, K kg/s */
 };
 
@@ -51,6 +55,13 @@ struct sp_network sp_network_pose(const struct sp_duct *d, const struct sp_duct_
 /* `look` for what passes each core; `from`/`to` K at the branch's ends (of the outside: as drawn in). */
 struct sp_branch_does sp_network_branch(const struct sp_network *n, int b, double m, double from, double to,
                                         const struct sp_net_look *look);
+
+/* Flow [kg/s] through flaps under a drop of total pressure [Pa], and its slope [kg/s Pa]. */
+struct sp_flap_does { double flow, yield; };
+struct sp_flap_does sp_network_flap(const struct sp_network *n, int b, double drop, const struct sp_net_state *x);
+
+/* Total pressure [Pa] that falls between a branch's ends. */
+double sp_network_drop(const struct sp_network *n, int b, const struct sp_net_state *x);
 
 /* The lane alone, with each core's part, in the order of the list. */
 struct sp_branch_does sp_network_lane(const struct sp_network *n, const struct sp_lane *l, double m, double upstream,
@@ -73,6 +84,10 @@ bool sp_network_newton(const struct sp_network *n, struct sp_net_state *x, struc
 
 enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_inputs *in,
                                 struct sp_duct_guess *guess, struct sp_duct_state *out);
+
+/* With given heat, from the solution without it in *guess and *out. */
+enum sp_status sp_network_solve_heated(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                                       struct sp_duct_guess *guess, struct sp_duct_state *out);
 
 /* Fills *out from a solution. */
 void sp_network_report(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,

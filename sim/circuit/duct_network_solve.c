@@ -27,6 +27,7 @@ static void rest(const struct sp_network *n, struct sp_net_state *x)
     memset(x, 0, sizeof *x);
     for (int i = 0; i < SP_DUCT_WARMTHS; ++i) x->temperature[i] = n->p.in->temperature;
     x->temperature[SP_INLET_AIR] = n->fresh;
+    x->flow[0] = -n->blown; /* what a blower brings can leave by the inlet */
 }
 
 static bool driven(const struct sp_network *n)
@@ -45,10 +46,12 @@ static bool find_flows(const struct sp_network *n, struct sp_net_state *x, struc
     double factor = 0.1, done = thick;
     easy.frozen = true;
     easy.p.floor = thick;
+    easy.speck = 1.0; /* level fan curves are made to fall, and inlets to resist, with the rest */
     if (!sp_network_newton(&easy, x, look)) return false;
     while (done > n->p.floor && factor < 0.995) {
         struct sp_net_state next = *x;
         easy.p.floor = fmax(done * factor, n->p.floor);
+        easy.speck = easy.p.floor > n->p.floor ? easy.p.floor / thick : n->speck;
         if (sp_network_newton(&easy, &next, look)) {
             *x = next;
             done = easy.p.floor;
@@ -111,6 +114,15 @@ static bool too_hot(const struct sp_duct_inputs *in, const struct sp_duct_state 
     return out->heat < in->heat * (1.0 - 1e-4) || out->temperature_ratio > hottest_ratio;
 }
 
+static enum sp_status tell(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
+                           struct sp_duct_guess *guess, struct sp_duct_state *out)
+{
+    remember(x, guess);
+    sp_network_report(n, x, look, out);
+    if (too_hot(n->p.in, out)) return SP_INPUT;
+    return isfinite(out->mass_flow) && isfinite(out->heat) && isfinite(out->drag) ? SP_OK : SP_NUMERICS;
+}
+
 enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_inputs *in,
                                 struct sp_duct_guess *guess, struct sp_duct_state *out)
 {
@@ -118,12 +130,45 @@ enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_in
     struct sp_net_state x;
     struct sp_net_look look;
     memset(out, 0, sizeof *out);
-    if (!isfinite(n.p.head + n.p.across + n.blown + n.given) || !find(&n, guess, &x, &look)) {
-        guess->known = false;
-        return SP_NUMERICS;
+    if (isfinite(n.p.head + n.p.across + n.blown + n.given) && find(&n, guess, &x, &look))
+        return tell(&n, &x, &look, guess, out);
+    guess->known = false;
+    return SP_NUMERICS;
+}
+
+/* Only from where the guess is. */
+static enum sp_status near_by(const struct sp_duct *d, const struct sp_duct_inputs *in, struct sp_duct_guess *guess,
+                              struct sp_duct_state *out)
+{
+    struct sp_network n = sp_network_pose(d, in);
+    struct sp_net_state x;
+    struct sp_net_look look;
+    memset(out, 0, sizeof *out);
+    recall(guess, &x);
+    return sp_network_newton(&n, &x, &look) ? tell(&n, &x, &look, guess, out) : SP_NUMERICS;
+}
+
+/* Less air comes out hotter, and hot air resists the more: of several answers the duct comes to the one with the
+ * largest flow, on the way from no heat. Where the flow falls away under the heat, it cannot carry it. */
+enum sp_status sp_network_solve_heated(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                                       struct sp_duct_guess *guess, struct sp_duct_state *out)
+{
+    const double shortest = 1e-4, largest_jump = 0.15;
+    struct sp_duct_inputs part = *in;
+    double done = 0.0, flow = out->mass_flow;
+    for (double step = 0.25; done < 1.0 && step > shortest;) {
+        struct sp_duct_guess try = *guess;
+        double next = fmin(done + step, 1.0);
+        part.heat = next * in->heat;
+        enum sp_status status = near_by(d, &part, &try, out);
+        if (status != SP_OK || fabs(out->mass_flow - flow) > largest_jump * fabs(flow)) {
+            step *= 0.5;
+            continue;
+        }
+        *guess = try;
+        flow = out->mass_flow;
+        done = next;
+        step *= 1.5;
     }
-    remember(&x, guess);
-    sp_network_report(&n, &x, &look, out);
-    if (too_hot(in, out)) return SP_INPUT;
-    return isfinite(out->mass_flow) && isfinite(out->heat) && isfinite(out->drag) ? SP_OK : SP_NUMERICS;
+    return done < 1.0 ? SP_INPUT : SP_OK;
 }

@@ -7,10 +7,11 @@
 
 enum { MOST = SP_DUCT_NODES + SP_DUCT_WARMTHS, ITERATIONS = 60, HALVINGS = 14 };
 
-/* A branch linearized: dq = yield (balance + dp_from - dp_to - loss_T dT), dT_out = out_q dq + out_T dT. */
+/* A branch linearized: dq = offset + yield (dp_from - dp_to - loss_T dT - loss_D dD), dT_out = out_q dq + out_T dT,
+ * T the temperature that enters and D that behind, which creeping air in a fan feels too. */
 struct tangent {
-    double yield, loss_T, out_q, out_T;
-    int upstream; /* index of the temperature that enters; -1: constant */
+    double offset, yield, loss_T, loss_D, out_q, out_T;
+    int upstream, downstream; /* indices of temperatures; -1: constant, or not felt */
 };
 
 struct step {
@@ -24,30 +25,50 @@ struct system {
 
 /* ---- linearizing ----------------------------------------------------------------------------------- */
 
-static int upstream_of(const struct sp_network *n, int b, double m)
+static int warmth_at(const struct sp_network *n, int b, bool to)
 {
     const struct sp_branch *branch = &n->p.duct->branch[b];
-    int node = m >= 0.0 ? branch->from : branch->to;
+    int node = to ? branch->to : branch->from;
     if (node >= 0) return node;
     return branch->kind == SP_BRANCH_INLET ? SP_INLET_AIR : -1;
+}
+
+/* Flaps the other way round, flow over pressure: that is what hardly changes where they shut. */
+static struct tangent flap_tangent(const struct sp_network *n, int b, const struct sp_net_state *x,
+                                   const struct sp_net_look *look)
+{
+    double drop = sp_network_drop(n, b, x);
+    struct tangent t = {.upstream = warmth_at(n, b, drop < 0.0), .downstream = -1, .out_T = 1.0};
+    struct sp_flap_does does = sp_network_flap(n, b, drop, x);
+    t.yield = does.yield;
+    t.offset = look->balance[b];
+    t.loss_T = 0.5 * does.flow / (does.yield * sp_network_end(n, b, drop < 0.0, x));
+    return t;
 }
 
 static struct tangent tangent_at(const struct sp_network *n, int b, const struct sp_net_state *x,
                                  const struct sp_net_look *look)
 {
-    const double flattest = 1e-7; /* Pa per m/s of face velocity: a fan's curve may be level */
+    const double flattest = 1e-7; /* Pa per m/s of face velocity: a fan's curve may be level (or even rise) */
     double m = x->flow[b], from = sp_network_end(n, b, false, x), to = sp_network_end(n, b, true, x);
     double dm = copysign(1e-7 * (fabs(m) + 1e-2 * n->small), m), dT = 1e-3, T = m >= 0.0 ? from : to;
     struct sp_branch_does more = sp_network_branch(n, b, m + dm, from, to, look);
     double slope = (more.loss - look->loss[b]) / dm, least = flattest / (n->p.density * n->p.duct->section);
-    struct tangent t = {.upstream = upstream_of(n, b, m)};
-    t.yield = 1.0 / fmax(slope, least);
+    struct tangent t = {.upstream = warmth_at(n, b, m < 0.0), .downstream = -1};
+    t.yield = 1.0 / (fabs(slope) > least ? slope : least);
+    t.offset = t.yield * look->balance[b];
     t.out_q = (more.out - look->out[b]) / dm;
-    if (t.upstream < 0) return t;
-    struct sp_branch_does warmer =
-        sp_network_branch(n, b, m, m >= 0.0 ? T + dT : from, m >= 0.0 ? to : T + dT, look);
-    t.loss_T = (warmer.loss - look->loss[b]) / dT;
-    t.out_T = (warmer.out - look->out[b]) / dT;
+    if (t.upstream >= 0) {
+        struct sp_branch_does warm = sp_network_branch(n, b, m, m >= 0.0 ? T + dT : from, m >= 0.0 ? to : T + dT, look);
+        t.loss_T = (warm.loss - look->loss[b]) / dT;
+        t.out_T = (warm.out - look->out[b]) / dT;
+    }
+    if (n->p.duct->branch[b].kind == SP_BRANCH_FAN) {
+        t.downstream = warmth_at(n, b, m >= 0.0);
+        T = m >= 0.0 ? to : from;
+        struct sp_branch_does warm = sp_network_branch(n, b, m, m >= 0.0 ? from : T + dT, m >= 0.0 ? T + dT : to, look);
+        t.loss_D = (warm.loss - look->loss[b]) / dT;
+    }
     return t;
 }
 
@@ -58,15 +79,15 @@ static int warmth_column(const struct sp_network *n, int i)
 }
 
 /* Adds `factor` times dq of the branch to a row. */
-static void add_flow(const struct sp_network *n, int b, const struct tangent *t, double balance, double factor,
-                     double *row, int size)
+static void add_flow(const struct sp_network *n, int b, const struct tangent *t, double factor, double *row, int size)
 {
     const struct sp_branch *branch = &n->p.duct->branch[b];
     double y = factor * t->yield;
     if (branch->from >= 0) row[branch->from] += y;
     if (branch->to >= 0) row[branch->to] -= y;
     if (t->upstream >= 0) row[warmth_column(n, t->upstream)] -= y * t->loss_T;
-    row[size] -= y * balance;
+    if (t->downstream >= 0) row[warmth_column(n, t->downstream)] -= y * t->loss_D;
+    row[size] -= factor * t->offset;
 }
 
 /* Slopes of a mixed temperature with the flow that enters and with the warmth it brings. */
@@ -93,7 +114,7 @@ static void add_warmth(const struct sp_network *n, int b, const struct tangent *
     double way = m >= 0.0 ? 1.0 : -1.0;
     double by_flow = way * (mix->with_flow + mix->with_gain * (look->out[b] - base));
     double with_q = share * (by_flow + mix->with_gain * fabs(m) * t->out_q);
-    add_flow(n, b, t, look->balance[b], -with_q, row, size);
+    add_flow(n, b, t, -with_q, row, size);
     if (t->upstream >= 0) row[warmth_column(n, t->upstream)] -= share * mix->with_gain * fabs(m) * t->out_T;
 }
 
@@ -115,10 +136,10 @@ static void assemble(const struct sp_network *n, const struct sp_net_state *x, c
     s->a[last][s->size] = n->frozen ? 0.0 : -look->warmth[SP_INLET_AIR];
     for (int b = 0; b < n->branches; ++b) {
         const struct sp_branch *branch = &n->p.duct->branch[b];
-        double m = x->flow[b], balance = look->balance[b];
+        double m = x->flow[b];
         int into = m >= 0.0 ? branch->to : branch->from;
-        if (branch->from >= 0) add_flow(n, b, &t[b], balance, -1.0, s->a[branch->from], s->size);
-        if (branch->to >= 0) add_flow(n, b, &t[b], balance, 1.0, s->a[branch->to], s->size);
+        if (branch->from >= 0) add_flow(n, b, &t[b], -1.0, s->a[branch->from], s->size);
+        if (branch->to >= 0) add_flow(n, b, &t[b], 1.0, s->a[branch->to], s->size);
         if (n->frozen) continue;
         if (into >= 0)
             add_warmth(n, b, &t[b], look, m, ambient, &mix[into], 1.0, s->a[n->nodes + into], s->size);
@@ -164,7 +185,8 @@ static bool find_step(const struct sp_network *n, const struct sp_net_state *x, 
 {
     struct tangent t[SP_DUCT_BRANCHES];
     struct system s;
-    for (int b = 0; b < n->branches; ++b) t[b] = tangent_at(n, b, x, look);
+    for (int b = 0; b < n->branches; ++b)
+        t[b] = (n->p.duct->branch[b].kind == SP_BRANCH_FLAP ? flap_tangent : tangent_at)(n, b, x, look);
     assemble(n, x, look, t, &s);
     if (!eliminate(&s)) return false;
     for (int i = 0; i < n->nodes; ++i) {
@@ -174,10 +196,11 @@ static bool find_step(const struct sp_network *n, const struct sp_net_state *x, 
     out->temperature[SP_INLET_AIR] = s.a[2 * n->nodes][s.size];
     for (int b = 0; b < n->branches; ++b) {
         const struct sp_branch *branch = &n->p.duct->branch[b];
-        double drive = look->balance[b] + (branch->from >= 0 ? out->pressure[branch->from] : 0.0) -
+        double drive = (branch->from >= 0 ? out->pressure[branch->from] : 0.0) -
                        (branch->to >= 0 ? out->pressure[branch->to] : 0.0);
         if (t[b].upstream >= 0) drive -= t[b].loss_T * out->temperature[t[b].upstream];
-        out->flow[b] = t[b].yield * drive;
+        if (t[b].downstream >= 0) drive -= t[b].loss_D * out->temperature[t[b].downstream];
+        out->flow[b] = t[b].offset + t[b].yield * drive;
     }
     return true;
 }
@@ -188,7 +211,7 @@ static bool find_step(const struct sp_network *n, const struct sp_net_state *x, 
 static double driving(const struct sp_network *n)
 {
     const struct sp_duct *d = n->p.duct;
-    double most = 1e-9;
+    double most = fmax(1e-9, sp_duct_head(&n->p, n->blown, n->p.density, d->inlet_area));
     for (int b = 0; b < n->branches; ++b) most = fmax(most, fabs(n->outside[b]));
     for (int i = 0; i < d->fans; ++i) {
         double speed = n->p.in->fan_speed[i];
@@ -205,7 +228,8 @@ static double square(double x)
 static double size_of(const struct sp_network *n, const struct sp_net_look *look, double pressure)
 {
     double flow = n->p.density * n->p.duct->section * sqrt(pressure), sum = 0.0;
-    for (int b = 0; b < n->branches; ++b) sum += square(look->balance[b] / pressure);
+    for (int b = 0; b < n->branches; ++b)
+        sum += square(look->balance[b] / (n->p.duct->branch[b].kind == SP_BRANCH_FLAP ? flow : pressure));
     for (int i = 0; i < n->nodes; ++i) sum += square(look->mass[i] / flow);
     if (n->frozen) return sum;
     for (int i = 0; i < n->nodes; ++i) sum += square(look->warmth[i] / 10.0);
@@ -235,30 +259,52 @@ static double length_of(const struct sp_network *n, const struct sp_net_state *x
     return fmax(moved / flow, warmed / 1000.0);
 }
 
+/* Where the residuals are and how large. */
+struct place {
+    struct sp_net_state x;
+    double size;
+};
+
+/* Halves the step until the residuals shrink. Two parallel ways of which one costs next to nothing (an idle fan and
+ * flaps) must pass through larger ones: where the step would have to be short, `leaps` of the whole of it are free. */
+static bool take(const struct sp_network *n, const struct step *step, double pressure, struct place *at, int *leaps,
+                 struct sp_net_look *look)
+{
+    const double shortest = 1.0 / 16.0;
+    struct place from = *at;
+    double t = 1.0;
+    for (int h = 0; h < HALVINGS; ++h, t *= 0.5) {
+        if (t < shortest && *leaps > 0) break;
+        go(n, &from.x, step, t, &at->x);
+        sp_network_look(n, &at->x, look);
+        at->size = size_of(n, look, pressure);
+        if (at->size < from.size * (1.0 - 1e-3 * t) || at->size == 0.0) return true;
+    }
+    if (--*leaps < 0) return false;
+    go(n, &from.x, step, 1.0, &at->x);
+    sp_network_look(n, &at->x, look);
+    at->size = size_of(n, look, pressure);
+    return isfinite(at->size);
+}
+
 bool sp_network_newton(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
 {
     const double near = 1e-9; /* a step shorter than this leaves an error far smaller */
     double pressure = driving(n);
+    int leaps = 6;
     sp_network_look(n, x, look);
-    double size = size_of(n, look, pressure);
+    struct place at = {*x, size_of(n, look, pressure)};
     for (int i = 0; i < ITERATIONS; ++i) {
         struct step step;
-        struct sp_net_state next;
-        if (!isfinite(size) || !find_step(n, x, look, &step)) return false;
-        double length = length_of(n, x, &step);
+        if (!isfinite(at.size) || !find_step(n, &at.x, look, &step)) return false;
+        double length = length_of(n, &at.x, &step);
         if (!isfinite(length)) return false;
-        double t = 1.0, new_size = INFINITY;
-        for (int h = 0; h < HALVINGS; ++h, t *= 0.5) {
-            go(n, x, &step, t, &next);
-            sp_network_look(n, &next, look);
-            new_size = size_of(n, look, pressure);
-            if (length <= near || new_size < size * (1.0 - 1e-3 * t) || new_size == 0.0) break;
-            new_size = INFINITY;
+        if (length <= near) {
+            go(n, &at.x, &step, 1.0, x);
+            sp_network_look(n, x, look);
+            return true;
         }
-        if (!isfinite(new_size)) return false;
-        *x = next;
-        size = new_size;
-        if (length <= near) return true;
+        if (!take(n, &step, pressure, &at, &leaps, look)) return false;
     }
     return false;
 }

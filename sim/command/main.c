@@ -11,7 +11,7 @@
 
 #include "verbs.h"
 
-static const struct sp_verb *const verb[] = {&sp_verb_run, &sp_verb_duct, &sp_verb_show, &sp_verb_new};
+static const struct sp_verb *const verb[] = {&sp_verb_run, &sp_verb_hold, &sp_verb_duct, &sp_verb_show, &sp_verb_new};
 
 enum { VERBS = sizeof verb / sizeof verb[0] };
 
@@ -24,7 +24,7 @@ static enum sp_status unknown_verb(const char *word)
     const char *near = sp_nearest(word, known, VERBS);
     if (*word == '-')
         return sp_usage_fault(word, "an unknown option", "--help, --version, or a verb and its options");
-    snprintf(expected, sizeof expected, "run, duct, show or new%s%s%s", near ? "; nearest is '" : "",
+    snprintf(expected, sizeof expected, "run, hold, duct, show or new%s%s%s", near ? "; nearest is '" : "",
              near ? near : "", near ? "'" : "");
     return sp_usage_fault(word, "an unknown verb", expected);
 }
@@ -47,7 +47,7 @@ static enum sp_status run_verb(const struct sp_verb *v, int argc, char **argv)
 
 static enum sp_status dispatch(int argc, char **argv)
 {
-    if (argc < 2) return sp_usage_fault(NULL, "no verb", "run, duct, show or new");
+    if (argc < 2) return sp_usage_fault(NULL, "no verb", "run, hold, duct, show or new");
     const char *word = argv[1];
     bool version = !strcmp(word, "--version");
     if (version || !strcmp(word, "--help") || !strcmp(word, "-h")) {

@@ -12,6 +12,10 @@ static const struct sp_option option[] = {
     {'e', false, "every", "TIME", false, "time between rows of series.csv; else \"1 s\""},
     {'x', false, "exact", NULL, false, "more digits instead of whole degrees"},
     {'v', false, "speed", "SPEED", true, "speed over the road; may stand several times"},
+    {'w', false, "power", "POWER", true, "brake power that is held"},
+    {'g', false, "grade", "GRADE", true, "or the road's, as \"7 %\"; else level"},
+    {'n', false, "engine-speed", "SPEED", false, "else from the gears"},
+    {'c', false, "ceiling", NULL, false, "also solve for the hottest air"},
     {'q', false, "heat", "POWER", false, "heat given to the air; without it: cold core"},
     {'f', false, "fan", "on|off", false, "fan at its rated speed, or off as by default"},
     {'m', false, "mass", "MASS", false, "mass of the car with driver and fuel"},
@@ -134,6 +138,12 @@ static bool keep(struct sp_arguments *a, int letter, char *value, const char *wo
         return append(&a->sets, value);
     case 'v':
         return append(&a->speeds, value);
+    case 'w':
+        return append(&a->powers, value);
+    case 'g':
+        return append(&a->grades, value);
+    case 'n':
+        return keep_once(&a->engine_speed, value, word);
     case 'o':
         return keep_once(&a->directory, value, word);
     case 'e':
@@ -153,6 +163,9 @@ static bool keep(struct sp_arguments *a, int letter, char *value, const char *wo
         return true;
     case 'x':
         a->exact = true;
+        return true;
+    case 'c':
+        a->ceiling = true;
         return true;
     default:
         a->help = true;
@@ -241,9 +254,13 @@ static bool read_operand(const struct sp_verb *verb, int argc, char **argv, stru
 bool sp_arguments_read(const struct sp_verb *verb, int argc, char **argv, struct sp_arguments *out)
 {
     memset(out, 0, sizeof *out);
-    out->sets.list = calloc((size_t)argc, sizeof(char *));
-    out->speeds.list = calloc((size_t)argc, sizeof(char *));
-    if (!out->sets.list || !out->speeds.list) {
+    struct sp_texts *const list[] = {&out->sets, &out->speeds, &out->powers, &out->grades};
+    bool room = true;
+    for (size_t i = 0; i < sizeof list / sizeof list[0]; ++i) {
+        list[i]->list = calloc((size_t)argc, sizeof(char *));
+        room = room && list[i]->list;
+    }
+    if (!room) {
         sp_usage_fault(verb->name, "too little memory", "memory for the command line");
         return false;
     }
@@ -254,6 +271,8 @@ void sp_arguments_free(struct sp_arguments *a)
 {
     free(a->sets.list);
     free(a->speeds.list);
+    free(a->powers.list);
+    free(a->grades.list);
     memset(a, 0, sizeof *a);
 }
 

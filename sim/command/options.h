@@ -26,9 +26,9 @@ struct sp_texts {
 /* A command line as understood. Values are NULL where not given. */
 struct sp_arguments {
     const char *operand;
-    struct sp_texts sets, speeds;
-    const char *heat, *fan, *directory, *every, *mass, *displacement, *power;
-    bool json, exact, help;
+    struct sp_texts sets, speeds, powers, grades; /* powers, grades: what is held */
+    const char *heat, *fan, *directory, *every, *mass, *displacement, *power, *engine_speed;
+    bool json, exact, ceiling, help;
 };
 
 struct sp_verb {

@@ -4,7 +4,7 @@
 
 #include "options.h"
 
-extern const struct sp_verb sp_verb_run, sp_verb_duct, sp_verb_show, sp_verb_new;
+extern const struct sp_verb sp_verb_run, sp_verb_hold, sp_verb_duct, sp_verb_show, sp_verb_new;
 
 /* Help of the whole command (verb NULL) or of one verb, on standard output. */
 void sp_help(const struct sp_verb *const *verbs, size_t count);

@@ -79,8 +79,10 @@ static enum sp_status run_segment(struct sp_run *r)
         if (how == SP_ADV_FAILED) return SP_NUMERICS;
         enum sp_status status = sp_run_after_step(r, from);
         if (status) return status;
-        if (how == SP_ADV_CROSSED && sp_run_take_crossings(r, sign) && !restart(r)) return SP_NUMERICS;
         if (how == SP_ADV_END) r->time = end;
+        r->ended = r->hook && r->hook->step(r->hook->context, r, from);
+        if (r->ended) return SP_OK;
+        if (how == SP_ADV_CROSSED && sp_run_take_crossings(r, sign) && !restart(r)) return SP_NUMERICS;
     }
     return SP_OK;
 }
@@ -104,7 +106,7 @@ static enum sp_status run_all(struct sp_run *r)
             if (last != SIZE_MAX && !restart(r)) return SP_NUMERICS;
         }
         enum sp_status status = run_segment(r);
-        if (status) return status;
+        if (status || r->ended) return status;
         last = k;
     }
     /* The last row is always there, also off the grid of samples. */
@@ -160,12 +162,14 @@ static enum sp_status fail(struct sp_run *r, enum sp_status status, struct sp_co
 }
 
 /* One attempt; *open tells that only the ledger failed. */
-static enum sp_status attempt(const struct sp_drive *drive, const struct sp_run_options *options, double tolerance,
-                              struct sp_result *out, struct sp_complaints *complaints, bool *open)
+static enum sp_status attempt(const struct sp_drive *drive, const struct sp_run_options *options,
+                              const struct sp_run_hook *hook, double tolerance, struct sp_result *out,
+                              struct sp_complaints *complaints, bool *open)
 {
     size_t n = (size_t)drive->circuit.layout.count;
     struct sp_run r = {.drive = drive, .circuit = &drive->circuit, .schedule = &drive->schedule, .result = out,
-                       .interval = options->interval > 0.0 ? options->interval : 1.0, .sink = options->sink};
+                       .interval = options->interval > 0.0 ? options->interval : 1.0, .sink = options->sink,
+                       .hook = hook};
     memset(out, 0, sizeof *out);
     size_t columns = n + 2 * (size_t)drive->circuit.layout.exchangers;
     double *room = calloc((6 + columns) * n, sizeof *room);
@@ -189,21 +193,27 @@ static enum sp_status attempt(const struct sp_drive *drive, const struct sp_run_
 }
 
 /* Quiet drives turn over so little heat that what the error control lets pass can show in the ledger. */
-enum sp_status sp_drive_run(const struct sp_drive *drive, const struct sp_run_options *options,
-                            struct sp_result *out, struct sp_complaints *complaints)
+enum sp_status sp_run_hooked(const struct sp_drive *drive, const struct sp_run_options *options,
+                             const struct sp_run_hook *hook, struct sp_result *out, struct sp_complaints *complaints)
 {
     double tolerance = options->tolerance > 0.0 ? options->tolerance : drive->design->solver.tolerance;
     const struct sp_sink *sink = options->sink;
     for (int left = 2;; --left, tolerance *= 0.1) {
         struct sp_complaints said = {0};
         bool open = false;
-        enum sp_status status = attempt(drive, options, tolerance, out, &said, &open);
+        enum sp_status status = attempt(drive, options, hook, tolerance, out, &said, &open);
         bool last = !open || left == 0 || (sink && !(sink->again && sink->again(sink->context)));
         if (last) sp_complaints_copy(&said, complaints);
         else sp_result_free(out);
         sp_complaints_free(&said);
         if (last) return status;
     }
+}
+
+enum sp_status sp_drive_run(const struct sp_drive *drive, const struct sp_run_options *options,
+                            struct sp_result *out, struct sp_complaints *complaints)
+{
+    return sp_run_hooked(drive, options, NULL, out, complaints);
 }
 
 void sp_result_free(struct sp_result *r)

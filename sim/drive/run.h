@@ -36,6 +36,8 @@ struct sp_run {
     size_t samples;              /* taken so far */
     double interval;
     const struct sp_sink *sink;
+    const struct sp_run_hook *hook;
+    bool ended;                  /* the hook has seen enough */
     struct sp_measured measured;
     struct sp_result *result;
     struct sp_tracked coolant, gauge, metal, margin, pressure, over_ambient;
@@ -45,6 +47,16 @@ struct sp_run {
     struct sp_watched seen;      /* watches as last looked at ... */
     double seen_at;              /* ... at this time; NAN: not valid */
 };
+
+/* Looks on after each step, which began at `from`; true ends the run there. */
+struct sp_run_hook {
+    void *context;
+    bool (*step)(void *context, struct sp_run *r, double from);
+};
+
+/* As sp_drive_run, with somebody looking on; NULL: nobody. */
+enum sp_status sp_run_hooked(const struct sp_drive *drive, const struct sp_run_options *options,
+                             const struct sp_run_hook *hook, struct sp_result *out, struct sp_complaints *complaints);
 
 /* Solves the coupling at a looked-at state. */
 enum sp_status sp_run_couple(struct sp_run *r, const struct sp_inputs *in, const double *y, struct sp_coupling *k);

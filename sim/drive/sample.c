@@ -36,7 +36,7 @@ static void flows(const struct sp_run *r, const struct sp_inputs *in, const doub
     v[SP_CH_AIR_OUT] = in->in[SP_IN_AMBIENT] * k->duct[0].temperature_ratio;
     v[SP_CH_FAN_SPEED] = y[SP_Y_FAN];
     v[SP_CH_FAN_PRESSURE] = k->duct[0].fan_pressure;
-    v[SP_CH_FAN_POWER] = sp_circuit_fan_power(r->circuit, y);
+    v[SP_CH_FAN_POWER] = sp_circuit_fan_power(r->circuit, in, y);
     v[SP_CH_DRAG] = sp_circuit_drag(r->circuit, k);
 }
 

@@ -60,16 +60,6 @@ void sp_case_check_drive(struct sp_reader *r);
 void sp_case_doubt(struct sp_reader *r); /* cautions */
 /* Builds the changed designs, one a change. */
 void sp_case_changes(struct sp_reader *r);
-/* The changes as they come to pass, by time; NULL with complaints, or when there are none. */
-struct sp_turn *sp_case_turns(struct sp_reader *r, size_t *count);
-/* May a change set that? False with a complaint that says why not. */
-bool sp_change_allowed(struct sp_reader *r, const struct sp_setting *s);
-/* Is the changed design built as the first one was? False with a complaint. */
-bool sp_change_same_build(struct sp_reader *r, const struct sp_design *first);
-/* The value that a number has when `node` is added to it, to be freed; NULL with a complaint. `now` is the
- * design so far; where it has no number because of a fault said before, nothing is said. */
-struct sp_json *sp_change_grown(struct sp_reader *r, const struct sp_setting *s, const struct sp_json *node,
-                                struct sp_design *now, bool faulty);
 
 /* ---- settings: --set, and what a change sets ------------------------------------------------------- */
 
@@ -97,6 +87,21 @@ bool sp_setting_look_up(struct sp_reader *r, const char *path, const struct sp_p
 bool sp_setting_apply(struct sp_reader *r, struct sp_setting *s);
 /* Where in the tree it goes, into s->place; false with a complaint when no such place is there. */
 bool sp_setting_resolve(struct sp_reader *r, struct sp_setting *s);
+
+/* ---- changes --------------------------------------------------------------------------------------- */
+
+/* The changes as they come to pass, by time; NULL with complaints, or when there are none. */
+struct sp_turn *sp_case_turns(struct sp_reader *r, size_t *count);
+/* May a change set that? False with a complaint that says why not. */
+bool sp_change_allowed(struct sp_reader *r, const struct sp_setting *s);
+/* Is the changed design built as the first one was? False with a complaint. */
+bool sp_change_same_build(struct sp_reader *r, const struct sp_design *first);
+/* The value that a number has when `node` is added to it, to be freed; NULL with a complaint. `now` is the
+ * design so far; where it has no number because of a fault said before, nothing is said. */
+struct sp_json *sp_change_grown(struct sp_reader *r, const struct sp_setting *s, const struct sp_json *node,
+                                struct sp_design *now, bool faulty);
+
+/* ---- paths ----------------------------------------------------------------------------------------- */
 
 /* One part of a path: a name, or an index. A name with a point in it stands in quotes. */
 struct sp_path_part {

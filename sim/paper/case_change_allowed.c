@@ -40,16 +40,18 @@ static bool refuse(struct sp_reader *r, const struct sp_setting *s, const char *
     return false;
 }
 
-/* A part that may be left out has to be there to be changed. */
+/* A part that may be left out has to be there to be changed. One that may not, and is absent, is a fault said
+ * already. */
 static bool part_there(struct sp_reader *r, const struct sp_setting *s)
 {
     const struct sp_key *group;
     for (size_t i = 0; (group = sp_key_row(i)) != NULL; ++i) {
         char found[120];
-        bool part = group->shape == SP_SHAPE_GROUP && group->keep == SP_KEEP_BOOL && !group->or_none;
-        if (!part || !within(group->path, s->row->path)) continue;
+        bool may_lack = group->need == SP_NEED_NOT && (group->keep != SP_KEEP_BOOL || group->or_none);
+        if (group->shape != SP_SHAPE_GROUP || may_lack || !within(group->path, s->row->path)) continue;
         const struct sp_json *list = group->plural ? sp_case_list(r->tree, group, &s->at) : NULL;
         if (list || sp_case_given_at(r, group->path, &s->at)) continue; /* an index past the end is said later */
+        if (group->need != SP_NEED_NOT) return false;
         snprintf(found, sizeof found, "no %s from the start", sp_key_name(group));
         return refuse(r, s, found, "one that is there, to be changed");
     }
@@ -141,18 +143,26 @@ static struct sp_json *sum_node(struct sp_reader *r, const struct sp_json *node,
     return out;
 }
 
+static bool element_there(const struct sp_reader *r, const struct sp_setting *s)
+{
+    const struct sp_key *lists[SP_KEY_LISTS];
+    size_t n = sp_key_lists(s->row->path, lists);
+    return (n < 1 || s->at.outer < sp_case_elements(r->tree, lists[0], &s->at)) &&
+           (n < 2 || s->at.inner < sp_case_elements(r->tree, lists[1], &s->at));
+}
+
 struct sp_json *sp_change_grown(struct sp_reader *r, const struct sp_setting *s, const struct sp_json *node,
                                 struct sp_design *now, bool faulty)
 {
     bool number = s->row->shape == SP_SHAPE_QUANTITY && !s->inside;
     enum sp_kind kind = s->row->kind == SP_K_TEMPERATURE ? SP_K_TEMP_DIFF : s->row->kind;
-    double addend, have;
+    double addend, have = NAN;
     if (!number) {
         refuse(r, s, "a key that holds no single number", "a number, to be added to; or the key in set");
         return NULL;
     }
     if (!read_addend(r, s, kind, node, &addend)) return NULL;
-    have = sp_key_double(s->row, now, &s->at);
+    if (element_there(r, s)) have = sp_key_double(s->row, now, &s->at);
     if (isnan(have)) {
         if (!faulty) refuse(r, s, "nothing to add to", "a number there until then; or the key in set");
         return NULL;

@@ -242,5 +242,6 @@ void sp_case_check(struct sp_reader *r)
     check_engine(r);
     check_pump(r);
     check_ducts(r);
+    sp_case_check_loop(r);
     sp_case_check_fitted(r);
 }

@@ -38,7 +38,7 @@ static void check_thermostat(struct sp_reader *r)
     const struct sp_thermostat *t = &r->design->thermostat;
     const struct fault list[] = {
         {t->restrictor > 0.0 && t->restrictor >= r->design->hoses.bore_out, "car.thermostat.restrictor", NULL,
-         "a bore below that of the hose to the radiator, car.hoses.out.bore"},
+         "a bore below that of the hose to the radiator, hoses.out.bore"},
         {!(t->mapped_power > 0.0) && sp_case_given(r, "car.thermostat.mapped"), "car.thermostat.mapped.power",
          found(r, "car.thermostat.mapped.power", "nothing"), "a power above 0, for a mapped thermostat"},
     };
@@ -54,7 +54,7 @@ static void check_branches(struct sp_reader *r)
         {d->tank.bleed_bore > 0.0 && sp_case_given(r, "car.tank.bleed"), "car.tank.bleed_bore",
          "both bleed and bleed_bore", "one of them"},
         {d->tank.bleed_bore > 0.0 && d->tank.bleed_bore >= d->hoses.bore_out, "car.tank.bleed_bore", NULL,
-         "a bore below that of the hose to the radiator, car.hoses.out.bore"},
+         "a bore below that of the hose to the radiator, hoses.out.bore"},
     };
     say(r, list, sizeof list / sizeof *list);
     if (d->tank.lost > d->tank.volume - d->tank.air_space)

@@ -154,7 +154,7 @@ static void write_station(struct sp_writer *w, int i, const struct sp_station *s
     sp_write_close(w, '}');
 }
 
-static void write_point(struct sp_writer *w, const struct sp_duct_point *p)
+void sp_duct_point_write(struct sp_writer *w, const struct sp_duct_point *p)
 {
     struct loss loss[LOSSES];
     list_losses(p, loss);
@@ -189,7 +189,7 @@ void sp_duct_points_json(const struct sp_duct_point *p, size_t count, FILE *to)
     sp_write_open(&w, NULL, '{');
     sp_write_open(&w, "points", '[');
     for (size_t i = 0; i < count; ++i)
-        write_point(&w, &p[i]);
+        sp_duct_point_write(&w, &p[i]);
     sp_write_close(&w, ']');
     sp_write_close(&w, '}');
 }

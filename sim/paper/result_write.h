@@ -21,6 +21,10 @@ void sp_write_number(struct sp_writer *w, const char *name, double x);       /* 
 void sp_write_text(struct sp_writer *w, const char *name, const char *text); /* NULL: null */
 void sp_write_bool(struct sp_writer *w, const char *name, bool x);
 
+/* One point of a duct as a member of an array: result_duct.c. */
+struct sp_duct_point;
+void sp_duct_point_write(struct sp_writer *w, const struct sp_duct_point *p);
+
 /* ---- numbers --------------------------------------------------------------------------------------- */
 
 enum { SP_NUMBER_ROOM = 40 };

@@ -242,23 +242,20 @@ static void show_element(struct shower *s, const struct sp_key *row, const struc
     if (worth_showing(&e) && !of_absent_part(d, row->path, at)) put_entry(s, &e);
 }
 
-/* One change as it comes to pass: its time, and what is set. */
+/* One change as it comes to pass: what is set, its time, and where that stands. */
 static void show_change(struct shower *s, const struct sp_turn *turn, const struct sp_change *change)
 {
     char path[60];
+    const bool json = s->json;
     snprintf(path, sizeof path, "changes[%zu]", turn->entry);
-    const char *before = s->json ? "\"," : " = ", *unit = s->json ? ", \"unit\": \"s\", \"basis\": \"" : " s  (";
-    if (s->json)
-        fprintf(s->to, "%s\n  {\"path\": \"%s\", \"text\": \"", s->first ? "" : ",", path);
-    else
-        fprintf(s->to, "%-44s ", path);
-    sp_written_text(s->to, change->text, s->json);
-    fprintf(s->to, "%s%s", before, s->json ? " \"si\": " : "");
+    fprintf(s->to, json ? "%s\n  {\"path\": \"%s\", \"text\": \"" : "%s%-44s ", s->first || !json ? "" : ",", path);
+    sp_written_text(s->to, change->text, json);
+    fputs(json ? "\", \"si\": " : " = ", s->to);
     put_number(s->to, change->at);
-    fputs(unit, s->to);
-    sp_written_text(s->to, turn->node->file ? turn->node->file : "", s->json);
+    fputs(json ? ", \"unit\": \"s\", \"basis\": \"" : " s  (", s->to);
+    sp_written_text(s->to, turn->node->file ? turn->node->file : "", json);
     if (turn->node->line) fprintf(s->to, " line %ld", turn->node->line);
-    fputs(s->json ? "\", \"default\": false}" : ")\n", s->to);
+    fputs(json ? "\", \"default\": false}" : ")\n", s->to);
     s->first = false;
 }
 

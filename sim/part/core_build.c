@@ -41,12 +41,13 @@ struct sp_louvre sp_core_louvre(const struct sp_core *d)
 
 struct sp_plate sp_core_plate(const struct sp_core *d)
 {
+    double along = d->tube_pitch_along > 0.0 ? d->tube_pitch_along : d->depth;
     return (struct sp_plate){.fin_pitch = d->fin_pitch,
                              .fin_thickness = d->fin_thickness,
                              .fin_conductivity = d->fin_conductivity,
                              .diameter = d->tube_diameter,
                              .pitch_across = d->tube_pitch,
-                             .pitch_along = d->tube_pitch_along,
+                             .pitch_along = along,
                              .rows = d->rows,
                              .depth = d->depth};
 }

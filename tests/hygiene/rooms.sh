@@ -6,9 +6,9 @@
 set -u
 cd "${1:?usage: rooms.sh ROOT}" || exit 2
 
-# Three public headers are no room's own. trace.h is the form of a table, without a word of cars, and counts to the
+# Four public headers are no room's own. trace.h is the form of a table, without a word of cars, and counts to the
 # ground floor although the reader lives in drive/. design.h puts the parts' designs together: above part, which does
-# not know it, below circuit. result.h is what paper/ writes.
+# not know it, below circuit. result.h is what paper/ writes. hold.h is drive's second one.
 grep -rHn '^ *# *include *"' sim include --include='*.c' --include='*.h' | LC_ALL=C sort | awk -F: '
     BEGIN {
         split("base fluid part circuit drive paper", rooms, " ")
@@ -17,6 +17,7 @@ grep -rHn '^ *# *include *"' sim include --include='*.c' --include='*.h' | LC_AL
         floor["design"] = floor["part"]
         floor["design"] = floor["part"] + 0.5
         floor["result"] = floor["paper"]
+        floor["hold"] = floor["drive"]
     }
     {
         file = $1

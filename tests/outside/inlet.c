@@ -137,6 +137,8 @@ static void recovery_of_a_table(void **state)
     double bent[] = {0.0, 0.1, 0.4, 0.2, 0.6, 0.9}, again[] = {0.0, 0.5, 0.4, 0.3, 0.6, 0.9};
     assert_false(sp_inlet_recovery_single(&(struct sp_table){3, 2, bent}));
     assert_false(sp_inlet_recovery_single(&(struct sp_table){3, 2, again}));
+    double doubling[] = {0.0, 0.1, 0.4, 0.3, 0.6, 0.5};
+    assert_false(sp_inlet_recovery_single(&(struct sp_table){3, 2, doubling}));
 }
 
 /* Those tables leave eta - Cp - B mu^2 one root from standstill on, and the refused ones need not. */

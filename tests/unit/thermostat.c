@@ -75,7 +75,7 @@ static void lag(void **state)
 
 int main(void)
 {
-    const struct CMUnitTest tests[] = {cmocka_unit_test(lift), cmocka_unit_test(mapped), cmocka_unit_test(play),
-                                       cmocka_unit_test(lag)};
+    const struct CMUnitTest tests[] = {cmocka_unit_test(lift), cmocka_unit_test(mapped),
+                                       cmocka_unit_test(play), cmocka_unit_test(lag)};
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
