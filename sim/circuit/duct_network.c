@@ -11,7 +11,8 @@ static const double most_by_load = 200.0;  /* K over ambient that a load or the 
 static const double most_by_given = 40.0;  /* times ambient, over it, that heat given from outside can */
 static const double most_cooling = 50.0;   /* K */
 static const double shut = 1e10;           /* k of flaps against their way, times that along it */
-static const double hardly = 0.005;        /* m/s of face velocity; see sp_network_soft */
+static const double hardly = 0.01;        /* m/s of face velocity; see sp_network_soft */
+static const double stray = 1e-9;          /* of hardly any: ambient air that keeps a closed loop's temperature known */
 static const double given_floor = 1e-6;    /* m/s, laminar floor with given heat, which is itself linear there */
 static const double preheat_from = 50.0 / 3.6; /* m/s, from which preheat is that of the road */
 
@@ -30,10 +31,10 @@ double sp_network_soft(const struct sp_network *n, double inflow, double *slope)
 {
     double x = inflow / n->small;
     *slope = 1.0;
-    if (x > 100.0) return inflow;
+    if (x > 100.0) return inflow + stray * n->small;
     double soft = eighth_root(1.0 + eighth(x)), steep = x / soft;
     *slope = steep * steep * steep * (steep * steep * steep * steep);
-    return soft * n->small;
+    return (soft + stray) * n->small;
 }
 
 double sp_network_rise(double heat, double rate, double most)
@@ -96,6 +97,7 @@ struct sp_network sp_network_pose(const struct sp_duct *d, const struct sp_duct_
     if (in->heat_given && in->heat > 0.0) n.p.floor = given_floor;
     n.nodes = d->nodes;
     n.speck = SP_SPECK;
+    n.felt = 1.0;
     n.branches = branches_in_use(&n);
     for (int b = 0; b < n.branches; ++b) n.outside[b] = outside_of(&n, &d->branch[b]);
     n.fresh = in->temperature + preheat(&d->design.inlet, in->speed);
@@ -289,10 +291,10 @@ static void look_at_warmth(const struct sp_network *n, const struct sp_net_state
         double mixed = look->gain[i] / sp_network_soft(n, look->inflow[i], &slope);
         if (i == SP_NODE_BAY)
             mixed += sp_network_rise(n->p.in->bay_heat, look->inflow[i] * n->p.in->cp, most_by_load - mixed);
-        look->warmth[i] = x->temperature[i] - ambient - mixed;
+        look->warmth[i] = x->temperature[i] - ambient - n->felt * mixed;
     }
     double drawn = look->gain[SP_INLET_AIR] / sp_network_soft(n, look->inflow[SP_INLET_AIR], &slope);
-    look->warmth[SP_INLET_AIR] = x->temperature[SP_INLET_AIR] - n->fresh - n->recirculated * drawn;
+    look->warmth[SP_INLET_AIR] = x->temperature[SP_INLET_AIR] - n->fresh - n->felt * n->recirculated * drawn;
 }
 
 void sp_network_look(const struct sp_network *n, const struct sp_net_state *x, struct sp_net_look *look)

@@ -24,6 +24,8 @@ struct sp_network {
     double given;                     /* W per share of face of the cores that take given heat */
     bool takes_given[SP_CORES];
     double speck;                     /* heads that fans and inlet cost beside what they do */
+    double felt;                      /* share of its warmth that a node's air feels: 1, or less on the way there */
+    bool wild;                        /* Newton's steps may make it worse for a while */
     bool frozen;                      /* temperatures of nodes stay as they are; only flows are sought */
 };
 

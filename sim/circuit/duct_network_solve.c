@@ -30,37 +30,61 @@ static void rest(const struct sp_network *n, struct sp_net_state *x)
     x->flow[0] = -n->blown; /* what a blower brings can leave by the inlet */
 }
 
+static bool turns(const struct sp_network *n, int fan)
+{
+    const struct sp_fan *f = n->p.duct->fan[fan].design;
+    return f && f->health == SP_FAN_SOUND && n->p.in->fan_speed[fan] > 0.0;
+}
+
 static bool driven(const struct sp_network *n)
 {
     bool any = n->blown > 0.0;
     for (int b = 0; b < n->branches; ++b) any = any || n->outside[b] != 0.0;
-    for (int i = 0; i < n->p.duct->fans; ++i) any = any || (n->p.duct->fan[i].design && n->p.in->fan_speed[i] > 0.0);
+    for (int i = 0; i < n->p.duct->fans; ++i) any = any || turns(n, i);
     return any;
 }
 
-/* Flows alone, at the temperatures of x: every loss rises with its flow, so that there is one answer. From linear
- * losses to the true ones, in steps that shorten where one fails. */
-static bool find_flows(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+/* Follows the answer while *knob falls from where it is to `last`, in steps that shorten where one fails; in the end
+ * it leaps, for there may be a fold in the way. */
+static bool turn_down(struct sp_network *easy, double *knob, double last, struct sp_net_state *x,
+                      struct sp_net_look *look)
 {
-    struct sp_network easy = *n;
-    double factor = 0.1, done = thick;
-    easy.frozen = true;
-    easy.p.floor = thick;
-    easy.speck = 1.0; /* level fan curves are made to fall, and inlets to resist, with the rest */
-    if (!sp_network_newton(&easy, x, look)) return false;
-    while (done > n->p.floor && factor < 0.995) {
+    double factor = 0.1, done = *knob;
+    while (done > last && factor < 0.995) {
         struct sp_net_state next = *x;
-        easy.p.floor = fmax(done * factor, n->p.floor);
-        easy.speck = easy.p.floor > n->p.floor ? easy.p.floor / thick : n->speck;
-        if (sp_network_newton(&easy, &next, look)) {
+        *knob = fmax(done * factor, last);
+        if (sp_network_newton(easy, &next, look)) {
             *x = next;
-            done = easy.p.floor;
-            factor = fmax(factor * factor, 0.1);
+            done = *knob;
+            factor = fmax(factor * factor, 0.01);
         } else {
             factor = sqrt(factor);
         }
     }
-    return done <= n->p.floor;
+    for (double far = 0.9; done > last && far > 1e-3; far *= 0.5) {
+        struct sp_net_state next = *x;
+        *knob = fmax(done * far, last);
+        easy->wild = true;
+        bool found = sp_network_newton(easy, &next, look);
+        easy->wild = false;
+        if (!found) continue;
+        *x = next;
+        return turn_down(easy, knob, last, x, look);
+    }
+    return done <= last;
+}
+
+/* Flows alone, at the temperatures of x: every loss rises with its flow, so that there is one answer (but for fans
+ * whose total pressure rises with flow). From linear losses to the true ones, with fans whose curves fall for sure
+ * and inlets that resist; then to what these are. */
+static bool find_flows(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+{
+    struct sp_network easy = *n;
+    easy.frozen = true;
+    easy.p.floor = thick;
+    easy.speck = 1.0;
+    return sp_network_newton(&easy, x, look) && turn_down(&easy, &easy.p.floor, n->p.floor, x, look) &&
+           turn_down(&easy, &easy.speck, n->speck, x, look);
 }
 
 /* Temperatures by a share of the way to what the flows mix. */
@@ -71,25 +95,45 @@ static void warm(const struct sp_network *n, double share, struct sp_net_state *
     x->temperature[SP_INLET_AIR] -= share * look->warmth[SP_INLET_AIR];
 }
 
-/* Flows and temperatures in turn, until Newton's method gets hold of both. */
+/* From flows at the temperatures of fresh air: warmth is let in bit by bit. */
+static bool warm_up(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+{
+    const double shortest = 1e-5;
+    struct sp_network easy = *n;
+    double done = 0.0;
+    for (double step = 0.1; done < 1.0 && step > shortest;) {
+        struct sp_net_state next = *x;
+        easy.felt = fmin(done + step, 1.0);
+        if (sp_network_newton(&easy, &next, look)) {
+            *x = next;
+            done = easy.felt;
+            step *= 2.0;
+        } else {
+            step *= 0.25;
+        }
+    }
+    return done >= 1.0;
+}
+
+/* Flows at the temperatures of fresh air, then temperatures, then both at once. */
 static bool long_way(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
 {
     struct sp_network frozen = *n;
     frozen.frozen = true;
     rest(n, x);
     if (!find_flows(n, x, look)) return false;
-    for (int i = 0; i < 60; ++i) {
-        for (int sweep = 0; sweep < 4; ++sweep) warm(n, i < 20 ? 1.0 : 0.5, x, look);
+    struct sp_net_state flows = *x;
+    for (int i = 0; i < 8; ++i) {
+        for (int sweep = 0; sweep < 4; ++sweep) warm(n, i < 4 ? 1.0 : 0.5, x, look);
         struct sp_net_state both = *x;
         if (sp_network_newton(n, &both, look)) {
             *x = both;
             return true;
         }
-        struct sp_net_state flows = *x;
-        if (sp_network_newton(&frozen, &flows, look)) *x = flows;
-        else if (!find_flows(n, x, look)) return false;
+        if (!sp_network_newton(&frozen, x, look)) break;
     }
-    return false;
+    *x = flows;
+    return warm_up(n, x, look);
 }
 
 static bool find(const struct sp_network *n, struct sp_duct_guess *guess, struct sp_net_state *x,

@@ -96,7 +96,7 @@ struct mixing { double with_flow, with_gain; };
 static struct mixing mixing_at(const struct sp_network *n, int node, const struct sp_net_look *look)
 {
     double slope, soft = sp_network_soft(n, look->inflow[node], &slope);
-    struct mixing m = {-look->gain[node] / (soft * soft) * slope, 1.0 / soft};
+    struct mixing m = {-n->felt * look->gain[node] / (soft * soft) * slope, n->felt / soft};
     if (node != SP_NODE_BAY || n->p.in->bay_heat == 0.0) return m;
     /* the skin's heat: by differences, of a smooth function */
     const struct sp_duct_inputs *in = n->p.in;
@@ -104,7 +104,7 @@ static struct mixing mixing_at(const struct sp_network *n, int node, const struc
     double rise = sp_network_rise(in->bay_heat, S * in->cp, most - mixed);
     double with_S = (sp_network_rise(in->bay_heat, (S + dS) * in->cp, most - mixed) - rise) / dS;
     double with_T = (sp_network_rise(in->bay_heat, S * in->cp, most - mixed - dT) - rise) / dT;
-    return (struct mixing){m.with_flow * (1.0 + with_T) + with_S, m.with_gain * (1.0 + with_T)};
+    return (struct mixing){m.with_flow * (1.0 + with_T) + n->felt * with_S, m.with_gain * (1.0 + with_T)};
 }
 
 /* Row of a temperature: what branch b brings to it. */
@@ -250,7 +250,7 @@ static void go(const struct sp_network *n, const struct sp_net_state *from, cons
 /* Largest change, in shares of the largest flow and of 1000 K. */
 static double length_of(const struct sp_network *n, const struct sp_net_state *x, const struct step *step)
 {
-    double flow = 1e-9 * n->small, moved = 0.0, warmed = fabs(step->temperature[SP_INLET_AIR]);
+    double flow = 1e-3 * n->small, moved = 0.0, warmed = fabs(step->temperature[SP_INLET_AIR]);
     for (int b = 0; b < n->branches; ++b) {
         flow = fmax(flow, fabs(x->flow[b]));
         moved = fmax(moved, fabs(step->flow[b]));
@@ -265,33 +265,49 @@ struct place {
     double size;
 };
 
-/* Halves the step until the residuals shrink. Two parallel ways of which one costs next to nothing (an idle fan and
- * flaps) must pass through larger ones: where the step would have to be short, `leaps` of the whole of it are free. */
-static bool take(const struct sp_network *n, const struct step *step, double pressure, struct place *at, int *leaps,
-                 struct sp_net_look *look)
+/* Share of a step that warms no node by more than so much. */
+static double bounded(const struct step *step, int nodes)
 {
-    const double shortest = 1.0 / 16.0;
+    const double most = 80.0; /* K */
+    double warmed = fabs(step->temperature[SP_INLET_AIR]);
+    for (int i = 0; i < nodes; ++i) warmed = fmax(warmed, fabs(step->temperature[i]));
+    return warmed > most ? most / warmed : 1.0;
+}
+
+static void try(const struct sp_network *n, const struct place *from, const struct step *step, double t,
+                double pressure, struct place *to, struct sp_net_look *look)
+{
+    go(n, &from->x, step, t, &to->x);
+    sp_network_look(n, &to->x, look);
+    to->size = size_of(n, look, pressure);
+}
+
+/* Halves the step until the residuals shrink. Two parallel ways of which one costs next to nothing (an idle fan and
+ * flaps) must pass through larger ones: near the end, where the step would have to be short, `leaps` of the whole of
+ * it are free. */
+static bool take(const struct sp_network *n, const struct step *step, double length, double pressure,
+                 struct place *at, int *leaps, struct sp_net_look *look)
+{
+    const double shortest = 0.3, end = 0.02;
     struct place from = *at;
-    double t = 1.0;
-    for (int h = 0; h < HALVINGS; ++h, t *= 0.5) {
-        if (t < shortest && *leaps > 0) break;
-        go(n, &from.x, step, t, &at->x);
-        sp_network_look(n, &at->x, look);
-        at->size = size_of(n, look, pressure);
+    bool leap = (n->wild || length < end) && *leaps > 0;
+    double t = bounded(step, n->nodes);
+    for (int h = 0; h < HALVINGS && !(leap && t < shortest); ++h, t *= 0.5) {
+        try(n, &from, step, t, pressure, at, look);
         if (at->size < from.size * (1.0 - 1e-3 * t) || at->size == 0.0) return true;
     }
-    if (--*leaps < 0) return false;
-    go(n, &from.x, step, 1.0, &at->x);
-    sp_network_look(n, &at->x, look);
-    at->size = size_of(n, look, pressure);
+    if (!leap) return false;
+    --*leaps;
+    try(n, &from, step, bounded(step, n->nodes), pressure, at, look);
     return isfinite(at->size);
 }
 
 bool sp_network_newton(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
 {
-    const double near = 1e-9; /* a step shorter than this leaves an error far smaller */
+    const double near = 1e-9;     /* a step shorter than this leaves an error far smaller */
+    const double nothing = 1e-26; /* residuals (squared) that cannot be told from rounding */
     double pressure = driving(n);
-    int leaps = 6;
+    int leaps = n->wild ? ITERATIONS : 10;
     sp_network_look(n, x, look);
     struct place at = {*x, size_of(n, look, pressure)};
     for (int i = 0; i < ITERATIONS; ++i) {
@@ -299,12 +315,17 @@ bool sp_network_newton(const struct sp_network *n, struct sp_net_state *x, struc
         if (!isfinite(at.size) || !find_step(n, &at.x, look, &step)) return false;
         double length = length_of(n, &at.x, &step);
         if (!isfinite(length)) return false;
-        if (length <= near) {
+        if (length <= near || (i > 8 && at.size < nothing)) {
             go(n, &at.x, &step, 1.0, x);
             sp_network_look(n, x, look);
             return true;
         }
-        if (!take(n, &step, pressure, &at, &leaps, look)) return false;
+        double before = at.size;
+        if (take(n, &step, length, pressure, &at, &leaps, look)) continue;
+        if (before > nothing) return false;
+        go(n, &at.x, &step, 1.0, x);
+        sp_network_look(n, x, look);
+        return true;
     }
     return false;
 }

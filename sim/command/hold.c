@@ -156,8 +156,9 @@ const struct sp_verb sp_verb_hold = {
     "vwgncsj",
     "tells where a steady speed settles",
     "Holds a speed at a power, or on a grade, until the car settles, and tells where:\n"
-    "temperatures, room to each limit and to boiling, the hottest air it stands, heat,\n"
-    "flows and pressures; or how long it lasts. Several speeds, powers or grades make\n"
-    "a table. Level road without both; 0 km/h idles. The case's own drive is left\n"
-    "aside, its start is where the hold begins. Status 1: some point is over a limit.",
+    "temperatures, room to each limit and to boiling, the hottest air it stands,\n"
+    "heat, flows and pressures; or how long it lasts. Several speeds, powers or\n"
+    "grades make a table. Without power and grade the road is level; 0 km/h then\n"
+    "idles. The case's own drive is left aside, its start is where the hold begins.\n"
+    "Status 1: some point does not hold.",
     run};

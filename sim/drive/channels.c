@@ -61,6 +61,7 @@ static const char *const event[SP_EVENT_KINDS] = {
     [SP_EV_BOILING] = "coolant boils",
     [SP_EV_BOILING_ENDS] = "boiling ends",
     [SP_EV_PEAK] = "coolant peak",
+    [SP_EV_CHANGE] = "the car changes",
 };
 
 const struct sp_channel_info *sp_channel_at(enum sp_channel c)

@@ -7,10 +7,10 @@
 
 #include "drive/schedule.h"
 
-static const double longest = 6.0 * 3600.0;   /* s that are followed */
+static const double longest = 12.0 * 3600.0;  /* s that are followed */
 static const double slow = 2e-4;              /* K/s: what is slower may be close to its rest */
-static const double close_enough = 0.01;      /* K from where it is to where it will rest */
-static const double far_at_end = 2.0;         /* K: the same when the time is over */
+static const double close_enough = 1e-3;      /* K from its rest: a thermostat with play keeps what overshoots it */
+static const double far_at_end = 0.1;         /* K: the same when the time is over */
 static const double try_again = 120.0, look_again = 300.0; /* s */
 static const double last_stretch = 3600.0;    /* s */
 static const double hottest_coolant = SP_ZERO_C + 500.0, hottest_metal = SP_ZERO_C + 1200.0; /* K: beyond is no car */
@@ -154,6 +154,20 @@ static struct sp_design design_of(const struct sp_design *d, struct sp_step *ste
     return copy;
 }
 
+/* What is said of the one step of the drive is said of the hold. */
+static void pass_on(const struct sp_complaints *from, struct sp_complaints *to)
+{
+    static const char step[] = "drive[0]";
+    for (size_t i = 0; i < from->count; ++i) {
+        const struct sp_complaint *c = &from->list[i];
+        char path[200];
+        bool own = c->path && !strncmp(c->path, step, sizeof step - 1);
+        if (own) snprintf(path, sizeof path, "hold%s", c->path + sizeof step - 1);
+        struct sp_place at = {.file = c->file, .line = c->line, .path = own ? path : c->path, .named_by = c->named_by};
+        sp_complain(to, &at, c->found, c->expected, c->hint);
+    }
+}
+
 /* Power and grade both given: they must mean the same. */
 static bool agree(struct sp_units *u, const struct sp_design *d, const struct sp_hold_wish *w,
                   struct sp_complaints *complaints)
@@ -164,8 +178,10 @@ static bool agree(struct sp_units *u, const struct sp_design *d, const struct sp
     struct sp_step step = step_of(&road);
     struct sp_design copy = design_of(d, &step);
     struct sp_schedule s;
-    struct sp_complaints cautions = {0};
-    enum sp_status status = sp_schedule_build(u, &copy, &s, complaints, &cautions);
+    struct sp_complaints wrong = {0}, cautions = {0};
+    enum sp_status status = sp_schedule_build(u, &copy, &s, &wrong, &cautions);
+    pass_on(&wrong, complaints);
+    sp_complaints_free(&wrong);
     sp_complaints_free(&cautions);
     if (status) return false;
     double asked = s.channel[SP_IN_POWER][0];
@@ -219,6 +235,18 @@ static enum sp_status follow(const struct sp_drive *drive, struct sp_holding *h,
     return h->failed ? SP_NUMERICS : status;
 }
 
+static struct sp_drive *build(struct sp_units *u, const struct sp_design *d, struct sp_complaints *complaints,
+                              struct sp_complaints *cautions)
+{
+    struct sp_complaints wrong = {0}, doubtful = {0};
+    struct sp_drive *drive = sp_drive_build(u, d, &wrong, &doubtful);
+    pass_on(&wrong, complaints);
+    pass_on(&doubtful, cautions);
+    sp_complaints_free(&wrong);
+    sp_complaints_free(&doubtful);
+    return drive;
+}
+
 enum sp_status sp_hold_solve(struct sp_units *u, const struct sp_design *d, const struct sp_hold_wish *w,
                              struct sp_hold_point *out, struct sp_complaints *complaints,
                              struct sp_complaints *cautions)
@@ -229,7 +257,7 @@ enum sp_status sp_hold_solve(struct sp_units *u, const struct sp_design *d, cons
     out->wish = *w;
     out->rest_after = NAN;
     if (!agree(u, d, w, complaints)) return SP_INPUT;
-    struct sp_drive *drive = sp_drive_build(u, &copy, complaints, cautions);
+    struct sp_drive *drive = build(u, &copy, complaints, cautions);
     if (!drive) return SP_INPUT;
     struct sp_holding h;
     enum sp_status status = SP_NUMERICS;

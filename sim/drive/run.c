@@ -98,6 +98,7 @@ static enum sp_status run_all(struct sp_run *r)
         }
         bool jump = last == SIZE_MAX || last + 1 != k || s->flags[last] != s->flags[k];
         r->segment = k;
+        sp_run_change(r);
         bool next_step = last != SIZE_MAX && s->step[last] != s->step[k];
         if (jump || next_step) sp_run_announce(r, last == SIZE_MAX ? k : last);
         if (jump) {
@@ -222,6 +223,35 @@ void sp_result_free(struct sp_result *r)
     memset(r, 0, sizeof *r);
 }
 
+/* A change may not add or take away what is followed: the state vector is the same throughout. */
+static bool same_layout(const struct sp_layout *a, const struct sp_layout *b)
+{
+    bool same = a->count == b->count && a->exchangers == b->exchangers && a->chained == b->chained && a->fans == b->fans &&
+                a->oil == b->oil && a->gearbox == b->gearbox && a->battery == b->battery;
+    for (int e = 0; same && e < a->exchangers; ++e) same = a->exchanger[e].cells == b->exchanger[e].cells;
+    return same;
+}
+
+static bool build_changed(struct sp_drive *drive, struct sp_complaints *complaints)
+{
+    const struct sp_design *d = drive->design;
+    if (!d->changes) return true;
+    struct sp_place at = {.file = d->file, .path = "changes"};
+    drive->changed = calloc(d->changes, sizeof *drive->changed);
+    if (!drive->changed) {
+        sp_complain(complaints, &at, "no memory", "room for the changed designs", NULL);
+        return false;
+    }
+    for (size_t i = 0; i < d->changes; ++i) {
+        drive->changes = i + 1;
+        if (!sp_circuit_build(d->change[i].to, &drive->changed[i], complaints)) return false;
+        if (same_layout(&drive->circuit.layout, &drive->changed[i].layout)) continue;
+        sp_complain(complaints, &at, d->change[i].text, "a change that adds or takes away no core, fan, oil or battery", NULL);
+        return false;
+    }
+    return true;
+}
+
 struct sp_drive *sp_drive_build(struct sp_units *u, const struct sp_design *d, struct sp_complaints *complaints,
                                 struct sp_complaints *cautions)
 {
@@ -232,7 +262,7 @@ struct sp_drive *sp_drive_build(struct sp_units *u, const struct sp_design *d, s
         return NULL;
     }
     drive->design = d;
-    bool good = sp_circuit_build(d, &drive->circuit, complaints);
+    bool good = sp_circuit_build(d, &drive->circuit, complaints) && build_changed(drive, complaints);
     good = sp_schedule_build(u, d, &drive->schedule, complaints, cautions) == SP_OK && good;
     if (good) return drive;
     sp_drive_free(drive);
@@ -243,6 +273,8 @@ void sp_drive_free(struct sp_drive *drive)
 {
     if (!drive) return;
     sp_circuit_free(&drive->circuit);
+    for (size_t i = 0; i < drive->changes; ++i) sp_circuit_free(&drive->changed[i]);
+    free(drive->changed);
     sp_schedule_free(&drive->schedule);
     free(drive);
 }

@@ -10,7 +10,9 @@
 
 struct sp_drive {
     const struct sp_design *design;
-    struct sp_circuit circuit;
+    struct sp_circuit circuit;  /* of the design as it begins */
+    struct sp_circuit *changed; /* of each change's design; as many as the design has changes */
+    size_t changes;
     struct sp_schedule schedule;
 };
 
@@ -19,7 +21,7 @@ struct sp_tracked { double best, time; };
 
 struct sp_run {
     const struct sp_drive *drive;
-    const struct sp_circuit *circuit;
+    const struct sp_circuit *circuit; /* as it is now, and with it circuit->design */
     const struct sp_schedule *schedule;
     struct sp_integrator *integrator;
     struct sp_modes modes;
@@ -43,6 +45,8 @@ struct sp_run {
     struct sp_tracked coolant, gauge, metal, margin, pressure, over_ambient;
     size_t event_room;
     bool lost_event;             /* no memory for one */
+    size_t variant;              /* changes that have happened */
+    double carried;              /* J that changes of the design have put into the heat held */
     bool ledger_open;            /* the sum did not close; the only fault that a smaller tolerance mends */
     struct sp_watched seen;      /* watches as last looked at ... */
     double seen_at;              /* ... at this time; NAN: not valid */
@@ -77,6 +81,9 @@ void sp_run_follow_fan(struct sp_run *r);
 
 /* Step and engine events on entering r->segment, having driven segment `from` before. */
 void sp_run_announce(struct sp_run *r, size_t from);
+
+/* Changes of the design on entering r->segment, each with its event; the state stays. */
+void sp_run_change(struct sp_run *r);
 
 /* ---- peaks and samples: run_track.c, sample.c ---- */
 

@@ -96,6 +96,7 @@ static bool steady_step(struct sp_scheduling *b, size_t i, struct sp_rows *to)
                                 [SP_IN_AMBIENT] = air->ambient,
                                 [SP_IN_PRESSURE] = b->pressure,
                                 [SP_IN_MEASURED] = NAN}};
+    sp_schedule_step_air(step, false, row.in);
     if (step->kind == SP_STEP_IDLE) idle_engine(b, &row);
     if (step->kind == SP_STEP_HOLD && !hold_engine(b, i, &row, &to->table)) return false;
     for (int c = 0; c < SP_INPUTS; c++)
@@ -103,6 +104,7 @@ static bool steady_step(struct sp_scheduling *b, size_t i, struct sp_rows *to)
             sp_schedule_fault(b, i, NULL, "a step whose power or air is no number", "finite values");
             return false;
         }
+    row.flags |= sp_schedule_step_flags(step);
     struct sp_row end = row;
     end.time = step->time;
     if (sp_rows_push(to, &row, (unsigned short)i) && sp_rows_push(to, &end, (unsigned short)i)) return true;
@@ -180,7 +182,8 @@ static void finish(struct sp_scheduling *b)
     if (b->rows.table.rows < 2) {
         b->failed = true;
         sp_complain(b->complaints, &at, "no steps", "a drive that takes some time", NULL);
-    } else if (!sp_schedule_run_on(&b->rows, b->design) || !add_distance(&b->rows.table)) {
+    } else if (!sp_schedule_run_on(&b->rows, b->design) || !sp_schedule_changes(&b->rows, b->design) ||
+               !add_distance(&b->rows.table)) {
         b->failed = true;
         sp_complain(b->complaints, &at, "more rows than memory holds", "fewer rows, or a longer solver.merge",
                     NULL);
@@ -224,6 +227,7 @@ void sp_schedule_free(struct sp_schedule *s)
         free(s->channel[c]);
     free(s->flags);
     free(s->step);
+    free(s->variant);
     for (size_t i = 0; i < s->marks; i++)
         free(s->mark[i].text);
     free(s->mark);

@@ -17,6 +17,8 @@ struct sp_schedule {
     double *channel[SP_INPUTS];
     unsigned char *flags; /* of the segment that begins at the row */
     unsigned short *step; /* index of the drive step the row belongs to */
+    unsigned short *variant; /* how many of the design's changes hold in the segment that begins at the row; NULL: none
+                              * ever */
     struct sp_mark *mark; /* texts by row, from the traces' mark columns */
     size_t marks;
     bool power_from_road; /* power came from the road-load model somewhere */

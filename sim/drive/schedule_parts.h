@@ -3,7 +3,8 @@
  * schedule.c joins the steps, schedule_trace.c makes rows of a trace, schedule_stopped.c finds engine speeds
  * that a log has lost, schedule_engine.c says what the engine does at a row, schedule_merge.c coarsens rows,
  * schedule_run_on.c sets what runs on after a stop, schedule_work.c checks the road load's work,
- * schedule_rows.c holds rows.
+ * schedule_rows.c holds rows, schedule_step.c lays over them what a step says of traffic, key and blower,
+ * schedule_change.c cuts them where the design changes.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_DRIVE_SCHEDULE_PARTS_H
 #define SP_DRIVE_SCHEDULE_PARTS_H
@@ -18,7 +19,8 @@ enum { SP_SCHEDULE_ROWS = 20000000 }; /* most rows of a drive: 3 GB */
 
 /* ---- rows ------------------------------------------------------------------------------------- */
 
-/* A schedule that grows; `table.distance` stays NULL until the end, the flags hold SP_FLAG_ENGINE only. */
+/* A schedule that grows; `table.distance` stays NULL until the end, the flags hold those of engine, key
+ * and bonnet only. */
 struct sp_rows {
     struct sp_schedule table;
     size_t room, mark_room;
@@ -174,6 +176,16 @@ void sp_schedule_add_work(struct sp_scheduling *b, struct sp_schedule *s, const 
                           const struct sp_wheel_power wheel[2], double rise);
 /* A caution when the two differ by more than 0.1 % of the engine's work at the wheels. */
 void sp_schedule_check_work(struct sp_scheduling *b);
+
+/* Flags that a step sets besides the engine's. */
+unsigned char sp_schedule_step_flags(const struct sp_step *step);
+
+/* What a step does to a row's air: the car it follows, the blower. `ambient_told`: the row's ambient comes from the
+ * trace, and holds any warmth already. */
+void sp_schedule_step_air(const struct sp_step *step, bool ambient_told, double in[SP_INPUTS]);
+
+/* A jump at each change of the design, and which variant holds where; the last of all. False: no memory. */
+bool sp_schedule_changes(struct sp_rows *r, const struct sp_design *d);
 
 /* Sets the flags of pump and fan over the whole drive. False: no memory. */
 bool sp_schedule_run_on(struct sp_rows *r, const struct sp_design *d);

@@ -15,6 +15,16 @@ static double window(bool fitted, double time)
     return fitted && time > 0.0 ? time : 0.0;
 }
 
+/* The longest of all fans: while one may run on, all may. */
+static double fans_window(const struct sp_design *d)
+{
+    double longest = 0.0;
+    for (size_t i = 0; i < SP_DUCTS; ++i)
+        for (size_t f = 0; f < SP_FANS; ++f)
+            longest = fmax(longest, window(d->duct[i].fan[f].fitted, d->duct[i].fan[f].run_on));
+    return longest;
+}
+
 /* Goes through the segments and tells since when the engine has been off; NAN while it runs or when it has
  * not run yet in this drive. */
 static double stopped_at(const struct sp_schedule *s, size_t k, bool *running, double stop)
@@ -68,10 +78,11 @@ static void set_flags(struct sp_schedule *s, const struct windows *w)
             continue;
         }
         stop = stopped_at(s, k, &running, stop);
-        unsigned flags = s->flags[k] & SP_FLAG_ENGINE;
+        unsigned flags = s->flags[k] & (SP_FLAG_ENGINE | SP_FLAG_KEY | SP_FLAG_BONNET);
+        bool on = flags & (SP_FLAG_ENGINE | SP_FLAG_KEY);
         double middle = 0.5 * (s->time[k] + s->time[k + 1]);
-        if (flags || middle < stop + w->pump) flags |= SP_FLAG_PUMP;
-        if (flags & SP_FLAG_ENGINE || middle < stop + w->fan) flags |= SP_FLAG_FAN;
+        if (on || middle < stop + w->pump) flags |= SP_FLAG_PUMP;
+        if (on || middle < stop + w->fan) flags |= SP_FLAG_FAN;
         s->flags[k] = (unsigned char)flags;
     }
     if (s->rows > 1) s->flags[s->rows - 1] = s->flags[s->rows - 2];
@@ -80,7 +91,7 @@ static void set_flags(struct sp_schedule *s, const struct windows *w)
 bool sp_schedule_run_on(struct sp_rows *r, const struct sp_design *d)
 {
     struct windows w = {window(d->pump.electric, d->pump.run_on),
-                        window(d->duct[0].fan[0].fitted, d->duct[0].fan[0].run_on)};
+                        fans_window(d)};
     size_t count = find(&r->table, &w, NULL);
     if (count > 0) {
         struct sp_row_insertion *list = malloc(count * sizeof *list);

@@ -256,6 +256,7 @@ static void row_of(struct deriving *v, size_t i, struct sp_row *row, struct sp_w
     row->in[SP_IN_WAKE] = value(v, SP_COL_WAKE, i, 1.0);
     row->in[SP_IN_AMBIENT] = value(v, SP_COL_AMBIENT, i, air->ambient);
     row->in[SP_IN_PRESSURE] = pressure_at(v, i);
+    sp_schedule_step_air(&v->b->design->step[v->step], has(v, SP_COL_AMBIENT), row->in);
     row->in[SP_IN_MEASURED] = value(v, SP_COL_COOLANT, i, NAN);
     struct sp_moment at = {
         .speed = speed,
@@ -291,10 +292,11 @@ static bool runs(const struct deriving *v, size_t i)
 static void push(struct deriving *v, const struct sp_row *row, size_t i, bool running)
 {
     struct sp_row r = *row;
-    r.flags = running ? SP_FLAG_ENGINE : 0;
+    r.flags = (unsigned char)((running ? SP_FLAG_ENGINE : 0) | sp_schedule_step_flags(&v->b->design->step[v->step]));
     if (!running) {
         const enum sp_channel_in dead[] = {SP_IN_HEAT_GAS, SP_IN_HEAT_FRICTION, SP_IN_HEAT_SLOPE,
-                                           SP_IN_ENGINE_SPEED, SP_IN_POWER};
+                                           SP_IN_ENGINE_SPEED, SP_IN_POWER, SP_IN_OIL_HEAT, SP_IN_GEARBOX_HEAT,
+                                           SP_IN_CHARGE_FLOW, SP_IN_CHARGE_HEATING};
         for (size_t k = 0; k < sizeof dead / sizeof *dead; k++)
             r.in[dead[k]] = 0.0;
     }

@@ -20,7 +20,8 @@ static void ledger(struct sp_run *r, const double *start, const double *end)
     out->ledger.in = end[SP_Y_HEAT_IN];
     out->ledger.out_air = end[SP_Y_HEAT_AIR];
     out->ledger.out_skin = end[SP_Y_HEAT_SKIN];
-    out->ledger.stored = sp_circuit_heat_held(r->circuit, end) - sp_circuit_heat_held(r->circuit, start);
+    out->ledger.stored = sp_circuit_heat_held(r->circuit, end) - sp_circuit_heat_held(&r->drive->circuit, start) -
+                         r->carried;
     double turned = fmax(fmax(fabs(out->ledger.in), fabs(out->ledger.out_air + out->ledger.out_skin)),
                          fmax(fabs(out->ledger.stored), 1.0));
     out->ledger.error = (out->ledger.in - out->ledger.out_air - out->ledger.out_skin - out->ledger.stored) / turned;

@@ -43,6 +43,7 @@ static void check_strays(struct sp_reader *r, const struct sp_json *node, size_t
         {"power", SP_STEP_HOLD, "no such key but with hold"},
         {"engine_speed", SP_STEP_HOLD, "no such key but with hold"},
         {"grade", SP_STEP_HOLD, "no such key but with hold"},
+        {"key_on", SP_STEP_SOAK, "no such key but with soak"},
         {"smooth", SP_STEP_TRACE, "no such key but with trace"},
         {"columns", SP_STEP_TRACE, "no such key but with trace"},
         {"layout", SP_STEP_TRACE, "no such key but with trace"},

@@ -77,7 +77,7 @@ static void say_verdict(const struct sp_hold_point *p, FILE *to)
 
 static void say_coolant(const struct sp_hold_point *p, FILE *to)
 {
-    sp_say(to, SP_LABEL_WIDTH, "Coolant", "engine out %s, radiator in %.1f, out %.1f, pump inlet %.1f",
+    sp_say(to, SP_LABEL_WIDTH, "Coolant", "engine out %s; radiator %.1f in, %.1f out; pump inlet %.1f",
            degrees(value(p, SP_CH_ENGINE_OUT)).text, celsius(value(p, SP_CH_RADIATOR_IN)),
            celsius(value(p, SP_CH_RADIATOR_OUT)), celsius(value(p, SP_CH_PUMP_IN)));
     sp_say(to, SP_LABEL_WIDTH, "", "%.1f K over the air ahead of the car", p->air_to_water);
@@ -114,15 +114,15 @@ static void say_limits(const struct sp_hold_point *p, FILE *to)
 static void say_ceiling(const struct sp_hold_report *r, FILE *to)
 {
     const struct sp_hold_point *p = r->point;
-    const char *more = value(p, SP_CH_LIFT) < 1.0 ? "; the thermostat can still open, so it is more" : "";
+    const char *more = value(p, SP_CH_LIFT) < 1.0 ? "; more, as the thermostat can still open" : "";
     if (isfinite(p->ceiling))
-        sp_say(to, SP_LABEL_WIDTH, "", "%s to meet limits.coolant, a degree of air for a degree of coolant%s",
+        sp_say(to, SP_LABEL_WIDTH, "", "%s to meet limits.coolant, a degree for a degree%s",
                degrees(p->ceiling).text, more);
     if (!r->ceiling || isnan(r->ceiling[0])) return;
     if (isinf(r->ceiling[0]))
         sp_say(to, SP_LABEL_WIDTH, "", "solved anew: %s", r->ceiling[0] > 0.0 ? "more than air gets" : "in no air");
     else
-        sp_say(to, SP_LABEL_WIDTH, "", "%s solved anew, with thinner air and the thermostat followed",
+        sp_say(to, SP_LABEL_WIDTH, "", "%s solved anew: thinner air, thermostat followed",
                degrees(r->ceiling[0]).text);
 }
 
@@ -131,7 +131,7 @@ static void say_air_limits(const struct sp_hold_report *r, FILE *to)
     const struct sp_hold_point *p = r->point;
     sp_say(to, SP_LABEL_WIDTH, "Boiling", "at %s where it leaves the engine; least margin %.1f K",
            degrees(p->boiling).text, p->limit[SP_HOLD_BOIL_MARGIN].value);
-    sp_say(to, SP_LABEL_WIDTH, "Hottest air", "%s to boil there; %s with 100 degC for its boiling point (SAE J1393)",
+    sp_say(to, SP_LABEL_WIDTH, "Hottest air", "%s to boil there; %s with 100 degC in its place (SAE J1393)",
            degrees(p->air_to_boil).text, degrees(p->air_to_boil_100).text);
     say_ceiling(r, to);
 }
@@ -139,10 +139,10 @@ static void say_air_limits(const struct sp_hold_report *r, FILE *to)
 static void say_flows(const struct sp_hold_point *p, FILE *to)
 {
     const double litres = 60e3; /* l/min in a m3/s */
-    sp_say(to, SP_LABEL_WIDTH, "Coolant flow", "%.1f l/min, %.1f through the radiator, %.1f bypassed; thermostat %.0f %% open",
+    sp_say(to, SP_LABEL_WIDTH, "Coolant flow", "%.1f l/min; radiator %.1f, bypass %.1f; thermostat %.0f %% open",
            litres * value(p, SP_CH_PUMP_FLOW), litres * value(p, SP_CH_RADIATOR_FLOW),
            litres * value(p, SP_CH_BYPASS_FLOW), 100.0 * value(p, SP_CH_LIFT));
-    sp_say(to, SP_LABEL_WIDTH, "Air", "%.4f kg/s, %.3f m/s at the face, in at %s, out at %.1f",
+    sp_say(to, SP_LABEL_WIDTH, "Air", "%.4f kg/s, %.3f m/s at the face; %s in, %.1f out",
            tidy(value(p, SP_CH_AIR_FLOW), 5e-5), tidy(value(p, SP_CH_FACE_VELOCITY), 5e-4), degrees(p->air_in).text,
            celsius(value(p, SP_CH_AIR_OUT)));
     sp_say(to, SP_LABEL_WIDTH, "Fan", "%.3g of rated speed, %.4g W; asked to run %.3g %% of the time",
@@ -151,7 +151,7 @@ static void say_flows(const struct sp_hold_point *p, FILE *to)
 
 static void say_heat(const struct sp_hold_point *p, FILE *to)
 {
-    sp_say(to, SP_LABEL_WIDTH, "Heat", "%.3f kW in, %.3f to the air in the ducts, %.3f from skins; the sum misses %.1g",
+    sp_say(to, SP_LABEL_WIDTH, "Heat", "%.3f kW in, %.3f to duct air, %.3f by skins; sum misses %.1g",
            p->heat.in / 1e3, p->heat.air / 1e3, p->heat.skin / 1e3, fabs(p->heat.error));
     sp_say(to, SP_LABEL_WIDTH, "Radiator", "%.4g kW a kelvin of coolant in over air in", p->dissipation / 1e3);
     sp_say(to, SP_LABEL_WIDTH, "Drag", "%.2f N", tidy(value(p, SP_CH_DRAG), 5e-3));

