@@ -197,14 +197,16 @@ static inline void draw_duct(gsl_rng *g, struct drawn *x)
     struct sp_duct_design *d = &x->d.duct[0];
     draw_core(g, x);
     double face = d->core[0].width * d->core[0].height;
-    d->inlet = (struct sp_inlet){.area = face * spread(g, 0.1, 1.5), .recovery = gsl_rng_uniform(g), .lip_loss = gsl_rng_uniform(g),
+    d->inlet = (struct sp_inlet){.area = face * spread(g, 0.1, 1.5),
+                                 .recovery = gsl_rng_uniform(g),
+                                 .lip_loss = gsl_rng_uniform(g),
                                  .screen = chance(g, 0.5) ? 0.0 : between(g, 0.0, 3.0)};
     d->diffuser.kind = (enum sp_diffuser_law)gsl_rng_uniform_int(g, 3);
     d->diffuser.loss = gsl_rng_uniform(g);
     d->diffuser.length = between(g, 0.05, 0.8);
     d->diffuser.core_damping = chance(g, 0.5);
     d->exit[0] = (struct sp_exit){face * spread(g, 0.1, 1.5), between(g, 0.0, 2.0), between(g, -0.6, 0.5),
-                               between(g, 0.0, 1.6)};
+                                  between(g, 0.0, 1.6)};
     draw_fan(g, x);
 }
 
@@ -245,9 +247,8 @@ static inline void draw_car(const struct sp_design *base, unsigned long seed, st
 
 /* ---- saying ------------------------------------------------------------------------------------------- */
 
-static inline void show_car(const struct drawn *x)
+static inline void show_car(const struct sp_design *d)
 {
-    const struct sp_design *d = &x->d;
     const struct sp_core *c = &d->duct[0].core[0];
     const struct sp_fan *f = &d->duct[0].fan[0];
     print_error(
@@ -263,12 +264,13 @@ static inline void show_car(const struct drawn *x)
         "  core %.3g x %.3g m, drop law %d, heat law %d, %g cells; inlet %.4g m2 recovery %.3g lip %.3g "
         "screen %.3g; diffuser %d\n",
         c->width, c->height, (int)c->drop_law, (int)c->heat_law, c->cells, d->duct[0].inlet.area,
-        d->duct[0].inlet.recovery, d->duct[0].inlet.lip_loss, d->duct[0].inlet.screen, (int)d->duct[0].diffuser.kind);
+        d->duct[0].inlet.recovery, d->duct[0].inlet.lip_loss, d->duct[0].inlet.screen,
+        (int)d->duct[0].diffuser.kind);
     print_error(
         "  fan %s x%g law %d, static %d, before %d, pairs %zu; exit %.4g m2 loss %.3g Cp %.3g angle %.3g\n",
         f->fitted ? "fitted" : "none", f->count, (int)f->law, f->static_basis, f->before_core,
-        f->curve.pairs.rows, d->duct[0].exit[0].area, d->duct[0].exit[0].loss, d->duct[0].exit[0].pressure_coefficient,
-        d->duct[0].exit[0].angle);
+        f->curve.pairs.rows, d->duct[0].exit[0].area, d->duct[0].exit[0].loss,
+        d->duct[0].exit[0].pressure_coefficient, d->duct[0].exit[0].angle);
     for (size_t i = 0; i < d->steps; ++i)
         print_error("  step %d: %g s, %.4g m/s, %.5g W, %.4g rev/s\n", (int)d->step[i].kind, d->step[i].time,
                     d->step[i].speed, d->step[i].power, d->step[i].engine_speed);

@@ -1,5 +1,5 @@
-/* Random cars with every option at once: several ducts, cores, fans, exits and fluids, and what may be fitted to them.
- * Within the ranges of docs/case-file.md; the car of a seed is the same everywhere.
+/* Random cars with every option at once: several ducts, cores, fans, exits and fluids, and what may be fitted
+ * to them. Within the ranges of docs/case-file.md; the car of a seed is the same everywhere.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #ifndef SP_TESTS_RANDOM_WHOLE_H
 #define SP_TESTS_RANDOM_WHOLE_H
@@ -9,11 +9,13 @@
 enum { WHOLE_CHANGES = 2, WHOLE_KNOTS = 4 };
 
 /* What may still be put in: no more than the circuit follows. */
-struct whole_room { int runs, exchangers, fans; };
+struct whole_room {
+    int runs, exchangers, fans;
+};
 
 struct whole {
-    struct drawn car;                       /* a plain car and its drive */
-    struct drawn part[SP_DUCTS][SP_CORES];  /* cores, fans, inlets with what they point at */
+    struct drawn car;                      /* a plain car and its drive */
+    struct drawn part[SP_DUCTS][SP_CORES]; /* cores, fans, inlets with what they point at */
     struct sp_design d;
     double recovery[SP_DUCTS][2 * WHOLE_KNOTS];
     struct sp_change change[WHOLE_CHANGES];
@@ -157,8 +159,10 @@ static inline void draw_recovery(gsl_rng *g, double *knot, struct sp_table *t)
 static inline void draw_inlet(gsl_rng *g, double *knot, struct sp_inlet *i)
 {
     i->blocked = chance(g, 0.2) ? between(g, 0.0, 0.95) : 0.0;
-    if (chance(g, 0.2)) draw_recovery(g, knot, &i->recovery_table);
-    else if (chance(g, 0.2)) i->layer_thickness = spread(g, 1e-3, 0.1);
+    if (chance(g, 0.2))
+        draw_recovery(g, knot, &i->recovery_table);
+    else if (chance(g, 0.2))
+        i->layer_thickness = spread(g, 1e-3, 0.1);
     i->height = between(g, 0.02, 0.3);
     i->recirculated = chance(g, 0.4) ? between(g, 0.0, 0.5) : 0.0;
     i->recirculation_ends = between(g, 1.0, 30.0);
@@ -231,11 +235,17 @@ static inline void draw_whole_duct(gsl_rng *g, struct whole *w, int duct)
 static inline struct sp_oil draw_oil(gsl_rng *g, double rated_speed)
 {
     double opens = between(g, 340.0, 380.0);
-    struct sp_oil o = {.fitted = true, .volume = spread(g, 0.5e-3, 15e-3), .heat_share = between(g, 0.0, 0.15),
+    struct sp_oil o = {.fitted = true,
+                       .volume = spread(g, 0.5e-3, 15e-3),
+                       .heat_share = between(g, 0.0, 0.15),
                        .friction_share = chance(g, 0.5) ? between(g, 0.0, 0.4) : 0.0,
-                       .block = chance(g, 0.2) ? 0.0 : spread(g, 5.0, 200.0), .skin_standing = between(g, 0.0, 10.0),
-                       .flow = spread(g, 5.0, 100.0) / 60e3, .flow_speed = rated_speed * between(g, 0.3, 1.0),
-                       .plate = chance(g, 0.3) ? spread(g, 20.0, 600.0) : 0.0, .opens = NAN, .full = NAN,
+                       .block = chance(g, 0.2) ? 0.0 : spread(g, 5.0, 200.0),
+                       .skin_standing = between(g, 0.0, 10.0),
+                       .flow = spread(g, 5.0, 100.0) / 60e3,
+                       .flow_speed = rated_speed * between(g, 0.3, 1.0),
+                       .plate = chance(g, 0.3) ? spread(g, 20.0, 600.0) : 0.0,
+                       .opens = NAN,
+                       .full = NAN,
                        .still = chance(g, 0.5) ? 0.0 : between(g, 0.0, 0.3)};
     o.skin_moving = o.skin_standing + between(g, 0.0, 30.0);
     o.flow_most = o.flow * between(g, 0.6, 1.5);
@@ -327,13 +337,27 @@ static inline void draw_change(gsl_rng *g, struct sp_design *d)
 {
     struct sp_duct_design *duct = &d->duct[gsl_rng_uniform_int(g, d->ducts)];
     switch (gsl_rng_uniform_int(g, 7)) {
-    case 0: duct->inlet.blocked = between(g, 0.0, 0.9); break;
-    case 1: duct->core[gsl_rng_uniform_int(g, duct->cores)].blocked = between(g, 0.0, 0.9); break;
-    case 2: duct->fan[0].health = chance(g, 0.5) ? SP_FAN_DEAD : SP_FAN_LOCKED; break;
-    case 3: d->pump.failed = !d->pump.failed; break;
-    case 4: d->tank.lost += spread(g, 0.01e-3, 1e-3); break;
-    case 5: d->hoses.heater_off = !d->hoses.heater_off; break;
-    default: d->thermostat.opens -= 5.0; break;
+    case 0:
+        duct->inlet.blocked = between(g, 0.0, 0.9);
+        break;
+    case 1:
+        duct->core[gsl_rng_uniform_int(g, duct->cores)].blocked = between(g, 0.0, 0.9);
+        break;
+    case 2:
+        duct->fan[0].health = chance(g, 0.5) ? SP_FAN_DEAD : SP_FAN_LOCKED;
+        break;
+    case 3:
+        d->pump.failed = !d->pump.failed;
+        break;
+    case 4:
+        d->tank.lost += spread(g, 0.01e-3, 1e-3);
+        break;
+    case 5:
+        d->hoses.heater_off = !d->hoses.heater_off;
+        break;
+    default:
+        d->thermostat.opens -= 5.0;
+        break;
     }
 }
 
@@ -361,7 +385,8 @@ static inline void draw_whole(const struct sp_design *base, unsigned long seed, 
     memset(w, 0, sizeof *w);
     gsl_rng_set(g, seed + 1000000);
     draw_car(base, seed, &w->car);
-    for (int i = 0; i < SP_DUCTS * SP_CORES; ++i) w->part[i / SP_CORES][i % SP_CORES].d = *base;
+    for (int i = 0; i < SP_DUCTS * SP_CORES; ++i)
+        w->part[i / SP_CORES][i % SP_CORES].d = *base;
     w->left = (struct whole_room){6, 8, 6};
     w->d = w->car.d;
     draw_fluids(g, &w->d);
@@ -370,7 +395,8 @@ static inline void draw_whole(const struct sp_design *base, unsigned long seed, 
     draw_more_engine(g, &w->d);
     double x = gsl_rng_uniform(g);
     w->d.ducts = x < 0.5 ? 1 : x < 0.75 ? 2 : x < 0.9 ? 3 : 4;
-    for (int i = 0; i < (int)w->d.ducts; ++i) draw_whole_duct(g, w, i);
+    for (int i = 0; i < (int)w->d.ducts; ++i)
+        draw_whole_duct(g, w, i);
     draw_more_steps(g, w);
     draw_changes(g, w);
     gsl_rng_free(g);
@@ -381,16 +407,18 @@ static inline void show_whole(const struct whole *w)
 {
     static const char *const carries[] = {"coolant", "oil", "gearbox", "charge", "load"};
     const struct sp_design *d = &w->d;
-    show_car(&w->car);
-    print_error("  oil %d gearbox %d charge %d; pump law %d failed %d npsh %.3g; restrictor %.3g inlet side %d heater %.3g "
+    show_car(&w->d);
+    print_error("  oil %d gearbox %d charge %d; pump law %d failed %d npsh %.3g; restrictor %.3g inlet side "
+                "%d heater %.3g "
                 "bleed bore %.3g; %zu changes\n",
-                d->oil.fitted, d->gearbox.fitted, d->charge.fitted, (int)d->pump.law, d->pump.failed, d->pump.npsh,
-                d->thermostat.restrictor, d->thermostat.inlet_side, d->hoses.heater.flow, d->tank.bleed_bore, d->changes);
+                d->oil.fitted, d->gearbox.fitted, d->charge.fitted, (int)d->pump.law, d->pump.failed,
+                d->pump.npsh, d->thermostat.restrictor, d->thermostat.inlet_side, d->hoses.heater.flow,
+                d->tank.bleed_bore, d->changes);
     for (size_t i = 0; i < d->ducts; ++i) {
         const struct sp_duct_design *k = &d->duct[i];
-        print_error("  duct %zu: x%g%s, %zu exits, inlet %.3g m2 recirculated %.2g, leaks %.3g %.3g, cores", i, k->count,
-                    k->in_series ? " in series" : "", k->exits, k->inlet.area, k->inlet.recirculated,
-                    fmax(k->past_core.area, k->past_core.gap * k->past_core.length),
+        print_error("  duct %zu: x%g%s, %zu exits, inlet %.3g m2 recirculated %.2g, leaks %.3g %.3g, cores",
+                    i, k->count, k->in_series ? " in series" : "", k->exits, k->inlet.area,
+                    k->inlet.recirculated, fmax(k->past_core.area, k->past_core.gap * k->past_core.length),
                     fmax(k->outside.area, k->outside.gap * k->outside.length));
         for (size_t j = 0; j < k->cores; ++j)
             print_error(" %s%s[%.2g %.2g]", carries[k->core[j].carries], k->core[j].in_series ? " again" : "",

@@ -77,7 +77,7 @@ static bool turn_down(struct sp_network *easy, double *knob, double last, struct
 /* Flows alone, at the temperatures of x: every loss rises with its flow, so that there is one answer (but for fans
  * whose total pressure rises with flow). From linear losses to the true ones, with fans whose curves fall for sure
  * and inlets that resist; then to what these are. */
-static bool find_flows(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+static bool fall_to_flows(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
 {
     struct sp_network easy = *n;
     easy.frozen = true;
@@ -85,6 +85,34 @@ static bool find_flows(const struct sp_network *n, struct sp_net_state *x, struc
     easy.speck = 1.0;
     return sp_network_newton(&easy, x, look) && turn_down(&easy, &easy.p.floor, n->p.floor, x, look) &&
            turn_down(&easy, &easy.speck, n->speck, x, look);
+}
+
+/* Parallel fans whose total pressure rises with flow settle with some of them ahead and some back: bit i of `which`
+ * says that fan i starts back. */
+static void set_fans(const struct sp_network *n, unsigned which, struct sp_net_state *x)
+{
+    for (int b = 0; b < n->branches; ++b) {
+        const struct sp_branch *branch = &n->p.duct->branch[b];
+        if (branch->kind != SP_BRANCH_FAN) continue;
+        const struct sp_fan_ready *f = &n->p.duct->fan[branch->index];
+        double free = n->p.density * f->curve.free_flow * f->design->count;
+        x->flow[b] = which >> branch->index & 1u ? -0.7 * free : 1.3 * free;
+    }
+}
+
+static bool find_flows(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+{
+    struct sp_network wild = *n;
+    wild.frozen = wild.wild = true;
+    if (fall_to_flows(n, x, look)) return true;
+    for (unsigned which = 0; which < 1u << SP_FANS; ++which) {
+        struct sp_net_state next = *x;
+        set_fans(n, which, &next);
+        if (!sp_network_newton(&wild, &next, look)) continue;
+        *x = next;
+        return true;
+    }
+    return false;
 }
 
 /* Temperatures by a share of the way to what the flows mix. */

@@ -18,8 +18,10 @@ struct question {
     struct sp_complaints complaints, cautions;
 };
 
-static const struct sp_wanted wanted_speed = {"--speed", SP_K_SPEED, 0.0, 150.0, "0 km/h to 540 km/h, as \"80 km/h\""};
-static const struct sp_wanted wanted_power = {"--power", SP_K_POWER, -1e6, 5e6, "-1 MW to 5 MW, as \"30 kW\""};
+static const struct sp_wanted wanted_speed = {"--speed", SP_K_SPEED, 0.0, 150.0,
+                                              "0 km/h to 540 km/h, as \"80 km/h\""};
+static const struct sp_wanted wanted_power = {"--power", SP_K_POWER, -1e6, 5e6,
+                                              "-1 MW to 5 MW, as \"30 kW\""};
 static const struct sp_wanted wanted_grade = {"--grade", SP_K_NUMBER, -0.5, 0.5, "-50 % to 50 %, as \"7 %\""};
 static const struct sp_wanted wanted_turns = {"--engine-speed", SP_K_ROTATION, 0.0, 500.0,
                                               "0 rpm to 30000 rpm, as \"3000 rpm\""};
@@ -34,7 +36,8 @@ static bool complain(struct question *q, const char *option, const char *found, 
 /* ---- reading --------------------------------------------------------------------------------------- */
 
 /* The i-th of a list; NAN in an empty one. */
-static bool read_one(struct question *q, const struct sp_wanted *w, const struct sp_texts *from, size_t i, double *si)
+static bool read_one(struct question *q, const struct sp_wanted *w, const struct sp_texts *from, size_t i,
+                     double *si)
 {
     *si = NAN;
     return !from->count || sp_argument_quantity(q->units, w, from->list[i], si, &q->complaints);
@@ -70,8 +73,10 @@ static bool read_question(struct question *q)
     double engine_speed = NAN;
     if (!a->speeds.count) return complain(q, "--speed", "none", "at least one speed, as --speed \"80 km/h\"");
     if (a->powers.count && a->grades.count && a->powers.count + a->grades.count > 2)
-        return complain(q, "--grade", "several with --power", "one power and one grade that mean the same, or one kind");
-    if (a->engine_speed && !sp_argument_quantity(q->units, &wanted_turns, a->engine_speed, &engine_speed, &q->complaints))
+        return complain(q, "--grade", "several with --power",
+                        "one power and one grade that mean the same, or one kind");
+    if (a->engine_speed &&
+        !sp_argument_quantity(q->units, &wanted_turns, a->engine_speed, &engine_speed, &q->complaints))
         return false;
     q->points = a->speeds.count * at_least_one(a->powers.count) * at_least_one(a->grades.count);
     q->wish = calloc(q->points, sizeof *q->wish);
@@ -114,7 +119,8 @@ static bool wrong(enum sp_status s)
 static enum sp_status solve_point(struct question *q, const struct sp_design *d, size_t i)
 {
     struct sp_complaints cautions = {0};
-    enum sp_status status = sp_hold_solve(q->units, d, &q->wish[i], &q->point[i], &q->complaints, &cautions), other;
+    enum sp_status status = sp_hold_solve(q->units, d, &q->wish[i], &q->point[i], &q->complaints, &cautions),
+                   other;
     add_new(&q->cautions, &cautions);
     sp_complaints_free(&cautions);
     if (wrong(status) || !q->arguments->ceiling) return status;
@@ -139,8 +145,8 @@ static enum sp_status run(const struct sp_arguments *a)
 {
     struct question q = {.arguments = a, .units = sp_units_open()};
     bool good = read_question(&q);
-    struct sp_design *d = sp_case_read(q.units, a->operand, a->sets.list, a->sets.count, SP_FOR_DRIVE, &q.complaints,
-                                       &q.cautions);
+    struct sp_design *d = sp_case_read(q.units, a->operand, a->sets.list, a->sets.count, SP_FOR_DRIVE,
+                                       &q.complaints, &q.cautions);
     enum sp_status status = good && d ? solve_all(&q, d) : SP_INPUT;
     sp_design_free(d);
     sp_units_close(q.units);

@@ -1,4 +1,5 @@
-/* A hold: followed until it rests, swings or runs away, and judged. SPDX-License-Identifier: GPL-3.0-or-later */
+/* A hold: followed until it rests, swings or runs away, and judged. SPDX-License-Identifier: GPL-3.0-or-later
+ */
 #include "drive/hold.h"
 
 #include <math.h>
@@ -7,15 +8,17 @@
 
 #include "drive/schedule.h"
 
-static const double longest = 12.0 * 3600.0;  /* s that are followed */
-static const double slow = 2e-4;              /* K/s: what is slower may be close to its rest */
-static const double close_enough = 1e-3;      /* K from its rest: a thermostat with play keeps what overshoots it */
-static const double far_at_end = 0.1;         /* K: the same when the time is over */
+static const double longest = 12.0 * 3600.0; /* s that are followed */
+static const double slow = 2e-4;             /* K/s: what is slower may be close to its rest */
+static const double close_enough =
+    1e-3;                             /* K from its rest: a thermostat with play keeps what overshoots it */
+static const double far_at_end = 0.1; /* K: the same when the time is over */
 static const double try_again = 120.0, look_again = 300.0; /* s */
-static const double last_stretch = 3600.0;    /* s */
-static const double hottest_coolant = SP_ZERO_C + 500.0, hottest_metal = SP_ZERO_C + 1200.0; /* K: beyond is no car */
-static const double within = 1.0;             /* K: coolant counts as come to rest */
-static const double same_power = 0.01;        /* of power and of what the grade asks for */
+static const double last_stretch = 3600.0;                 /* s */
+static const double hottest_coolant = SP_ZERO_C + 500.0,
+                    hottest_metal = SP_ZERO_C + 1200.0; /* K: beyond is no car */
+static const double within = 1.0;                       /* K: coolant counts as come to rest */
+static const double same_power = 0.01;                  /* of power and of what the grade asks for */
 
 /* ---- the end of the way ---------------------------------------------------------------------------- */
 
@@ -23,7 +26,8 @@ static const double same_power = 0.01;        /* of power and of what the grade 
 static double rest_after(const struct sp_holding *h, double T)
 {
     size_t i = h->records;
-    while (i > 0 && fabs(h->record[i - 1].value[SP_HOLD_COOLANT] - T) <= within) --i;
+    while (i > 0 && fabs(h->record[i - 1].value[SP_HOLD_COOLANT] - T) <= within)
+        --i;
     return i < h->records ? h->record[i].time : NAN;
 }
 
@@ -42,7 +46,8 @@ static bool settles(struct sp_holding *h, struct sp_run *r)
     double value[SP_HOLD_LIMITS], T = h->state[SP_Y_JACKET];
     bool fan = h->record[h->records - 1].fan;
     if (!sp_hold_values(r, r->time, h->state, value)) return false;
-    for (int j = 0; j < SP_HOLD_LIMITS; ++j) h->out->limit[j].value = value[j];
+    for (int j = 0; j < SP_HOLD_LIMITS; ++j)
+        h->out->limit[j].value = value[j];
     h->out->rest_after = rest_after(h, T);
     h->out->coolant.least = h->out->coolant.most = h->out->coolant.mean = T;
     h->out->coolant.period = 0.0;
@@ -50,7 +55,8 @@ static bool settles(struct sp_holding *h, struct sp_run *r)
     return describe(h, r, h->state, SP_HOLD_SETTLES);
 }
 
-static bool ends(struct sp_holding *h, struct sp_run *r, const struct sp_hold_cycle *c, enum sp_hold_kind kind)
+static bool ends(struct sp_holding *h, struct sp_run *r, const struct sp_hold_cycle *c,
+                 enum sp_hold_kind kind)
 {
     sp_hold_sum_up(h, c, h->out);
     return describe(h, r, sp_integrator_state(r->integrator), kind);
@@ -138,9 +144,14 @@ bool sp_hold_step(void *context, struct sp_run *r, double from)
 static struct sp_step step_of(const struct sp_hold_wish *w)
 {
     bool idles = w->speed == 0.0 && isnan(w->power) && isnan(w->engine_speed);
-    return (struct sp_step){.kind = idles ? SP_STEP_IDLE : SP_STEP_HOLD, .time = longest, .speed = w->speed,
-                            .power = w->power, .engine_speed = w->engine_speed, .repeat = 1.0,
-                            .grade = isnan(w->grade) ? 0.0 : w->grade, .following = NAN};
+    return (struct sp_step){.kind = idles ? SP_STEP_IDLE : SP_STEP_HOLD,
+                            .time = longest,
+                            .speed = w->speed,
+                            .power = w->power,
+                            .engine_speed = w->engine_speed,
+                            .repeat = 1.0,
+                            .grade = isnan(w->grade) ? 0.0 : w->grade,
+                            .following = NAN};
 }
 
 /* The design with nothing but this hold to drive. */
@@ -163,7 +174,8 @@ static void pass_on(const struct sp_complaints *from, struct sp_complaints *to)
         char path[200];
         bool own = c->path && !strncmp(c->path, step, sizeof step - 1);
         if (own) snprintf(path, sizeof path, "hold%s", c->path + sizeof step - 1);
-        struct sp_place at = {.file = c->file, .line = c->line, .path = own ? path : c->path, .named_by = c->named_by};
+        struct sp_place at = {
+            .file = c->file, .line = c->line, .path = own ? path : c->path, .named_by = c->named_by};
         sp_complain(to, &at, c->found, c->expected, c->hint);
     }
 }
@@ -189,10 +201,10 @@ static bool agree(struct sp_units *u, const struct sp_design *d, const struct sp
     if (fabs(asked - w->power) <= same_power * fmax(fabs(asked), fabs(w->power))) return true;
     char found[120], expected[120];
     struct sp_place at = {.file = d->file, .path = "--power"};
-    snprintf(found, sizeof found, "%.4g kW with a grade of %.4g %% at %.4g km/h", w->power / 1e3, 100.0 * w->grade,
-             3.6 * w->speed);
-    snprintf(expected, sizeof expected, "%.4g kW, which the road load asks for there; or one of the two alone",
-             asked / 1e3);
+    snprintf(found, sizeof found, "%.4g kW with a grade of %.4g %% at %.4g km/h", w->power / 1e3,
+             100.0 * w->grade, 3.6 * w->speed);
+    snprintf(expected, sizeof expected,
+             "%.4g kW, which the road load asks for there; or one of the two alone", asked / 1e3);
     sp_complain(complaints, &at, found, expected, NULL);
     return false;
 }
@@ -214,7 +226,8 @@ static bool ran_away(const struct sp_holding *h)
     return h->records > 1 && h->record[h->records - 1].value[SP_HOLD_COOLANT] > surely;
 }
 
-static enum sp_status follow(const struct sp_drive *drive, struct sp_holding *h, struct sp_complaints *complaints)
+static enum sp_status follow(const struct sp_drive *drive, struct sp_holding *h,
+                             struct sp_complaints *complaints)
 {
     struct sp_run_hook hook = {h, sp_hold_step};
     struct sp_run_options options = {.interval = longest};
@@ -267,7 +280,8 @@ enum sp_status sp_hold_solve(struct sp_units *u, const struct sp_design *d, cons
     sp_drive_free(drive);
     if (status == SP_NUMERICS && !complaints->count) {
         struct sp_place at = {.file = d->file};
-        sp_complain(complaints, &at, "no solution of a held speed", "one; please send this case to the maintainers", NULL);
+        sp_complain(complaints, &at, "no solution of a held speed",
+                    "one; please send this case to the maintainers", NULL);
     }
     if (status == SP_NUMERICS || status == SP_INPUT) return status;
     return out->holds ? SP_OK : SP_NOT;

@@ -27,10 +27,10 @@ struct sp_holding {
     double *state, *rates, *hottest; /* n each; owned by sp_hold_solve */
     double next_look, next_try;      /* s: when to look for a cycle, to solve for rest */
     struct sp_hold_cycle cycle;
-    double watch_until;              /* s: end of the cycle whose hottest moment is sought; NAN: not yet */
-    double hottest_at;               /* K */
+    double watch_until; /* s: end of the cycle whose hottest moment is sought; NAN: not yet */
+    double hottest_at;  /* K */
     struct sp_modes hottest_modes;
-    bool failed;                     /* no memory */
+    bool failed; /* no memory */
 };
 
 /* Called after each step of the run; true when all is known. */
@@ -38,7 +38,8 @@ bool sp_hold_step(void *context, struct sp_run *r, double from);
 
 /* ---- hold_watch.c: the way ---- */
 
-/* Records the step that began at `from`, and when limits were passed in it. False: no memory, or no solution. */
+/* Records the step that began at `from`, and when limits were passed in it. False: no memory, or no solution.
+ */
 bool sp_hold_note(struct sp_holding *h, struct sp_run *r, double from);
 
 /* Looks for a lasting cycle in the last half of the way: its first and its last round are the same. */
@@ -52,9 +53,9 @@ void sp_hold_sum_up(const struct sp_holding *h, const struct sp_hold_cycle *c, s
 
 /* ---- hold_steady.c ---- */
 
-/* Solves rates(y) = 0 from y with the modes as they are: by Powell's hybrid method (GSL) over all states that feed
- * back, but for the air and the liquid in the tank, which stay. False, y as it was, when it does not come to rest.
- * *moved gets the largest change [K]. */
+/* Solves rates(y) = 0 from y with the modes as they are: by Powell's hybrid method (GSL) over all states that
+ * feed back, but for the air and the liquid in the tank, which stay. False, y as it was, when it does not
+ * come to rest. *moved gets the largest change [K]. */
 bool sp_hold_steady(struct sp_run *r, double *y, double *moved);
 
 /* Is state i one that comes to rest? */
@@ -69,7 +70,7 @@ enum sp_status sp_hold_describe(struct sp_run *r, const double *y, struct sp_hol
 bool sp_hold_values(struct sp_run *r, double t, const double *y, double value[SP_HOLD_LIMITS]);
 
 /* How far beyond its limit a value is, K; negative within it, NAN without one. */
-double sp_hold_beyond(const struct sp_hold_limit *l, enum sp_hold_judged j, double value);
+double sp_hold_beyond(const struct sp_hold_limit *l, int judged, double value);
 
 /* Keys and limits of the design; nothing passed yet. */
 void sp_hold_limits(const struct sp_design *d, struct sp_hold_limit limit[SP_HOLD_LIMITS]);

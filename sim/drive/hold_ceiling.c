@@ -7,7 +7,7 @@
 
 static const double coldest[2] = {SP_ZERO_C - 60.0, SP_ZERO_C - 45.0}; /* K: of air.ambient; of moist air */
 static const double hottest[2] = {SP_ZERO_C + 70.0, SP_ZERO_C + 59.8};
-static const double fine = 1e-3;                                            /* K */
+static const double fine = 1e-3;       /* K */
 static const double hopeless = 1000.0; /* K beyond its limit: what runs away counts as */
 enum { TRIALS = 60 };
 
@@ -16,8 +16,8 @@ struct search {
     const struct sp_design *design;
     const struct sp_hold_wish *wish;
     struct sp_complaints *complaints;
-    enum sp_status status;  /* of the last trial; SP_OK and SP_NOT alike are fine */
-    double nearest, near;   /* K: the trial that came nearest, and how near */
+    enum sp_status status; /* of the last trial; SP_OK and SP_NOT alike are fine */
+    double nearest, near;  /* K: the trial that came nearest, and how near */
 };
 
 /* Room to the coolant's limit [K] at an ambient: falls. */
@@ -70,7 +70,9 @@ enum sp_status sp_hold_ceiling(struct sp_units *u, const struct sp_design *d, co
         *ambient = low < 0.0 ? -INFINITY : INFINITY;
         return SP_NOT;
     }
-    *ambient = low == 0.0 ? coldest[moist] : high == 0.0 ? hottest[moist] : between(&s, coldest[moist], hottest[moist]);
+    *ambient = low == 0.0    ? coldest[moist]
+               : high == 0.0 ? hottest[moist]
+                             : between(&s, coldest[moist], hottest[moist]);
     if (s.status == SP_INPUT || s.status == SP_NUMERICS) return s.status;
     return isnan(*ambient) ? SP_NUMERICS : SP_OK;
 }

@@ -11,7 +11,10 @@ static const double fixed_boiling = SP_ZERO_C + 100.0; /* SAE J1393 */
 void sp_hold_limits(const struct sp_design *d, struct sp_hold_limit limit[SP_HOLD_LIMITS])
 {
     const struct sp_limits *l = &d->limits;
-    const struct { const char *key; double limit; } all[SP_HOLD_LIMITS] = {
+    const struct {
+        const char *key;
+        double limit;
+    } all[SP_HOLD_LIMITS] = {
         [SP_HOLD_COOLANT] = {"limits.coolant", l->coolant.stop},
         [SP_HOLD_GAUGE] = {"limits.gauge", l->gauge.stop},
         [SP_HOLD_METAL] = {"limits.metal", l->metal.stop},
@@ -23,10 +26,10 @@ void sp_hold_limits(const struct sp_design *d, struct sp_hold_limit limit[SP_HOL
         limit[j] = (struct sp_hold_limit){all[j].key, all[j].limit, NAN, NAN, INFINITY};
 }
 
-double sp_hold_beyond(const struct sp_hold_limit *l, enum sp_hold_judged j, double value)
+double sp_hold_beyond(const struct sp_hold_limit *l, int judged, double value)
 {
     if (!isfinite(l->limit)) return NAN;
-    return j == SP_HOLD_BOIL_MARGIN ? l->limit - value : value - l->limit;
+    return judged == SP_HOLD_BOIL_MARGIN ? l->limit - value : value - l->limit;
 }
 
 bool sp_hold_values(struct sp_run *r, double t, const double *y, double value[SP_HOLD_LIMITS])
@@ -110,8 +113,8 @@ static void describe_ducts(const struct sp_circuit *c, const struct sp_inputs *i
     }
 }
 
-static void describe_heat(struct sp_run *r, const struct sp_inputs *in, const double *y, const struct sp_coupling *k,
-                          struct sp_hold_point *out)
+static void describe_heat(struct sp_run *r, const struct sp_inputs *in, const double *y,
+                          const struct sp_coupling *k, struct sp_hold_point *out)
 {
     if (out->kind == SP_HOLD_SETTLES) {
         sp_circuit_rates(r->circuit, in, &r->modes, y, k, r->scratch);
@@ -135,7 +138,9 @@ static void describe_measures(const struct sp_circuit *c, const struct sp_inputs
     out->air_to_water = hot - ambient;
     out->air_to_boil = out->boiling - out->air_to_water;
     out->air_to_boil_100 = fixed_boiling - out->air_to_water;
-    out->ceiling = isfinite(out->limit[SP_HOLD_COOLANT].limit) ? out->limit[SP_HOLD_COOLANT].limit - out->air_to_water : NAN;
+    out->ceiling = isfinite(out->limit[SP_HOLD_COOLANT].limit)
+                       ? out->limit[SP_HOLD_COOLANT].limit - out->air_to_water
+                       : NAN;
     out->dissipation = heat / (y[c->layout.core - 1] - out->air_in);
 }
 

@@ -8,9 +8,10 @@
 #include "drive/hold.h"
 
 static const double coldest = 150.0, hottest = 5000.0; /* K: as the integrator has it */
-static const double rest = 1e-9;      /* K: largest imbalance of any state over its own stiffness */
+static const double rest = 1e-9;        /* K: largest imbalance of any state over its own stiffness */
 static const double good_enough = 1e-7; /* K, where rounding lets it come no further */
-static const double shift = 1e-8;     /* 1/s taken off the Jacobian: heat that goes nowhere keeps it from being singular */
+static const double shift =
+    1e-8; /* 1/s taken off the Jacobian: heat that goes nowhere keeps it from being singular */
 enum { ITERATIONS = 40 };
 
 /* The unknowns and what their equations need; all arrays lie in one block. */
@@ -20,8 +21,8 @@ struct steady {
     struct sp_inputs in;
     struct sp_guesses guesses;
     int states, unknowns;
-    int *index;                             /* state of each unknown */
-    double *y, *f, *scale, *work, *block;   /* scale: s, of each unknown */
+    int *index;                           /* state of each unknown */
+    double *y, *f, *scale, *work, *block; /* scale: s, of each unknown */
     double **column, *mean[2 * SP_EXCHANGERS];
 };
 
@@ -35,7 +36,8 @@ static bool open_steady(struct steady *s, struct sp_run *r, const double *y)
 {
     const struct sp_layout *l = &r->circuit->layout;
     size_t n = (size_t)l->count, means = 2 * (size_t)l->exchangers;
-    *s = (struct steady){.circuit = r->circuit, .modes = &r->modes, .guesses = r->guesses, .states = l->count};
+    *s =
+        (struct steady){.circuit = r->circuit, .modes = &r->modes, .guesses = r->guesses, .states = l->count};
     sp_schedule_at(r->schedule, r->segment, r->time, &s->in);
     s->index = calloc(n, sizeof *s->index);
     s->column = calloc(n, sizeof *s->column);
@@ -45,8 +47,10 @@ static bool open_steady(struct steady *s, struct sp_run *r, const double *y)
     s->f = s->y + n;
     s->scale = s->f + n;
     s->work = s->scale + n;
-    for (size_t j = 0; j < n; ++j) s->column[j] = s->work + (3 + j) * n;
-    for (size_t m = 0; m < means; ++m) s->mean[m] = s->work + (3 + n + m) * n;
+    for (size_t j = 0; j < n; ++j)
+        s->column[j] = s->work + (3 + j) * n;
+    for (size_t m = 0; m < means; ++m)
+        s->mean[m] = s->work + (3 + n + m) * n;
     memcpy(s->y, y, n * sizeof *y);
     for (int i = 0; i < l->count; ++i)
         if (sp_hold_rests(l, i)) s->index[s->unknowns++] = i;
@@ -83,7 +87,8 @@ static int imbalance(const gsl_vector *x, void *context, gsl_vector *f)
     sp_circuit_signals(s->circuit, &s->in, s->y, &signals);
     if (sp_circuit_couple(s->circuit, &s->in, s->modes, &signals, &s->guesses, &k)) return GSL_EFAILED;
     sp_circuit_rates(s->circuit, &s->in, s->modes, s->y, &k, s->f);
-    for (int a = 0; a < s->unknowns; ++a) gsl_vector_set(f, (size_t)a, s->scale[a] * s->f[s->index[a]]);
+    for (int a = 0; a < s->unknowns; ++a)
+        gsl_vector_set(f, (size_t)a, s->scale[a] * s->f[s->index[a]]);
     return GSL_SUCCESS;
 }
 
@@ -103,9 +108,11 @@ static void spread_means(struct steady *s)
 
 static bool differentiate(struct steady *s)
 {
-    if (sp_circuit_jacobian(s->circuit, &s->in, s->modes, s->y, &s->guesses, s->column, s->mean, s->work)) return false;
+    if (sp_circuit_jacobian(s->circuit, &s->in, s->modes, s->y, &s->guesses, s->column, s->mean, s->work))
+        return false;
     spread_means(s);
-    for (int i = 0; i < s->states; ++i) s->column[i][i] -= shift;
+    for (int i = 0; i < s->states; ++i)
+        s->column[i][i] -= shift;
     return true;
 }
 
@@ -132,7 +139,8 @@ static int both(const gsl_vector *x, void *context, gsl_vector *f, gsl_matrix *J
 static bool set_scale(struct steady *s)
 {
     if (!differentiate(s)) return false;
-    for (int a = 0; a < s->unknowns; ++a) s->scale[a] = 1.0 / fabs(s->column[s->index[a]][s->index[a]]);
+    for (int a = 0; a < s->unknowns; ++a)
+        s->scale[a] = 1.0 / fabs(s->column[s->index[a]][s->index[a]]);
     return true;
 }
 
@@ -150,7 +158,8 @@ static bool iterate(struct steady *s, gsl_multiroot_fdfsolver *solver, gsl_vecto
 {
     size_t n = (size_t)s->unknowns;
     gsl_multiroot_function_fdf problem = {imbalance, slopes, both, n, s};
-    for (size_t a = 0; a < n; ++a) gsl_vector_set(x, a, s->y[s->index[a]]);
+    for (size_t a = 0; a < n; ++a)
+        gsl_vector_set(x, a, s->y[s->index[a]]);
     if (gsl_multiroot_fdfsolver_set(solver, &problem, x) != GSL_SUCCESS) return false;
     for (int i = 0; i < ITERATIONS && worst(solver->f) > rest; ++i)
         if (gsl_multiroot_fdfsolver_iterate(solver) != GSL_SUCCESS) break;

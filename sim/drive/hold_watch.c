@@ -1,13 +1,14 @@
-/* A hold on its way to rest: what is kept of it, and whether it swings. SPDX-License-Identifier: GPL-3.0-or-later */
+/* A hold on its way to rest: what is kept of it, and whether it swings. SPDX-License-Identifier:
+ * GPL-3.0-or-later */
 #include <math.h>
 #include <stdlib.h>
 
 #include "drive/hold.h"
 
-enum { POINTS = 4 };                    /* looked at in each step of the integrator */
-static const double least_swing = 0.02; /* K: less is rest */
+enum { POINTS = 4 };                                       /* looked at in each step of the integrator */
+static const double least_swing = 0.02;                    /* K: less is rest */
 static const double same_value = 0.01, same_period = 0.02; /* of a cycle's range, of its period: it lasts */
-static const double same_kelvin = 0.005; /* K, on top */
+static const double same_kelvin = 0.005;                   /* K, on top */
 
 /* ---- recording ------------------------------------------------------------------------------------- */
 
@@ -39,13 +40,16 @@ static double when_passed(struct sp_holding *h, struct sp_run *r, int j, double 
         double mid = 0.5 * (low + high);
         if (!sp_integrator_look_back(r->integrator, mid, 0, h->state)) break;
         if (!sp_hold_values(r, mid, h->state, value)) break;
-        if (sp_hold_beyond(limit, j, value[j]) > 0.0) high = mid;
-        else low = mid;
+        if (sp_hold_beyond(limit, j, value[j]) > 0.0)
+            high = mid;
+        else
+            low = mid;
     }
     return high;
 }
 
-static void note_limits(struct sp_holding *h, struct sp_run *r, double before, const struct sp_hold_record *now)
+static void note_limits(struct sp_holding *h, struct sp_run *r, double before,
+                        const struct sp_hold_record *now)
 {
     for (int j = 0; j < SP_HOLD_LIMITS; ++j) {
         struct sp_hold_limit *limit = &h->out->limit[j];
@@ -59,7 +63,8 @@ static bool note_at(struct sp_holding *h, struct sp_run *r, double before, doubl
     struct sp_inputs in;
     struct sp_hold_record now = {.time = t};
     const double *y = h->state;
-    if (!sp_integrator_look_back(r->integrator, t, 0, h->state) || !sp_hold_values(r, t, y, now.value)) return false;
+    if (!sp_integrator_look_back(r->integrator, t, 0, h->state) || !sp_hold_values(r, t, y, now.value))
+        return false;
     sp_schedule_at(r->schedule, r->segment, t, &in);
     now.in = y[SP_Y_HEAT_IN];
     now.air = y[SP_Y_HEAT_AIR];
@@ -68,7 +73,8 @@ static bool note_at(struct sp_holding *h, struct sp_run *r, double before, doubl
     if (!isnan(h->watch_until) && now.value[SP_HOLD_COOLANT] > h->hottest_at) {
         h->hottest_at = now.value[SP_HOLD_COOLANT];
         h->hottest_modes = r->modes;
-        for (int i = 0; i < r->circuit->layout.count; ++i) h->hottest[i] = y[i];
+        for (int i = 0; i < r->circuit->layout.count; ++i)
+            h->hottest[i] = y[i];
     }
     struct sp_hold_record *place = next_record(h);
     if (!place) return false;
@@ -98,7 +104,9 @@ static double coolant(const struct sp_holding *h, size_t i)
 }
 
 /* Least, most and mean of the coolant over records first to last. */
-struct range { double least, most, mean; };
+struct range {
+    double least, most, mean;
+};
 
 static struct range range_of(const struct sp_holding *h, size_t first, size_t last)
 {
@@ -117,12 +125,17 @@ static struct range range_of(const struct sp_holding *h, size_t first, size_t la
 static size_t first_after(const struct sp_holding *h, double time)
 {
     size_t i = h->records - 1;
-    while (i > 0 && h->record[i - 1].time >= time) --i;
+    while (i > 0 && h->record[i - 1].time >= time)
+        --i;
     return i;
 }
 
 /* A round from one rise through `level` to the next. */
-struct round { size_t first, last; double period; struct range range; };
+struct round {
+    size_t first, last;
+    double period;
+    struct range range;
+};
 
 /* Where the coolant rises through `level` between records i - 1 and i; NAN: it does not. */
 static double rise_at(const struct sp_holding *h, size_t i, double level)
@@ -133,7 +146,8 @@ static double rise_at(const struct sp_holding *h, size_t i, double level)
 }
 
 /* First and last full round from record `from` on; returns how many there are. */
-static int rounds(const struct sp_holding *h, size_t from, double level, struct round *first, struct round *last)
+static int rounds(const struct sp_holding *h, size_t from, double level, struct round *first,
+                  struct round *last)
 {
     int count = 0;
     size_t began = 0;
@@ -154,8 +168,8 @@ static int rounds(const struct sp_holding *h, size_t from, double level, struct 
 static bool alike(const struct round *a, const struct round *b)
 {
     double near = same_value * (b->range.most - b->range.least) + same_kelvin;
-    return fabs(a->period - b->period) <= same_period * b->period && fabs(a->range.most - b->range.most) <= near &&
-           fabs(a->range.least - b->range.least) <= near;
+    return fabs(a->period - b->period) <= same_period * b->period &&
+           fabs(a->range.most - b->range.most) <= near && fabs(a->range.least - b->range.least) <= near;
 }
 
 /* The window holds three rounds at least. */

@@ -21,7 +21,7 @@ static const struct {
     {"car.coolant.kind", filled},
     {"car.coolant.glycol", filled},
     {"car.duct.count", laid_out},
-    {"car.duct.in_series", laid_out},
+    {"car.duct.coolant", laid_out},
     {"car.duct.core.cells", laid_out},
     {"car.duct.core.carries", laid_out},
     {"car.duct.core.feed", laid_out},

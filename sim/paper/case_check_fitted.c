@@ -177,6 +177,40 @@ static void check_diffuser(struct sp_reader *r, const struct sp_key_spot *at)
     JUDGE(rules);
 }
 
+/* Area, or gap with length. */
+static void check_leak(struct sp_reader *r, const struct sp_key_spot *at, const char *leak)
+{
+    char area[80], gap[80], length[80];
+    snprintf(area, sizeof area, "%s.area", leak);
+    snprintf(gap, sizeof gap, "%s.gap", leak);
+    snprintf(length, sizeof length, "%s.length", leak);
+    bool by_gap = sp_case_given_at(r, gap, at), by_length = sp_case_given_at(r, length, at);
+    const struct rule rules[] = {
+        {sp_case_given_at(r, area, at) && (by_gap || by_length), area, NULL, "either area, or gap and length"},
+    };
+    if (by_gap) require(r, at, length);
+    if (by_length) require(r, at, gap);
+    JUDGE(rules);
+}
+
+static void check_leaks(struct sp_reader *r, const struct sp_key_spot *at)
+{
+    check_leak(r, at, "car.duct.leak.past_core");
+    check_leak(r, at, "car.duct.leak.outside");
+}
+
+/* No more than all of the engine's skin. */
+static void check_bay(struct sp_reader *r, const struct sp_key_spot *at)
+{
+    double all = 0.0;
+    for (size_t i = 0; i <= at->outer; ++i) all += r->design->duct[i].bay_skin;
+    const struct rule rules[] = {
+        {all > 1.0 + 1e-9 && sp_case_given_at(r, "car.duct.bay.engine_skin", at), "car.duct.bay.engine_skin", NULL,
+         "shares of all ducts that make up 1 at most"},
+    };
+    JUDGE(rules);
+}
+
 static void check_fan(struct sp_reader *r, const struct sp_key_spot *at)
 {
     const struct sp_fan *f = &r->design->duct[at->outer].fan[at->inner];
@@ -195,6 +229,8 @@ void sp_case_check_fitted(struct sp_reader *r)
         void (*check)(struct sp_reader *r, const struct sp_key_spot *at);
     } parts[] = {{"car.duct", check_inlet},
                  {"car.duct", check_diffuser},
+                 {"car.duct", check_leaks},
+                 {"car.duct", check_bay},
                  {CORE, check_core},
                  {"car.duct.fan", check_fan}};
     for (size_t i = 0; i < sizeof parts / sizeof *parts; ++i) {

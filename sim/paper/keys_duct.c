@@ -1,4 +1,4 @@
-/* Keys of the duct: inlet, diffuser, exit.
+/* Keys of the duct: inlet, diffuser, leaks, bay, exit.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "keys_row.h"
 
@@ -6,12 +6,21 @@ static const struct sp_word lips[] = {{"sheet edge", 1.0},     {"hole in a skin"
                                       {"rounded 10 mm", 0.18}, {"bellmouth", 0.05},     {NULL, 0}};
 static const struct sp_word diffusers[] = {
     {"sudden", SP_DIFFUSER_SUDDEN}, {"conical", SP_DIFFUSER_CONICAL}, {"one plane", SP_DIFFUSER_ONE_PLANE}, {NULL, 0}};
+static const struct sp_word orders[] = {{"parallel", 0}, {"series", 1}, {NULL, 0}};
 static const struct sp_key_column recovery_columns[] = {{SP_K_NUMBER, "0 to 20"}, {SP_K_NUMBER, "-2 to 1.5"}};
 
 const struct sp_key sp_keys_duct[] = {
     {GROUP("car.duct"), REQUIRED,
      LISTED("ducts", sp_duct_design, SP_DUCTS, "each with an inlet, cores, fans and exits of its own"),
      COUNTED(ducts), SAYS("the air's way through the car")},
+    {QUANTITY("car.duct.count", NUMBER, duct[0].count), DEFAULT("1"), RANGE("1 to 4"), .whole = true,
+     SAYS("equal ducts, one on either side of the car for instance; all else is said of one of them"), DEFINITION},
+    {WORD("car.duct.coolant", orders, BOOL, duct[0].in_series), DEFAULT("parallel"), RANGE("parallel, series"),
+     SAYS("whether coolant goes through equal ducts side by side or through one after the other"), DEFINITION},
+    {QUANTITY("car.duct.interference", AREA, duct[0].interference), DEFAULT("0 m2"), RANGE("-1 m2 to 1 m2"),
+     SAYS("drag area that all equal ducts add on the outside of the car, minus where they take away: measured less "
+          "what is worked out here"),
+     OWN},
     {GROUP("car.duct.inlet"), REQUIRED, SAYS("where the air comes in")},
     {QUANTITY("car.duct.inlet.area", AREA, duct[0].inlet.area), REQUIRED, RANGE("above 0 m2, at most 10 m2"),
      SAYS("area of the inlet at its lip"), OWN},
@@ -73,6 +82,34 @@ const struct sp_key sp_keys_duct[] = {
      SAYS("the core's resistance lessens the loss of stall, a proposal without "
           "published coefficients"),
      PRACTICE},
+
+    {GROUP("car.duct.leak"), OPTIONAL, SAYS("gaps that let air by; absent: sealed")},
+    {GROUP("car.duct.leak.past_core"), OPTIONAL, SAYS("from ahead of the cores into the bay behind cores and fans")},
+    {QUANTITY("car.duct.leak.past_core.area", AREA, duct[0].past_core.area), WHEN("else gap times length"),
+     RANGE("0 m2 to 10 m2"), SAYS("area of the gaps"), OWN},
+    {QUANTITY("car.duct.leak.past_core.gap", LENGTH, duct[0].past_core.gap), WHEN("with length, instead of area"),
+     RANGE("0 mm to 1 m"), SAYS("width of the gaps; 5 mm where nothing seals"), OWN},
+    {QUANTITY("car.duct.leak.past_core.length", LENGTH, duct[0].past_core.length), WHEN("with gap"),
+     RANGE("0 m to 100 m"), SAYS("length of the gaps; once round the core"), OWN},
+    {QUANTITY("car.duct.leak.past_core.coefficient", NUMBER, duct[0].past_core.coefficient), DEFAULT("2.6"),
+     RANGE("0.1 to 1000"), SAYS("loss on the speed in the gap; 2.6 is a sharp slot"), PRACTICE},
+    {GROUP("car.duct.leak.outside"), OPTIONAL, SAYS("from ahead of the cores to outside the duct")},
+    {QUANTITY("car.duct.leak.outside.area", AREA, duct[0].outside.area), WHEN("else gap times length"),
+     RANGE("0 m2 to 10 m2"), SAYS("area of the gaps"), OWN},
+    {QUANTITY("car.duct.leak.outside.gap", LENGTH, duct[0].outside.gap), WHEN("with length, instead of area"),
+     RANGE("0 mm to 1 m"), SAYS("width of the gaps"), OWN},
+    {QUANTITY("car.duct.leak.outside.length", LENGTH, duct[0].outside.length), WHEN("with gap"),
+     RANGE("0 m to 100 m"), SAYS("length of the gaps"), OWN},
+    {QUANTITY("car.duct.leak.outside.coefficient", NUMBER, duct[0].outside.coefficient), DEFAULT("2.6"),
+     RANGE("0.1 to 1000"), SAYS("loss on the speed in the gap; 2.6 is a sharp slot"), PRACTICE},
+    {QUANTITY("car.duct.leak.outside.pressure_coefficient", NUMBER, duct[0].outside.pressure_coefficient),
+     DEFAULT("0"), RANGE("-5 to 1.5"), SAYS("pressure where it leads, less ambient, over dynamic pressure"),
+     DEFINITION},
+    {GROUP("car.duct.bay"), OPTIONAL, SAYS("the space between cores and exits")},
+    {QUANTITY("car.duct.bay.engine_skin", NUMBER, duct[0].bay_skin), DEFAULT("0"), RANGE("0 to 1"),
+     SAYS("share of the heat off the engine's skin that the air in this bay takes up, of all equal ducts together; "
+          "it leaves by the exits, and what is drawn back through open cores brings it along"),
+     DEFINITION},
 
     {GROUP("car.duct.exit"), REQUIRED,
      LISTED("exits", sp_exit, SP_EXITS, "side by side, each with an outside pressure of its own"),

@@ -48,51 +48,66 @@ static struct sp_words limit_words(const struct sp_hold_limit *l)
 }
 
 /* Where it comes to, without a verdict. */
-static void say_rest(const struct sp_hold_point *p, FILE *to)
+static struct sp_words rest_words(const struct sp_hold_point *p)
 {
+    struct sp_words w, most = degrees(p->coolant.most);
     switch (p->kind) {
-    case SP_HOLD_SETTLES: fprintf(to, "settles at %s", degrees(p->coolant.most).text); break;
+    case SP_HOLD_SETTLES:
+        snprintf(w.text, sizeof w.text, "settles at %.40s", most.text);
+        break;
     case SP_HOLD_SWINGS:
-        fprintf(to, "swings from %.1f to %s every %.4g s", celsius(p->coolant.least), degrees(p->coolant.most).text,
-                p->coolant.period);
+        snprintf(w.text, sizeof w.text, "swings from %.1f to %.40s every %.4g s", celsius(p->coolant.least),
+                 most.text, p->coolant.period);
         break;
     case SP_HOLD_DRIFTS:
-        fprintf(to, "still moves after %s, at %s", sp_words_time(p->followed, false).text, degrees(p->coolant.most).text);
+        snprintf(w.text, sizeof w.text, "still moves after %.40s, at %.40s",
+                 sp_words_time(p->followed, false).text, most.text);
         break;
-    default: fputs("never settles", to);
+    default:
+        snprintf(w.text, sizeof w.text, "never settles");
     }
+    return w;
 }
 
 static void say_verdict(const struct sp_hold_point *p, FILE *to)
 {
     const struct sp_hold_limit *l = p->binds >= 0 ? &p->limit[p->binds] : NULL;
-    fputs(p->holds ? "Holds: " : "Does not hold: ", to);
-    say_rest(p, to);
-    if (!l) fputs("; no limit is given", to);
-    else if (p->holds) fprintf(to, ", %.1f K inside %s", l->left, l->key);
-    fputs(".\n", to);
+    struct sp_words rest = rest_words(p);
+    if (p->holds && l)
+        sp_say(to, 0, "", "Holds: %s, %.1f K inside %s.", rest.text, l->left, l->key);
+    else
+        sp_say(to, 0, "", "%s: %s%s.", p->holds ? "Holds" : "Does not hold", rest.text,
+               l ? "" : "; no limit is given");
     if (isfinite(p->lasts))
-        fprintf(to, "It lasts %.0f s from the start, to %s of %s.\n", p->lasts, l->key, limit_words(l).text);
+        sp_say(to, 0, "", "It lasts %.0f s from the start, to %s of %s.", p->lasts, l->key,
+               limit_words(l).text);
+    if (p->limit[SP_HOLD_BOIL_MARGIN].value < 0.0)
+        sp_say(
+            to, 0, "",
+            "It boils. Past boiling the heat balance of the liquid goes on: such temperatures say no more.");
 }
 
 static void say_coolant(const struct sp_hold_point *p, FILE *to)
 {
-    sp_say(to, SP_LABEL_WIDTH, "Coolant", "engine out %s; radiator %.1f in, %.1f out; pump inlet %.1f",
+    sp_say(to, SP_LABEL_WIDTH, "Coolant", "engine out %s; radiator in %.1f, out %.1f; pump in %.1f",
            degrees(value(p, SP_CH_ENGINE_OUT)).text, celsius(value(p, SP_CH_RADIATOR_IN)),
            celsius(value(p, SP_CH_RADIATOR_OUT)), celsius(value(p, SP_CH_PUMP_IN)));
     sp_say(to, SP_LABEL_WIDTH, "", "%.1f K over the air ahead of the car", p->air_to_water);
     if (p->kind == SP_HOLD_SWINGS)
         sp_say(to, SP_LABEL_WIDTH, "", "this at its hottest; mean %s", degrees(p->coolant.mean).text);
     if (isfinite(p->rest_after))
-        sp_say(to, SP_LABEL_WIDTH, "", "within 1 K of its rest after %s", sp_words_time(p->rest_after, false).text);
+        sp_say(to, SP_LABEL_WIDTH, "", "within 1 K of its rest after %s",
+               sp_words_time(p->rest_after, false).text);
     sp_say(to, SP_LABEL_WIDTH, "Metal", "%s; the gauge reads %.1f", degrees(value(p, SP_CH_METAL)).text,
            celsius(value(p, SP_CH_GAUGE)));
 }
 
 static void say_others(const struct sp_hold_point *p, FILE *to)
 {
-    const struct { const char *label; double T; } all[] = {
-        {"Oil", p->oil}, {"Gearbox oil", p->gearbox}, {"Charge air", p->charge}};
+    const struct {
+        const char *label;
+        double T;
+    } all[] = {{"Oil", p->oil}, {"Gearbox oil", p->gearbox}, {"Charge air", p->charge}};
     for (size_t i = 0; i < sizeof all / sizeof all[0]; ++i)
         if (isfinite(all[i].T)) sp_say(to, SP_LABEL_WIDTH, all[i].label, "%s", degrees(all[i].T).text);
 }
@@ -105,8 +120,8 @@ static void say_limits(const struct sp_hold_point *p, FILE *to)
         if (isnan(l->left)) continue;
         char passed[80] = "";
         if (isfinite(l->passed)) snprintf(passed, sizeof passed, ", first passed after %.0f s", l->passed);
-        sp_say(to, SP_LABEL_WIDTH, label, "%s %s: %.1f K %s%s", l->key + strlen("limits."), limit_words(l).text,
-               fabs(l->left), l->left < 0.0 ? "beyond it" : "left", passed);
+        sp_say(to, SP_LABEL_WIDTH, label, "%s %s: %.1f K %s%s", l->key + strlen("limits."),
+               limit_words(l).text, fabs(l->left), l->left < 0.0 ? "beyond it" : "left", passed);
         label = "";
     }
 }
@@ -120,7 +135,8 @@ static void say_ceiling(const struct sp_hold_report *r, FILE *to)
                degrees(p->ceiling).text, more);
     if (!r->ceiling || isnan(r->ceiling[0])) return;
     if (isinf(r->ceiling[0]))
-        sp_say(to, SP_LABEL_WIDTH, "", "solved anew: %s", r->ceiling[0] > 0.0 ? "more than air gets" : "in no air");
+        sp_say(to, SP_LABEL_WIDTH, "", "solved anew: %s",
+               r->ceiling[0] > 0.0 ? "over 59 degC" : "under -45 degC");
     else
         sp_say(to, SP_LABEL_WIDTH, "", "%s solved anew: thinner air, thermostat followed",
                degrees(r->ceiling[0]).text);
@@ -139,21 +155,24 @@ static void say_air_limits(const struct sp_hold_report *r, FILE *to)
 static void say_flows(const struct sp_hold_point *p, FILE *to)
 {
     const double litres = 60e3; /* l/min in a m3/s */
-    sp_say(to, SP_LABEL_WIDTH, "Coolant flow", "%.1f l/min; radiator %.1f, bypass %.1f; thermostat %.0f %% open",
+    sp_say(to, SP_LABEL_WIDTH, "Coolant flow",
+           "%.1f l/min; radiator %.1f, bypass %.1f; thermostat %.0f %% open",
            litres * value(p, SP_CH_PUMP_FLOW), litres * value(p, SP_CH_RADIATOR_FLOW),
            litres * value(p, SP_CH_BYPASS_FLOW), 100.0 * value(p, SP_CH_LIFT));
     sp_say(to, SP_LABEL_WIDTH, "Air", "%.4f kg/s, %.3f m/s at the face; %s in, %.1f out",
-           tidy(value(p, SP_CH_AIR_FLOW), 5e-5), tidy(value(p, SP_CH_FACE_VELOCITY), 5e-4), degrees(p->air_in).text,
-           celsius(value(p, SP_CH_AIR_OUT)));
+           tidy(value(p, SP_CH_AIR_FLOW), 5e-5), tidy(value(p, SP_CH_FACE_VELOCITY), 5e-4),
+           degrees(p->air_in).text, celsius(value(p, SP_CH_AIR_OUT)));
     sp_say(to, SP_LABEL_WIDTH, "Fan", "%.3g of rated speed, %.4g W; asked to run %.3g %% of the time",
-           tidy(value(p, SP_CH_FAN_SPEED), 5e-4), tidy(value(p, SP_CH_FAN_POWER), 5e-4), 100.0 * p->coolant.fan);
+           tidy(value(p, SP_CH_FAN_SPEED), 5e-4), tidy(value(p, SP_CH_FAN_POWER), 5e-4),
+           100.0 * p->coolant.fan);
 }
 
 static void say_heat(const struct sp_hold_point *p, FILE *to)
 {
     sp_say(to, SP_LABEL_WIDTH, "Heat", "%.3f kW in, %.3f to duct air, %.3f by skins; sum misses %.1g",
            p->heat.in / 1e3, p->heat.air / 1e3, p->heat.skin / 1e3, fabs(p->heat.error));
-    sp_say(to, SP_LABEL_WIDTH, "Radiator", "%.4g kW a kelvin of coolant in over air in", p->dissipation / 1e3);
+    sp_say(to, SP_LABEL_WIDTH, "Radiator", "%.4g kW a kelvin of coolant in over air in",
+           p->dissipation / 1e3);
     sp_say(to, SP_LABEL_WIDTH, "Drag", "%.2f N", tidy(value(p, SP_CH_DRAG), 5e-3));
 }
 
@@ -199,9 +218,8 @@ static void say_page(const struct sp_hold_report *r, FILE *to)
 
 /* ---- a table --------------------------------------------------------------------------------------- */
 
-static const char heading[] =
-    "  speed  grade  power  engine  over   air to ceiling    air coolant   fan\n"
-    "   km/h      %     kW     out   air     boil    degC   kg/s   l/min     %\n";
+static const char heading[] = "  speed  grade  power  engine  over   air to ceiling    air coolant   fan\n"
+                              "   km/h      %     kW     out   air     boil    degC   kg/s   l/min     %\n";
 
 static struct sp_words number(double x, const char *format)
 {
@@ -209,18 +227,26 @@ static struct sp_words number(double x, const char *format)
     if (!isfinite(x)) return w;
     char text[32];
     snprintf(text, sizeof text, "%s", format);
-    if (!strcmp(text, "0")) snprintf(w.text, sizeof w.text, "%.0f", x + 0.0);
-    else if (!strcmp(text, "1")) snprintf(w.text, sizeof w.text, "%.1f", x + 0.0);
-    else snprintf(w.text, sizeof w.text, "%.3f", x + 0.0);
+    if (!strcmp(text, "0"))
+        snprintf(w.text, sizeof w.text, "%.0f", x + 0.0);
+    else if (!strcmp(text, "1"))
+        snprintf(w.text, sizeof w.text, "%.1f", x + 0.0);
+    else
+        snprintf(w.text, sizeof w.text, "%.3f", x + 0.0);
     return w;
 }
 
 static struct sp_words word_of(const struct sp_hold_point *p)
 {
     struct sp_words w;
-    if (isfinite(p->lasts)) snprintf(w.text, sizeof w.text, "%.0f s", p->lasts);
-    else snprintf(w.text, sizeof w.text, "%s", p->kind == SP_HOLD_SETTLES ? "holds" : p->kind == SP_HOLD_SWINGS
-                  ? "swings" : p->kind == SP_HOLD_DRIFTS ? "drifts" : "never");
+    if (isfinite(p->lasts))
+        snprintf(w.text, sizeof w.text, "%.0f s", p->lasts);
+    else
+        snprintf(w.text, sizeof w.text, "%s",
+                 p->kind == SP_HOLD_SETTLES  ? "holds"
+                 : p->kind == SP_HOLD_SWINGS ? "swings"
+                 : p->kind == SP_HOLD_DRIFTS ? "drifts"
+                                             : "never");
     return w;
 }
 
@@ -228,7 +254,7 @@ static struct sp_words ceiling_of(const struct sp_hold_report *r, size_t i)
 {
     double T = r->ceiling ? r->ceiling[i] : r->point[i].ceiling;
     struct sp_words w = number(celsius(T), "1");
-    if (isinf(T)) snprintf(w.text, sizeof w.text, T > 0.0 ? "any" : "none");
+    if (isinf(T)) snprintf(w.text, sizeof w.text, T > 0.0 ? ">59" : "<-45");
     return w;
 }
 
@@ -242,8 +268,9 @@ static void say_line(const struct sp_hold_report *r, size_t i, FILE *to)
         fprintf(to, "%8s%6s%9s%8s%7s%8s%6s", "-", "-", "-", "-", "-", "-", "-");
     else
         fprintf(to, "%8s%6s%9s%8s%7s%8s%6s", number(celsius(p->coolant.most), "1").text,
-                number(p->air_to_water, "1").text, number(celsius(p->air_to_boil), "1").text, ceiling_of(r, i).text,
-                number(value(p, SP_CH_AIR_FLOW), "3").text, number(6e4 * value(p, SP_CH_RADIATOR_FLOW), "1").text,
+                number(p->air_to_water, "1").text, number(celsius(p->air_to_boil), "1").text,
+                ceiling_of(r, i).text, number(value(p, SP_CH_AIR_FLOW), "3").text,
+                number(6e4 * value(p, SP_CH_RADIATOR_FLOW), "1").text,
                 number(100.0 * p->coolant.fan, "0").text);
     fprintf(to, "  %s\n", word_of(p).text);
 }
@@ -251,13 +278,18 @@ static void say_line(const struct sp_hold_report *r, size_t i, FILE *to)
 static void say_table(const struct sp_hold_report *r, FILE *to)
 {
     fputs(heading, to);
-    for (size_t i = 0; i < r->points; ++i) say_line(r, i, to);
+    for (size_t i = 0; i < r->points; ++i)
+        say_line(r, i, to);
     fprintf(to, "\n");
-    sp_say(to, 0, "", "engine out: coolant in degC, the hottest of a cycle; over air: K over the air ahead; air to boil: "
-           "degC of air in which it boils where it leaves the engine; ceiling: degC of air that meets limits.coolant, %s; "
-           "coolant: through the radiator; fan: share of time it is asked to run.",
-           r->ceiling ? "solved anew" : "a degree of air for a degree of coolant");
-    sp_say(to, 0, "", "Last: holds; swings, within limits; or the seconds from the start to the first limit passed.");
+    sp_say(
+        to, 0, "",
+        "engine out: coolant in degC, the hottest of a cycle; over air: K over the air ahead; air to boil: "
+        "degC of air in which it boils where it leaves the engine; ceiling: degC of air that meets "
+        "limits.coolant, %s; "
+        "coolant: through the radiator; fan: share of time it is asked to run.",
+        r->ceiling ? "solved anew" : "a degree of air for a degree of coolant");
+    sp_say(to, 0, "",
+           "Last: holds; swings, within limits; or the seconds from the start to the first limit passed.");
 }
 
 void sp_hold_text(const struct sp_hold_report *r, FILE *to)
@@ -267,6 +299,8 @@ void sp_hold_text(const struct sp_hold_report *r, FILE *to)
         sp_plain(title, sizeof title, r->design->title, SP_LINE_WIDTH);
         fprintf(to, "%s\n", title);
     }
-    if (r->points == 1) say_page(r, to);
-    else say_table(r, to);
+    if (r->points == 1)
+        say_page(r, to);
+    else
+        say_table(r, to);
 }

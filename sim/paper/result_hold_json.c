@@ -6,8 +6,10 @@
 #include "swirlpot/hold.h"
 #include "swirlpot/result.h"
 
-static const char *const kind[] = {[SP_HOLD_SETTLES] = "settles", [SP_HOLD_SWINGS] = "swings",
-                                   [SP_HOLD_DRIFTS] = "drifts", [SP_HOLD_RUNS_AWAY] = "runs away"};
+static const char *const kind[] = {[SP_HOLD_SETTLES] = "settles",
+                                   [SP_HOLD_SWINGS] = "swings",
+                                   [SP_HOLD_DRIFTS] = "drifts",
+                                   [SP_HOLD_RUNS_AWAY] = "runs away"};
 
 static void write_degrees(struct sp_writer *w, const char *name, double kelvin)
 {
@@ -47,6 +49,7 @@ static void write_verdict(struct sp_writer *w, const struct sp_hold_point *p)
 {
     sp_write_text(w, "kind", kind[p->kind]);
     sp_write_bool(w, "holds", p->holds);
+    sp_write_bool(w, "boils", p->limit[SP_HOLD_BOIL_MARGIN].value < 0.0);
     sp_write_text(w, "limit", p->binds >= 0 ? p->limit[p->binds].key : NULL);
     sp_write_number(w, "lasts_s", p->lasts);
     sp_write_number(w, "rest_after_s", p->rest_after);
@@ -111,7 +114,8 @@ static void write_ducts(struct sp_writer *w, const struct sp_hold_point *p)
     sp_write_open(w, "ducts", '[');
     for (size_t i = 0; i < p->ducts; ++i) {
         const struct sp_hold_duct *d = &p->duct[i];
-        struct sp_duct_point point = {.speed = p->wish.speed, .in = d->in, .state = d->state, .losses = d->losses};
+        struct sp_duct_point point = {
+            .speed = p->wish.speed, .in = d->in, .state = d->state, .losses = d->losses};
         memcpy(point.station, d->station, sizeof point.station);
         point.in.heat = d->state.heat;
         sp_duct_point_write(w, &point);
@@ -139,7 +143,8 @@ void sp_hold_json(const struct sp_hold_report *r, FILE *to)
     sp_write_text(&w, "swirlpot", sp_version());
     sp_write_text(&w, "title", r->design->title);
     sp_write_open(&w, "points", '[');
-    for (size_t i = 0; i < r->points; ++i) write_point(&w, r, i);
+    for (size_t i = 0; i < r->points; ++i)
+        write_point(&w, r, i);
     sp_write_close(&w, ']');
     sp_write_close(&w, '}');
 }

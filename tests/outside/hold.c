@@ -1,8 +1,8 @@
 /* Where a held speed settles, against closed forms and against long drives.
  *
  * The measures are those of SAE J1393 and J819; the numbers of the example (105 degC at 38 degC of air, 50 %
- * ethylene glycol at 204.7 kPa) are worked out by hand: air to water 67 K, ambient ceiling 115 - 67 = 48 degC, air
- * to boil 129.6 - 67 = 62.6 degC, and 33 degC with 100 degC for the boiling point.
+ * ethylene glycol at 204.7 kPa) are worked out by hand: air to water 67 K, ambient ceiling 115 - 67 = 48
+ * degC, air to boil 129.6 - 67 = 62.6 degC, and 33 degC with 100 degC for the boiling point.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "fixture.h"
 #include "swirlpot/hold.h"
@@ -38,7 +38,8 @@ static struct sp_design two_masses(void)
     return d;
 }
 
-/* The same with a sink of 1.5 kW/K: a core that is one conductance, in very much air and very much coolant. */
+/* The same with a sink of 1.5 kW/K: a core that is one conductance, in very much air and very much coolant.
+ */
 static struct sp_design with_sink(void)
 {
     struct sp_design d = two_masses();
@@ -91,7 +92,8 @@ static struct sp_hold_wish at_power(double speed, double power, double engine_sp
 
 /* ---- closed forms ---------------------------------------------------------------------------------- */
 
-/* 60 kW: coolant 40 K over the air, metal 30 K over the coolant. The house-sized core misses 1.5 kW/K by 1e-4. */
+/* 60 kW: coolant 40 K over the air, metal 30 K over the coolant. The house-sized core misses 1.5 kW/K by
+ * 1e-4. */
 static void two_masses_rest(void **state)
 {
     (void)state;
@@ -108,7 +110,8 @@ static void two_masses_rest(void **state)
     check_within(p.rest_after, 295.0, 320.0); /* 1 K is left at 303.2 s, see below */
 }
 
-/* 67 K over 38 degC; the cap of 103.4 kPa is put into the pressure of the air, as the tank is filled there. */
+/* 67 K over 38 degC; the cap of 103.4 kPa is put into the pressure of the air, as the tank is filled there.
+ */
 static void example_of_the_standard(void **state)
 {
     (void)state;
@@ -155,8 +158,9 @@ static void hotter_air(void **state)
     assert_int_equal(complaints.count, 0);
 }
 
-/* 12 kW into 85 kJ/K that loses nothing: 0.141176 K/s, the coolant (60/85) 1.764706 K behind the mean. 60 K over
- * the start are passed at (60 + 1.245675)/0.141176 = 433.82 s, 50 K of metal at (50 - 25/85 1.764706)/0.141176. */
+/* 12 kW into 85 kJ/K that loses nothing: 0.141176 K/s, the coolant (60/85) 1.764706 K behind the mean. 60 K
+ * over the start are passed at (60 + 1.245675)/0.141176 = 433.82 s, 50 K of metal at (50 -
+ * 25/85 1.764706)/0.141176. */
 static void runs_away(void **state)
 {
     (void)state;
@@ -172,8 +176,8 @@ static void runs_away(void **state)
     assert_false(p.holds);
 }
 
-/* A rest beyond the limit: coolant - air = 40 K - 43.3487 e^(-t/80.4518) + 3.3487 e^(-t/6.2149), the closed form of the
- * two masses; 30 K are passed at 117.998 s, 39 K at 303.245 s. */
+/* A rest beyond the limit: coolant - air = 40 K - 43.3487 e^(-t/80.4518) + 3.3487 e^(-t/6.2149), the closed
+ * form of the two masses; 30 K are passed at 117.998 s, 39 K at 303.245 s. */
 static void lasts(void **state)
 {
     (void)state;
@@ -188,8 +192,9 @@ static void lasts(void **state)
 
 /* ---- long drives ----------------------------------------------------------------------------------- */
 
-static const enum sp_channel compared[] = {SP_CH_ENGINE_OUT, SP_CH_RADIATOR_IN, SP_CH_RADIATOR_OUT, SP_CH_PUMP_IN,
-                                           SP_CH_METAL, SP_CH_TANK, SP_CH_WAX, SP_CH_GAUGE, SP_CH_AIR_OUT};
+static const enum sp_channel compared[] = {SP_CH_ENGINE_OUT, SP_CH_RADIATOR_IN, SP_CH_RADIATOR_OUT,
+                                           SP_CH_PUMP_IN,    SP_CH_METAL,       SP_CH_TANK,
+                                           SP_CH_WAX,        SP_CH_GAUGE,       SP_CH_AIR_OUT};
 
 static void same_as_a_drive(const struct sp_design *base, struct sp_hold_wish w)
 {
@@ -220,10 +225,10 @@ static void long_drives(void **state)
     (void)state;
     struct sp_design d = *fixture.base;
     d.limits.coolant.stop = 380.0;
-    same_as_a_drive(&d, at_power(30.0, 60e3, 5000.0 / 60.0));                 /* regulated or not, as it comes */
+    same_as_a_drive(&d, at_power(30.0, 60e3, 5000.0 / 60.0)); /* regulated or not, as it comes */
     same_as_a_drive(&d, (struct sp_hold_wish){15.0, NAN, 0.12, 4000.0 / 60.0}); /* a hill */
     same_as_a_drive(&d, (struct sp_hold_wish){45.0, NAN, NAN, 4500.0 / 60.0});  /* level */
-    same_as_a_drive(&d, at_power(25.0, 130e3, 7000.0 / 60.0));                /* beyond its limit */
+    same_as_a_drive(&d, at_power(25.0, 130e3, 7000.0 / 60.0));                  /* beyond its limit */
     d.thermostat.hysteresis = 0.0;
     same_as_a_drive(&d, at_power(30.0, 35e3, 4000.0 / 60.0));
     d.thermostat.none = true;
@@ -243,7 +248,8 @@ static void standing_with_a_fan_by_degrees(void **state)
     same_as_a_drive(&d, at_power(0.0, 25e3, 3000.0 / 60.0));
 }
 
-/* A switched fan on a standing car that gives power: the cycle's ends, its mean and the fan's share as a drive of 3 h has them. */
+/* A switched fan on a standing car that gives power: the cycle's ends, its mean and the fan's share as a
+ * drive of 3 h has them. */
 static void standing_with_a_switched_fan(void **state)
 {
     (void)state;
@@ -263,8 +269,10 @@ static void standing_with_a_switched_fan(void **state)
     for (size_t i = 0; i < r.result.events; ++i) {
         const struct sp_event *e = &r.result.event[i];
         if (e->kind != SP_EV_FAN_ON || e->time < 5400.0) continue;
-        if (isnan(began)) began = e->time;
-        else ++rounds;
+        if (isnan(began))
+            began = e->time;
+        else
+            ++rounds;
         ended = e->time;
     }
     for (size_t i = 0; i < r.series.count; ++i) {
@@ -292,12 +300,14 @@ static void standing_with_a_switched_fan(void **state)
 
 /* ---- power and grade ------------------------------------------------------------------------------- */
 
-/* 900 kg at 20 m/s on 5 %: rolling, weight and drag as F = m g (sin + c cos) + rho/2 c_d A v^2, over the driveline. */
+/* 900 kg at 20 m/s on 5 %: rolling, weight and drag as F = m g (sin + c cos) + rho/2 c_d A v^2, over the
+ * driveline. */
 static void power_and_grade(void **state)
 {
     (void)state;
     struct sp_design d = *fixture.base;
-    double v = 20.0, slope = sqrt(1.0 + 0.05 * 0.05), rho = sp_air_density(d.air.ambient, d.air.pressure, d.air.humidity);
+    double v = 20.0, slope = sqrt(1.0 + 0.05 * 0.05),
+           rho = sp_air_density(d.air.ambient, d.air.pressure, d.air.humidity);
     double force = 900.0 * 9.80665 * (0.05 + d.body.rolling) / slope + 0.5 * rho * 0.4 * 1.8 * v * v;
     double power = force * v / d.body.driveline;
     struct sp_hold_wish w = {v, power * 1.005, 0.05, 3000.0 / 60.0};

@@ -16,7 +16,7 @@ static long violations;
             print_error("seed %lu: %s is broken: ", (x)->seed, #holds);                                      \
             print_error(__VA_ARGS__);                                                                        \
             print_error("\n");                                                                               \
-            show_car(x);                                                                                         \
+            show_car(&(x)->d);                                                                                         \
         }                                                                                                    \
     } while (0)
 

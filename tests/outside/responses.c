@@ -278,12 +278,13 @@ static void head_wind(void **state)
     }
 }
 
-/* 0.64 of the dynamic pressure left behind another car is 0.8 of the speed. */
+/* 0.64 of the dynamic pressure left behind another car is 0.8 of the speed. The trace tells the air's temperature
+ * itself, so that the wake brings no warmth of its own. */
 static void wake(void **state)
 {
     (void)state;
-    struct fixture_drive r = along("time [s],speed [m/s],power [kW],engine_speed [rpm],wake\n"
-                                   "0,30,5,2000,0.64\n4,30,5,2000,0.64\n",
+    struct fixture_drive r = along("time [s],speed [m/s],power [kW],engine_speed [rpm],wake,ambient [degC]\n"
+                                   "0,30,5,2000,0.64,15\n4,30,5,2000,0.64,15\n",
                                    0.0, 1.0);
     check_close(fixture_at(&r, 0.0)->value[SP_CH_FACE_VELOCITY], face_over_speed * 24.0, 1e-5, 0);
     fixture_drop(&r);

@@ -1,5 +1,5 @@
-/* Cars fitted out with more than one duct, core and fluid: the Jacobian by signals against differences of the whole
- * right-hand side, the structured solver against dense elimination, and the balance of heat.
+/* Cars fitted out with more than one duct, core and fluid: the Jacobian by signals against differences of the
+ * whole right-hand side, the structured solver against dense elimination, and the balance of heat.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "fixture.h"
 
@@ -20,22 +20,53 @@ struct rig {
 
 /* ---- parts ------------------------------------------------------------------------------------------- */
 
-static struct sp_core core(enum sp_medium carries, double width, double height, double air, double inside, double flow)
+static struct sp_core core(enum sp_medium carries, double width, double height, double air, double inside,
+                           double flow)
 {
-    struct sp_core c = {.carries = carries, .width = width, .height = height, .depth = 0.04, .free_area_ratio = 0.8,
-                        .drop_law = SP_DROP_LINEAR, .linear = 40.0, .quadratic = 8.0, .at_density = 1.2,
-                        .at_temperature = NAN, .unevenness = NAN, .angle_loss = 1.0, .heat_law = SP_CORE_POWER,
-                        .air_conductance = air, .air_exponent = 0.5, .at_face_velocity = 6.0, .heat_at_density = 1.2,
-                        .coolant_conductance = inside, .coolant_exponent = 0.8, .at_coolant_flow = flow,
-                        .heat_factor = 1.0, .metal_capacity = 1500.0, .coolant_volume = 0.8e-3,
-                        .drop = {100.0 / 60e3, 18e3}, .cells = 6.0};
+    struct sp_core c = {.carries = carries,
+                        .width = width,
+                        .height = height,
+                        .depth = 0.04,
+                        .free_area_ratio = 0.8,
+                        .drop_law = SP_DROP_LINEAR,
+                        .linear = 40.0,
+                        .quadratic = 8.0,
+                        .at_density = 1.2,
+                        .at_temperature = NAN,
+                        .unevenness = NAN,
+                        .angle_loss = 1.0,
+                        .heat_law = SP_CORE_POWER,
+                        .air_conductance = air,
+                        .air_exponent = 0.5,
+                        .at_face_velocity = 6.0,
+                        .heat_at_density = 1.2,
+                        .coolant_conductance = inside,
+                        .coolant_exponent = 0.8,
+                        .at_coolant_flow = flow,
+                        .heat_factor = 1.0,
+                        .metal_capacity = 1500.0,
+                        .coolant_volume = 0.8e-3,
+                        .drop = {100.0 / 60e3, 18e3},
+                        .cells = 6.0};
     return c;
 }
 
-static struct sp_core radiator(double width) { return core(SP_CARRIES_COOLANT, width, 0.34, 2600.0, 7000.0, 1.5); }
-static struct sp_core oil_cooler(void) { return core(SP_CARRIES_OIL, 0.25, 0.15, 350.0, 500.0, 0.35); }
-static struct sp_core gearbox_cooler(void) { return core(SP_CARRIES_GEARBOX, 0.2, 0.1, 200.0, 300.0, 0.15); }
-static struct sp_core charge_cooler(void) { return core(SP_CARRIES_CHARGE, 0.3, 0.3, 900.0, 500.0, 0.2); }
+static struct sp_core radiator(double width)
+{
+    return core(SP_CARRIES_COOLANT, width, 0.34, 2600.0, 7000.0, 1.5);
+}
+static struct sp_core oil_cooler(void)
+{
+    return core(SP_CARRIES_OIL, 0.25, 0.15, 350.0, 500.0, 0.35);
+}
+static struct sp_core gearbox_cooler(void)
+{
+    return core(SP_CARRIES_GEARBOX, 0.2, 0.1, 200.0, 300.0, 0.15);
+}
+static struct sp_core charge_cooler(void)
+{
+    return core(SP_CARRIES_CHARGE, 0.3, 0.3, 900.0, 500.0, 0.2);
+}
 
 static struct sp_core condenser(void)
 {
@@ -47,14 +78,25 @@ static struct sp_core condenser(void)
 
 static struct sp_oil oil(double block)
 {
-    return (struct sp_oil){.fitted = true, .volume = 5e-3, .heat_share = 0.06, .block = block, .skin_standing = 3.0,
-                           .skin_moving = 12.0, .flow = 40.0 / 60e3, .flow_speed = 100.0, .flow_most = 40.0 / 60e3,
-                           .opens = NAN, .full = NAN};
+    return (struct sp_oil){.fitted = true,
+                           .volume = 5e-3,
+                           .heat_share = 0.06,
+                           .block = block,
+                           .skin_standing = 3.0,
+                           .skin_moving = 12.0,
+                           .flow = 40.0 / 60e3,
+                           .flow_speed = 100.0,
+                           .flow_most = 40.0 / 60e3,
+                           .opens = NAN,
+                           .full = NAN};
 }
 
 /* ---- cars -------------------------------------------------------------------------------------------- */
 
-static void plain(struct rig *r) { (void)r; }
+static void plain(struct rig *r)
+{
+    (void)r;
+}
 
 static void unlike_ducts(struct rig *r)
 {
@@ -66,7 +108,10 @@ static void unlike_ducts(struct rig *r)
     r->d.tank.bleed = 0.03;
 }
 
-static void equal_ducts(struct rig *r) { r->d.duct[0].count = 2.0; }
+static void equal_ducts(struct rig *r)
+{
+    r->d.duct[0].count = 2.0;
+}
 
 static void ducts_in_series(struct rig *r)
 {
@@ -74,7 +119,8 @@ static void ducts_in_series(struct rig *r)
     r->d.duct[0].in_series = true;
 }
 
-/* An oil cooler ahead of the lower third of the radiator, a shroud with two fans over two thirds, flaps, gaps. */
+/* An oil cooler ahead of the lower third of the radiator, a shroud with two fans over two thirds, flaps,
+ * gaps. */
 static void oil_ahead(struct rig *r)
 {
     struct sp_duct_design *d = &r->d.duct[0];
@@ -83,7 +129,8 @@ static void oil_ahead(struct rig *r)
     d->core[0] = oil_cooler();
     d->core[0].span_to = 0.33;
     d->past_core = (struct sp_leak){.area = 2e-3, .coefficient = 2.0};
-    d->outside = (struct sp_leak){.gap = 2e-3, .length = 0.5, .coefficient = 2.0, .pressure_coefficient = -0.1};
+    d->outside =
+        (struct sp_leak){.gap = 2e-3, .length = 0.5, .coefficient = 2.0, .pressure_coefficient = -0.1};
     d->fan[0].span_to = 0.66;
     d->fan[0].flap_area = 0.02;
     d->fan[0].flap_loss = 2.0;
@@ -176,9 +223,14 @@ static void one_string(struct rig *r)
 static const struct {
     const char *name;
     void (*fit)(struct rig *r);
-} cars[] = {{"plain", plain}, {"two unlike ducts", unlike_ducts}, {"two equal ducts", equal_ducts},
-            {"two ducts in series", ducts_in_series}, {"oil cooler ahead", oil_ahead}, {"all fluids", all_fluids},
-            {"branches", branches}, {"one string", one_string}};
+} cars[] = {{"plain", plain},
+            {"two unlike ducts", unlike_ducts},
+            {"two equal ducts", equal_ducts},
+            {"two ducts in series", ducts_in_series},
+            {"oil cooler ahead", oil_ahead},
+            {"all fluids", all_fluids},
+            {"branches", branches},
+            {"one string", one_string}};
 enum { CARS = sizeof cars / sizeof *cars };
 
 /* ---- conditions -------------------------------------------------------------------------------------- */
@@ -206,8 +258,8 @@ static void at_speed(struct rig *r)
     r->modes.play = SP_PLAY_OPENING;
 }
 
-static const char *const conditions[] = {"at speed", "standing, fans on", "key on after the stop", "wind from behind",
-                                         "cold soak", "bonnet up, blown"};
+static const char *const conditions[] = {"at speed",         "standing, fans on", "key on after the stop",
+                                         "wind from behind", "cold soak",         "bonnet up, blown"};
 enum { CONDITIONS = sizeof conditions / sizeof *conditions };
 
 static void put(struct rig *r, int condition)
@@ -215,10 +267,12 @@ static void put(struct rig *r, int condition)
     double *in = r->in.in;
     if (condition == 1 || condition == 2 || condition >= 4) in[SP_IN_SPEED] = in[SP_IN_AIR_SPEED] = 0.0;
     if (condition == 1 || condition == 5)
-        for (int f = 0; f < SP_FAN_KINDS; ++f) r->modes.fan_on[f] = true;
+        for (int f = 0; f < SP_FAN_KINDS; ++f)
+            r->modes.fan_on[f] = true;
     if (condition == 2 || condition >= 4) {
         in[SP_IN_HEAT_GAS] = in[SP_IN_HEAT_FRICTION] = in[SP_IN_HEAT_SLOPE] = in[SP_IN_OIL_HEAT] = 0.0;
-        in[SP_IN_GEARBOX_HEAT] = in[SP_IN_CHARGE_FLOW] = in[SP_IN_CHARGE_HEATING] = in[SP_IN_ENGINE_SPEED] = 0.0;
+        in[SP_IN_GEARBOX_HEAT] = in[SP_IN_CHARGE_FLOW] = in[SP_IN_CHARGE_HEATING] = in[SP_IN_ENGINE_SPEED] =
+            0.0;
         in[SP_IN_POWER] = 0.0;
         r->in.flags = condition == 4 ? 0 : SP_FLAG_KEY | SP_FLAG_PUMP | SP_FLAG_FAN;
     }
@@ -247,7 +301,8 @@ static void prepare(struct rig *r)
         r->y[l->out + i] = 362.5 - i;
         r->y[l->back + i] = 345.0 - 0.7 * i;
     }
-    for (int f = 0; f < l->fans; ++f) r->y[l->fan[f]] = 0.4 + 0.2 * f;
+    for (int f = 0; f < l->fans; ++f)
+        r->y[l->fan[f]] = 0.4 + 0.2 * f;
     if (l->oil >= 0) r->y[l->oil] = 381.0;
     if (l->gearbox >= 0) r->y[l->gearbox] = 371.0;
     for (int e = 0; e < l->exchangers; ++e) {
@@ -296,12 +351,14 @@ static struct jacobian jacobian_of(const struct rig *r)
     j.block = calloc((n + means + 3) * n, sizeof *j.block);
     j.jac = calloc(n + means, sizeof *j.jac);
     assert_true(j.block && j.jac);
-    for (size_t i = 0; i < n + means; ++i) j.jac[i] = j.block + i * n;
+    for (size_t i = 0; i < n + means; ++i)
+        j.jac[i] = j.block + i * n;
     j.mean = j.jac + n;
     j.work = j.block + (n + means) * n;
     struct sp_guesses guesses;
     memset(&guesses, 0, sizeof guesses);
-    assert_int_equal(sp_circuit_jacobian(&r->c, &r->in, &r->modes, r->y, &guesses, j.jac, j.mean, j.work), SP_OK);
+    assert_int_equal(sp_circuit_jacobian(&r->c, &r->in, &r->modes, r->y, &guesses, j.jac, j.mean, j.work),
+                     SP_OK);
     return j;
 }
 
@@ -326,7 +383,8 @@ static void column_by_differences(const struct rig *r, int j, double *out)
     rates_at(r, moved, &k, up);
     moved[j] = r->y[j] - step;
     rates_at(r, moved, &k, down);
-    for (int i = 0; i < n; ++i) out[i] = (up[i] - down[i]) / (2.0 * step);
+    for (int i = 0; i < n; ++i)
+        out[i] = (up[i] - down[i]) / (2.0 * step);
 }
 
 static double through_means(const struct sp_layout *l, const struct jacobian *j, int c, int i)
@@ -342,12 +400,13 @@ static double through_means(const struct sp_layout *l, const struct jacobian *j,
 static double scale_of(const struct jacobian *j, int row)
 {
     double most = 0.0;
-    for (int k = 0; k < j->n; ++k) most = fmax(most, fabs(j->jac[k][row]));
+    for (int k = 0; k < j->n; ++k)
+        most = fmax(most, fabs(j->jac[k][row]));
     return most;
 }
 
-/* One-sided differences are good to a part in some hundred, plenty for Newton steps. Those of integrals, which
- * nothing hangs upon, need not be compared; the tank's cap is steep, and compared in circuit.c. */
+/* One-sided differences are good to a part in some hundred, plenty for Newton steps. Those of integrals,
+ * which nothing hangs upon, need not be compared; the tank's cap is steep, and compared in circuit.c. */
 static int compare_jacobian(const struct rig *r, const char *car, const char *condition)
 {
     const struct sp_layout *l = &r->c.layout;
@@ -362,8 +421,8 @@ static int compare_jacobian(const struct rig *r, const char *car, const char *co
             double give = 4e-3 * fabs(want[i]) + 1e-6 * scale_of(&j, i) + 1e-6;
             if (fabs(got - want[i]) <= give) continue;
             if (++bad > 4) continue;
-            print_error("%s, %s: d f[%d] / d y[%d] is %.9g, by differences %.9g (row to %.3g)\n", car, condition, i, c, got,
-                        want[i], scale_of(&j, i));
+            print_error("%s, %s: d f[%d] / d y[%d] is %.9g, by differences %.9g (row to %.3g)\n", car,
+                        condition, i, c, got, want[i], scale_of(&j, i));
         }
     }
     drop_jacobian(&j);
@@ -395,7 +454,8 @@ static void dense_step(const struct rig *r, double gamma, const double *b, doubl
     double column[SP_Y_MOST];
     for (size_t c = 0; c < n; ++c) {
         column_by_differences(r, (int)c, column);
-        for (size_t i = 0; i < n; ++i) gsl_matrix_set(m, i, c, (i == c ? 1.0 : 0.0) - gamma * column[i]);
+        for (size_t i = 0; i < n; ++i)
+            gsl_matrix_set(m, i, c, (i == c ? 1.0 : 0.0) - gamma * column[i]);
     }
     int sign;
     gsl_linalg_LU_decomp(m, p, &sign);
@@ -422,8 +482,8 @@ static void arrow_step(const struct rig *r, double gamma, const double *b, doubl
     drop_jacobian(&j);
 }
 
-/* What the structured solver leaves out of the true matrix is nothing, but for the fluid's first cell, whose heat
- * capacity sets all cells' weights: left out here by a coolant of constant properties. */
+/* What the structured solver leaves out of the true matrix is nothing, but for the fluid's first cell, whose
+ * heat capacity sets all cells' weights: left out here by a coolant of constant properties. */
 static void structure_holds(void **state)
 {
     (void)state;
@@ -435,7 +495,8 @@ static void structure_holds(void **state)
         cars[car].fit(&r);
         fixture_freeze(&r.d.coolant.fluid);
         prepare(&r);
-        for (int i = 0; i < r.c.layout.count; ++i) b[i] = 1.0 + 0.1 * i;
+        for (int i = 0; i < r.c.layout.count; ++i)
+            b[i] = 1.0 + 0.1 * i;
         dense_step(&r, gamma, b, want);
         arrow_step(&r, gamma, b, x);
         for (int i = 0; i < r.c.layout.count; ++i) {
@@ -469,8 +530,8 @@ static void books_balance(void **state)
             double net = f[SP_Y_HEAT_IN] - f[SP_Y_HEAT_AIR] - f[SP_Y_HEAT_SKIN];
             double turned = fabs(f[SP_Y_HEAT_IN]) + fabs(f[SP_Y_HEAT_AIR]) + fabs(f[SP_Y_HEAT_SKIN]);
             if (!(fabs(growing - net) <= 1e-5 * turned + 1.0)) {
-                print_error("%s, %s: held heat grows by %.9g W, books say %.9g\n", cars[car].name, conditions[kind],
-                            growing, net);
+                print_error("%s, %s: held heat grows by %.9g W, books say %.9g\n", cars[car].name,
+                            conditions[kind], growing, net);
                 fail();
             }
             sp_circuit_free(&r.c);
@@ -489,13 +550,16 @@ static void cold_cars_rest(void **state)
         cars[car].fit(&r);
         put(&r, 4);
         for (int d = 0; d < SP_DUCTS; ++d)
-            for (int i = 0; i < SP_CORES; ++i) r.d.duct[d].core[i].heat_load = 0.0;
+            for (int i = 0; i < SP_CORES; ++i)
+                r.d.duct[d].core[i].heat_load = 0.0;
         r.d.hoses.heater_air = NAN;
         prepare(&r);
-        r.d.start = (struct sp_start){.coolant = 298.15, .metal = NAN, .radiator = NAN, .oil = NAN, .gearbox = NAN};
+        r.d.start =
+            (struct sp_start){.coolant = 298.15, .metal = NAN, .radiator = NAN, .oil = NAN, .gearbox = NAN};
         sp_circuit_start(&r.c, &r.in, r.y);
         rates_at(&r, r.y, &k, f);
-        for (int i = 0; i < r.c.layout.count; ++i) check_close(f[i], 0.0, 0, 1e-10);
+        for (int i = 0; i < r.c.layout.count; ++i)
+            check_close(f[i], 0.0, 0, 1e-10);
         sp_circuit_free(&r.c);
     }
 }
