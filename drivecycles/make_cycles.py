@@ -1,8 +1,8 @@
 #!/usr/bin/env python3
 """Writes the drive cycles of this folder: make_cycles.py [FOLDER].
 
-nedc.csv from the regulation's table of operations; harrowmoor.csv and stonemere.csv from a point-mass model
-of invented cars on invented roads (README.md states it). Only + - * / and square roots are used, and numbers
+nedc.csv from the regulation's table of operations; harrowmoor.csv, stonemere.csv and stonemere-lap.csv from a
+point-mass model of invented cars on invented roads (README.md states it). Only + - * / and square roots are used, and numbers
 are rounded when written, so that the files come out the same everywhere.
 SPDX-License-Identifier: GPL-3.0-or-later"""
 
@@ -228,6 +228,24 @@ def stonemere():
     return rows
 
 
+def stonemere_lap():
+    """One flying lap that ends as it begins, to be driven over and over."""
+    car, road = RACER, Road(STONEMERE, STONEMERE_LAST, laps=5)
+    lap = road.length // 5
+    samples = drive(car, road, 30.0, 200.0)
+    first = next(i for i, x in enumerate(samples) if x[0] >= 2 * lap)
+    beyond = next(i for i, x in enumerate(samples) if x[0] >= 3 * lap)
+    rows = []
+    for k in range((beyond - first) // 100 + 1):
+        (s, v, _, rev), power = second(samples[first - 100:], k + 1, len(samples))
+        mark = "Line"
+        for begin, name, on in road.begins:
+            if on == 2 and s >= begin:
+                mark = name
+        rows.append(("%d" % k, "%.2f" % (3.6 * v), "%.1f" % (power / 1e3), "%.0f" % (60 * rev), mark))
+    return rows + [("%.2f" % ((beyond - first) * STEP),) + rows[0][1:]]
+
+
 def write(folder, name, headings, rows):
     with open(os.path.join(folder, name), "w", newline="\n", encoding="ascii") as out:
         out.write(",".join(headings) + "\n")
@@ -242,6 +260,7 @@ def main():
     write(folder, "nedc.csv", [time, speed], nedc())
     write(folder, "harrowmoor.csv", [time, speed, power, rev, "altitude [m]", "mark"], harrowmoor())
     write(folder, "stonemere.csv", [time, speed, power, rev, "mark"], stonemere())
+    write(folder, "stonemere-lap.csv", [time, speed, power, rev, "mark"], stonemere_lap())
 
 
 if __name__ == "__main__":

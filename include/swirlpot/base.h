@@ -100,6 +100,7 @@ enum sp_kind {
     SP_K_COMPLIANCE,     /* m3/Pa */
     SP_K_FRICTION,       /* road load: N s2/m2 */
     SP_K_FOULING,        /* m2K/W */
+    SP_K_CHARGE,         /* A s; Ah and mAh allowed */
     SP_KINDS
 };
 

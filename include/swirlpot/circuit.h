@@ -63,6 +63,8 @@ struct sp_core_air {
 };
 
 struct sp_duct_state {
+    bool network;            /* solved as one: what a plain duct does not have is told below */
+    int cores, fans, exits;  /* of it */
     struct sp_core_air core[SP_CORES];
     double fresh;          /* kg/s in at the inlet, negative when air comes out of it */
     double leak_past, leak_outside; /* kg/s past the cores, and to outside */
@@ -100,7 +102,7 @@ SP_API void sp_duct_stations(const struct sp_duct *d, const struct sp_duct_input
 
 /* Drag [N] from the losses instead of the exit's momentum: m (V - v_w), v_w the speed far behind when the exit's
  * total pressure has turned into speed again at ambient pressure. The same as `drag` for a jet along the stream
- * leaving at ambient pressure; the difference is a force on the outside. NAN in reverse flow. */
+ * leaving at ambient pressure; the difference is a force on the outside. NAN in reverse flow, and of several exits. */
 SP_API double sp_duct_wake_drag(const struct sp_duct_state *state, const struct sp_station station[SP_STATIONS]);
 
 #ifdef __cplusplus

@@ -46,6 +46,10 @@ SP_API struct sp_design *sp_case_parse(struct sp_units *u, const char *name, con
                                        char *const *set, size_t sets, enum sp_purpose purpose,
                                        struct sp_complaints *complaints, struct sp_complaints *cautions);
 
+/* How many values a case leaves at defaults that rest on common practice, or on memory alone. */
+struct sp_defaults { size_t practice, memory; };
+SP_API bool sp_case_defaults(struct sp_units *u, const char *file, char *const *set, size_t sets, struct sp_defaults *out);
+
 /* Writes every input as understood: path, the user's own text, SI value, basis; defaults marked. Reads
  * the files again. Returns as sp_case_read. */
 SP_API enum sp_status sp_case_show(struct sp_units *u, const char *file, char *const *set, size_t sets,

@@ -65,11 +65,15 @@ struct sp_engine {
     double gas_reference;             /* K, metal at which the heat law holds */
     double cylinders, bore, stroke, compression; /* -, m, m, - */
     double correlation_constant;      /* C of the correlation, 10.4 */
+    bool diesel;                      /* its gas temperature in the correlation is a diesel's */
+    double stoichiometric;            /* kg of air per kg of fuel at equivalence ratio 1 */
 
     enum sp_friction_law overrun_law;
     double chen_flynn[4];             /* Pa, -, Pa s/m, Pa s2/m2 */
-    double heat_given, heat_loss;     /* W; share of |power| */
-    double energy_cap;                /* most of the fuel's energy that may leave as work, coolant and oil heat; 0: none */
+    double overrun_intake;            /* pressure in the inlet manifold over ambient, motored with the fuel cut */
+    double overrun_oil;               /* K of the oil on overrun, for SP_FRICTION_SI */
+    double heat_given, heat_loss;     /* W; share of |power|; both for SP_HEAT_GIVEN */
+    double energy_cap;                /* most of the fuel's energy that leaves as work, coolant and oil heat; 0: none */
     double metal_capacity;            /* J/K */
     double coolant_volume;            /* m3 in the jacket */
     double wetted_area;               /* m2 of jacket that boils first; 0: local boiling is not judged */

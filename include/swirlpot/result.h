@@ -8,6 +8,7 @@
 
 #include "swirlpot/circuit.h"
 #include "swirlpot/drive.h"
+#include "swirlpot/paper.h"
 
 #ifdef __cplusplus
 extern "C" {
@@ -20,6 +21,7 @@ struct sp_report {
     const struct sp_design *design;
     const struct sp_drive *drive;
     const struct sp_result *result;
+    struct sp_defaults defaults; /* what the case leaves at its defaults, to be told; zeros: not told */
 };
 
 /* The verdict for a person, at most 80 columns wide: whole degrees, or with `exact` more digits. */
@@ -55,14 +57,16 @@ SP_API void sp_report_files_abandon(struct sp_report_files *f);
 /* One solved condition. */
 struct sp_duct_point {
     double speed; /* m/s over the road; in.speed is through the air */
+    int duct;      /* which of several unlike ones, from 1; 0: there is but one */
+    double copies; /* equal ducts, whose flows and forces are told together; 0: one */
     struct sp_duct_inputs in;
     struct sp_duct_state state;
     struct sp_station station[SP_STATIONS];
     struct sp_duct_losses losses;
 };
 
-/* Solves the duct of a design for one road speed, with the design's air and wind; `heat` W to the air and
- * `fan_speed` as share of rated speed. Status as sp_duct_solve. */
+/* Solves the duct of a design for one road speed, with the design's air and wind; `heat` W to the air of one duct and
+ * `fan_speed` of all fans as share of rated speed. Status as sp_duct_solve. */
 SP_API enum sp_status sp_duct_point_solve(const struct sp_duct *duct, const struct sp_air_design *air,
                                           double speed, double heat, double fan_speed,
                                           struct sp_duct_point *out);

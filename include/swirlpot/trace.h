@@ -27,6 +27,7 @@ enum sp_column {
     SP_COL_AMBIENT,      /* K */
     SP_COL_WAKE,         /* share of free-stream dynamic pressure left, 0..1.5 */
     SP_COL_COOLANT,      /* K, measured */
+    SP_COL_HEAT,         /* W to the coolant, with heat law given */
     SP_COL_MARK,         /* text: corner names and the like */
     SP_COLUMNS
 };

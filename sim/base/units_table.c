@@ -62,6 +62,7 @@ static const struct sp_kind_row kinds[SP_KINDS] = {
                         "a drag per speed squared such as \"0.45 N.s2/m2\"", false, NULL, {-1, 1}},
     [SP_K_FOULING] = {"fouling resistance", "m2K/W", "a fouling resistance such as \"1.76e-4 m2K/W\"", false, NULL,
                       {0, -1, 3, 0, 1}},
+    [SP_K_CHARGE] = {"electric charge", "A s", "an electric charge such as \"16 A.h\"", false, NULL, {0, 0, 1, 1}},
 };
 
 const struct sp_kind_row *sp_kind_row(enum sp_kind kind)
@@ -119,6 +120,8 @@ static const struct sp_spelling spellings[] = {
     {SP_K_FOULING, "m2K/W", 1.0, 0.0},
     {SP_K_FOULING, "m2 K/W", 1.0, 0.0},
     {SP_K_FOULING, "m2.K/W", 1.0, 0.0},
+    {SP_K_CHARGE, "A.h", 3600.0, 0.0},
+    {SP_K_CHARGE, "Ah", 3600.0, 0.0},
     {SP_K_TORQUE, "lb-ft", LBF * 0.3048, 0.0},
     {SP_K_TORQUE, "lb.ft", LBF * 0.3048, 0.0},
     {SP_K_TORQUE, "lb ft", LBF * 0.3048, 0.0},
@@ -180,6 +183,8 @@ static const struct {
     {"Wh", {3600.0, M(2, 1, -2), SP_SEEN_ENERGY}},
     {"kWh", {3.6e6, M(2, 1, -2), SP_SEEN_ENERGY}},
     {"MWh", {3.6e9, M(2, 1, -2), SP_SEEN_ENERGY}},
+    {"Ah", {3600.0, M(0, 0, 1, 1), 0}},
+    {"mAh", {3.6, M(0, 0, 1, 1), 0}},
     {"degR", {5.0 / 9.0, M(0, 0, 0, 0, 1), 0}},
 };
 

@@ -8,7 +8,8 @@
 #include "part/inlet.h"
 #include "part/unevenness.h"
 
-static bool refuse(const struct sp_place *at, struct sp_complaints *to, const char *found, const char *expected)
+static bool refuse(const struct sp_place *at, struct sp_complaints *to, const char *found,
+                   const char *expected)
 {
     sp_complain(to, at, found, expected, NULL);
     return false;
@@ -83,8 +84,9 @@ static bool is_plain(const struct sp_duct *d)
     const struct sp_duct_design *g = &d->design;
     const struct sp_fan *f = &g->fan[0];
     bool fan_whole = !f->fitted || (sp_span_is_whole(f->span_from, f->span_to) && !(f->flap_area > 0.0));
-    return d->cores == 1 && d->exits == 1 && d->fans <= 1 && fan_whole && no_leaks(g) && as_outside(&g->inlet) &&
-           sp_span_is_whole(g->core[0].span_from, g->core[0].span_to) && g->core[0].carries != SP_CARRIES_LOAD;
+    return d->cores == 1 && d->exits == 1 && d->fans <= 1 && fan_whole && no_leaks(g) &&
+           as_outside(&g->inlet) && sp_span_is_whole(g->core[0].span_from, g->core[0].span_to) &&
+           g->core[0].carries != SP_CARRIES_LOAD;
 }
 
 static void settle(struct sp_leak *l)
@@ -96,7 +98,8 @@ static void settle(struct sp_leak *l)
 static bool count(struct sp_duct *d, const struct sp_place *at, struct sp_complaints *to)
 {
     const struct sp_duct_design *g = &d->design;
-    if (g->cores > SP_CORES || g->exits > SP_EXITS) return refuse(at, to, "too many cores or exits", "at most 5 and 8");
+    if (g->cores > SP_CORES || g->exits > SP_EXITS)
+        return refuse(at, to, "too many cores or exits", "at most 5 and 8");
     d->cores = g->cores ? (int)g->cores : 1;
     d->exits = g->exits ? (int)g->exits : 1;
     for (int i = 0; i < SP_FANS; ++i)

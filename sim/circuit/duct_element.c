@@ -47,7 +47,12 @@ double sp_duct_back_leak(const struct sp_duct_problem *p)
 
 double sp_duct_head(const struct sp_duct_problem *p, double m, double rho, double area)
 {
-    double floor = p->density * p->duct->section * p->floor;
+    return sp_duct_head_of(p, m, rho, area, 1.0);
+}
+
+double sp_duct_head_of(const struct sp_duct_problem *p, double m, double rho, double area, double share)
+{
+    double floor = p->density * p->duct->section * p->floor * share;
     return fabs(m) * sqrt(m * m + floor * floor) / (2.0 * rho * area * area);
 }
 
@@ -59,8 +64,9 @@ struct sp_inlet_loss sp_duct_inlet_loss(const struct sp_duct_problem *p, double 
     return (struct sp_inlet_loss){lip, inlet->screen * head, p->duct->diffuser_loss * head};
 }
 
-struct sp_core_loss sp_duct_core_loss(const struct sp_duct_problem *p, const struct sp_core_ready *core, double m,
-                                      double face, double T_in, double T_out, double rho_in, double rho_out)
+struct sp_core_loss sp_duct_core_loss(const struct sp_duct_problem *p, const struct sp_core_ready *core,
+                                      double m, double face, double T_in, double T_out, double rho_in,
+                                      double rho_out)
 {
     double floor = p->density * p->floor, G = fabs(m) / face;
     double lifted = sqrt(G * G + floor * floor);
@@ -80,9 +86,9 @@ double sp_duct_fan(const struct sp_duct_problem *p, int i, double m, double befo
     return sp_fan_pressure(&p->duct->fan[i], p->in->fan_speed[i], m, cold + (hot - cold) * ahead);
 }
 
-double sp_duct_exit_loss(const struct sp_duct_problem *p, double loss, double area, double m, double rho)
+double sp_duct_exit_loss(double loss, double m, double head)
 {
-    return (m >= 0.0 ? loss : loss + SP_REVERSE_ENTRY) * sp_duct_head(p, m, rho, area);
+    return (m >= 0.0 ? loss : loss + SP_REVERSE_ENTRY) * head;
 }
 
 void sp_duct_add_outside(const struct sp_duct_problem *p, double inlet_velocity, struct sp_duct_state *out)
@@ -103,9 +109,11 @@ double sp_duct_thrust(double m, double total, double rho, double tau, double cos
     return m * v * (1.0 - 1.0 / sqrt(tau)) * cos_a;
 }
 
-struct sp_station sp_duct_station(const struct sp_duct_problem *p, double m, double total, double T, double area)
+struct sp_station sp_duct_station(const struct sp_duct_problem *p, double m, double total, double T,
+                                  double area)
 {
     double rho = p->in->pressure / (p->in->R * T);
     double v = m / (rho * area);
-    return (struct sp_station){p->in->pressure + total, p->in->pressure + total - 0.5 * rho * v * v, rho, T, v};
+    return (struct sp_station){p->in->pressure + total, p->in->pressure + total - 0.5 * rho * v * v, rho, T,
+                               v};
 }

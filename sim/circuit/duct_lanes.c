@@ -8,7 +8,8 @@ static const double same = 1e-9;
 
 struct span { double from, to; };
 
-static bool refuse(const struct sp_place *at, struct sp_complaints *to, const char *found, const char *expected)
+static bool refuse(const struct sp_place *at, struct sp_complaints *to, const char *found,
+                   const char *expected)
 {
     sp_complain(to, at, found, expected, NULL);
     return false;
@@ -70,13 +71,15 @@ static bool name_shrouds(struct sp_duct *d, const struct sp_place *at, struct sp
         struct span s = fan_span(d, i);
         d->shroud[i] = SP_NODE_OUTSIDE;
         if (!d->design.fan[i].fitted) continue;
-        if (!sound(s)) return refuse(at, to, "a fan's span that is no span", "span_from below span_to, 0 to 1");
+        if (!sound(s))
+            return refuse(at, to, "a fan's span that is no span", "span_from below span_to, 0 to 1");
         for (int j = 0; j < i && d->shroud[i] < 0; ++j) {
             struct span t = fan_span(d, j);
             if (d->shroud[j] < 0 || d->design.fan[j].before_core != d->design.fan[i].before_core) continue;
             if (fabs(s.from - t.from) < same && fabs(s.to - t.to) < same) d->shroud[i] = d->shroud[j];
             else if (s.from < t.to - same && t.from < s.to - same)
-                return refuse(at, to, "two shrouds over the same part", "spans of fans that are equal or apart");
+                return refuse(at, to, "two shrouds over the same part",
+                              "spans of fans that are equal or apart");
         }
         if (d->shroud[i] < 0) d->shroud[i] = d->nodes++;
     }
@@ -106,7 +109,8 @@ static int add_end(double *end, int ends, double x)
 static int all_ends(const struct sp_duct *d, double *end)
 {
     int n = add_end(end, add_end(end, 0, 0.0), 1.0);
-    for (int i = 0; i < d->cores; ++i) n = add_end(end, add_end(end, n, core_span(d, i).from), core_span(d, i).to);
+    for (int i = 0; i < d->cores; ++i)
+        n = add_end(end, add_end(end, n, core_span(d, i).from), core_span(d, i).to);
     for (int i = 0; i < d->fans; ++i)
         if (d->shroud[i] >= 0) n = add_end(end, add_end(end, n, fan_span(d, i).from), fan_span(d, i).to);
     return n;
@@ -166,19 +170,33 @@ bool sp_lanes_build(struct sp_duct *d, const struct sp_place *at, struct sp_comp
 
 /* ---- branches -------------------------------------------------------------------------------------- */
 
+static double all_exits(const struct sp_duct *d)
+{
+    double sum = 0.0;
+    for (int i = 0; i < d->exits; ++i) sum += d->design.exit[i].area;
+    return sum;
+}
+
+/* Several exits share the floor by their areas, so that one cut in two stays what it was; leaks and flaps
+ * have one of the same velocity in them. */
 static void add(struct sp_duct *d, struct sp_branch b)
 {
+    b.share = 1.0;
+    if (b.kind == SP_BRANCH_EXIT) b.share = b.area / all_exits(d);
+    if (b.kind == SP_BRANCH_LEAK || b.kind == SP_BRANCH_FLAP) b.share = fmin(b.area / d->section, 1.0);
     d->branch[d->branches++] = b;
 }
 
 static void add_fan(struct sp_duct *d, int i)
 {
     const struct sp_fan *f = &d->design.fan[i];
-    int from = f->before_core ? SP_NODE_FRONT : d->shroud[i], to = f->before_core ? d->shroud[i] : SP_NODE_BAY;
+    int from = f->before_core ? SP_NODE_FRONT : d->shroud[i],
+        to = f->before_core ? d->shroud[i] : SP_NODE_BAY;
     if (d->shroud[i] < 0) return;
-    add(d, (struct sp_branch){.kind = SP_BRANCH_FAN, .index = i, .from = from, .to = to, .area = d->fan[i].annulus});
+    add(d, (struct sp_branch){
+               .kind = SP_BRANCH_FAN, .index = i, .from = from, .to = to, .area = d->fan[i].annulus});
     if (f->flap_area > 0.0)
-        add(d, (struct sp_branch){SP_BRANCH_FLAP, i, from, to, f->flap_area, f->flap_loss});
+        add(d, (struct sp_branch){SP_BRANCH_FLAP, i, from, to, f->flap_area, f->flap_loss, 1.0});
 }
 
 static bool holds(const struct sp_leak *l)
@@ -189,18 +207,19 @@ static bool holds(const struct sp_leak *l)
 bool sp_branches_build(struct sp_duct *d, const struct sp_place *at, struct sp_complaints *to)
 {
     const struct sp_duct_design *g = &d->design;
-    add(d, (struct sp_branch){SP_BRANCH_INLET, 0, SP_NODE_OUTSIDE, SP_NODE_FRONT, d->inlet_area, 0.0});
+    add(d, (struct sp_branch){SP_BRANCH_INLET, 0, SP_NODE_OUTSIDE, SP_NODE_FRONT, d->inlet_area, 0.0, 1.0});
     for (int i = 0; i < d->lanes; ++i)
-        add(d, (struct sp_branch){SP_BRANCH_LANE, i, d->lane[i].from, d->lane[i].to, 0.0, 0.0});
+        add(d, (struct sp_branch){SP_BRANCH_LANE, i, d->lane[i].from, d->lane[i].to, 0.0, 0.0, 1.0});
     for (int i = 0; i < d->fans; ++i) add_fan(d, i);
     if (holds(&g->past_core))
         add(d, (struct sp_branch){SP_BRANCH_LEAK, 0, SP_NODE_FRONT, SP_NODE_BAY, g->past_core.area,
-                                  g->past_core.coefficient});
+                                  g->past_core.coefficient, 1.0});
     if (holds(&g->outside))
         add(d, (struct sp_branch){SP_BRANCH_LEAK, 1, SP_NODE_FRONT, SP_NODE_OUTSIDE, g->outside.area,
-                                  g->outside.coefficient});
+                                  g->outside.coefficient, 1.0});
     for (int i = 0; i < d->exits; ++i)
-        add(d, (struct sp_branch){SP_BRANCH_EXIT, i, SP_NODE_BAY, SP_NODE_OUTSIDE, g->exit[i].area, g->exit[i].loss});
+        add(d, (struct sp_branch){SP_BRANCH_EXIT, i, SP_NODE_BAY, SP_NODE_OUTSIDE, g->exit[i].area,
+                                  g->exit[i].loss, 1.0});
     for (int i = 0; i < d->branches; ++i) {
         const struct sp_branch *b = &d->branch[i];
         bool needs_loss = b->kind == SP_BRANCH_LEAK || b->kind == SP_BRANCH_FLAP;

@@ -1,19 +1,19 @@
-/* What the pieces of the network do at given unknowns, and the residuals. SPDX-License-Identifier: GPL-3.0-or-later */
+/* What the pieces of the network do at given unknowns, and the residuals. SPDX-License-Identifier:
+ * GPL-3.0-or-later */
 #include "circuit/duct_network.h"
 
 #include <math.h>
 #include <string.h>
 
-#include "circuit/duct_lanes.h"
-#include "part/cells.h"
-
-static const double most_by_load = 200.0;  /* K over ambient that a load or the engine's skin can heat air to */
+static const double most_by_load =
+    200.0; /* K over ambient that a load or the engine's skin can heat air to */
 static const double most_by_given = 40.0;  /* times ambient, over it, that heat given from outside can */
 static const double most_cooling = 50.0;   /* K */
 static const double shut = 1e10;           /* k of flaps against their way, times that along it */
 static const double hardly = 0.01;        /* m/s of face velocity; see sp_network_soft */
-static const double stray = 1e-9;          /* of hardly any: ambient air that keeps a closed loop's temperature known */
-static const double given_floor = 1e-6;    /* m/s, laminar floor with given heat, which is itself linear there */
+static const double stray =
+    1e-9; /* of hardly any: ambient air that keeps a closed loop's temperature known */
+static const double given_floor = 1e-6; /* m/s, laminar floor with given heat, which is itself linear there */
 static const double preheat_from = 50.0 / 3.6; /* m/s, from which preheat is that of the road */
 
 static double eighth_root(double x)
@@ -105,84 +105,14 @@ struct sp_network sp_network_pose(const struct sp_duct *d, const struct sp_duct_
     n.blown = fmax(in->blower, 0.0) * n.p.density;
     n.small = n.p.density * d->section * hardly;
     n.most_rise = in->heat_given ? most_by_given * in->temperature : most_by_load;
+    n.most_in_bay = most_by_load;
     if (in->heat_given && in->heat > 0.0) share_given_heat(&n);
     return n;
 }
 
-/* ---- lanes ----------------------------------------------------------------------------------------- */
-
-static double density_at(const struct sp_network *n, double T)
+double sp_network_density(const struct sp_network *n, double T)
 {
     return n->p.density * (n->p.in->temperature / T);
-}
-
-/* Heat that is a core's, whatever its metal: a load, or given from outside. W. */
-static double own_heat(const struct sp_network *n, int core)
-{
-    const struct sp_core *c = &n->p.duct->design.core[core];
-    double heat = n->takes_given[core] ? n->given * n->p.duct->core[core].face : 0.0;
-    return c->carries == SP_CARRIES_LOAD ? heat + c->heat_load : heat;
-}
-
-static bool is_wall(const struct sp_network *n, int core)
-{
-    return !n->p.in->heat_given && sp_core_has_heat(&n->p.duct->core[core]) &&
-           n->p.duct->design.core[core].carries != SP_CARRIES_LOAD;
-}
-
-/* Temperature behind a core; a load is shared by all the air that passes the core, wherever it does. */
-static void heat_in_lane(const struct sp_network *n, const struct sp_lane *l, int i, double m,
-                         const struct sp_net_look *look, struct sp_lane_core *c)
-{
-    const struct sp_duct_inputs *in = n->p.in;
-    int k = l->core[i];
-    double rate = m * in->cp;
-    c->T_out = c->T_in;
-    if (is_wall(n, k)) {
-        double flux = m / sp_lane_face(n->p.duct, l, i), film = 0.5 * (c->T_in + in->wall[k]);
-        double hA = sp_core_air_conductance(&n->p.duct->core[k], flux, film) * l->share[i];
-        double eps = sp_cells_air_effectiveness(hA, rate);
-        c->rate = rate * eps;
-        c->T_out = c->T_in + eps * (in->wall[k] - c->T_in);
-        c->heat = c->rate * (in->wall[k] - c->T_in);
-        return;
-    }
-    double heat = own_heat(n, k);
-    if (heat == 0.0) return;
-    bool alone = l->share[i] > 1.0 - 1e-9;
-    double rise = sp_network_rise(heat, (alone ? m : look->passing[k]) * in->cp,
-                                  n->most_rise - (c->T_in - in->temperature));
-    c->T_out = c->T_in + rise;
-    c->heat = rate * rise;
-}
-
-/* Where a core's face is larger than that of the one the air comes from, the jet between is lost (Borda-Carnot). */
-static double jet_loss(const struct sp_network *n, double m, double T, double before, double face)
-{
-    if (!(face > before)) return 0.0;
-    double left = 1.0 - before / face;
-    return sp_duct_head(&n->p, m, density_at(n, T), before) * left * left;
-}
-
-struct sp_branch_does sp_network_lane(const struct sp_network *n, const struct sp_lane *l, double m, double upstream,
-                                      const struct sp_net_look *look, struct sp_lane_core *core)
-{
-    double T = upstream, lost = 0.0, before = INFINITY, size = fabs(m);
-    for (int step = 0; step < l->cores; ++step) {
-        int i = m >= 0.0 ? step : l->cores - 1 - step;
-        struct sp_lane_core c = {.T_in = T};
-        double face = sp_lane_face(n->p.duct, l, i);
-        heat_in_lane(n, l, i, size, look, &c);
-        struct sp_core_loss loss = sp_duct_core_loss(&n->p, &n->p.duct->core[l->core[i]], size, face, c.T_in, c.T_out,
-                                                     density_at(n, c.T_in), density_at(n, c.T_out));
-        c.heating = loss.heating;
-        c.drop = loss.core + loss.heating + jet_loss(n, size, T, before, face);
-        lost += c.drop;
-        T = c.T_out;
-        before = face;
-        if (core) core[i] = c;
-    }
-    return (struct sp_branch_does){copysign(lost, m), T};
 }
 
 /* ---- branches -------------------------------------------------------------------------------------- */
@@ -198,14 +128,15 @@ static double inlet_loss(const struct sp_network *n, double m, double rho)
 static double exit_loss(const struct sp_network *n, const struct sp_branch *b, double m, double rho)
 {
     bool open = n->p.in->bonnet_up;
-    double area = open ? n->p.duct->section : b->area;
-    double loss = sp_duct_exit_loss(&n->p, open ? 0.0 : b->loss, area, m, rho);
-    return m >= 0.0 ? loss + sp_duct_head(&n->p, m, rho, area) : -loss;
+    double head = sp_duct_head_of(&n->p, m, rho, open ? n->p.duct->section : b->area, open ? 1.0 : b->share);
+    double loss = sp_duct_exit_loss(open ? 0.0 : b->loss, m, head);
+    return m >= 0.0 ? loss + head : -loss;
 }
 
-static double fan_loss(const struct sp_network *n, const struct sp_branch *b, double m, double from, double to)
+static double fan_loss(const struct sp_network *n, const struct sp_branch *b, double m, double from,
+                       double to)
 {
-    double before = density_at(n, from), behind = density_at(n, to);
+    double before = sp_network_density(n, from), behind = sp_network_density(n, to);
     double head = sp_duct_head(&n->p, m, m >= 0.0 ? before : behind, b->area);
     return copysign(n->speck * head, m) - sp_duct_fan(&n->p, b->index, m, before, behind);
 }
@@ -214,13 +145,15 @@ struct sp_branch_does sp_network_branch(const struct sp_network *n, int b, doubl
                                         const struct sp_net_look *look)
 {
     const struct sp_branch *branch = &n->p.duct->branch[b];
-    double upstream = m >= 0.0 ? from : to, rho = density_at(n, upstream), loss = 0.0;
+    double upstream = m >= 0.0 ? from : to, rho = sp_network_density(n, upstream), loss = 0.0;
     switch (branch->kind) {
     case SP_BRANCH_LANE: return sp_network_lane(n, &n->p.duct->lane[branch->index], m, upstream, look, NULL);
     case SP_BRANCH_INLET: loss = inlet_loss(n, m, rho); break;
     case SP_BRANCH_EXIT: loss = exit_loss(n, branch, m, rho); break;
     case SP_BRANCH_FAN: loss = fan_loss(n, branch, m, from, to); break;
-    case SP_BRANCH_LEAK: loss = copysign(branch->loss * sp_duct_head(&n->p, m, rho, branch->area), m); break;
+    case SP_BRANCH_LEAK:
+        loss = copysign(branch->loss * sp_duct_head_of(&n->p, m, rho, branch->area, branch->share), m);
+        break;
     case SP_BRANCH_FLAP: break; /* see sp_network_flap */
     }
     return (struct sp_branch_does){loss, upstream};
@@ -247,11 +180,14 @@ static void add_passing(const struct sp_network *n, const struct sp_net_state *x
 }
 
 /* k rho/2 v |v| with the laminar floor, solved for the flow: m sqrt(m^2 + floor^2) = c. */
-struct sp_flap_does sp_network_flap(const struct sp_network *n, int b, double drop, const struct sp_net_state *x)
+struct sp_flap_does sp_network_flap(const struct sp_network *n, int b, double drop,
+                                    const struct sp_net_state *x)
 {
     const struct sp_branch *branch = &n->p.duct->branch[b];
-    double rho = density_at(n, sp_network_end(n, b, drop < 0.0, x)), floor = n->p.density * n->p.duct->section * n->p.floor;
-    double k = drop < 0.0 ? shut * branch->loss : branch->loss, per = 2.0 * rho * branch->area * branch->area / k;
+    double rho = sp_network_density(n, sp_network_end(n, b, drop < 0.0, x));
+    double floor = n->p.density * n->p.duct->section * n->p.floor * branch->share;
+    double k = drop < 0.0 ? shut * branch->loss : branch->loss,
+           per = 2.0 * rho * branch->area * branch->area / k;
     double c = per * fabs(drop), f2 = floor * floor, m = c * sqrt(2.0 / (f2 + sqrt(f2 * f2 + 4.0 * c * c)));
     return (struct sp_flap_does){copysign(m, drop), per * sqrt(m * m + f2) / (2.0 * m * m + f2)};
 }
@@ -290,7 +226,8 @@ static void look_at_warmth(const struct sp_network *n, const struct sp_net_state
     for (int i = 0; i < n->nodes; ++i) {
         double mixed = look->gain[i] / sp_network_soft(n, look->inflow[i], &slope);
         if (i == SP_NODE_BAY)
-            mixed += sp_network_rise(n->p.in->bay_heat, look->inflow[i] * n->p.in->cp, most_by_load - mixed);
+            mixed +=
+                sp_network_rise(n->p.in->bay_heat, look->inflow[i] * n->p.in->cp, n->most_in_bay - mixed);
         look->warmth[i] = x->temperature[i] - ambient - n->felt * mixed;
     }
     double drawn = look->gain[SP_INLET_AIR] / sp_network_soft(n, look->inflow[SP_INLET_AIR], &slope);

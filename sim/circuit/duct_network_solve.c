@@ -4,7 +4,8 @@
 
 #include "circuit/duct_network.h"
 
-/* Face velocity [m/s] below which losses are linear at the start of the long way: then the network is nearly linear. */
+/* Face velocity [m/s] below which losses are linear at the start of the long way: then the network is nearly
+ * linear. */
 static const double thick = 100.0;
 
 static void recall(const struct sp_duct_guess *g, struct sp_net_state *x)
@@ -44,8 +45,8 @@ static bool driven(const struct sp_network *n)
     return any;
 }
 
-/* Follows the answer while *knob falls from where it is to `last`, in steps that shorten where one fails; in the end
- * it leaps, for there may be a fold in the way. */
+/* Follows the answer while *knob falls from where it is to `last`, in steps that shorten where one fails; in
+ * the end it leaps, for there may be a fold in the way. */
 static bool turn_down(struct sp_network *easy, double *knob, double last, struct sp_net_state *x,
                       struct sp_net_look *look)
 {
@@ -74,9 +75,9 @@ static bool turn_down(struct sp_network *easy, double *knob, double last, struct
     return done <= last;
 }
 
-/* Flows alone, at the temperatures of x: every loss rises with its flow, so that there is one answer (but for fans
- * whose total pressure rises with flow). From linear losses to the true ones, with fans whose curves fall for sure
- * and inlets that resist; then to what these are. */
+/* Flows alone, at the temperatures of x: every loss rises with its flow, so that there is one answer (but for
+ * fans whose total pressure rises with flow). From linear losses to the true ones, with fans whose curves
+ * fall for sure and inlets that resist; then to what these are. */
 static bool fall_to_flows(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
 {
     struct sp_network easy = *n;
@@ -87,8 +88,8 @@ static bool fall_to_flows(const struct sp_network *n, struct sp_net_state *x, st
            turn_down(&easy, &easy.speck, n->speck, x, look);
 }
 
-/* Parallel fans whose total pressure rises with flow settle with some of them ahead and some back: bit i of `which`
- * says that fan i starts back. */
+/* Parallel fans whose total pressure rises with flow settle with some of them ahead and some back: bit i of
+ * `which` says that fan i starts back. */
 static void set_fans(const struct sp_network *n, unsigned which, struct sp_net_state *x)
 {
     for (int b = 0; b < n->branches; ++b) {
@@ -143,6 +144,20 @@ static bool warm_up(const struct sp_network *n, struct sp_net_state *x, struct s
     return done >= 1.0;
 }
 
+/* Flows and temperatures in turn. The last resort, for air that circles with next to nothing coming in: its
+ * temperature is then only as good as that many turns make it; flows and pressures are balanced. */
+static bool in_turn(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
+{
+    enum { TURNS = 50 };
+    struct sp_network frozen = *n;
+    frozen.frozen = true;
+    for (int i = 0; i < TURNS; ++i) {
+        warm(n, 0.5, x, look);
+        if (!sp_network_newton(&frozen, x, look) && !find_flows(n, x, look)) return false;
+    }
+    return true;
+}
+
 /* Flows at the temperatures of fresh air, then temperatures, then both at once. */
 static bool long_way(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
 {
@@ -150,10 +165,10 @@ static bool long_way(const struct sp_network *n, struct sp_net_state *x, struct 
     frozen.frozen = true;
     rest(n, x);
     if (!find_flows(n, x, look)) return false;
-    struct sp_net_state flows = *x;
+    struct sp_net_state flows = *x, both;
     for (int i = 0; i < 8; ++i) {
         for (int sweep = 0; sweep < 4; ++sweep) warm(n, i < 4 ? 1.0 : 0.5, x, look);
-        struct sp_net_state both = *x;
+        both = *x;
         if (sp_network_newton(n, &both, look)) {
             *x = both;
             return true;
@@ -161,7 +176,9 @@ static bool long_way(const struct sp_network *n, struct sp_net_state *x, struct 
         if (!sp_network_newton(&frozen, x, look)) break;
     }
     *x = flows;
-    return warm_up(n, x, look);
+    if (warm_up(n, x, look)) return true;
+    *x = flows;
+    return in_turn(n, x, look);
 }
 
 static bool find(const struct sp_network *n, struct sp_duct_guess *guess, struct sp_net_state *x,
@@ -186,8 +203,9 @@ static bool too_hot(const struct sp_duct_inputs *in, const struct sp_duct_state 
     return out->heat < in->heat * (1.0 - 1e-4) || out->temperature_ratio > hottest_ratio;
 }
 
-static enum sp_status tell(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
-                           struct sp_duct_guess *guess, struct sp_duct_state *out)
+static enum sp_status tell(const struct sp_network *n, const struct sp_net_state *x,
+                           const struct sp_net_look *look, struct sp_duct_guess *guess,
+                           struct sp_duct_state *out)
 {
     remember(x, guess);
     sp_network_report(n, x, look, out);
@@ -209,8 +227,8 @@ enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_in
 }
 
 /* Only from where the guess is. */
-static enum sp_status near_by(const struct sp_duct *d, const struct sp_duct_inputs *in, struct sp_duct_guess *guess,
-                              struct sp_duct_state *out)
+static enum sp_status near_by(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                              struct sp_duct_guess *guess, struct sp_duct_state *out)
 {
     struct sp_network n = sp_network_pose(d, in);
     struct sp_net_state x;
@@ -220,8 +238,8 @@ static enum sp_status near_by(const struct sp_duct *d, const struct sp_duct_inpu
     return sp_network_newton(&n, &x, &look) ? tell(&n, &x, &look, guess, out) : SP_NUMERICS;
 }
 
-/* Less air comes out hotter, and hot air resists the more: of several answers the duct comes to the one with the
- * largest flow, on the way from no heat. Where the flow falls away under the heat, it cannot carry it. */
+/* Less air comes out hotter, and hot air resists the more: of several answers the duct comes to the one with
+ * the largest flow, on the way from no heat. Where the flow falls away under the heat, it cannot carry it. */
 enum sp_status sp_network_solve_heated(const struct sp_duct *d, const struct sp_duct_inputs *in,
                                        struct sp_duct_guess *guess, struct sp_duct_state *out)
 {

@@ -1,8 +1,8 @@
 /* The plain duct: one equation in the mass flow, equation (1) of docs/model.md.
  *
  * Every loss rises with mass flow and every gain falls with it, so that the balance of total pressure is a
- * falling function of mass flow with one root, forward or reverse (given heat apart, see sp_plain_solve_heated).
- * SPDX-License-Identifier: GPL-3.0-or-later */
+ * falling function of mass flow with one root, forward or reverse (given heat apart, see
+ * sp_plain_solve_heated). SPDX-License-Identifier: GPL-3.0-or-later */
 #include "circuit/duct_plain.h"
 
 #include <math.h>
@@ -10,7 +10,8 @@
 
 #include "part/cells.h"
 
-/* Air heated to more than this many times its temperature is no answer but a sign that the flow breaks down. */
+/* Air heated to more than this many times its temperature is no answer but a sign that the flow breaks down.
+ */
 static const double hottest_ratio = 5.0;
 
 /* All that follows from one mass flow; `balance` is total pressure gained less lost. */
@@ -55,7 +56,8 @@ static void heat_the_air(const struct sp_duct_problem *p, double m, struct flow 
 static void through_core(const struct sp_duct_problem *p, double m, struct flow *f)
 {
     double T = p->in->temperature;
-    f->core = sp_duct_core_loss(p, &p->duct->core[0], m, p->duct->core[0].face, T, f->tau * T, f->rho_in, f->rho_out);
+    f->core = sp_duct_core_loss(p, &p->duct->core[0], m, p->duct->core[0].face, T, f->tau * T, f->rho_in,
+                                f->rho_out);
 }
 
 /* In reverse the air behind a fan is that of the front. */
@@ -84,7 +86,7 @@ static void reverse(const struct sp_duct_problem *p, double m, struct flow *f)
     f->inlet = sp_duct_inlet_loss(p, m, f->rho_out);
     through_core(p, m, f);
     through_fan(p, m, f);
-    f->exit = sp_duct_exit_loss(p, exit->loss, exit->area, m, f->rho_in);
+    f->exit = sp_duct_exit_loss(exit->loss, m, sp_duct_head(p, m, f->rho_in, exit->area));
     f->balance = f->available - f->back + f->fan + f->inlet.lip + f->inlet.screen + f->inlet.diffuser +
                  f->core.core + f->core.heating + f->exit;
 }
@@ -132,10 +134,16 @@ static void fill(const struct sp_duct_problem *p, double m, const struct flow *f
     out->inlet_temperature = p->in->temperature;
     out->bay_temperature = p->in->temperature * (m >= 0.0 ? f->tau : 1.0);
     out->bay_pressure = m >= 0.0 ? f->back + f->exit + f->exit_head : f->back - f->exit;
+    double ahead = f->inlet.lip + f->inlet.screen + f->inlet.diffuser;
+    out->front_pressure = m >= 0.0 ? f->available - ahead : f->available + ahead;
+    out->front_temperature = p->in->temperature * (m >= 0.0 ? 1.0 : f->tau);
     out->thrust = sp_duct_thrust(m, f->back + f->exit_head, f->rho_out, f->tau, cos_a);
     sp_duct_add_outside(p, m / ((m >= 0.0 ? f->rho_in : f->rho_out) * p->duct->inlet_area), out);
-    out->core[0] = (struct sp_core_air){.mass_flow = m, .rate = fabs(m) * p->in->cp * f->effectiveness, .heat = f->heat,
-                                        .air_in = p->in->temperature, .face_velocity = out->face_velocity,
+    out->core[0] = (struct sp_core_air){.mass_flow = m,
+                                        .rate = fabs(m) * p->in->cp * f->effectiveness,
+                                        .heat = f->heat,
+                                        .air_in = p->in->temperature,
+                                        .face_velocity = out->face_velocity,
                                         .drop = f->core.core + f->core.heating};
 }
 
@@ -159,8 +167,8 @@ enum sp_status sp_plain_solve(const struct sp_duct *d, const struct sp_duct_inpu
     return isfinite(out->mass_flow) && isfinite(out->heat) ? SP_OK : SP_NUMERICS;
 }
 
-/* Given heat, less air comes out hotter, and hot laminar air resists the more: below some flow the balance turns
- * back. What a duct settles to is the largest flow, on the way down from the unheated one. */
+/* Given heat, less air comes out hotter, and hot laminar air resists the more: below some flow the balance
+ * turns back. What a duct settles to is the largest flow, on the way down from the unheated one. */
 enum sp_status sp_plain_solve_heated(const struct sp_duct *d, const struct sp_duct_inputs *in, double cold,
                                    struct sp_duct_state *out)
 {
@@ -180,8 +188,9 @@ enum sp_status sp_plain_solve_heated(const struct sp_duct *d, const struct sp_du
     return SP_INPUT;
 }
 
-void sp_plain_stations(const struct sp_duct *d, const struct sp_duct_inputs *in, const struct sp_duct_state *state,
-                      struct sp_station s[SP_STATIONS], struct sp_duct_losses *losses)
+void sp_plain_stations(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                       const struct sp_duct_state *state, struct sp_station s[SP_STATIONS],
+                       struct sp_duct_losses *losses)
 {
     struct sp_duct_problem p = pose(d, in);
     double m = state->mass_flow, T2 = in->temperature, T3 = T2 * state->temperature_ratio;
@@ -202,6 +211,7 @@ void sp_plain_stations(const struct sp_duct *d, const struct sp_duct_inputs *in,
     s[3] = sp_duct_station(&p, m, at_back, rear, face);
     s[4] = sp_duct_station(&p, m, at_fan, rear, face);
     s[5] = sp_duct_station(&p, m, at_exit, rear, exit);
-    *losses = (struct sp_duct_losses){p.head - f.available, f.inlet.lip, f.inlet.screen, f.inlet.diffuser, f.core.core,
-                                      f.core.heating, -f.fan, f.exit, f.exit_head};
+    *losses = (struct sp_duct_losses){p.head - f.available, f.inlet.lip,    f.inlet.screen, f.inlet.diffuser,
+                                      f.core.core,          f.core.heating, -f.fan,         f.exit,
+                                      f.exit_head};
 }

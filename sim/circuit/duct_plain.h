@@ -6,14 +6,15 @@
 #include "circuit/duct_element.h"
 
 /* As sp_duct_solve_from, of a duct that is plain. */
-enum sp_status sp_plain_solve(const struct sp_duct *d, const struct sp_duct_inputs *in, struct sp_guess *guess,
-                              struct sp_duct_state *out);
+enum sp_status sp_plain_solve(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                              struct sp_guess *guess, struct sp_duct_state *out);
 
 /* With given heat, from the flow without it. */
 enum sp_status sp_plain_solve_heated(const struct sp_duct *d, const struct sp_duct_inputs *in, double cold,
                                      struct sp_duct_state *out);
 
-void sp_plain_stations(const struct sp_duct *d, const struct sp_duct_inputs *in, const struct sp_duct_state *state,
-                       struct sp_station s[SP_STATIONS], struct sp_duct_losses *losses);
+void sp_plain_stations(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                       const struct sp_duct_state *state, struct sp_station s[SP_STATIONS],
+                       struct sp_duct_losses *losses);
 
 #endif

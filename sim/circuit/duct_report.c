@@ -11,8 +11,8 @@
 /* Sums over the lanes of one core. */
 struct sums { double flow, size, rate, warm_rate, warm_size, front, heat, drop, heating; };
 
-static void add_lane(const struct sp_network *n, int b, const struct sp_net_state *x, const struct sp_net_look *look,
-                     struct sums *sum)
+static void add_lane(const struct sp_network *n, int b, const struct sp_net_state *x,
+                     const struct sp_net_look *look, struct sums *sum)
 {
     const struct sp_lane *l = &n->p.duct->lane[n->p.duct->branch[b].index];
     struct sp_lane_core part[SP_CORES];
@@ -33,8 +33,8 @@ static void add_lane(const struct sp_network *n, int b, const struct sp_net_stat
     }
 }
 
-static void tell_cores(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
-                       struct sp_duct_state *out)
+static void tell_cores(const struct sp_network *n, const struct sp_net_state *x,
+                       const struct sp_net_look *look, struct sp_duct_state *out)
 {
     const struct sp_duct *d = n->p.duct;
     struct sums sum[SP_CORES];
@@ -46,7 +46,10 @@ static void tell_cores(const struct sp_network *n, const struct sp_net_state *x,
         double T = s->rate > 0.0 ? s->warm_rate / s->rate
                                  : (s->size > 0.0 ? s->warm_size / s->size : x->temperature[SP_NODE_FRONT]);
         double volume = s->front / (n->p.density * n->p.in->temperature);
-        out->core[i] = (struct sp_core_air){.mass_flow = s->flow, .rate = s->rate, .air_in = T, .heat = s->heat,
+        out->core[i] = (struct sp_core_air){.mass_flow = s->flow,
+                                            .rate = s->rate,
+                                            .air_in = T,
+                                            .heat = s->heat,
                                             .face_velocity = volume / d->core[i].face,
                                             .drop = s->size > 0.0 ? s->drop / s->size : 0.0};
         out->heat += s->heat;
@@ -60,19 +63,19 @@ static void tell_cores(const struct sp_network *n, const struct sp_net_state *x,
 
 /* ---- flows ----------------------------------------------------------------------------------------- */
 
-static double density_at(const struct sp_network *n, double T)
-{
-    return n->p.density * (n->p.in->temperature / T);
-}
-
 static double upstream_density(const struct sp_network *n, int b, const struct sp_net_state *x)
 {
-    return density_at(n, sp_network_end(n, b, x->flow[b] < 0.0, x));
+    return sp_network_density(n, sp_network_end(n, b, x->flow[b] < 0.0, x));
 }
 
 static double area_of(const struct sp_network *n, const struct sp_branch *b)
 {
     return b->kind == SP_BRANCH_EXIT && n->p.in->bonnet_up ? n->p.duct->section : b->area;
+}
+
+static double share_of(const struct sp_network *n, const struct sp_branch *b)
+{
+    return n->p.in->bonnet_up ? 1.0 : b->share;
 }
 
 static void tell_flows(const struct sp_network *n, const struct sp_net_state *x, struct sp_duct_state *out)
@@ -95,14 +98,15 @@ static void tell_flows(const struct sp_network *n, const struct sp_net_state *x,
         }
     }
     if (out->mass_flow >= 0.0) return;
-    out->backwards = 0.0; /* all of it is, which is no recirculation: what comes back is what goes forwards too */
+    out->backwards =
+        0.0; /* all of it is, which is no recirculation: what comes back is what goes forwards too */
     for (int b = 0; b < n->branches; ++b)
         if (n->p.duct->branch[b].kind == SP_BRANCH_LANE && x->flow[b] > 0.0) out->backwards += x->flow[b];
 }
 
 /* Mean temperature that the air has behind the cores, as they blow; that ahead where nothing moves. */
-static double behind_cores(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
-                           bool ahead)
+static double behind_cores(const struct sp_network *n, const struct sp_net_state *x,
+                           const struct sp_net_look *look, bool ahead)
 {
     double flow = 0.0, warm = 0.0;
     for (int b = 0; b < n->branches; ++b) {
@@ -113,8 +117,8 @@ static double behind_cores(const struct sp_network *n, const struct sp_net_state
     return flow > 0.0 ? warm / flow : NAN;
 }
 
-static void tell_heat(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
-                      struct sp_duct_state *out)
+static void tell_heat(const struct sp_network *n, const struct sp_net_state *x,
+                      const struct sp_net_look *look, struct sp_duct_state *out)
 {
     bool ahead = out->mass_flow >= 0.0;
     double T2 = x->temperature[ahead ? SP_NODE_FRONT : SP_NODE_BAY], T3 = behind_cores(n, x, look, ahead);
@@ -125,16 +129,17 @@ static void tell_heat(const struct sp_network *n, const struct sp_net_state *x, 
 
 /* ---- drag ------------------------------------------------------------------------------------------ */
 
-/* What is taken in has the stream's momentum, wherever; a jet out of an exit gives back what looks rearwards, one out
- * of the inlet goes forwards, a leak gives nothing. */
-static void tell_exit_drag(const struct sp_network *n, int b, const struct sp_net_state *x, struct sp_duct_state *out)
+/* What is taken in has the stream's momentum, wherever; a jet out of an exit gives back what looks rearwards,
+ * one out of the inlet goes forwards, a leak gives nothing. */
+static void tell_exit_drag(const struct sp_network *n, int b, const struct sp_net_state *x,
+                           struct sp_duct_state *out)
 {
     const struct sp_branch *branch = &n->p.duct->branch[b];
     double m = x->flow[b], rho = upstream_density(n, b, x), area = area_of(n, branch);
     double cos_a = n->p.in->bonnet_up ? 0.0 : n->p.duct->cos_angle[branch->index], v = m / (rho * area);
     out->drag -= n->outside[b] * area * cos_a;
     if (m < 0.0) return;
-    double total = n->outside[b] + sp_duct_head(&n->p, m, rho, area);
+    double total = n->outside[b] + sp_duct_head_of(&n->p, m, rho, area, share_of(n, branch));
     out->drag -= m * v * cos_a;
     out->thrust += sp_duct_thrust(m, total, rho, x->temperature[SP_NODE_BAY] / n->fresh, cos_a);
 }
@@ -158,7 +163,8 @@ static void tell_drag(const struct sp_network *n, const struct sp_net_state *x, 
 /* ---- pressures ------------------------------------------------------------------------------------- */
 
 /* Mean over the air that passes the cores of what stands ahead of them and behind. */
-static void tell_pressures(const struct sp_network *n, const struct sp_net_state *x, struct sp_duct_state *out)
+static void tell_pressures(const struct sp_network *n, const struct sp_net_state *x,
+                           struct sp_duct_state *out)
 {
     double flow = 0.0, face = 0.0, back = 0.0;
     for (int b = 0; b < n->branches; ++b) {
@@ -180,10 +186,14 @@ static void tell_pressures(const struct sp_network *n, const struct sp_net_state
                                        : x->pressure[SP_NODE_BAY] - x->pressure[shroud];
 }
 
-void sp_network_report(const struct sp_network *n, const struct sp_net_state *x, const struct sp_net_look *look,
-                       struct sp_duct_state *out)
+void sp_network_report(const struct sp_network *n, const struct sp_net_state *x,
+                       const struct sp_net_look *look, struct sp_duct_state *out)
 {
     const struct sp_duct *d = n->p.duct;
+    out->network = true;
+    out->cores = d->cores;
+    out->fans = d->fans;
+    out->exits = d->exits;
     tell_cores(n, x, look, out);
     tell_flows(n, x, out);
     tell_heat(n, x, look, out);
@@ -193,36 +203,43 @@ void sp_network_report(const struct sp_network *n, const struct sp_net_state *x,
     out->front_temperature = x->temperature[SP_NODE_FRONT];
     out->bay_temperature = x->temperature[SP_NODE_BAY];
     double T = x->temperature[out->mass_flow >= 0.0 ? SP_NODE_FRONT : SP_NODE_BAY];
-    out->face_velocity = out->mass_flow / (density_at(n, T) * d->section);
+    out->face_velocity = out->mass_flow / (sp_network_density(n, T) * d->section);
     out->diffuser_stalled = d->diffuser_stalled && out->fresh > 0.0;
 }
 
 /* ---- stations -------------------------------------------------------------------------------------- */
 
-/* The ladder along the mean path: what stands at each node, and the mean over the air that passes the cores. */
-void sp_network_stations(const struct sp_duct *d, const struct sp_duct_inputs *in, const struct sp_duct_state *state,
-                         struct sp_station s[SP_STATIONS], struct sp_duct_losses *losses)
+/* The ladder along the mean path: what stands at each node, and the mean over the air that passes the cores.
+ */
+void sp_network_stations(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                         const struct sp_duct_state *state, struct sp_station s[SP_STATIONS],
+                         struct sp_duct_losses *losses)
 {
     struct sp_network n = sp_network_pose(d, in);
     const struct sp_duct_problem *p = &n.p;
-    bool ahead = state->mass_flow >= 0.0, in_ahead = state->fresh >= 0.0, out_ahead = state->exit_flow[0] >= 0.0;
-    double T1 = in_ahead ? state->inlet_temperature : state->front_temperature, T5 = out_ahead ? state->bay_temperature : in->temperature;
+    bool ahead = state->mass_flow >= 0.0, in_ahead = state->fresh >= 0.0,
+         out_ahead = state->exit_flow[0] >= 0.0;
+    double T1 = in_ahead ? state->inlet_temperature : state->front_temperature,
+           T5 = out_ahead ? state->bay_temperature : in->temperature;
     double T2 = ahead ? state->front_temperature : state->bay_temperature, T3 = T2 * state->temperature_ratio;
-    struct sp_inlet_loss inlet = sp_duct_inlet_loss(p, state->fresh, density_at(&n, T1));
+    struct sp_inlet_loss inlet = sp_duct_inlet_loss(p, state->fresh, sp_network_density(&n, T1));
     double available = sp_duct_available(p, state->fresh), through = 0.0, heating = state->heating_loss;
     const struct sp_branch *exit = &d->branch[d->branches - d->exits];
-    double area = area_of(&n, exit), m5 = state->exit_flow[0], head = sp_duct_head(p, m5, density_at(&n, T5), area);
+    double area = area_of(&n, exit), m5 = state->exit_flow[0],
+           head = sp_duct_head_of(p, m5, sp_network_density(&n, T5), area, share_of(&n, exit));
     double k = in->bonnet_up ? 0.0 : exit->loss, back = n.outside[d->branches - d->exits];
     for (int i = 0; i < d->exits; ++i) through += state->exit_flow[i];
     s[0] = (struct sp_station){in->pressure + p->head, in->pressure, p->density, in->temperature, p->speed};
-    s[1] = sp_duct_station(p, state->fresh, in_ahead ? available - inlet.lip : available + inlet.lip, T1, d->inlet_area);
+    s[1] = sp_duct_station(p, state->fresh, in_ahead ? available - inlet.lip : available + inlet.lip, T1,
+                           d->inlet_area);
     s[2] = sp_duct_station(p, state->mass_flow, state->face_pressure, ahead ? T2 : T3, d->section);
     s[3] = sp_duct_station(p, state->mass_flow, state->back_pressure, ahead ? T3 : T2, d->section);
     s[4] = sp_duct_station(p, through, state->bay_pressure, state->bay_temperature, d->section);
     s[5] = sp_duct_station(p, m5, out_ahead ? back + head : back, T5, area);
     double drop = fabs(state->face_pressure - state->back_pressure);
     double gain = state->face_pressure - state->front_pressure + state->bay_pressure - state->back_pressure;
-    *losses = (struct sp_duct_losses){p->head - available, inlet.lip, inlet.screen, inlet.diffuser, drop - heating,
-                                      heating, -gain, sp_duct_exit_loss(p, k, area, m5, density_at(&n, T5)),
-                                      out_ahead ? head : 0.0};
+    *losses = (struct sp_duct_losses){
+        p->head - available,   inlet.lip, inlet.screen, inlet.diffuser,
+        drop - heating,        heating,   -gain,        sp_duct_exit_loss(k, m5, head),
+        out_ahead ? head : 0.0};
 }

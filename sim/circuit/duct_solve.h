@@ -20,7 +20,14 @@ enum {
 
 enum { SP_NODE_OUTSIDE = -1, SP_NODE_FRONT = 0, SP_NODE_BAY = 1 }; /* shrouds follow */
 
-enum sp_branch_kind { SP_BRANCH_INLET, SP_BRANCH_LANE, SP_BRANCH_FAN, SP_BRANCH_FLAP, SP_BRANCH_LEAK, SP_BRANCH_EXIT };
+enum sp_branch_kind {
+    SP_BRANCH_INLET,
+    SP_BRANCH_LANE,
+    SP_BRANCH_FAN,
+    SP_BRANCH_FLAP,
+    SP_BRANCH_LEAK,
+    SP_BRANCH_EXIT
+};
 
 /* A way from node to node; exits stand last in a duct's list. */
 struct sp_branch {
@@ -28,6 +35,7 @@ struct sp_branch {
     int index;       /* of the lane, fan (flaps too) or exit; a leak's: 0 past the cores, 1 to outside */
     int from, to;    /* nodes */
     double area, loss; /* m2 and k on the head in it: flaps, leaks, exits */
+    double share;      /* of the duct's laminar floor that is its own */
 };
 
 /* A part of the section with the same cores one behind the other all over it. */

@@ -65,38 +65,79 @@ static void doubt(struct question *q, const struct sp_duct_point *p)
                 NULL);
 }
 
-static enum sp_status solve_all(const struct sp_design *d, const struct sp_duct *duct, struct question *q,
-                                struct sp_duct_point *point)
+/* All ducts of a design made ready, with each one's share of the heat. */
+struct ducts {
+    const struct sp_design *design;
+    struct sp_duct *duct[SP_DUCTS];
+    double share[SP_DUCTS]; /* of the heat, for one of equal ducts */
+    size_t count;
+};
+
+static double copies_of(const struct sp_duct_design *d)
 {
-    for (size_t i = 0; i < q->speeds; ++i) {
-        char found[80];
-        enum sp_status status =
-            sp_duct_point_solve(duct, &d->air, q->speed[i], q->heat, q->fan ? 1.0 : 0.0, &point[i]);
-        if (status == SP_OK) {
-            doubt(q, &point[i]);
-            continue;
-        }
-        snprintf(found, sizeof found, "heat at nil flow, or more than the flow can carry, speed %.6g m/s", q->speed[i]);
-        if (status == SP_INPUT)
-            complain(q, "--heat", found, "air that moves: a speed, or a fan that runs; or less heat");
-        else
-            complain(q, "--speed", "no flow that balances the pressures", "a duct that can be solved");
-        return status;
-    }
-    return SP_OK;
+    return d->count > 1.0 ? d->count : 1.0;
 }
 
-static enum sp_status answer(const struct sp_arguments *a, const struct sp_design *d,
-                             const struct sp_duct *duct, struct question *q)
+/* Face [m2] of the cores that carry coolant. */
+static double face_of(const struct sp_duct_design *d)
 {
-    struct sp_duct_point *point = calloc(q->speeds, sizeof *point);
+    double face = 0.0;
+    for (size_t i = 0; i == 0 || i < d->cores; ++i)
+        if (d->core[i].carries == SP_CARRIES_COOLANT) face += d->core[i].width * d->core[i].height;
+    return face;
+}
+
+static bool build_ducts(const struct sp_design *d, struct question *q, const char *file, struct ducts *out)
+{
+    double all = 0.0;
+    *out = (struct ducts){.design = d, .count = d->ducts ? d->ducts : 1};
+    for (size_t i = 0; i < out->count; ++i) all += copies_of(&d->duct[i]) * face_of(&d->duct[i]);
+    for (size_t i = 0; i < out->count; ++i) {
+        char path[40] = "car.duct";
+        struct sp_place at = {.file = file, .path = path};
+        if (out->count > 1) snprintf(path, sizeof path, "car.ducts[%zu]", i);
+        out->share[i] =
+            all > 0.0 ? face_of(&d->duct[i]) / all : 1.0 / (double)out->count / copies_of(&d->duct[i]);
+        out->duct[i] = sp_duct_build(&d->duct[i], &d->coolant.fluid, &at, &q->complaints);
+        if (!out->duct[i]) return false;
+    }
+    return true;
+}
+
+static enum sp_status solve(const struct ducts *u, struct question *q, size_t speed, size_t duct,
+                            struct sp_duct_point *point)
+{
+    char found[80];
+    enum sp_status status = sp_duct_point_solve(u->duct[duct], &u->design->air, q->speed[speed],
+                                                q->heat * u->share[duct], q->fan ? 1.0 : 0.0, point);
+    point->duct = u->count > 1 ? (int)duct + 1 : 0;
+    point->copies = copies_of(&u->design->duct[duct]);
+    if (status == SP_OK) {
+        doubt(q, point);
+        return SP_OK;
+    }
+    snprintf(found, sizeof found, "heat at nil flow, or more than the flow can carry, speed %.6g m/s",
+             q->speed[speed]);
+    if (status == SP_INPUT)
+        complain(q, "--heat", found, "air that moves: a speed, or a fan that runs; or less heat");
+    else
+        complain(q, "--speed", "no flow that balances the pressures", "a duct that can be solved");
+    return status;
+}
+
+static enum sp_status answer(const struct sp_arguments *a, const struct ducts *u, struct question *q)
+{
+    size_t points = q->speeds * u->count;
+    enum sp_status status = SP_OK;
+    struct sp_duct_point *point = calloc(points, sizeof *point);
     if (!point) {
         complain(q, "--speed", "too little memory", "memory for all speeds");
         return SP_INPUT;
     }
-    enum sp_status status = solve_all(d, duct, q, point);
-    if (status == SP_OK && a->json) sp_duct_points_json(point, q->speeds, stdout);
-    for (size_t i = 0; status == SP_OK && !a->json && i < q->speeds; ++i) {
+    for (size_t i = 0; status == SP_OK && i < points; ++i)
+        status = solve(u, q, i / u->count, i % u->count, &point[i]);
+    if (status == SP_OK && a->json) sp_duct_points_json(point, points, stdout);
+    for (size_t i = 0; status == SP_OK && !a->json && i < points; ++i) {
         if (i) putchar('\n');
         sp_duct_point_text(&point[i], stdout);
     }
@@ -104,20 +145,26 @@ static enum sp_status answer(const struct sp_arguments *a, const struct sp_desig
     return status;
 }
 
+static bool any_fan(const struct sp_design *d)
+{
+    bool any = false;
+    for (size_t i = 0; i == 0 || i < d->ducts; ++i)
+        for (size_t j = 0; j < SP_FANS; ++j) any = any || d->duct[i].fan[j].fitted;
+    return any;
+}
+
 static enum sp_status ask(const struct sp_arguments *a, struct sp_units *u, struct question *q)
 {
     enum sp_status status = SP_INPUT;
-    struct sp_duct *duct = NULL;
-    struct sp_place at = {.file = a->operand, .path = "car.duct"};
+    struct ducts ducts = {.count = 0};
     bool good = read_question(u, a, q);
     struct sp_design *d =
         sp_case_read(u, a->operand, a->sets.list, a->sets.count, SP_FOR_DUCT, &q->complaints, &q->cautions);
-    if (d && good && q->fan && !d->duct[0].fan[0].fitted)
+    if (d && good && q->fan && !any_fan(d))
         complain(q, "--fan", "on, but the car has no fan", "car.duct.fan, or off");
-    else if (d && good)
-        duct = sp_duct_build(&d->duct[0], &d->coolant.fluid, &at, &q->complaints);
-    if (duct) status = answer(a, d, duct, q);
-    sp_duct_free(duct);
+    else if (d && good && build_ducts(d, q, a->operand, &ducts))
+        status = answer(a, &ducts, q);
+    for (size_t i = 0; i < ducts.count; ++i) sp_duct_free(ducts.duct[i]);
     sp_design_free(d);
     return status;
 }
@@ -139,5 +186,6 @@ const struct sp_verb sp_verb_duct = {
     "tells what the air does in the duct at given speeds",
     "Solves the air path of the car for each speed: pressures at the stations from\n"
     "free stream to exit, where each pascal goes, mass flow, face velocity and drag.\n"
-    "The case needs no more than `air` and `car.duct`.",
+    "Several ducts are told one by one. `--heat` is shared among cores that carry\n"
+    "coolant, by their faces. The case needs no more than `air` and `car.duct`.",
     run};

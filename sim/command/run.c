@@ -34,7 +34,7 @@ static bool prepare(struct job *j)
 static enum sp_status drive(struct job *j, struct sp_result *result)
 {
     const struct sp_arguments *a = j->arguments;
-    const struct sp_report report = {j->design, j->drive, result};
+    struct sp_report report = {j->design, j->drive, result, {0, 0}};
     struct sp_report_files *files = NULL;
     if (a->directory && !(files = sp_report_files_open(a->directory, &j->complaints))) return SP_INPUT;
     struct sp_run_options options = {.interval = j->interval,
@@ -44,6 +44,7 @@ static enum sp_status drive(struct job *j, struct sp_result *result)
         sp_report_files_abandon(files);
         return status;
     }
+    sp_case_defaults(j->units, a->operand, a->sets.list, a->sets.count, &report.defaults);
     if (files && !sp_report_files_finish(files, &report)) return SP_INPUT;
     if (a->json)
         sp_report_json(&report, stdout);

@@ -1,6 +1,13 @@
 /* The table of recorded channels and of events. SPDX-License-Identifier: GPL-3.0-or-later */
 #include "swirlpot/drive.h"
 
+/* The four channels of the core with number n, and the speed of fan n. */
+#define CORE(n)                                                                                              \
+    [SP_CH_CORE + 4 * (n - 2)] = {"core_" #n "_fluid_out", "degC", "fluid leaving core " #n, 1, SP_ZERO_C},  \
+    [SP_CH_CORE + 4 * (n - 2) + 1] = {"core_" #n "_air_in", "degC", "air that meets core " #n, 1, SP_ZERO_C}, \
+    [SP_CH_CORE + 4 * (n - 2) + 2] = {"core_" #n "_air_flow", "kg/s", "air through core " #n, 1, 0},         \
+    [SP_CH_CORE + 4 * (n - 2) + 3] = {"core_" #n "_heat", "kW", "heat of core " #n " to the air", 1e3, 0}
+#define FAN(n) [SP_CH_FAN_MORE + n - 2] = {"fan_" #n "_speed", "1", "speed of fan " #n " over rated", 1, 0}
 
 static const struct sp_channel_info channel[SP_CHANNELS] = {
     [SP_CH_TIME] = {"time", "s", "time since the start of the drive", 1, 0},
@@ -36,7 +43,31 @@ static const struct sp_channel_info channel[SP_CHANNELS] = {
     [SP_CH_HEAT_OUT] = {"heat_out", "kW", "heat to the air through the core", 1e3, 0},
     [SP_CH_HEAT_SKIN] = {"heat_skin", "kW", "heat to the air from engine, hoses and tank", 1e3, 0},
     [SP_CH_DRAG] = {"drag", "N", "internal drag of the duct", 1, 0},
+    [SP_CH_OIL] = {"oil", "degC", "oil of the engine", 1, SP_ZERO_C},
+    [SP_CH_GEARBOX] = {"oil_gearbox", "degC", "oil of gearbox or final drive", 1, SP_ZERO_C},
+    [SP_CH_CHARGE_IN] = {"charge_in", "degC", "charge air from the compressor", 1, SP_ZERO_C},
+    [SP_CH_CHARGE_OUT] = {"charge_out", "degC", "charge air behind its coolers", 1, SP_ZERO_C},
+    [SP_CH_INTAKE] = {"intake_air", "degC", "air that the engine breathes, partly from the bay", 1, SP_ZERO_C},
+    [SP_CH_BAY] = {"bay", "degC", "air behind cores and fans of the first duct", 1, SP_ZERO_C},
+    [SP_CH_BAY_PRESSURE] = {"bay_pressure", "Pa", "of that air, over ambient", 1, 0},
+    [SP_CH_LEAK_PAST] = {"leak_past_core", "kg/s", "air that leaks past the cores", 1, 0},
+    [SP_CH_LEAK_OUTSIDE] = {"leak_outside", "kg/s", "air that leaks from ahead of the cores to outside", 1, 0},
+    [SP_CH_BACKWARDS] = {"air_backwards", "kg/s", "air that comes back through open parts of the cores", 1, 0},
+    [SP_CH_SPILL] = {"drag_spill", "N", "of the drag: air spilled by the inlets", 1, 0},
+    [SP_CH_THRUST] = {"heat_thrust", "N", "thrust that the heat brings, already taken off the drag", 1, 0},
+    [SP_CH_FAN_CURRENT] = {"fan_current", "A", "of one fan, the most that any draws", 1, 0},
+    [SP_CH_BATTERY] = {"battery_left", "1", "share of the battery's charge that is left", 1, 0},
+    [SP_CH_NPSH_MARGIN] = {"npsh_margin", "m", "head at the pump's inlet over what it needs", 1, 0},
+    [SP_CH_LOCAL_MARGIN] = {"local_boil_margin", "K", "what the jacket's wall lacks to boil coolant", 1, 0},
+    [SP_CH_TANK_LEVEL] = {"tank_level", "l", "coolant in the header tank", 1e-3, 0},
+    CORE(2), CORE(3), CORE(4), CORE(5), CORE(6), CORE(7), CORE(8),
+    FAN(2), FAN(3), FAN(4), FAN(5), FAN(6),
 };
+
+/* Over and back, of the three tiers of one quantity. */
+#define TIERS(of, name)                                                                                      \
+    [SP_EV_TIER + 6 * (of)] = name " over caution", name " back under caution", name " over alarm",          \
+                      name " back under alarm", name " over limit", name " back under limit"
 
 static const char *const event[SP_EVENT_KINDS] = {
     [SP_EV_STEP] = "step begins",
@@ -62,6 +93,27 @@ static const char *const event[SP_EVENT_KINDS] = {
     [SP_EV_BOILING_ENDS] = "boiling ends",
     [SP_EV_PEAK] = "coolant peak",
     [SP_EV_CHANGE] = "the car changes",
+    [SP_EV_LOST] = "coolant is lost",
+    [SP_EV_CAN] = "catch can overflows",
+    [SP_EV_CAN_BACK] = "catch can no longer overflows",
+    [SP_EV_LOCAL] = "local boiling",
+    [SP_EV_LOCAL_ENDS] = "local boiling ends",
+    [SP_EV_CAVITATES] = "pump cavitates",
+    [SP_EV_CAVITATION_ENDS] = "cavitation ends",
+    [SP_EV_CURRENT] = "fan over current",
+    [SP_EV_CURRENT_BACK] = "fan current back under limit",
+    [SP_EV_FLAT] = "battery flat",
+    [SP_EV_FLAT_BACK] = "battery no longer flat",
+    [SP_EV_COLD_COOLANT] = "loaded with cold coolant",
+    [SP_EV_COLD_COOLANT_ENDS] = "no longer loaded with cold coolant",
+    [SP_EV_COLD_OIL] = "loaded with cold oil",
+    [SP_EV_COLD_OIL_ENDS] = "no longer loaded with cold oil",
+    TIERS(SP_LIMITED_COOLANT, "coolant"),
+    TIERS(SP_LIMITED_GAUGE, "gauge"),
+    TIERS(SP_LIMITED_METAL, "metal"),
+    TIERS(SP_LIMITED_OIL, "oil"),
+    TIERS(SP_LIMITED_GEARBOX, "gearbox oil"),
+    TIERS(SP_LIMITED_CHARGE, "charge air"),
 };
 
 const struct sp_channel_info *sp_channel_at(enum sp_channel c)
@@ -72,4 +124,10 @@ const struct sp_channel_info *sp_channel_at(enum sp_channel c)
 const char *sp_event_text(enum sp_event_kind kind)
 {
     return (int)kind >= 0 && kind < SP_EVENT_KINDS ? event[kind] : "?";
+}
+
+const char *sp_severity_text(enum sp_severity s)
+{
+    static const char *const text[] = {"note", "caution", "alarm", "stop"};
+    return (unsigned)s < sizeof text / sizeof text[0] ? text[s] : "?";
 }

@@ -55,7 +55,7 @@ static int watch(double t, const double *y, double *g, void *context)
     r->seen_at = t;
     /* Slow temperatures can stand exactly at nil over many clock ticks, which the root finder takes for an
      * endless crossing: nil counts as not yet crossed. */
-    for (int w = 0; w < SP_WATCHES; ++w) g[w] = r->seen.g[w] != 0.0 ? r->seen.g[w] : (r->high[w] ? 1e-300 : -1e-300);
+    for (int w = 0; w < r->watches.count; ++w) g[w] = r->seen.g[w] != 0.0 ? r->seen.g[w] : (r->high[w] ? 1e-300 : -1e-300);
     return 0;
 }
 
@@ -72,7 +72,7 @@ static bool restart(struct sp_run *r)
 static enum sp_status run_segment(struct sp_run *r)
 {
     double end = r->schedule->time[r->segment + 1];
-    int sign[SP_WATCHES];
+    int sign[SP_WATCHES_MOST];
     while (r->time < end) {
         double from = r->time;
         enum sp_advance how = sp_integrator_step(r->integrator, end, &r->time, sign);
@@ -139,14 +139,16 @@ static bool open_run(struct sp_run *r, double tolerance, double *start)
     for (int j = 0; j < n + 2 * l->exchangers; ++j) r->column[j] = start + (6 + j) * n; /* then the means */
     const double nothing = -INFINITY;
     r->coolant.best = r->gauge.best = r->metal.best = r->margin.best = nothing;
+    r->oil.best = r->gearbox.best = r->charge.best = nothing;
     r->pressure.best = r->over_ambient.best = nothing;
     r->seen_at = NAN;
     struct sp_inputs in;
     sp_schedule_at(r->schedule, 0, r->schedule->time[0], &in);
     sp_circuit_start(r->circuit, &in, start);
     r->modes = (struct sp_modes){.play = SP_PLAY_HELD, .held = start[SP_Y_WAX]}; /* as if it had come up to here */
+    sp_run_list(r);
     set_tolerances(r, tolerance, start, r->absolute);
-    struct sp_problem p = {r, *l, SP_WATCHES, rates, jacobian, watch};
+    struct sp_problem p = {r, *l, r->watches.count, rates, jacobian, watch};
     r->integrator = sp_integrator_open(&p, 0.0, start, tolerance, r->absolute);
     return r->integrator != NULL;
 }
@@ -220,6 +222,8 @@ enum sp_status sp_drive_run(const struct sp_drive *drive, const struct sp_run_op
 void sp_result_free(struct sp_result *r)
 {
     free(r->event);
+    free(r->failure);
+    free(r->change);
     memset(r, 0, sizeof *r);
 }
 

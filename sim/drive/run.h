@@ -19,6 +19,9 @@ struct sp_drive {
 /* Highest (or, turned round, lowest) value of one quantity so far. */
 struct sp_tracked { double best, time; };
 
+/* How long and how far one watch was beyond its limit. */
+struct sp_spell { double first, since, over, worst, worst_time; const char *place; size_t segment; };
+
 struct sp_run {
     const struct sp_drive *drive;
     const struct sp_circuit *circuit; /* as it is now, and with it circuit->design */
@@ -29,9 +32,13 @@ struct sp_run {
     struct sp_guesses looking;   /* of watches and samples */
     size_t segment;
     double time;
-    bool high[SP_WATCHES];       /* which watches are above nil */
-    bool fan_runs;
-    double fan_since, over_since, full_since;
+    struct sp_watch_list watches;
+    bool high[SP_WATCHES_MOST];  /* which watches are above nil */
+    struct sp_spell spell[SP_WATCHES_MOST];
+    bool fitted[SP_CHANNELS];    /* which channels the drive has */
+    bool fan_runs[SP_FAN_KINDS];
+    int fans_run;                /* so many kinds */
+    double fan_since[SP_FAN_KINDS], any_fan_since, over_since, full_since;
     double *absolute, *scratch, *before; /* states; scratch holds three lots */
     double **column;                     /* of the Jacobian, then the effects of the means */
     double slope_before;
@@ -42,7 +49,8 @@ struct sp_run {
     bool ended;                  /* the hook has seen enough */
     struct sp_measured measured;
     struct sp_result *result;
-    struct sp_tracked coolant, gauge, metal, margin, pressure, over_ambient;
+    struct sp_tracked coolant, gauge, metal, oil, gearbox, charge, margin, pressure, over_ambient;
+    struct { double time, power, thrust; } spill; /* W taken and given, as last looked at; only where it is counted */
     size_t event_room;
     bool lost_event;             /* no memory for one */
     size_t variant;              /* changes that have happened */
@@ -67,7 +75,10 @@ enum sp_status sp_run_couple(struct sp_run *r, const struct sp_inputs *in, const
 
 /* ---- events: run_events.c ---- */
 
-/* Records an event at `time`. */
+/* Lists what is watched and recorded, before anything else. */
+void sp_run_list(struct sp_run *r);
+
+/* Records an event at `time`, of the whole car and no failure. */
 void sp_run_event(struct sp_run *r, enum sp_event_kind kind, double time, double coolant);
 
 /* Handles what crossed, all at one instant. True when the rates jump, so that the integrator must forget. */
@@ -101,7 +112,20 @@ enum sp_status sp_run_give_sample(struct sp_run *r, double t, const double *y);
 /* A sample of everything at time t with state y, in segment k. */
 enum sp_status sp_run_sample(struct sp_run *r, size_t k, double t, const double *y, struct sp_sample *out);
 
-/* ---- verdict.c ---- */
+/* The channels of parts that not every car has; NAN where this one does not. */
+void sp_run_sample_fitted(const struct sp_run *r, const struct sp_inputs *in, const double *y,
+                          const struct sp_coupling *k, double *v);
+
+/* Which channels a drive of this circuit has; adds to what is there. */
+void sp_run_fit(bool fitted[SP_CHANNELS], const struct sp_circuit *c);
+
+/* ---- verdict.c, failures.c ---- */
+
+/* Lists what failed, once the events are in order. False without memory. */
+bool sp_run_failures(struct sp_run *r);
+
+/* Tells of each change when a limit was broken after it, once the events are in order. False without memory. */
+bool sp_run_tell_changes(struct sp_run *r);
 
 /* Closes the books: ledger, margins, verdict. SP_NUMERICS when the ledger does not close. */
 enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_complaints *complaints);

@@ -5,7 +5,20 @@
 
 #include "drive/run.h"
 
-void sp_run_event(struct sp_run *r, enum sp_event_kind kind, double time, double coolant)
+void sp_run_list(struct sp_run *r)
+{
+    const struct sp_drive *d = r->drive;
+    sp_watch_add(&r->watches, &d->circuit);
+    sp_run_fit(r->fitted, &d->circuit);
+    for (size_t i = 0; i < d->changes; ++i) {
+        sp_watch_add(&r->watches, &d->changed[i]);
+        sp_run_fit(r->fitted, &d->changed[i]);
+    }
+    for (int w = 0; w < SP_WATCHES_MOST; ++w) r->spell[w].first = NAN;
+    r->modes.pulse_until = r->drive->design->pump.pulse_on;
+}
+
+static void record(struct sp_run *r, struct sp_event e)
 {
     struct sp_result *out = r->result;
     if (out->events == r->event_room) {
@@ -19,29 +32,61 @@ void sp_run_event(struct sp_run *r, enum sp_event_kind kind, double time, double
         r->event_room = room;
     }
     struct sp_inputs in;
-    sp_schedule_at(r->schedule, r->segment, time, &in);
-    out->event[out->events++] = (struct sp_event){kind, time, in.distance, coolant, r->schedule->step[r->segment],
-                                                  sp_schedule_mark(r->schedule, r->segment)};
+    sp_schedule_at(r->schedule, r->segment, e.time, &in);
+    e.distance = in.distance;
+    e.step = r->schedule->step[r->segment];
+    e.mark = sp_schedule_mark(r->schedule, r->segment);
+    out->event[out->events++] = e;
+}
+
+void sp_run_event(struct sp_run *r, enum sp_event_kind kind, double time, double coolant)
+{
+    record(r, (struct sp_event){.kind = kind, .time = time, .coolant = coolant});
+}
+
+static void note_at(struct sp_run *r, enum sp_event_kind kind, const char *place, enum sp_severity severity)
+{
+    if (kind == SP_EVENT_KINDS) return;
+    double coolant = sp_integrator_state(r->integrator)[SP_Y_JACKET];
+    record(r, (struct sp_event){.kind = kind, .time = r->time, .coolant = coolant, .place = place, .severity = severity});
 }
 
 static void note(struct sp_run *r, enum sp_event_kind kind)
 {
-    if (kind != SP_EVENT_KINDS) sp_run_event(r, kind, r->time, sp_integrator_state(r->integrator)[SP_Y_JACKET]);
+    note_at(r, kind, NULL, SP_SEVERITY_NOTE);
 }
 
-/* Whether the controller lets the fan run now; its on-time and its events follow from this alone. */
+/* Whether the controller lets a kind of fan run now. */
+static bool runs_now(const struct sp_run *r, int kind)
+{
+    const struct sp_fan *f = r->circuit->fan[kind].design;
+    if (!(r->schedule->flags[r->segment] & SP_FLAG_FAN) || f->health != SP_FAN_SOUND) return false;
+    switch (f->law) {
+    case SP_FAN_ALWAYS: return true;
+    case SP_FAN_SWITCHED: return r->modes.fan_on[kind];
+    case SP_FAN_PROPORTIONAL: return r->high[r->watches.fan[kind]];
+    default: return false;
+    }
+}
+
+static void follow_kind(struct sp_run *r, int kind)
+{
+    bool runs = runs_now(r, kind);
+    if (runs == r->fan_runs[kind]) return;
+    r->fan_runs[kind] = runs;
+    int before = r->fans_run;
+    r->fans_run += runs ? 1 : -1;
+    if (runs) r->fan_since[kind] = r->time;
+    else r->result->each_fan[kind].on += r->time - r->fan_since[kind];
+    if (before == 0) r->any_fan_since = r->time;
+    if (r->fans_run == 0) r->result->fan.on += r->time - r->any_fan_since;
+    note_at(r, runs ? SP_EV_FAN_ON : SP_EV_FAN_OFF, sp_watch_fan_place(r->circuit, kind), SP_SEVERITY_NOTE);
+}
+
+/* The fans' on-time and their events follow from whether they run alone. */
 void sp_run_follow_fan(struct sp_run *r)
 {
-    const struct sp_fan *f = &r->drive->design->duct[0].fan[0];
-    bool allowed = f->fitted && (r->schedule->flags[r->segment] & SP_FLAG_FAN);
-    bool asked = f->law == SP_FAN_ALWAYS || (f->law == SP_FAN_SWITCHED && r->modes.fan_on[0]) ||
-                 (f->law == SP_FAN_PROPORTIONAL && r->high[SP_W_FAN]);
-    bool runs = allowed && asked;
-    if (runs == r->fan_runs) return;
-    r->fan_runs = runs;
-    if (runs) r->fan_since = r->time;
-    else r->result->fan.on += r->time - r->fan_since;
-    note(r, runs ? SP_EV_FAN_ON : SP_EV_FAN_OFF);
+    for (int f = 0; f < r->circuit->fans; ++f) follow_kind(r, f);
 }
 
 /* The lift is continuous over a turn of the play, but the integrator has already stepped past the turn with
@@ -53,19 +98,70 @@ static bool lift_at_stake(const struct sp_run *r)
     return wax + t->hysteresis > t->opens && wax < t->full;
 }
 
+/* Where it boils, of the two places that are looked at. */
+static const char *boils_at(struct sp_run *r)
+{
+    const double *y = sp_integrator_state(r->integrator);
+    struct sp_inputs in;
+    struct sp_signals s;
+    struct sp_coupling k;
+    sp_schedule_at(r->schedule, r->segment, r->time, &in);
+    sp_circuit_signals(r->circuit, &in, y, &s);
+    if (sp_circuit_split(r->circuit, &in, &r->modes, &s, &r->looking.loop, &k)) return "jacket";
+    return sp_watch_boils_at_pump(r->circuit, y, &k, &r->seen) ? "pump inlet" : "jacket";
+}
+
+static void keep_spell(struct sp_run *r, int w, bool up, const char *place)
+{
+    struct sp_spell *s = &r->spell[w];
+    if (!up) {
+        s->over += r->time - s->since;
+        return;
+    }
+    s->since = r->time;
+    if (isfinite(s->first)) return;
+    *s = (struct sp_spell){r->time, r->time, 0.0, 0.0, r->time, place, r->segment};
+}
+
+/* Event and spell of a watch that crossed. */
+static void tell(struct sp_run *r, int w, bool up)
+{
+    const struct sp_watch_one *one = &r->watches.of[w];
+    if (one->kind == SP_W_PULSE || one->kind == SP_W_FAN) return;
+    struct sp_watch_info i = sp_watch_info(r->circuit, one);
+    if (up && (one->kind == SP_W_BOIL || one->kind == SP_W_MARGIN)) i.place = boils_at(r);
+    note_at(r, up ? i.events.rise : i.events.fall, i.place, up ? i.severity : SP_SEVERITY_NOTE);
+    if (i.severity > SP_SEVERITY_NOTE) keep_spell(r, w, up, i.place);
+}
+
+static bool turn_pulse(struct sp_run *r, int w)
+{
+    const struct sp_pump *p = &r->circuit->design->pump;
+    r->modes.pulse_off = !r->modes.pulse_off;
+    r->modes.pulse_until = r->time + fmax(r->modes.pulse_off ? p->pulse_off : p->pulse_on, 0.1);
+    r->high[w] = false;
+    return true;
+}
+
+static bool switch_fan(struct sp_run *r, int kind, bool up)
+{
+    if (kind >= r->circuit->fans || r->circuit->fan[kind].design->law != SP_FAN_SWITCHED) return false;
+    if (up == r->modes.fan_on[kind]) return false;
+    r->modes.fan_on[kind] = up;
+    return r->schedule->flags[r->segment] & SP_FLAG_FAN;
+}
+
 /* A watch crossed. Returns true when the rates jump, so that the integrator must forget. */
 static bool crossed(struct sp_run *r, int w, bool up)
 {
+    const struct sp_watch_one *one = &r->watches.of[w];
     bool play = w == SP_W_PLAY || w == SP_W_PLAY_SHUT;
     if (!play && up == r->high[w]) return false; /* said already */
     r->high[w] = up;
-    note(r, up ? sp_watch_event[w].rise : sp_watch_event[w].fall);
-    switch (w) {
-    case SP_W_FAN:
-        if (r->drive->design->duct[0].fan[0].law != SP_FAN_SWITCHED) return false;
-        if (up == r->modes.fan_on[0]) return false;
-        r->modes.fan_on[0] = up;
-        return r->schedule->flags[r->segment] & SP_FLAG_FAN;
+    tell(r, w, up);
+    switch (one->kind) {
+    case SP_W_FAN: return switch_fan(r, one->index, up);
+    case SP_W_PULSE: return up && turn_pulse(r, w);
     case SP_W_PLAY:
     case SP_W_PLAY_SHUT:
         sp_watch_turn_play(&r->drive->design->thermostat, sp_integrator_state(r->integrator)[SP_Y_WAX],
@@ -90,7 +186,8 @@ bool sp_run_look_again(struct sp_run *r, bool first)
 {
     struct sp_watched seen;
     if (sp_run_look(r, r->time, sp_integrator_state(r->integrator), &seen)) return false;
-    for (int w = 0; w < SP_WATCHES; ++w) {
+    r->seen = seen;
+    for (int w = 0; w < r->watches.count; ++w) {
         bool up = seen.g[w] > 0.0; /* what equals its limit has not passed it */
         bool play = w == SP_W_PLAY || w == SP_W_PLAY_SHUT, lift = w == SP_W_OPENS || w == SP_W_FULL;
         if (play || (first && lift)) r->high[w] = up; /* where it stands is no event */
@@ -123,7 +220,7 @@ bool sp_run_take_crossings(struct sp_run *r, const int *sign)
 {
     bool jump = false;
     ++r->result->work.roots;
-    for (int w = 0; w < SP_WATCHES; ++w)
+    for (int w = 0; w < r->watches.count; ++w)
         if (sign[w]) jump = crossed(r, w, sign[w] > 0) || jump;
     if (sign[SP_W_PLAY] || sign[SP_W_PLAY_SHUT]) look_at_lift(r);
     r->seen_at = NAN;

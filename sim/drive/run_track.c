@@ -11,13 +11,27 @@ int sp_run_look(struct sp_run *r, double t, const double *y, struct sp_watched *
     sp_schedule_at(r->schedule, r->segment, t, &in);
     sp_circuit_signals(r->circuit, &in, y, &s);
     if (sp_circuit_split(r->circuit, &in, &r->modes, &s, &r->looking.loop, &k)) return -1;
-    sp_watch(r->circuit, &in, &r->modes, y, &k, out);
+    if (r->watches.local) sp_circuit_fluids(r->circuit, &in, &s, &k);
+    sp_watch(&r->watches, r->circuit, &in, &r->modes, t, y, &k, out);
     return 0;
 }
 
 static void track(struct sp_tracked *t, double value, double time)
 {
     if (value > t->best) *t = (struct sp_tracked){value, time};
+}
+
+/* How far what is beyond its limit is beyond it. */
+static void track_spells(struct sp_run *r, const double *y)
+{
+    for (int w = 0; w < r->watches.count; ++w) {
+        struct sp_spell *s = &r->spell[w];
+        if (!r->high[w] || !isfinite(s->first)) continue;
+        double excess = sp_watch_excess(r->circuit, &r->watches.of[w], y, r->seen.g[w]);
+        if (!(excess > s->worst)) continue;
+        s->worst = excess;
+        s->worst_time = r->time;
+    }
 }
 
 /* The top of the coolant's curve inside the last step, where its slope changes sign. */
@@ -38,6 +52,26 @@ static void track_summit(struct sp_run *r, double from, double slope)
     track(&r->over_ambient, r->scratch[SP_Y_JACKET] - in.in[SP_IN_AMBIENT], low);
 }
 
+/* Work of spilled air and of the heat's thrust, by trapezoid over the steps: nothing feeds back from them, and
+ * the drag itself, which holds both, is integrated with the state. */
+static bool track_spill(struct sp_run *r, const struct sp_inputs *in, const double *y)
+{
+    struct sp_coupling k;
+    double power = 0.0, thrust = 0.0, half = 0.5 * (r->time - r->spill.time);
+    if (!r->fitted[SP_CH_SPILL]) return true;
+    if (sp_run_couple(r, in, y, &k)) return false;
+    for (int i = 0; i < r->circuit->runs; ++i) {
+        power += r->circuit->run[i].copies * k.duct[i].spill_drag * in->in[SP_IN_SPEED];
+        thrust += r->circuit->run[i].copies * k.duct[i].thrust * in->in[SP_IN_SPEED];
+    }
+    r->result->drag.spill += half * (power + r->spill.power);
+    r->result->drag.thrust += half * (thrust + r->spill.thrust);
+    r->spill.time = r->time;
+    r->spill.power = power;
+    r->spill.thrust = thrust;
+    return true;
+}
+
 bool sp_run_track(struct sp_run *r)
 {
     const double *y = sp_integrator_state(r->integrator);
@@ -54,7 +88,12 @@ bool sp_run_track(struct sp_run *r)
     track(&r->pressure, r->seen.tank_pressure, t);
     track(&r->margin, -r->seen.boil_margin, t);
     track(&r->over_ambient, y[SP_Y_JACKET] - in.in[SP_IN_AMBIENT], t);
-    return true;
+    const struct sp_layout *l = &r->circuit->layout;
+    if (l->oil >= 0) track(&r->oil, y[l->oil], t);
+    if (l->gearbox >= 0) track(&r->gearbox, y[l->gearbox], t);
+    if (r->circuit->design->charge.fitted) track(&r->charge, sp_circuit_charge_out(r->circuit, &in, y), t);
+    track_spells(r, y);
+    return track_spill(r, &in, y);
 }
 
 enum sp_status sp_run_give_sample(struct sp_run *r, double t, const double *y)

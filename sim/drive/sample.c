@@ -50,7 +50,8 @@ enum sp_status sp_run_sample(struct sp_run *r, size_t k, double t, const double 
     enum sp_status status = sp_run_couple(r, &in, y, &coupling);
     if (status) return status;
     sp_circuit_rates(r->circuit, &in, &r->modes, y, &coupling, rates);
-    sp_watch(r->circuit, &in, &r->modes, y, &coupling, &seen);
+    sp_watch(&r->watches, r->circuit, &in, &r->modes, t, y, &coupling, &seen);
+    out->fitted = r->fitted;
     v[SP_CH_TIME] = t;
     v[SP_CH_DISTANCE] = in.distance;
     v[SP_CH_SPEED] = in.in[SP_IN_SPEED];
@@ -66,5 +67,7 @@ enum sp_status sp_run_sample(struct sp_run *r, size_t k, double t, const double 
     v[SP_CH_HEAT_IN] = rates[SP_Y_HEAT_IN];
     v[SP_CH_HEAT_OUT] = rates[SP_Y_HEAT_AIR];
     v[SP_CH_HEAT_SKIN] = rates[SP_Y_HEAT_SKIN];
+    sp_run_sample_fitted(r, &in, y, &coupling, v);
+    v[SP_CH_LOCAL_MARGIN] = seen.local_margin;
     return SP_OK;
 }

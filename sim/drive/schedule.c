@@ -29,7 +29,8 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
     const struct sp_step *step = &d->step[i];
     struct sp_engine_sources s = {.design = d, .law = b->law, .power = SP_POWER_COLUMN, .speed = SP_ENGINE_COLUMN};
     if (!hold_turns(b, i)) return false;
-    if (isnan(step->power) && step->speed != 0.0) {
+    bool powerless = d->engine.heat_law == SP_HEAT_GIVEN && d->engine.heat_loss == 0.0 && !sp_road_load_known(&d->body);
+    if (isnan(step->power) && step->speed != 0.0 && !powerless) {
         s.power = SP_POWER_ROAD;
         to->power_from_road = true;
         if (!sp_road_load_known(&d->body)) {
@@ -52,11 +53,13 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
                            .air_flow = NAN,
                            .throttle = NAN,
                            .gear = NAN,
+                           .heat = NAN,
                            .density = sp_density_of(d, row->in[SP_IN_AMBIENT], row->in[SP_IN_PRESSURE])};
     struct sp_wheel_power wheel = {0};
     sp_schedule_caution_sources(b, i, &s);
-    bool off = step->engine_speed < SP_OFF_SHARE * d->engine.idle_speed;
-    if (!off) sp_engine_row_fill(&s, &at, row->in, &wheel);
+    bool off = step->engine_speed < sp_off_speed(&d->engine);
+    double cut = off ? 0.0 : sp_engine_row_fill(&s, &at, row->in, &wheel);
+    sp_schedule_caution_cap(b, i, cut);
     sp_schedule_caution_power(b, i, row->in[SP_IN_POWER]);
     row->flags = off ? 0 : SP_FLAG_ENGINE;
     to->work.wheel = (wheel.rolling + wheel.climb + wheel.drag + wheel.brakes) * step->time;
@@ -70,12 +73,11 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
 
 static void idle_engine(struct sp_scheduling *b, struct sp_row *row)
 {
-    struct sp_engine_row engine = {0.0, b->design->engine.idle_speed, NAN, NAN};
-    struct sp_engine_heat heat = sp_engine_heat(b->law, &engine);
+    const struct sp_design *d = b->design;
+    bool given = d->engine.heat_law == SP_HEAT_GIVEN;
+    struct sp_engine_row engine = {0.0, given ? 0.0 : d->engine.idle_speed, NAN, NAN};
     row->in[SP_IN_ENGINE_SPEED] = engine.speed;
-    row->in[SP_IN_HEAT_GAS] = heat.gas;
-    row->in[SP_IN_HEAT_FRICTION] = heat.friction;
-    row->in[SP_IN_HEAT_SLOPE] = heat.per_power;
+    sp_engine_row_heat(d, b->law, &engine, NAN, row->in);
     row->flags = SP_FLAG_ENGINE;
 }
 
@@ -207,6 +209,7 @@ enum sp_status sp_schedule_build(struct sp_units *u, const struct sp_design *d, 
     if (isnan(b.base)) b.base = 0.0; /* no such standard altitude: ratios go from sea level */
     b.base_pressure = sp_isa_pressure(b.base);
     b.law = sp_engine_law_build(&d->engine, &at, complaints);
+    if (b.law) sp_engine_law_oil(b.law, &d->oil);
     if (!b.law) b.failed = true;
     if (d->steps > 65535) sp_schedule_fault(&b, 65535, NULL, "more than 65535 steps", "fewer, with repeats");
     for (size_t i = 0; i < d->steps && d->steps <= 65535; i++)

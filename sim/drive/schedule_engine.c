@@ -1,6 +1,8 @@
 /* schedule_engine.c - what the engine does at a row: speed, power and heat, from whatever is known.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "drive/schedule_parts.h"
+#include "part/charge.h"
+#include "part/oil.h"
 #include "part/road.h"
 
 #include <math.h>
@@ -16,6 +18,11 @@ double sp_density_of(const struct sp_design *d, double ambient, double pressure)
 {
     double density = sp_air_density(ambient, pressure, d->air.humidity);
     return isnan(density) ? sp_air_density(ambient, pressure, 0.0) : density;
+}
+
+double sp_off_speed(const struct sp_engine *e)
+{
+    return e->heat_law == SP_HEAT_GIVEN ? -INFINITY : SP_OFF_SHARE * e->idle_speed;
 }
 
 /* NAN unless column, gear or shift rule tell it. Out of gear the engine idles. */
@@ -40,7 +47,9 @@ static double known_speed(const struct sp_engine_sources *s, const struct sp_mom
 static double speed_or_assumed(const struct sp_engine_sources *s, const struct sp_moment *at, double known,
                                double power)
 {
-    return isnan(known) ? sp_engine_assumed_speed(&s->design->engine, power, at->speed) : known;
+    if (!isnan(known)) return known;
+    if (s->design->engine.heat_law == SP_HEAT_GIVEN) return 0.0; /* nothing asks for it */
+    return sp_engine_assumed_speed(&s->design->engine, power, at->speed);
 }
 
 /* The Willans line turned round. Where the engine speed hangs on power in turn, a few rounds settle it:
@@ -58,6 +67,13 @@ static double power_of_fuel(const struct sp_engine_sources *s, const struct sp_m
     return power;
 }
 
+/* Power [W] that overrun may take: a motor brakes as hard as it pulls. */
+static double braking(const struct sp_engine *e, double speed)
+{
+    if (e->heat_law != SP_HEAT_GIVEN) return sp_engine_motoring(e, speed);
+    return isnan(e->rated_power) ? (double)INFINITY : e->rated_power;
+}
+
 static double power_of_road(const struct sp_engine_sources *s, const struct sp_moment *at, double *speed,
                             struct sp_wheel_power *wheel)
 {
@@ -65,8 +81,7 @@ static double power_of_road(const struct sp_engine_sources *s, const struct sp_m
     double v = at->speed;
     double force = sp_road_force(b, v, at->air_speed, at->density, at->grade, at->acceleration);
     *speed = speed_or_assumed(s, at, *speed, fmax(force * v / b->driveline, 0.0));
-    double motoring = sp_engine_motoring(&s->design->engine, *speed);
-    double power = sp_road_power(b, force, v, motoring);
+    double power = sp_road_power(b, force, v, braking(&s->design->engine, *speed));
     if (wheel) {
         double still = sp_road_force(b, v, 0.0, 0.0, at->grade, 0.0);
         double climb = b->mass * SP_GRAVITY * at->grade / sqrt(1.0 + at->grade * at->grade);
@@ -96,6 +111,9 @@ static double power_at(const struct sp_engine_sources *s, const struct sp_moment
     case SP_POWER_THROTTLE:
         power = at->throttle * e->rated_power;
         break;
+    case SP_POWER_NONE:
+        power = 0.0;
+        break;
     case SP_POWER_COLUMN:
         break;
     }
@@ -104,15 +122,44 @@ static double power_at(const struct sp_engine_sources *s, const struct sp_moment
     return power;
 }
 
-void sp_engine_row_fill(const struct sp_engine_sources *s, const struct sp_moment *at, double in[SP_INPUTS],
-                        struct sp_wheel_power *wheel)
+/* Measured, or with the fuel. */
+static void fill_charge(const struct sp_design *d, const struct sp_engine_row *row, double fuel,
+                        double in[SP_INPUTS])
+{
+    const struct sp_charge *g = &d->charge;
+    if (!isnan(row->fuel_flow)) fuel = row->fuel_flow * d->engine.heating_value;
+    double flow = isnan(row->air_flow) ? sp_charge_flow(g, fuel, sp_engine_rated_fuel(&d->engine)) : row->air_flow;
+    in[SP_IN_CHARGE_FLOW] = fmax(flow, 0.0);
+    in[SP_IN_CHARGE_HEATING] = sp_charge_heating(g, flow);
+}
+
+/* All power but that of the engine's own needs passes the gearbox, either way. */
+static double gearbox_heat(const struct sp_design *d, double power, double speed)
+{
+    bool motored = d->gearbox.friction_share > 0.0 && d->engine.heat_law != SP_HEAT_GIVEN;
+    return sp_oil_heat(&d->gearbox, fabs(power), motored ? sp_engine_motoring(&d->engine, speed) : 0.0);
+}
+
+double sp_engine_row_heat(const struct sp_design *d, const struct sp_engine_law *law, const struct sp_engine_row *row,
+                          double measured, double in[SP_INPUTS])
+{
+    struct sp_engine_heat heat = sp_engine_heat(law, row);
+    bool given = d->engine.heat_law == SP_HEAT_GIVEN;
+    in[SP_IN_HEAT_GAS] = given && !isnan(measured) ? fmax(measured, 0.0) : heat.gas;
+    in[SP_IN_HEAT_FRICTION] = heat.friction;
+    in[SP_IN_HEAT_SLOPE] = heat.per_power;
+    in[SP_IN_OIL_HEAT] = heat.oil;
+    if (d->gearbox.fitted) in[SP_IN_GEARBOX_HEAT] = gearbox_heat(d, row->power, row->speed);
+    if (d->charge.fitted) fill_charge(d, row, heat.fuel, in);
+    return heat.cut;
+}
+
+double sp_engine_row_fill(const struct sp_engine_sources *s, const struct sp_moment *at, double in[SP_INPUTS],
+                          struct sp_wheel_power *wheel)
 {
     double speed = known_speed(s, at), power = power_at(s, at, &speed, wheel);
     struct sp_engine_row row = {power, speed, at->fuel_flow, at->air_flow};
-    struct sp_engine_heat heat = sp_engine_heat(s->law, &row);
     in[SP_IN_POWER] = power;
     in[SP_IN_ENGINE_SPEED] = speed;
-    in[SP_IN_HEAT_GAS] = heat.gas;
-    in[SP_IN_HEAT_FRICTION] = heat.friction;
-    in[SP_IN_HEAT_SLOPE] = heat.per_power;
+    return sp_engine_row_heat(s->design, s->law, &row, at->heat, in);
 }

@@ -99,7 +99,8 @@ enum sp_power_source {
     SP_POWER_FUEL,
     SP_POWER_AIR,
     SP_POWER_THROTTLE,
-    SP_POWER_ROAD
+    SP_POWER_ROAD,
+    SP_POWER_NONE /* not asked for: the heat is given */
 };
 enum sp_speed_source { SP_ENGINE_COLUMN, SP_ENGINE_GEAR, SP_ENGINE_SHIFTED, SP_ENGINE_ASSUMED };
 
@@ -107,7 +108,7 @@ enum sp_speed_source { SP_ENGINE_COLUMN, SP_ENGINE_GEAR, SP_ENGINE_SHIFTED, SP_E
 struct sp_moment {
     double speed, air_speed, acceleration, grade; /* acceleration and grade: road load only */
     double density;
-    double power, torque, engine_speed, fuel_flow, air_flow, throttle, gear;
+    double power, torque, engine_speed, fuel_flow, air_flow, throttle, gear, heat;
 };
 
 struct sp_engine_sources {
@@ -124,10 +125,18 @@ struct sp_wheel_power {
     double rolling, climb, drag, inertia, brakes;
 };
 
-/* Fills power, engine speed and heat of a row. `wheel` is filled when power comes from the road; may be NULL.
- */
-void sp_engine_row_fill(const struct sp_engine_sources *s, const struct sp_moment *at, double in[SP_INPUTS],
-                        struct sp_wheel_power *wheel);
+/* Fills power, engine speed, heats and charge air of a row. `wheel` is filled when power comes from the road; may
+ * be NULL. Returns what the energy cap took off the heat, W. */
+double sp_engine_row_fill(const struct sp_engine_sources *s, const struct sp_moment *at, double in[SP_INPUTS],
+                          struct sp_wheel_power *wheel);
+
+/* Heats and charge air from power [W] and speed [rev/s] in `row`, and a heat [W] that was measured (NAN: none).
+ * Returns as above. */
+double sp_engine_row_heat(const struct sp_design *d, const struct sp_engine_law *law, const struct sp_engine_row *row,
+                          double heat, double in[SP_INPUTS]);
+
+/* Engine speed [rev/s] below which the engine is off; with a given heat none. */
+double sp_off_speed(const struct sp_engine *e);
 
 /* True when the body holds what the road load needs. */
 bool sp_road_load_known(const struct sp_body *b);
@@ -158,6 +167,8 @@ void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const str
 
 /* A caution when power somewhere in a step is far above rated power. */
 void sp_schedule_caution_power(struct sp_scheduling *b, size_t step, double most);
+/* A caution when the energy cap took so much [W] off the heat somewhere in a step. */
+void sp_schedule_caution_cap(struct sp_scheduling *b, size_t step, double cut);
 
 /* True of an engine that stands and yet gives power [W]; false where either is NAN. */
 bool sp_schedule_stopped(const struct sp_engine *e, double engine_speed, double power);

@@ -26,14 +26,15 @@ void sp_schedule_caution(struct sp_scheduling *b, size_t step, const char *found
 void sp_schedule_caution_sources(struct sp_scheduling *b, size_t step, const struct sp_engine_sources *s)
 {
     enum sp_heat_law law = b->design->engine.heat_law;
-    bool flow = (s->power == SP_POWER_FUEL && law != SP_HEAT_FUEL) ||
-                (s->power == SP_POWER_AIR && law != SP_HEAT_AIR);
+    bool by_flow = law == SP_HEAT_CORRELATION;
+    bool flow = (s->power == SP_POWER_FUEL && law != SP_HEAT_FUEL && !by_flow) ||
+                (s->power == SP_POWER_AIR && law != SP_HEAT_AIR && !by_flow);
     if (s->lacks_flow && !b->cautioned_flow) {
         b->cautioned_flow = true;
         sp_schedule_caution(b, step, "a heat law that goes by flow, and a trace without that flow",
                             "a column fuel_flow or air_flow; heat taken by power and heat.fraction instead");
     }
-    if (s->speed == SP_ENGINE_ASSUMED && !b->cautioned_speed) {
+    if (s->speed == SP_ENGINE_ASSUMED && law != SP_HEAT_GIVEN && !b->cautioned_speed) {
         b->cautioned_speed = true;
         sp_schedule_caution(b, step, "no engine speed and no gears",
                             "a column engine_speed, or car.body.gears and wheel_radius; taken as "
@@ -61,5 +62,16 @@ void sp_schedule_caution_power(struct sp_scheduling *b, size_t step, double most
     snprintf(found, sizeof found, "power up to %.4g kW", most / 1e3);
     snprintf(expected, sizeof expected, "no more than 1.3 times car.engine.rated_power, which is %.4g kW",
              rated / 1e3);
+    sp_schedule_caution(b, step, found, expected);
+}
+
+void sp_schedule_caution_cap(struct sp_scheduling *b, size_t step, double cut)
+{
+    char found[128], expected[160];
+    if (!(cut > 0.0)) return;
+    snprintf(found, sizeof found, "up to %.4g kW more heat than the fuel has left beside work and oil", cut / 1e3);
+    snprintf(expected, sizeof expected,
+             "no more than car.engine.heat.energy_cap, %.4g of the fuel's energy, in all; the coolant's heat is cut",
+             b->design->engine.energy_cap);
     sp_schedule_caution(b, step, found, expected);
 }

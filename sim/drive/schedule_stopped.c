@@ -35,6 +35,7 @@ static double power_told(const struct look *l, size_t i)
         return sp_engine_power_from_fuel(e, cell(l, SP_COL_AIR_FLOW, i) / e->air_fuel_ratio, e->idle_speed);
     case SP_POWER_THROTTLE:
     case SP_POWER_ROAD:
+    case SP_POWER_NONE:
         break;
     }
     return 0.0;
@@ -42,7 +43,7 @@ static double power_told(const struct look *l, size_t i)
 
 bool sp_schedule_stopped(const struct sp_engine *e, double engine_speed, double power)
 {
-    return engine_speed < SP_OFF_SHARE * e->idle_speed && power > idle_share * e->rated_power;
+    return engine_speed < sp_off_speed(e) && power > idle_share * e->rated_power;
 }
 
 static bool lost(const struct look *l, size_t i)
@@ -69,7 +70,7 @@ static void complain(struct sp_scheduling *b, size_t step, const struct look *l,
 bool sp_schedule_find_speeds(struct sp_scheduling *b, size_t step, struct sp_trace *trace,
                              const struct sp_engine_sources *sources)
 {
-    struct look l = {sources, trace, SP_OFF_SHARE * b->design->engine.idle_speed};
+    struct look l = {sources, trace, sp_off_speed(&b->design->engine)};
     double *n = trace->column[SP_COL_ENGINE_SPEED], good = NAN;
     size_t count = 0, first = 0;
     if (!n || sources->speed != SP_ENGINE_COLUMN) return true;

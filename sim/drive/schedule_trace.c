@@ -21,7 +21,7 @@ struct deriving {
     struct sp_engine_sources sources;
     struct sp_merge merge;
     double altitude, pressure; /* of the row worked out last */
-    double most_power;         /* W */
+    double most_power, most_cut; /* W; what the energy cap took */
     bool finite;
 };
 
@@ -89,11 +89,23 @@ static enum sp_speed_source speed_source(const struct deriving *v)
     return has(v, SP_COL_GEAR) ? SP_ENGINE_GEAR : SP_ENGINE_SHIFTED;
 }
 
+/* With the law `given` some heat has to be given. */
+static bool heat_told(struct deriving *v)
+{
+    const struct sp_engine *e = &v->b->design->engine;
+    if (e->heat_law != SP_HEAT_GIVEN || has(v, SP_COL_HEAT) || e->heat_given > 0.0 || e->heat_loss > 0.0) return true;
+    sp_schedule_fault(v->b, v->step, "trace", "no heat, with car.engine.heat.law given",
+                      "a column heat, or car.engine.heat.given or loss");
+    return false;
+}
+
 static bool find_sources(struct deriving *v)
 {
     const struct sp_engine *e = &v->b->design->engine;
     struct sp_engine_sources *s = &v->sources;
-    bool fuel = e->heating_value > 0.0, air = fuel && e->air_fuel_ratio > 0.0;
+    bool given = e->heat_law == SP_HEAT_GIVEN;
+    bool fuel = e->heating_value > 0.0 && !given, air = fuel && e->air_fuel_ratio > 0.0;
+    bool throttle = has(v, SP_COL_THROTTLE) && !given;
     s->design = v->b->design;
     s->law = v->b->law;
     s->speed = speed_source(v);
@@ -112,10 +124,12 @@ static bool find_sources(struct deriving *v)
         s->power = SP_POWER_FUEL;
     } else if (has(v, SP_COL_AIR_FLOW) && air) {
         s->power = SP_POWER_AIR;
-    } else if (has(v, SP_COL_THROTTLE)) {
+    } else if (throttle) {
         s->power = SP_POWER_THROTTLE;
     } else if (sp_road_load_known(&v->b->design->body)) {
         s->power = SP_POWER_ROAD;
+    } else if (given && (has(v, SP_COL_HEAT) || e->heat_loss == 0.0)) {
+        s->power = SP_POWER_NONE;
     } else {
         sp_schedule_fault(
             v->b, v->step, "trace", "nothing that tells the power",
@@ -138,8 +152,10 @@ static void drop_unused(struct deriving *v)
     keep[SP_COL_POWER] = power == SP_POWER_COLUMN;
     keep[SP_COL_TORQUE] = power == SP_POWER_TORQUE;
     keep[SP_COL_THROTTLE] = power == SP_POWER_THROTTLE;
-    keep[SP_COL_FUEL_FLOW] = power == SP_POWER_FUEL || law == SP_HEAT_FUEL;
-    keep[SP_COL_AIR_FLOW] = power == SP_POWER_AIR || law == SP_HEAT_AIR;
+    bool flows = law == SP_HEAT_CORRELATION || v->b->design->charge.fitted;
+    keep[SP_COL_FUEL_FLOW] = power == SP_POWER_FUEL || law == SP_HEAT_FUEL || flows;
+    keep[SP_COL_AIR_FLOW] = power == SP_POWER_AIR || law == SP_HEAT_AIR || flows;
+    keep[SP_COL_HEAT] = law == SP_HEAT_GIVEN;
     keep[SP_COL_GRADE] = power == SP_POWER_ROAD;
     for (int c = 0; c < SP_COLUMNS; c++) {
         if (keep[c]) continue;
@@ -268,13 +284,14 @@ static void row_of(struct deriving *v, size_t i, struct sp_row *row, struct sp_w
         .fuel_flow = value(v, SP_COL_FUEL_FLOW, i, NAN),
         .air_flow = value(v, SP_COL_AIR_FLOW, i, NAN),
         .throttle = held(value(v, SP_COL_THROTTLE, i, NAN), 0.0, 1.0),
+        .heat = value(v, SP_COL_HEAT, i, NAN),
     };
     if (v->sources.power == SP_POWER_ROAD) {
         at.acceleration = v->acceleration[i];
         at.grade = v->grade ? v->grade[i] : value(v, SP_COL_GRADE, i, 0.0);
         at.density = sp_density_of(v->b->design, row->in[SP_IN_AMBIENT], row->in[SP_IN_PRESSURE]);
     }
-    sp_engine_row_fill(&v->sources, &at, row->in, wheel);
+    v->most_cut = fmax(v->most_cut, sp_engine_row_fill(&v->sources, &at, row->in, wheel));
     v->most_power = fmax(v->most_power, row->in[SP_IN_POWER]);
     for (int c = 0; c < SP_INPUTS; c++)
         if (c != SP_IN_MEASURED && !isfinite(row->in[c])) v->finite = false;
@@ -283,7 +300,7 @@ static void row_of(struct deriving *v, size_t i, struct sp_row *row, struct sp_w
 static bool runs(const struct deriving *v, size_t i)
 {
     const double *n = v->trace.column[SP_COL_ENGINE_SPEED];
-    double least = SP_OFF_SHARE * v->b->design->engine.idle_speed;
+    double least = sp_off_speed(&v->b->design->engine);
     return !n || (n[i] >= least && n[i + 1] >= least);
 }
 
@@ -348,6 +365,7 @@ static bool build_rows(struct deriving *v, struct sp_rows *to)
         return false;
     }
     sp_schedule_caution_power(v->b, v->step, v->most_power);
+    sp_schedule_caution_cap(v->b, v->step, v->most_cut);
     to->table.rows_merged = v->merge.pushed - to->table.rows;
     to->table.measured = has(v, SP_COL_COOLANT);
     to->table.power_from_road = v->sources.power == SP_POWER_ROAD;
@@ -361,7 +379,7 @@ bool sp_schedule_trace(struct sp_scheduling *b, size_t step, struct sp_rows *to)
     bool fine = read_trace(&v);
     if (fine) {
         count_repairs(&v);
-        fine = find_sources(&v) && sp_schedule_find_speeds(b, step, &v.trace, &v.sources);
+        fine = heat_told(&v) && find_sources(&v) && sp_schedule_find_speeds(b, step, &v.trace, &v.sources);
     }
     if (fine) {
         sp_schedule_caution_sources(b, step, &v.sources);

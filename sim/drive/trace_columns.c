@@ -27,6 +27,7 @@ static const struct row table[SP_COLUMNS] = {
     [SP_COL_AMBIENT] = {"ambient", SP_K_TEMPERATURE, 200, 500, "air temperature ahead of the car"},
     [SP_COL_WAKE] = {"wake", SP_K_NUMBER, 0, 1.5, "share of free-stream dynamic pressure left"},
     [SP_COL_COOLANT] = {"coolant", SP_K_TEMPERATURE, 200, 500, "measured coolant temperature"},
+    [SP_COL_HEAT] = {"heat", SP_K_POWER, -1e6, 3e6, "heat to the coolant, with car.engine.heat.law `given`"},
     [SP_COL_MARK] = {"mark", SP_KINDS, 0, 0, "text: a corner, a lap; begins where the text changes"},
 };
 

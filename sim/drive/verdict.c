@@ -14,6 +14,32 @@ static struct sp_peak place(const struct sp_run *r, const struct sp_tracked *t)
     return (struct sp_peak){t->best, t->time, in.distance, r->schedule->step[k], sp_schedule_mark(r->schedule, k)};
 }
 
+/* Of what the car may not have. */
+static struct sp_peak place_if(const struct sp_run *r, const struct sp_tracked *t)
+{
+    return isfinite(t->best) ? place(r, t) : (struct sp_peak){.value = NAN, .time = NAN, .distance = NAN};
+}
+
+static void settle_fans(struct sp_run *r)
+{
+    struct sp_result *out = r->result;
+    out->fan_kinds = (size_t)r->circuit->fans;
+    for (int f = 0; f < r->circuit->fans; ++f) {
+        out->each_fan[f].place = sp_watch_fan_place(r->circuit, f);
+        if (r->fan_runs[f]) out->each_fan[f].on += out->duration - r->fan_since[f];
+    }
+    if (r->fans_run) out->fan.on += out->duration - r->any_fan_since;
+}
+
+/* At the voltage of a battery that nothing charges. */
+static void settle_battery(struct sp_run *r, const double *end)
+{
+    const struct sp_electrics *e = &r->circuit->design->electrics;
+    int at = r->circuit->layout.battery;
+    r->result->battery.used = at >= 0 ? end[at] : NAN;
+    r->result->battery.left = at >= 0 ? fmax(1.0 - end[at] / (e->battery * e->voltage_stopped), 0.0) : NAN;
+}
+
 static void ledger(struct sp_run *r, const double *start, const double *end)
 {
     struct sp_result *out = r->result;
@@ -37,6 +63,11 @@ static double first_event(const struct sp_result *r, enum sp_event_kind kind)
     return INFINITY;
 }
 
+static enum sp_event_kind stop_of(enum sp_limited of)
+{
+    return (enum sp_event_kind)(SP_EV_TIER + 6 * (int)of + 4);
+}
+
 static void judge(struct sp_run *r)
 {
     struct sp_result *out = r->result;
@@ -44,7 +75,10 @@ static void judge(struct sp_run *r)
     const struct limit all[] = {{"limits.coolant", l->coolant.stop - out->coolant.value, SP_EV_COOLANT_OVER},
                                 {"limits.gauge", l->gauge.stop - out->gauge.value, SP_EV_GAUGE_OVER},
                                 {"limits.metal", l->metal.stop - out->metal.value, SP_EV_METAL_OVER},
-                                {"limits.boil_margin", out->boil_margin.value - l->boil_margin, SP_EV_BOIL_MARGIN_UNDER}};
+                                {"limits.boil_margin", out->boil_margin.value - l->boil_margin, SP_EV_BOIL_MARGIN_UNDER},
+                                {"limits.oil", l->oil.stop - out->oil.value, stop_of(SP_LIMITED_OIL)},
+                                {"limits.gearbox", l->gearbox.stop - out->gearbox.value, stop_of(SP_LIMITED_GEARBOX)},
+                                {"limits.charge", l->charge.stop - out->charge.value, stop_of(SP_LIMITED_CHARGE)}};
     double least = INFINITY, earliest = INFINITY;
     out->survives = true;
     for (size_t i = 0; i < sizeof all / sizeof all[0]; ++i) {
@@ -85,12 +119,16 @@ enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_co
     const struct sp_schedule *s = r->schedule;
     out->duration = s->time[s->rows - 1];
     out->distance = s->distance[s->rows - 1];
-    if (r->fan_runs) out->fan.on += out->duration - r->fan_since;
+    settle_fans(r);
+    settle_battery(r, end);
     if (r->high[SP_W_COOLANT]) out->time_over_limit += out->duration - r->over_since;
     if (r->high[SP_W_FULL]) out->time_above_band += out->duration - r->full_since;
     out->coolant = place(r, &r->coolant);
     out->gauge = place(r, &r->gauge);
     out->metal = place(r, &r->metal);
+    out->oil = place_if(r, &r->oil);
+    out->gearbox = place_if(r, &r->gearbox);
+    out->charge = place_if(r, &r->charge);
     out->tank_pressure = place(r, &r->pressure);
     out->boil_margin = place(r, &r->margin);
     out->boil_margin.value = -out->boil_margin.value;
@@ -100,6 +138,8 @@ enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_co
     out->drag.mean_coefficient = end[SP_Y_HEAD_WORK] > 0.0
         ? end[SP_Y_DRAG_WORK] / (r->drive->design->body.frontal_area * end[SP_Y_HEAD_WORK]) : NAN;
     out->liquid_lost = end[SP_Y_LOST];
+    const struct sp_tank *tank = &r->circuit->design->tank;
+    out->tank_left = fmax(tank->volume - tank->air_space - tank->lost - end[SP_Y_LOST], 0.0);
     struct sp_measured_score score = sp_measured_score(&r->measured);
     out->measured.rms = score.rms;
     out->measured.warmup_rms = score.warmup_rms;
@@ -110,6 +150,7 @@ enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_co
     r->segment = sp_schedule_row(s, out->coolant.time);
     sp_run_event(r, SP_EV_PEAK, out->coolant.time, out->coolant.value);
     order_events(out);
+    if (!sp_run_failures(r) || !sp_run_tell_changes(r)) r->lost_event = true;
     ledger(r, start, end);
     judge(r);
     r->ledger_open = !(fabs(out->ledger.error) <= ledger_tolerance);

@@ -56,6 +56,7 @@ void sp_case_check(struct sp_reader *r);  /* how values stand to each other: car
 void sp_case_check_core(struct sp_reader *r, const struct sp_key_spot *at); /* one core */
 void sp_case_check_fitted(struct sp_reader *r); /* cores, fans, inlets, diffusers beyond the plain ones */
 void sp_case_check_loop(struct sp_reader *r); /* the coolant loop */
+void sp_case_check_engine(struct sp_reader *r); /* engine, oils, charge air; with its cautions */
 void sp_case_check_drive(struct sp_reader *r);
 void sp_case_doubt(struct sp_reader *r); /* cautions */
 /* Builds the changed designs, one a change. */

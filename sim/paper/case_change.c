@@ -66,12 +66,13 @@ static void take_value(struct changing *c, const struct sp_json *value, const ch
     struct sp_setting s = {.node = value};
     struct sp_place at = {value->file, value->line, source, value->named_by};
     struct sp_json *grown = NULL;
-    if (!sp_setting_look_up(r, value->key, &at, &s) || !sp_change_allowed(r, &s)) return;
+    if (!sp_setting_look_up(r, value->key, &at, &s) || !sp_setting_resolve(r, &s)) return;
+    if (!sp_change_allowed(r, &s) || set_twice(c, &s)) return;
     if (add) {
         s.node = grown = sp_change_grown(r, &s, value, c->now, c->outer->complaints->count > 0);
         if (!grown) return;
     }
-    if (sp_setting_resolve(r, &s) && !set_twice(c, &s) && sp_setting_apply(r, &s)) {
+    if (sp_setting_apply(r, &s)) {
         remember(c, s.place, source);
         write_value(c, value->key, s.node);
     }

@@ -26,6 +26,7 @@ static const struct {
     {"car.duct.core.carries", laid_out},
     {"car.duct.core.feed", laid_out},
     {"car.duct.fan.count", laid_out},
+    {"car.electrics.battery", laid_out},
 };
 
 static bool within(const char *group, const char *path)
@@ -47,11 +48,11 @@ static bool part_there(struct sp_reader *r, const struct sp_setting *s)
     const struct sp_key *group;
     for (size_t i = 0; (group = sp_key_row(i)) != NULL; ++i) {
         char found[120];
-        bool may_lack = group->need == SP_NEED_NOT && (group->keep != SP_KEEP_BOOL || group->or_none);
-        if (group->shape != SP_SHAPE_GROUP || may_lack || !within(group->path, s->row->path)) continue;
-        const struct sp_json *list = group->plural ? sp_case_list(r->tree, group, &s->at) : NULL;
-        if (list || sp_case_given_at(r, group->path, &s->at)) continue; /* an index past the end is said later */
-        if (group->need != SP_NEED_NOT) return false;
+        bool must = group->need == SP_NEED_ALWAYS || (group->need == SP_NEED_DRIVE && r->purpose == SP_FOR_DRIVE);
+        bool part = group->keep == SP_KEEP_BOOL && !group->or_none;
+        if (group->shape != SP_SHAPE_GROUP || !(must || part) || !within(group->path, s->row->path)) continue;
+        if (sp_case_given_at(r, group->path, &s->at)) continue;
+        if (must) return false;
         snprintf(found, sizeof found, "no %s from the start", sp_key_name(group));
         return refuse(r, s, found, "one that is there, to be changed");
     }
@@ -61,7 +62,7 @@ static bool part_there(struct sp_reader *r, const struct sp_setting *s)
 bool sp_change_allowed(struct sp_reader *r, const struct sp_setting *s)
 {
     const char *path = s->row->path;
-    if (strncmp(path, "car.", 4) && strncmp(path, "limits.", 7))
+    if (strncmp(path, "car.", 4) && !within("limits", path))
         return refuse(r, s, "a change of it", "a key of the car or of limits: all else is read once, before the drive");
     for (size_t i = 0; i < sizeof fixed / sizeof *fixed; ++i)
         if (within(fixed[i].path, path)) return refuse(r, s, "a change of it", fixed[i].expected);
@@ -143,12 +144,12 @@ static struct sp_json *sum_node(struct sp_reader *r, const struct sp_json *node,
     return out;
 }
 
-static bool element_there(const struct sp_reader *r, const struct sp_setting *s)
+/* A list too long is a fault said before: there is no room for all of it. */
+static bool has_room(const struct sp_setting *s)
 {
     const struct sp_key *lists[SP_KEY_LISTS];
     size_t n = sp_key_lists(s->row->path, lists);
-    return (n < 1 || s->at.outer < sp_case_elements(r->tree, lists[0], &s->at)) &&
-           (n < 2 || s->at.inner < sp_case_elements(r->tree, lists[1], &s->at));
+    return (n < 1 || s->at.outer < lists[0]->most) && (n < 2 || s->at.inner < lists[1]->most);
 }
 
 struct sp_json *sp_change_grown(struct sp_reader *r, const struct sp_setting *s, const struct sp_json *node,
@@ -156,13 +157,13 @@ struct sp_json *sp_change_grown(struct sp_reader *r, const struct sp_setting *s,
 {
     bool number = s->row->shape == SP_SHAPE_QUANTITY && !s->inside;
     enum sp_kind kind = s->row->kind == SP_K_TEMPERATURE ? SP_K_TEMP_DIFF : s->row->kind;
-    double addend, have = NAN;
+    double addend, have;
     if (!number) {
         refuse(r, s, "a key that holds no single number", "a number, to be added to; or the key in set");
         return NULL;
     }
-    if (!read_addend(r, s, kind, node, &addend)) return NULL;
-    if (element_there(r, s)) have = sp_key_double(s->row, now, &s->at);
+    if (!read_addend(r, s, kind, node, &addend) || !has_room(s)) return NULL;
+    have = sp_key_double(s->row, now, &s->at);
     if (isnan(have)) {
         if (!faulty) refuse(r, s, "nothing to add to", "a number there until then; or the key in set");
         return NULL;

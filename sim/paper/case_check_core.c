@@ -172,7 +172,8 @@ void sp_case_check_core(struct sp_reader *r, const struct sp_key_spot *at)
 {
     struct room room = {.r = r, .core = &r->design->duct[at->outer].core[at->inner]}, *m = &room;
     sp_case_path(r->tree, "car.duct.core", at, room.path, sizeof room.path);
-    if (!sp_case_given(r, room.path)) return;
+    const struct sp_json *node = sp_case_node(r->tree, room.path);
+    if (!node || node->type != SP_JSON_OBJECT) return;
     check_geometry(m);
     check_drop(m);
     check_heat(m);

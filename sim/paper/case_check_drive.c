@@ -13,9 +13,42 @@ static void check_air(struct sp_reader *r)
 
 static void check_limits(struct sp_reader *r)
 {
+    static const char *const deciding[] = {"coolant", "gauge", "metal", "boil_margin", "oil", "gearbox", "charge"};
     const struct sp_json *limits = sp_json_member(r->tree, "limits");
-    if (r->purpose != SP_FOR_DRIVE || !limits || limits->type != SP_JSON_OBJECT || limits->child) return;
+    if (r->purpose != SP_FOR_DRIVE || !limits || limits->type != SP_JSON_OBJECT) return;
+    for (size_t i = 0; i < sizeof deciding / sizeof *deciding; ++i)
+        if (sp_json_member(limits, deciding[i])) return;
     sp_case_fault(r, "limits", "no limit", "at least one of coolant, gauge, metal, boil_margin", NULL);
+}
+
+/* One quantity's tiers: each below the next, and only for what the car has. */
+static void check_tiers(struct sp_reader *r, const char *name, const struct sp_tiers *t, bool fitted)
+{
+    const struct { const char *end; double at; } tier[] = {{"_caution", t->caution}, {"_alarm", t->alarm}, {"", t->stop}};
+    double below = -INFINITY;
+    for (int i = 0; i < 3; ++i) {
+        char path[SP_PATH_MAX];
+        snprintf(path, sizeof path, "limits.%s%s", name, tier[i].end);
+        if (!isfinite(tier[i].at)) continue;
+        if (!fitted) sp_case_fault(r, path, "a limit of what the car does not have", "a limit of a fitted part", NULL);
+        else if (!(tier[i].at > below))
+            sp_case_fault(r, path, NULL, "a temperature above the tiers before it: caution < alarm < limit", NULL);
+        below = tier[i].at;
+    }
+}
+
+static void check_all_tiers(struct sp_reader *r)
+{
+    const struct sp_design *d = r->design;
+    const struct sp_limits *l = &d->limits;
+    check_tiers(r, "coolant", &l->coolant, true);
+    check_tiers(r, "gauge", &l->gauge, true);
+    check_tiers(r, "metal", &l->metal, true);
+    check_tiers(r, "oil", &l->oil, d->oil.fitted);
+    check_tiers(r, "gearbox", &l->gearbox, d->gearbox.fitted);
+    check_tiers(r, "charge", &l->charge, d->charge.fitted);
+    if (isfinite(l->least_oil) && !d->oil.fitted)
+        sp_case_fault(r, "limits.least_oil", "a limit of what the car does not have", "a limit of a fitted part", NULL);
 }
 
 static const struct sp_json *member(const struct sp_json *step, const char *key)
@@ -83,6 +116,7 @@ void sp_case_check_drive(struct sp_reader *r)
     size_t i = 0;
     check_air(r);
     check_limits(r);
+    check_all_tiers(r);
     if (!drive || drive->type != SP_JSON_ARRAY) return;
     for (const struct sp_json *c = drive->child; c && i < r->design->steps; c = c->next, ++i)
         if (c->type == SP_JSON_OBJECT) check_step(r, c, i);

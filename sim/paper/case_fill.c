@@ -11,6 +11,13 @@ static bool needed(const struct sp_reader *r, const struct sp_key *row)
     return row->need == SP_NEED_ALWAYS || (row->need == SP_NEED_DRIVE && r->purpose == SP_FOR_DRIVE);
 }
 
+/* A word elsewhere that makes the key needless. */
+static bool excused(const struct sp_reader *r, const struct sp_key *row)
+{
+    const struct sp_json *word = row->unless ? sp_case_node(r->tree, row->unless) : NULL;
+    return word && word->type == SP_JSON_STRING && !strcmp(word->text, row->unless_word);
+}
+
 /* "an object with displacement, rated_power": what a missing group would have to hold. */
 static void group_expected(const struct sp_reader *r, const struct sp_key *group, char *out, size_t size)
 {
@@ -126,7 +133,7 @@ static void fill_row(struct sp_reader *r, const struct sp_key *row, const struct
     if (row->or_object && node && node->type == SP_JSON_OBJECT) return;
     if (node)
         sp_case_value(r, row, node, path, to);
-    else if (needed(r, row) && group_there(r, path))
+    else if (needed(r, row) && !excused(r, row) && group_there(r, path))
         missing(r, row, path);
     else
         set_default(r, row, to);

@@ -36,6 +36,18 @@ static bool misplaced(struct sp_reader *r, const struct sp_setting *s, const str
     return complain(r, s, found, expected, NULL);
 }
 
+/* An index past the end of a list of n. */
+static bool past_end(struct sp_reader *r, const struct sp_setting *s, size_t index, size_t n)
+{
+    char found[60], expected[100];
+    snprintf(found, sizeof found, "index %zu", index);
+    if (n > 1)
+        snprintf(expected, sizeof expected, "an index of 0 to %zu, for there are %zu", n - 1, n);
+    else
+        snprintf(expected, sizeof expected, n ? "index 0, for there is 1" : "no index, for the list is empty");
+    return complain(r, s, found, expected, NULL);
+}
+
 /* ---- one or a list --------------------------------------------------------------------------------- */
 
 /* On the way along a path: what is found so far, and where that is. */
@@ -89,7 +101,7 @@ static bool element_of_one(struct way *w, const struct sp_key *row, size_t index
     if (one)
         snprintf(expected, sizeof expected, "index 0, for there is 1, as \"%s\"", sp_key_name(row));
     else
-        snprintf(expected, sizeof expected, "no index, for there are none; %s as a whole", row->plural);
+        snprintf(expected, sizeof expected, "no index, for there are no %s", row->plural);
     return complain(w->r, w->s, found, expected, NULL);
 }
 
@@ -124,6 +136,11 @@ static bool resolve_group(struct way *w, const struct sp_key *row, bool plural, 
     }
     if (!plural && list && !one) return one_of_list(w, row, list);
     add_name(w, plural ? row->plural : sp_key_name(row));
+    if (!plural || **path != '[') return true;
+    sp_path_next(path, false, &part, &bad);
+    if (list->type != SP_JSON_ARRAY) return misplaced(w->r, w->s, list, "a list to have that index");
+    if (part.index >= length_of(list)) return past_end(w->r, w->s, part.index, length_of(list));
+    add_index(w, part.index);
     return true;
 }
 
@@ -160,7 +177,6 @@ bool sp_setting_resolve(struct sp_reader *r, struct sp_setting *s)
 static struct sp_json **element(struct sp_reader *r, const struct sp_setting *s, struct sp_json *array,
                                 size_t index)
 {
-    char found[60], expected[100];
     size_t n = 0;
     if (array->type != SP_JSON_ARRAY) {
         misplaced(r, s, array, "a list to have that index");
@@ -170,12 +186,7 @@ static struct sp_json **element(struct sp_reader *r, const struct sp_setting *s,
     for (; *link && n < index; ++n)
         link = &(*link)->next;
     if (*link) return link;
-    snprintf(found, sizeof found, "index %zu", index);
-    if (n > 1)
-        snprintf(expected, sizeof expected, "an index of 0 to %zu, for there are %zu", n - 1, n);
-    else
-        snprintf(expected, sizeof expected, n ? "index 0, for there is 1" : "no index, for the list is empty");
-    complain(r, s, found, expected, NULL);
+    past_end(r, s, index, n);
     return NULL;
 }
 

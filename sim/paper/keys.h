@@ -61,6 +61,7 @@ struct sp_key {
     size_t width;                        /* number of columns */
     bool or_none;                        /* the word "none" is allowed */
     bool or_object;                      /* a table that may also be an object with keys of its own */
+    const char *unless, *unless_word; /* a word row; with that word there the need falls away */
     bool or_volume;   /* a mass flow that may also be given as a volume flow, of 50/50 glycol at 90 degC */
     bool whole;       /* whole numbers only */
     const char *type; /* what it is, in words, where kind does not say it */
@@ -134,9 +135,10 @@ bool sp_word_value(const struct sp_key *row, const char *text, double *value);
 /* ---- the tables, one a room; ended by a NULL path -------------------------------------------------- */
 
 extern const struct sp_key sp_keys_case[], sp_keys_drive[], sp_keys_body[], sp_keys_engine[],
-    sp_keys_circuit[], sp_keys_duct[], sp_keys_core[], sp_keys_fan[], sp_keys_tank[], sp_keys_change[];
+    sp_keys_circuit[], sp_keys_duct[], sp_keys_core[], sp_keys_fan[], sp_keys_tank[], sp_keys_change[],
+    sp_keys_oil[];
 
-/* ---- defaults worked out from other values: keys_rule.c -------------------------------------------- */
+/* ---- defaults worked out from other values: keys_rule.c, keys_rule_engine.c ------------------------ */
 
 double sp_rule_start_coolant(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_shift_speed(const struct sp_design *d, const struct sp_key_spot *at);
@@ -144,6 +146,16 @@ double sp_rule_metal(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_jacket(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_conductance(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_conductance_flow(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_bore(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_stroke(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_overrun_share(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_gas_temperature(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_oil_share(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_oil_most(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_gearbox_most(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_oil_full(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_gearbox_full(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_charge_flow(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_glycol(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_pump_power(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_thermostat_full(const struct sp_design *d, const struct sp_key_spot *at);

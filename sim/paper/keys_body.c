@@ -36,6 +36,10 @@ const struct sp_key sp_keys_body[] = {
     {QUANTITY("car.electrics.alternator_efficiency", NUMBER, electrics.alternator_efficiency),
      DEFAULT("0.55"), RANGE("0.05 to 1"), SAYS("electrical power over crank power"),
      SOURCE("one maker's figure for car alternators")},
+    {QUANTITY("car.electrics.battery", CHARGE, electrics.battery), DEFAULT("0 A.h"), RANGE("0 A.h to 1000 A.h"),
+     SAYS("charge that may be drawn with the engine off, half of what is stamped on it; 0: not watched"), PRACTICE},
+    {QUANTITY("car.electrics.idle_load", POWER, electrics.idle_load), DEFAULT("0 W"), RANGE("0 W to 50 kW"),
+     SAYS("other consumers with the key on and the engine off; lights and logger 150 W"), PRACTICE},
 
     {GROUP("car.gauge"), OPTIONAL, SAYS("what the driver sees")},
     {WORD("car.gauge.place", places, ENUM, gauge.place), DEFAULT("engine out"),

@@ -2,6 +2,13 @@
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "keys_row.h"
 
+/* The two tiers below a limit; only the limit itself decides whether the car survives. */
+#define TIERS(name, most)                                                                                    \
+    {QUANTITY("limits." #name "_caution", TEMPERATURE, limits.name.caution), WHEN("if wanted"),              \
+     RANGE("0 degC to " most), SAYS("above it the driver is warned"), OWN},                                  \
+    {QUANTITY("limits." #name "_alarm", TEMPERATURE, limits.name.alarm), WHEN("if wanted"),                  \
+     RANGE("0 degC to " most), SAYS("above it the driver must act"), OWN}
+
 const struct sp_key sp_keys_case[] = {
     {.path = "title", .shape = SP_SHAPE_TEXT, AT(title), OPTIONAL, SAYS("what this case is called"), OWN},
     {GROUP("car"), REQUIRED, .type = "path or object",
@@ -35,6 +42,10 @@ const struct sp_key sp_keys_case[] = {
      RANGE("-60 degC to 250 degC"), SAYS("metal of the engine"), OWN},
     {QUANTITY("start.radiator", TEMPERATURE, start.radiator), WHEN("else as the coolant"),
      RANGE("-60 degC to 150 degC"), SAYS("core, the hose behind it and what is in them"), OWN},
+    {QUANTITY("start.oil", TEMPERATURE, start.oil), WHEN("else as the coolant"), RANGE("-60 degC to 200 degC"),
+     SAYS("the engine's oil, where the car has it"), OWN},
+    {QUANTITY("start.gearbox", TEMPERATURE, start.gearbox), WHEN("else as the coolant"),
+     RANGE("-60 degC to 200 degC"), SAYS("oil of gearbox or final drive, where the car has it"), OWN},
 
     {GROUP("limits"), FOR_DRIVE, .type = "object with at least one limit",
      SAYS("what must not be passed; a drive needs at least one")},
@@ -44,8 +55,26 @@ const struct sp_key sp_keys_case[] = {
      RANGE("0 degC to 200 degC"), SAYS("highest reading of the gauge"), OWN},
     {QUANTITY("limits.metal", TEMPERATURE, limits.metal.stop), WHEN("one limit is needed"),
      RANGE("0 degC to 400 degC"), SAYS("highest temperature of the engine's metal"), OWN},
+    {QUANTITY("limits.oil", TEMPERATURE, limits.oil.stop), WHEN("one limit is needed"),
+     RANGE("0 degC to 250 degC"), SAYS("highest temperature of the engine's oil"), OWN},
+    {QUANTITY("limits.gearbox", TEMPERATURE, limits.gearbox.stop), WHEN("one limit is needed"),
+     RANGE("0 degC to 250 degC"), SAYS("highest temperature of the oil of gearbox or final drive"), OWN},
+    {QUANTITY("limits.charge", TEMPERATURE, limits.charge.stop), WHEN("one limit is needed"),
+     RANGE("0 degC to 250 degC"), SAYS("highest temperature of the charge air behind its coolers"), OWN},
     {QUANTITY("limits.boil_margin", TEMP_DIFF, limits.boil_margin), WHEN("one limit is needed"),
      RANGE("0 K to 150 K"), SAYS("least distance of the coolant to its boiling point, at any place"), OWN},
+    TIERS(coolant, "200 degC"),
+    TIERS(gauge, "200 degC"),
+    TIERS(metal, "400 degC"),
+    TIERS(oil, "250 degC"),
+    TIERS(gearbox, "250 degC"),
+    TIERS(charge, "250 degC"),
+    {QUANTITY("limits.least_coolant", TEMPERATURE, limits.least_coolant), WHEN("if wanted"),
+     RANGE("-40 degC to 150 degC"), SAYS("coolant at the engine's outlet before it is loaded"), OWN},
+    {QUANTITY("limits.least_oil", TEMPERATURE, limits.least_oil), WHEN("if wanted"),
+     RANGE("-40 degC to 150 degC"), SAYS("the engine's oil before it is loaded"), OWN},
+    {QUANTITY("limits.load", POWER, limits.load), WHEN("else a fifth of `rated_power`"), RANGE("0 W to 5 MW"),
+     SAYS("brake power above which the engine counts as loaded"), PRACTICE},
 
     {GROUP("solver"), OPTIONAL, SAYS("how exactly the drive is worked out")},
     {QUANTITY("solver.tolerance", NUMBER, solver.tolerance), DEFAULT("1e-5"), RANGE("1e-10 to 1e-4"),

@@ -39,12 +39,16 @@ static void key_line(FILE *to, const struct sp_key *row)
     fputs("|\n", to);
 }
 
-static void group_section(FILE *to, const char *group, const char *meaning)
+/* `list`: the group's row. */
+static void group_section(FILE *to, const char *group, const char *meaning, const struct sp_key *list)
 {
     const struct sp_key *row;
     bool headed = false;
     fprintf(to, "## %s%s%s\n\n", *group ? "`" : "The case", *group ? group : "", *group ? "`" : "");
     sentence(to, meaning);
+    if (list && list->plural)
+        fprintf(to, "Instead of `%s` a list may stand: `%s`, of 1 to %zu such objects, %s.\n\n",
+                sp_key_name(list), list->plural, list->most, list->listed);
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
         if (!sp_key_child(row, group)) continue;
         if (!headed)
@@ -94,6 +98,34 @@ static const char *const opening[] = {
     "the car",
     "may go without `car.`). Setting `air.pressure` drops `air.altitude`, and the reverse.",
     "",
+    "Of ducts, and of cores, fans and exits in a duct, there may be several: then a list stands under the "
+    "plural,",
+    "`\"cores\": [ {...}, {...} ]` in place of `\"core\": {...}`, never both. The first is `cores[0]`: "
+    "`--set duct.cores[1].blocked=\"30 %\"`,",
+    "`--set ducts[0].inlet.area=\"400 cm2\"`; complaints tell elements apart in the same way. A path may say "
+    "`cores[0]`",
+    "where the case has one `core`, or `core` where it has a list of one; of a longer list the index must be "
+    "said.",
+    "`--set duct.cores=[...]` drops `core`, and a list in a car `from` another replaces all that stood there.",
+    "",
+    "`changes` tells what becomes different during the drive, such as a blocked inlet or a dead fan:",
+    "",
+    "    \"changes\": [ { \"at\": \"12 min\", \"set\": { \"duct.inlet.blocked\": \"40 %\", "
+    "\"duct.fan.health\": \"dead\" } },",
+    "                 { \"at\": \"100 s\", \"every\": \"100 s\", \"times\": 9, \"add\": { "
+    "\"duct.core.blocked\": \"1 %\" } } ]",
+    "",
+    "Times count from the start of the drive; changes add up, those of one time in the order of the file. `add` "
+    "adds to the",
+    "value that held until then; what it adds to a temperature is a difference, in K. Keys of the car and of "
+    "`limits` may",
+    "change, one by one, except `engine`, `body`, `gauge`, the coolant's kind and mix, and whatever would change "
+    "how many",
+    "ducts, cores and fans there are, what a core carries, its cells or its law of heat: these are laid out "
+    "before the drive",
+    "begins. Defaults by rule follow the changed values. Complaints name the value as "
+    "`changes[0].set.\"duct.inlet.blocked\"`.",
+    "",
     "The default column holds what is taken when the key is absent; in italics, when the key is needed. The "
     "basis",
     "says what that default rests on: *common practice* and *from memory* are working numbers of the trade, "
@@ -109,8 +141,8 @@ void sp_keys_document(FILE *to)
     const struct sp_key *row;
     for (size_t i = 0; i < sizeof opening / sizeof *opening; ++i)
         fprintf(to, "%s\n", opening[i]);
-    group_section(to, "", "what stands at the top");
+    group_section(to, "", "what stands at the top", NULL);
     for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i)
-        if (row->shape == SP_SHAPE_GROUP || row->or_object) group_section(to, row->path, row->meaning);
+        if (row->shape == SP_SHAPE_GROUP || row->or_object) group_section(to, row->path, row->meaning, row);
     columns(to);
 }

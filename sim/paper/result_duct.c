@@ -16,17 +16,24 @@ enum sp_status sp_duct_point_solve(const struct sp_duct *duct, const struct sp_a
     out->speed = speed;
     out->in = (struct sp_duct_inputs){.speed = speed + air->wind,
                                       .wake = 1.0,
+                                      .cross_wind = air->cross_wind,
                                       .temperature = air->ambient,
                                       .pressure = air->pressure,
                                       .R = moist.R,
                                       .cp = moist.cp,
-                                      .fan_speed = {fan_speed},
+                                      .fan_speed = {fan_speed, fan_speed, fan_speed},
                                       .heat_given = true,
                                       .heat = heat,
                                       .wall = {air->ambient}};
     enum sp_status status = sp_duct_solve(duct, &out->in, &out->state);
     if (status == SP_OK) sp_duct_stations(duct, &out->in, &out->state, out->station, &out->losses);
     return status;
+}
+
+/* Equal ducts together. */
+static double copies(const struct sp_duct_point *p)
+{
+    return p->copies > 1.0 ? p->copies : 1.0;
 }
 
 /* Face velocity over speed through the air; undefined in still air. */
@@ -113,10 +120,12 @@ static void print_sums(const struct sp_duct_point *p, FILE *to)
     double ratio = velocity_ratio(p);
     fprintf(to, "\n  face velocity   %.4f m/s", tidy(p->state.face_velocity, 5e-5));
     if (isfinite(ratio)) fprintf(to, ", %.5f of the speed through the air", ratio);
-    fprintf(to, "\n  mass flow       %.5f kg/s\n", tidy(p->state.mass_flow, 5e-6));
+    fprintf(to, "\n  mass flow       %.5f kg/s", tidy(copies(p) * p->state.mass_flow, 5e-6));
+    if (copies(p) > 1.0) fprintf(to, " through %.0f ducts", copies(p));
+    fputc('\n', to);
     fprintf(to, "  exit velocity   %.4f m/s\n", tidy(p->state.exit_velocity, 5e-5));
-    fprintf(to, "  internal drag   %.3f N", tidy(p->state.drag, 5e-4));
-    double wake = sp_duct_wake_drag(&p->state, p->station);
+    fprintf(to, "  internal drag   %.3f N", tidy(copies(p) * p->state.drag, 5e-4));
+    double wake = copies(p) * sp_duct_wake_drag(&p->state, p->station);
     if (isfinite(wake)) fprintf(to, " from momentum; %.3f N from losses (far wake)", tidy(wake, 5e-4));
     fputc('\n', to);
     if (p->in.fan_speed[0] > 0.0 || p->state.fan_pressure != 0.0)
@@ -127,6 +136,7 @@ static void print_sums(const struct sp_duct_point *p, FILE *to)
 
 void sp_duct_point_text(const struct sp_duct_point *p, FILE *to)
 {
+    if (p->duct) fprintf(to, "Duct %d, ", p->duct);
     fprintf(to, "%.6g m/s (%.6g km/h)", p->speed, p->speed * 3.6);
     if (p->in.speed != p->speed) fprintf(to, ", %.6g m/s through the air", p->in.speed);
     fputs(p->in.fan_speed[0] > 0.0 ? ", fan on" : ", fan off", to);
@@ -137,6 +147,7 @@ void sp_duct_point_text(const struct sp_duct_point *p, FILE *to)
     print_stations(p, to);
     print_losses(p, to);
     print_sums(p, to);
+    if (p->state.network) sp_duct_network_say(p, to);
 }
 
 /* ---- JSON ------------------------------------------------------------------------------------------ */
@@ -159,17 +170,18 @@ void sp_duct_point_write(struct sp_writer *w, const struct sp_duct_point *p)
     struct loss loss[LOSSES];
     list_losses(p, loss);
     sp_write_open(w, NULL, '{');
+    if (p->duct) sp_write_number(w, "duct", p->duct);
     sp_write_number(w, "speed_m_s", p->speed);
     sp_write_number(w, "air_speed_m_s", p->in.speed);
     sp_write_number(w, "heat_W", p->in.heat);
     sp_write_bool(w, "fan_on", p->in.fan_speed[0] > 0.0);
-    sp_write_number(w, "mass_flow_kg_s", p->state.mass_flow);
+    sp_write_number(w, "mass_flow_kg_s", copies(p) * p->state.mass_flow);
     sp_write_number(w, "face_velocity_m_s", p->state.face_velocity);
     sp_write_number(w, "velocity_ratio", velocity_ratio(p));
     sp_write_number(w, "temperature_ratio", p->state.temperature_ratio);
     sp_write_number(w, "exit_velocity_m_s", p->state.exit_velocity);
-    sp_write_number(w, "internal_drag_N", p->state.drag);
-    sp_write_number(w, "wake_drag_N", sp_duct_wake_drag(&p->state, p->station));
+    sp_write_number(w, "internal_drag_N", copies(p) * p->state.drag);
+    sp_write_number(w, "wake_drag_N", copies(p) * sp_duct_wake_drag(&p->state, p->station));
     sp_write_number(w, "fan_pressure_Pa", p->state.fan_pressure);
     sp_write_bool(w, "diffuser_stalled", p->state.diffuser_stalled);
     sp_write_open(w, "stations", '[');
@@ -180,6 +192,8 @@ void sp_duct_point_write(struct sp_writer *w, const struct sp_duct_point *p)
     for (int i = 0; i < LOSSES; ++i)
         sp_write_number(w, loss[i].key, loss[i].pascal);
     sp_write_close(w, '}');
+    if (copies(p) > 1.0) sp_write_number(w, "ducts", copies(p));
+    if (p->state.network) sp_duct_network_write(w, p);
     sp_write_close(w, '}');
 }
 

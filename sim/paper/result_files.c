@@ -19,6 +19,7 @@ struct sp_report_files {
     struct sp_sink sink;
     struct sp_complaints *complaints;
     struct sp_file_out file[FILES];
+    bool headed; /* the series has its headings: they come with the first row, which knows what is fitted */
     char *directory;
     bool *made; /* by length: whether so much of the directory's path was not there before */
 };
@@ -49,7 +50,7 @@ static void put_text(FILE *to, const char *text)
 
 void sp_report_events(const struct sp_report *r, FILE *to)
 {
-    fputs("time [s],what,distance [m],coolant [degC],step [1],mark\n", to);
+    fputs("time [s],what,distance [m],coolant [degC],step [1],mark,place,severity\n", to);
     for (size_t i = 0; i < r->result->events; ++i) {
         const struct sp_event *e = &r->result->event[i];
         put_number(to, e->time);
@@ -59,13 +60,16 @@ void sp_report_events(const struct sp_report *r, FILE *to)
         put_number(to, e->coolant - SP_ZERO_C);
         fprintf(to, ",%zu,", e->step);
         if (e->mark) put_text(to, e->mark);
-        fputc('\n', to);
+        fputc(',', to);
+        if (e->place) put_text(to, e->place);
+        fprintf(to, ",%s\n", sp_severity_text(e->severity));
     }
 }
 
-static void put_heading(FILE *to)
+static void put_heading(FILE *to, const bool *fitted)
 {
     for (int c = 0; c < SP_CHANNELS; ++c) {
+        if (!fitted[c]) continue;
         const struct sp_channel_info *info = sp_channel_at((enum sp_channel)c);
         fprintf(to, "%s%s [%s]", c ? "," : "", info->name, info->unit);
     }
@@ -86,9 +90,15 @@ static bool has_noise(enum sp_channel c)
     case SP_CH_HEAT_OUT:
     case SP_CH_HEAT_SKIN:
     case SP_CH_DRAG:
+    case SP_CH_LEAK_PAST:
+    case SP_CH_LEAK_OUTSIDE:
+    case SP_CH_BACKWARDS:
+    case SP_CH_SPILL:
+    case SP_CH_THRUST:
+    case SP_CH_FAN_CURRENT:
         return true;
     default:
-        return false;
+        return c >= SP_CH_CORE;
     }
 }
 
@@ -96,7 +106,10 @@ static bool put_row(void *context, const struct sp_sample *sample)
 {
     struct sp_report_files *f = context;
     FILE *to = f->file[SERIES].stream;
+    if (!f->headed) put_heading(to, sample->fitted);
+    f->headed = true;
     for (int c = 0; c < SP_CHANNELS; ++c) {
+        if (!sample->fitted[c]) continue;
         const struct sp_channel_info *info = sp_channel_at((enum sp_channel)c);
         if (c) fputc(',', to);
         double shown = (sample->value[c] - info->offset) / info->scale;
@@ -115,8 +128,8 @@ static bool put_again(void *context)
     struct sp_report_files *f = context;
     FILE *to = f->file[SERIES].stream;
     if (fflush(to) != 0 || ftruncate(fileno(to), 0) != 0 || fseek(to, 0, SEEK_SET) != 0) return false;
-    put_heading(to);
-    return !ferror(to);
+    f->headed = false;
+    return true;
 }
 
 /* ---- directory ------------------------------------------------------------------------------------- */
@@ -219,10 +232,8 @@ struct sp_report_files *sp_report_files_open(const char *directory, struct sp_co
     f->complaints = complaints;
     f->sink = (struct sp_sink){f, put_row, put_again};
     if (make_directory(f) && begin_file(f, SERIES, "series.csv") && begin_file(f, EVENTS, "events.csv") &&
-        begin_file(f, RESULT, "result.json")) {
-        put_heading(f->file[SERIES].stream);
+        begin_file(f, RESULT, "result.json"))
         return f;
-    }
     sp_report_files_abandon(f);
     return NULL;
 }

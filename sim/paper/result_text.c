@@ -17,7 +17,7 @@ struct judged {
     double limit, came_to, left;
 };
 
-enum { LIMITS = 4, BOIL_MARGIN = 3 };
+enum { LIMITS = 7, BOIL_MARGIN = 3, ALWAYS = 4 }; /* ALWAYS: these are missing where they are not given */
 
 static void list_limits(const struct sp_report *r, struct judged out[LIMITS])
 {
@@ -28,7 +28,10 @@ static void list_limits(const struct sp_report *r, struct judged out[LIMITS])
         {"limits.gauge", "the gauge", l->gauge.stop, s->gauge.value, l->gauge.stop - s->gauge.value},
         {"limits.metal", "the metal", l->metal.stop, s->metal.value, l->metal.stop - s->metal.value},
         {"limits.boil_margin", "boil margin", l->boil_margin, s->boil_margin.value,
-         s->boil_margin.value - l->boil_margin}};
+         s->boil_margin.value - l->boil_margin},
+        {"limits.oil", "oil", l->oil.stop, s->oil.value, l->oil.stop - s->oil.value},
+        {"limits.gearbox", "gearbox oil", l->gearbox.stop, s->gearbox.value, l->gearbox.stop - s->gearbox.value},
+        {"limits.charge", "charge air", l->charge.stop, s->charge.value, l->charge.stop - s->charge.value}};
     memcpy(out, all, sizeof all);
 }
 
@@ -86,13 +89,15 @@ static void say_peak(const struct telling *t, const char *label, const struct sp
 
 static void say_limits(const struct telling *t)
 {
-    static const char *const name[LIMITS] = {"coolant", "gauge", "metal", "boil margin"};
+    static const char *const name[LIMITS] = {"coolant", "gauge", "metal", "boil margin", "oil", "gearbox oil",
+                                                "charge air"};
     struct judged all[LIMITS];
     const char *label = "Limits";
     char missing[80] = "";
     list_limits(t->report, all);
     for (int i = 0; i < LIMITS; ++i) {
         const struct judged *j = &all[i];
+        if (!isfinite(j->limit) && i >= ALWAYS) continue;
         if (!isfinite(j->limit)) {
             size_t used = strlen(missing);
             snprintf(missing + used, sizeof missing - used, "%s%s", used ? ", " : "", name[i]);
@@ -114,6 +119,27 @@ static void say_limits(const struct telling *t)
         label = "";
     }
     if (*missing) sp_say(t->to, SP_LABEL_WIDTH, label, "none given for %s", missing);
+}
+
+/* First and worst of what failed, in a line each; one where they are the same. */
+static void say_failure(const struct telling *t, const char *label, const struct sp_failure *f)
+{
+    const struct sp_peak at = {0.0, f->time, f->distance, f->step, f->mark};
+    char beyond[80] = "";
+    if (f->worst > 0.0 && f->kind != SP_EV_BOILING)
+        snprintf(beyond, sizeof beyond, "; %.*g %s beyond at the worst", t->exact ? 6 : 2, f->worst / f->scale, f->unit);
+    if (f->kind == SP_EV_LOST)
+        snprintf(beyond, sizeof beyond, "; %.*g %s in all", t->exact ? 6 : 2, f->worst / f->scale, f->unit);
+    sp_say(t->to, SP_LABEL_WIDTH, label, "%s (%s) %s%s", sp_event_text(f->kind), f->place ? f->place : "car",
+           sp_words_place(t->report->design, &at, t->exact).text, beyond);
+}
+
+static void say_failures(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    if (!out->first) return;
+    say_failure(t, "Fails first", out->first);
+    if (out->worst && out->worst != out->first) say_failure(t, "Fails worst", out->worst);
 }
 
 static void say_boiling(const struct telling *t)
@@ -139,10 +165,15 @@ static void say_temperatures(const struct telling *t)
                sp_words_time(out->time_over_limit, t->exact).text);
     say_peak(t, "Gauge peak", &out->gauge);
     say_peak(t, "Metal peak", &out->metal);
+    if (isfinite(out->oil.value)) say_peak(t, "Oil peak", &out->oil);
+    if (isfinite(out->gearbox.value)) say_peak(t, "Gearbox oil", &out->gearbox);
+    if (isfinite(out->charge.value)) say_peak(t, "Charge air", &out->charge);
     say_limits(t);
     say_boiling(t);
     if (out->liquid_lost >= 1e-6) /* less than a millilitre is the seat's own weeping */
-        sp_say(t->to, SP_LABEL_WIDTH, "Coolant lost", "%.2g l through the cap", out->liquid_lost * 1e3);
+        sp_say(t->to, SP_LABEL_WIDTH, "Coolant lost", "%.2g l through the cap, for good; cold, the tank holds %.2g l",
+               out->liquid_lost * 1e3, out->tank_left * 1e3);
+    say_failures(t);
 }
 
 /* ---- sums ------------------------------------------------------------------------------------------ */
@@ -153,7 +184,7 @@ static void say_fan(const struct telling *t)
     size_t times = 0;
     for (size_t i = 0; i < out->events; ++i)
         times += out->event[i].kind == SP_EV_FAN_ON;
-    if (!t->report->design->duct[0].fan[0].fitted)
+    if (!out->fan_kinds)
         sp_say(t->to, SP_LABEL_WIDTH, "Fan", "none");
     else if (!times)
         sp_say(t->to, SP_LABEL_WIDTH, "Fan", "never ran");
@@ -161,6 +192,14 @@ static void say_fan(const struct telling *t)
         sp_say(t->to, SP_LABEL_WIDTH, "Fan", "ran %zu time%s, %s in all, %s of electricity", times,
                times == 1 ? "" : "s", sp_words_time(out->fan.on, t->exact).text,
                sp_words_energy(out->fan.energy, t->exact).text);
+}
+
+static void say_battery(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    if (!isfinite(out->battery.used)) return;
+    sp_say(t->to, SP_LABEL_WIDTH, "Battery", "%s drawn with the engine off; %.*f %% left",
+           sp_words_energy(out->battery.used, t->exact).text, t->exact ? 3 : 0, 100.0 * out->battery.left);
 }
 
 static void say_heat(const struct telling *t)
@@ -185,6 +224,9 @@ static void say_drag(const struct telling *t)
     sp_say(t->to, SP_LABEL_WIDTH, "Cooling drag", "mean coefficient %.*f on %.3g m2, %s over the drive",
            t->exact ? 6 : 4, c, t->report->design->body.frontal_area,
            sp_words_energy(out->drag.energy, t->exact).text);
+    if (out->drag.spill != 0.0 || out->drag.thrust != 0.0)
+        sp_say(t->to, SP_LABEL_WIDTH, "", "%s of it by spilled air, after %s given back by the heat's thrust",
+               sp_words_energy(out->drag.spill, t->exact).text, sp_words_energy(out->drag.thrust, t->exact).text);
 }
 
 static void say_work(const struct telling *t)
@@ -276,6 +318,15 @@ static void say_drive(const struct telling *t)
     say_thermostat(t);
 }
 
+static void say_defaults(const struct telling *t)
+{
+    struct sp_defaults n = t->report->defaults;
+    if (!n.practice && !n.memory) return;
+    sp_say(t->to, SP_LABEL_WIDTH, "Rests on",
+           "%zu value%s of common practice and %zu from memory that the case leaves at their defaults: see "
+           "swirlpot show", n.practice, n.practice == 1 ? "" : "s", n.memory);
+}
+
 void sp_report_text(const struct sp_report *r, bool exact, FILE *to)
 {
     const struct telling t = {r, exact, to};
@@ -285,10 +336,12 @@ void sp_report_text(const struct sp_report *r, bool exact, FILE *to)
     say_temperatures(&t);
     say_drive(&t);
     say_fan(&t);
+    say_battery(&t);
     say_drag(&t);
     say_heat(&t);
     say_work(&t);
     say_measured(&t);
+    say_defaults(&t);
     sp_report_happenings(r, exact, to);
     fputc('\n', to);
     sp_say(to, 0, "",

@@ -25,6 +25,10 @@ void sp_write_bool(struct sp_writer *w, const char *name, bool x);
 struct sp_duct_point;
 void sp_duct_point_write(struct sp_writer *w, const struct sp_duct_point *p);
 
+/* What a duct has beyond a plain one: leaks, bay, flows core by core, fan by fan, exit by exit. */
+void sp_duct_network_write(struct sp_writer *w, const struct sp_duct_point *p);
+void sp_duct_network_say(const struct sp_duct_point *p, FILE *to);
+
 /* ---- numbers --------------------------------------------------------------------------------------- */
 
 enum { SP_NUMBER_ROOM = 40 };

@@ -18,6 +18,7 @@ struct shower {
     struct sp_reader *reader;
     FILE *to;
     bool json, first;
+    struct sp_defaults *count; /* count what rests on what instead of writing */
 };
 
 /* ---- pieces ---------------------------------------------------------------------------------------- */
@@ -154,9 +155,19 @@ static void put_line(struct shower *s, const struct entry *e)
     fputs(")\n", s->to);
 }
 
+static void count_entry(struct sp_defaults *count, const struct entry *e)
+{
+    const char *basis = e->row->basis;
+    if (e->node || !basis) return;
+    count->practice += !strcmp(basis, "common practice");
+    count->memory += !strcmp(basis, "from memory");
+}
+
 static void put_entry(struct shower *s, const struct entry *e)
 {
-    if (s->json)
+    if (s->count)
+        count_entry(s->count, e);
+    else if (s->json)
         put_json(s, e);
     else
         put_line(s, e);
@@ -209,7 +220,7 @@ static void show_steps(struct shower *s)
 
 static void show_absent(struct shower *s, const char *path, bool absent)
 {
-    if (!absent) return;
+    if (!absent || s->count) return;
     if (s->json)
         fprintf(s->to,
                 "%s\n  {\"path\": \"%s\", \"text\": \"none\", \"si\": null, \"unit\": \"\", \"basis\": \"\", "
@@ -277,16 +288,30 @@ static void show_all(struct shower *s)
         else if (!sp_key_of_step(row) && !sp_key_of_change(row) && row->shape != SP_SHAPE_CHANGES)
             show_row(s, row);
     }
-    for (size_t i = 0; i < d->changes; ++i)
+    for (size_t i = 0; i < d->changes && !s->count; ++i)
         show_change(s, &s->reader->turn[i], &d->change[i]);
 }
 
 void sp_case_show_all(struct sp_reader *r, FILE *to, bool json)
 {
-    struct shower s = {r, to, json, true};
+    struct shower s = {r, to, json, true, NULL};
     if (json) fputc('[', to);
     show_all(&s);
     if (json) fputs("\n]\n", to);
+}
+
+bool sp_case_defaults(struct sp_units *u, const char *file, char *const *set, size_t sets, struct sp_defaults *out)
+{
+    struct sp_complaints own = {0}, cautions = {0};
+    struct sp_reader r = {.units = u, .name = file, .purpose = SP_FOR_DUCT, .complaints = &own, .cautions = &cautions};
+    bool fine = sp_case_open(&r, NULL, 0, set, sets);
+    *out = (struct sp_defaults){0, 0};
+    struct shower s = {&r, NULL, false, true, out};
+    if (fine) show_all(&s);
+    sp_complaints_free(&own);
+    sp_complaints_free(&cautions);
+    sp_case_close(&r);
+    return fine;
 }
 
 static enum sp_status show(struct sp_units *u, const char *file, char *const *set, size_t sets, FILE *to,

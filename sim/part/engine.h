@@ -9,7 +9,10 @@
  * (P + p_me0(N) V_d N/2) / e, never below 0. */
 double sp_engine_fuel_power(const struct sp_engine *e, double power, double speed);
 
-/* Power [W] it takes to motor the engine at N [rev/s]: overrun_pressure(N) V_d N/2. */
+/* The same at rated power and speed. */
+double sp_engine_rated_fuel(const struct sp_engine *e);
+
+/* Power [W] it takes to motor the engine at N [rev/s], by its overrun_law: p(N) V_d N/2, never below 0. */
 double sp_engine_motoring(const struct sp_engine *e, double speed);
 
 /* What one row of a trace tells of the engine; NAN where not known. */
@@ -19,6 +22,9 @@ struct sp_engine_heat {
     double gas;       /* W from the gas side, metal at gas_reference */
     double friction;  /* W from motoring (overrun) */
     double per_power; /* W of heat per W of further brake power at this point */
+    double fuel;      /* W of fuel burnt: measured, or of the Willans line and faded out with the cut */
+    double oil;       /* W into the engine's oil */
+    double cut;       /* W that energy_cap took off `gas` */
 };
 
 /* A heat law made ready (the table's interpolation); read-only in use. */
@@ -26,6 +32,9 @@ struct sp_engine_law;
 struct sp_engine_law *sp_engine_law_build(const struct sp_engine *e, const struct sp_place *at,
                                           struct sp_complaints *complaints);
 void sp_engine_law_free(struct sp_engine_law *law);
+
+/* Lets the law know of the engine's oil: its heat is told too, and counts against energy_cap. */
+void sp_engine_law_oil(struct sp_engine_law *law, const struct sp_oil *oil);
 
 /* Heat at one row. Engine off (speed 0 or NAN with power NAN) gives zeros; power <= 0 well above idle
  * speed is overrun with the fuel cut, faded in over a band of speed and power so that the heat has no

@@ -22,6 +22,11 @@ double sp_oil_enthalpy(double T)
     return (cp_zero + 0.5 * cp_slope * t) * t;
 }
 
+double sp_oil_heat(const struct sp_oil *o, double power, double motoring)
+{
+    return o->heat_share * power + o->friction_share * motoring;
+}
+
 double sp_oil_flow(const struct sp_oil *o, double engine_speed)
 {
     if (!(engine_speed > 0.0)) return 0.0;

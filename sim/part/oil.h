@@ -11,6 +11,10 @@ double sp_oil_density(double T);
 double sp_oil_cp(double T);
 double sp_oil_enthalpy(double T);
 
+/* Heat [W] that work and friction put into it: heat_share of the power [W] and friction_share of what motoring
+ * the engine takes [W] at its speed. Power counts by its size for a gearbox, fired only for an engine. */
+double sp_oil_heat(const struct sp_oil *o, double power, double motoring);
+
 /* Volume flow [m3/s] that the oil pump sends round at an engine speed [rev/s]. */
 double sp_oil_flow(const struct sp_oil *o, double engine_speed);
 

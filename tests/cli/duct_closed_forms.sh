@@ -112,6 +112,25 @@ close "F1 fan" "$(number fan_pressure_Pa)" 94.7848 $tolerance
 want 0 duct fan.json --json --speed "0 m/s"
 [ "$(number mass_flow_kg_s)" = 0 ] || fail "flow without speed, fan or wind: $(number mass_flow_kg_s)"
 
+# Leaks (B9, B10): front plenum to bay by gap and length, and to outside; two equal ducts carry twice the air.
+leaking="--set duct.diffuser.loss=0.05 --set duct.exit.pressure_coefficient=-0.2"
+want 0 duct case.json --json --speed "40 m/s" --set 'duct.inlet.area=0.0833333333333 m2' $leaking --set duct.count=2 \
+    --set 'duct.leak={"past_core": {"gap": "6.25 mm", "length": "2 m", "coefficient": 2.5}}'
+is_json out
+close "B9 phi" "$(number velocity_ratio)" 0.274272 $tolerance
+close "B9 leak" "$(number leak_past_core_kg_s)" "$(awk 'BEGIN { printf "%.9g", 0.089443 * 0.274272 * 40 * 0.3 }')" $tolerance
+close "B9 two ducts" "$(number mass_flow_kg_s)" "$(awk 'BEGIN { printf "%.9g", 2 * 0.274272 * 40 * 0.3 }')" $tolerance
+want 0 duct case.json --json --speed "40 m/s" --set 'duct.inlet.area=0.0833333333333 m2' $leaking \
+    --set 'duct.leak={"outside": {"area": "125 cm2", "coefficient": 2.5}}'
+close "B10 phi" "$(number velocity_ratio)" 0.284719 $tolerance
+want 0 duct case.json --speed "40 m/s" --set 'duct.inlet.area=0.0833333333333 m2' $leaking \
+    --set 'duct.leak={"outside": {"area": "125 cm2", "coefficient": 2.5}}'
+says out "leak to outside"
+awk 'length($0) > 80 { exit 1 }' out || fail "text wider than 80 columns: $(cat out)"
+want 2 duct case.json --speed "40 m/s" --set 'duct.leak={"outside": {"area": "125 cm2", "gap": "1 mm"}}'
+says err "either area, or gap and length"
+says err "duct.leak.outside.length"
+
 # Air hotter than the model is made for is a caution that names the speed: 20 kW into 0.03 kg/s.
 want 0 duct fan.json --json --speed "1 m/s" --heat "20 kW"
 says err "caution"

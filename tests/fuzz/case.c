@@ -28,9 +28,10 @@ static void is_in_range(const struct sp_key *row, const char *range_text, enum s
     abort();
 }
 
-static void check_number(const struct sp_reader *r, const struct sp_key *row, const char *path, size_t step)
+static void check_number(const struct sp_reader *r, const struct sp_key *row, const char *path,
+                         const struct sp_key_spot *at)
 {
-    double x = sp_key_double(row, r->design, step);
+    double x = sp_key_double(row, r->design, at);
     const struct sp_json *node = sp_case_node(r->tree, path);
     bool must = node || (row->fallback && !row->rule);
     if (row->or_none && node && node->type == SP_JSON_STRING && !strcmp(node->text, "none")) {
@@ -64,28 +65,63 @@ static void check_word(const struct sp_key *row, const void *at)
     if (!known && word) abort();
 }
 
-static void check_row(const struct sp_reader *r, const struct sp_key *row, size_t step)
+static void check_kept(const struct sp_key *row, const void *at)
 {
-    char path[SP_PATH_MAX];
-    const void *at = sp_key_place(row, r->design, step);
-    if (sp_key_of_step(row))
-        snprintf(path, sizeof path, "drive[%zu].%s", step, row->path + strlen("drive[]."));
-    else
-        snprintf(path, sizeof path, "%s", row->path);
-    if (row->shape == SP_SHAPE_QUANTITY)
-        check_number(r, row, path, step);
-    else if (row->shape == SP_SHAPE_WORD)
+    if (row->shape == SP_SHAPE_WORD)
         check_word(row, at);
     else if (row->shape == SP_SHAPE_TABLE || row->shape == SP_SHAPE_LIST || row->shape == SP_SHAPE_MATRIX)
         check_table(row, at);
 }
 
+static void check_row(const struct sp_reader *r, const struct sp_key *row, const struct sp_key_spot *at)
+{
+    char path[SP_PATH_MAX];
+    if (sp_key_of_step(row))
+        snprintf(path, sizeof path, "drive[%zu].%s", at->outer, row->path + strlen("drive[]."));
+    else
+        sp_case_path(r->tree, row->path, at, path, sizeof path);
+    if (row->shape == SP_SHAPE_QUANTITY)
+        check_number(r, row, path, at);
+    else
+        check_kept(row, sp_key_place(row, r->design, at));
+}
+
+static bool next_element(const struct sp_reader *r, const struct sp_key *row, struct sp_key_spot *at)
+{
+    return sp_key_of_step(row) ? ++at->outer < r->design->steps : sp_case_next(r->tree, row->path, at);
+}
+
+/* A changed design: its tree is gone, so a number may be NAN. It has the elements of the first. */
+static void check_changed(const struct sp_reader *r, const struct sp_change *change)
+{
+    const struct sp_key *row;
+    if (isnan(change->at) || !change->text || !change->to || change->to->change) abort();
+    if (change->to->ducts != r->design->ducts) abort();
+    for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
+        struct sp_key_spot at = {0};
+        if (sp_key_of_step(row) || sp_key_of_change(row)) continue;
+        do {
+            double x = sp_key_double(row, change->to, &at);
+            if (!isnan(x)) is_in_range(row, row->range, row->kind, x);
+            check_kept(row, sp_key_place(row, change->to, &at));
+        } while (sp_case_next(r->tree, row->path, &at));
+    }
+}
+
 static void check_design(const struct sp_reader *r)
 {
     const struct sp_key *row;
-    for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i)
-        for (size_t k = 0; k < (sp_key_of_step(row) ? r->design->steps : 1); ++k)
-            check_row(r, row, k);
+    for (size_t i = 0; (row = sp_key_row(i)) != NULL; ++i) {
+        struct sp_key_spot at = {0};
+        if (sp_key_of_change(row) || (sp_key_of_step(row) && !r->design->steps)) continue;
+        do
+            check_row(r, row, &at);
+        while (next_element(r, row, &at));
+    }
+    for (size_t i = 0; i < r->design->changes; ++i) {
+        check_changed(r, &r->design->change[i]);
+        if (i && r->design->change[i].at < r->design->change[i - 1].at) abort();
+    }
     if (!isfinite(r->design->coolant.fluid.density[0]) || r->design->coolant.fluid.density[0] < 900.0)
         abort();
     if (r->purpose == SP_FOR_DRIVE && !r->design->steps) abort();
@@ -232,6 +268,23 @@ size_t LLVMFuzzerCustomMutator(uint8_t *data, size_t size, size_t room, unsigned
                                        "2",
                                        "\"static\"",
                                        "\"water\"",
+                                       "\"cores\"",
+                                       "\"ducts\"",
+                                       "\"fans\"",
+                                       "\"exits\"",
+                                       "\"core\"",
+                                       "\"changes\"",
+                                       "\"set\"",
+                                       "\"add\"",
+                                       "\"every\"",
+                                       "\"times\"",
+                                       "\"duct.core.blocked\"",
+                                       "\"ducts[1].cores[0].blocked\"",
+                                       "\"thermostat.opens\"",
+                                       "\"limits.coolant\"",
+                                       "\"5 K\"",
+                                       "\"100 s\"",
+                                       "\"dead\"",
                                        "\"table\""};
     size_t from, to, other, end;
     unsigned a = seed >> 4 & 0xff, b = seed >> 12 & 0xff;

@@ -6,16 +6,16 @@
 set -u
 cd "${1:?usage: rooms.sh ROOT}" || exit 2
 
-# Four public headers are no room's own. trace.h is the form of a table, without a word of cars, and counts to the
+# Five public headers are no room's own. trace.h is the form of a table, without a word of cars, and counts to the
 # ground floor although the reader lives in drive/. design.h puts the parts' designs together: above part, which does
-# not know it, below circuit. result.h is what paper/ writes. hold.h is drive's second one.
+# not know it, below circuit. duct.h is the first half of part.h. result.h is what paper/ writes. hold.h is drive's second one.
 grep -rHn '^ *# *include *"' sim include --include='*.c' --include='*.h' | LC_ALL=C sort | awk -F: '
     BEGIN {
         split("base fluid part circuit drive paper", rooms, " ")
         for (i in rooms) floor[rooms[i]] = i + 0
         floor["trace"] = floor["base"]
-        floor["design"] = floor["part"]
         floor["design"] = floor["part"] + 0.5
+        floor["duct"] = floor["part"] - 0.5
         floor["result"] = floor["paper"]
         floor["hold"] = floor["drive"]
     }

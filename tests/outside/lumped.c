@@ -307,7 +307,8 @@ static void quadratic_circuit(void **state)
     for (double n = 0.05; n < 1.3; n *= 1.3) {
         struct sp_loop_guess guess = {.flow = {0.0, 0.0}};
         struct sp_loop_state s;
-        assert_int_equal(sp_loop_solve(&k.loop, &(struct sp_loop_inputs){.speed = n, .lift = 1.0, .hot = 363.0, .cool = {350.0}}, &guess, &s), SP_OK);
+        struct sp_loop_inputs in = {.speed = n, .lift = 1.0, .hot = 363.0, .cool = {350.0}};
+        assert_int_equal(sp_loop_solve(&k.loop, &in, &guess, &s), SP_OK);
         check_close(s.radiator, n * full, 1e-5, 0);
         check_close(s.pump, s.radiator, 1e-12, 0);
         check_close(s.rise - s.jacket_drop, bends * s.radiator * s.radiator, 1e-5, 0);
@@ -342,7 +343,8 @@ static void parallel_branches(void **state)
     for (int i = 0; i < 3; ++i) {
         struct sp_loop_guess guess = {.flow = {0.0, 0.0}};
         struct sp_loop_state s;
-        assert_int_equal(sp_loop_solve(&k.loop, &(struct sp_loop_inputs){.speed = 0.8, .lift = lift[i], .hot = 363.0, .cool = {350.0}}, &guess, &s), SP_OK);
+        struct sp_loop_inputs in = {.speed = 0.8, .lift = lift[i], .hot = 363.0, .cool = {350.0}};
+        assert_int_equal(sp_loop_solve(&k.loop, &in, &guess, &s), SP_OK);
         double parallel = s.rise - s.jacket_drop, flow = 0.1 / 60.0;
         check_close(parallel, at_100[i] * s.radiator * s.radiator / (flow * flow), 0.01, 0);
         check_close(parallel, 45e3 * 1.023 * s.bypass * s.bypass / 1e-6, 1e-6, 0);

@@ -173,7 +173,8 @@ static void bypass_shuts(void **state)
     for (int i = 0; i < 4; ++i) {
         struct sp_loop_guess guess = {.flow = {0.0, 0.0}};
         struct sp_loop_state s;
-        assert_int_equal(sp_loop_solve(&c.loop, &(struct sp_loop_inputs){.speed = 0.8, .lift = lift[i], .hot = 363.15, .cool = {350.0}}, &guess, &s), SP_OK);
+        struct sp_loop_inputs in = {.speed = 0.8, .lift = lift[i], .hot = 363.15, .cool = {350.0}};
+        assert_int_equal(sp_loop_solve(&c.loop, &in, &guess, &s), SP_OK);
         double drop = s.rise - s.jacket_drop; /* over both branches */
         check_close(s.bypass, open[i] * 1e-3 * sqrt(drop / 45e3 * 1000.0 / 1030.95), 1e-6, 1e-15);
         check_close(s.radiator + s.bypass, s.pump, 1e-9, 0);

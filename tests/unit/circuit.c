@@ -111,7 +111,7 @@ static void column_by_differences(const struct rig *r, int j, double *out)
     double moved[SP_Y_MOST], up[SP_Y_MOST], down[SP_Y_MOST];
     int n = r->c.layout.count;
     struct sp_coupling k;
-    double step = !sp_layout_kelvin(&r->c.layout, j) && j != SP_Y_AIR && j != SP_Y_LOST ? 1e-5 : j == SP_Y_AIR ? 1e-7 : j == SP_Y_LOST ? 1e-9 : 2e-3;
+    double step = sp_layout_kelvin(&r->c.layout, j) ? 2e-3 : j == SP_Y_AIR ? 1e-7 : j == SP_Y_LOST ? 1e-9 : 1e-5;
     memcpy(moved, r->y, sizeof moved);
     moved[j] = r->y[j] + step;
     rates_at(r, moved, &k, up);

@@ -234,6 +234,129 @@ static void unusable(void **state)
     refused(&e);
 }
 
+/* Bore, mixture and the four formulas, as a case would have them. */
+static struct sp_engine whole(void)
+{
+    struct sp_engine e = sample();
+    e.heat_law = SP_HEAT_CORRELATION;
+    e.heat_fraction = NAN;
+    e.cylinders = 4.0;
+    e.bore = e.stroke = 0.086;
+    e.compression = 10.5;
+    e.correlation_constant = 10.4;
+    e.stoichiometric = 14.7;
+    e.chen_flynn[0] = 0.137e5;
+    e.chen_flynn[1] = 0.005;
+    e.chen_flynn[2] = 0.162e5;
+    e.overrun_intake = 0.3;
+    e.overrun_oil = 360.0;
+    return e;
+}
+
+/* Laws and formulas beyond the plain ones, the cap in the way of all: no jump, nothing below zero or no number, and
+ * the slope is the derivative. */
+static void beyond_the_plain(void **state)
+{
+    (void)state;
+    const struct sp_oil oil = {.fitted = true, .heat_share = 0.0, .friction_share = 0.1};
+    for (int variant = 0; variant < 8; ++variant) {
+        struct sp_engine e = whole();
+        e.overrun_law = (enum sp_friction_law)(variant % 4);
+        e.energy_cap = variant & 4 ? 0.62 : 0.75; /* the lower one cuts at high load */
+        e.diesel = variant & 1;
+        e.air_fuel_ratio = e.diesel ? 30.0 : 13.5;
+        e.idle_heat = variant & 2 ? 4e3 : NAN;
+        struct sp_engine_law *law = build(&e);
+        sp_engine_law_oil(law, &oil);
+        for (double speed = 0.5; speed < 120.0; speed += 1.7)
+            for (double power = -20e3; power < 110e3; power += 700.0) {
+                struct sp_engine_heat a = heat(law, power - 1e-2, speed), b = heat(law, power + 1e-2, speed);
+                struct sp_engine_heat n = heat(law, power, speed + 1e-6);
+                check_close(a.gas, b.gas, 0.0, 0.3);
+                check_close(a.gas, n.gas, 0.0, 0.3);
+                check_close(a.friction, b.friction, 0.0, 0.3);
+                check_close(a.fuel, b.fuel, 0.0, 0.3);
+                assert_true(a.gas >= 0.0 && a.friction >= 0.0 && a.fuel >= 0.0 && a.oil >= 0.0 && a.cut >= 0.0);
+            }
+        for (double power = 500.0; power < 110e3; power += 1.3e3) {
+            double up = heat(law, power + 1.0, 60.0).gas, down = heat(law, power - 1.0, 60.0).gas;
+            check_close(heat(law, power, 60.0).per_power, (up - down) / 2.0, 1e-4, 1e-5);
+        }
+        sp_engine_law_free(law);
+    }
+}
+
+/* The cut shows what the law had asked for. */
+static void cap_tells_what_it_took(void **state)
+{
+    (void)state;
+    struct sp_engine e = sample();
+    e.heat_fraction = 2.0;
+    struct sp_engine_law *plain = build(&e);
+    e.energy_cap = 0.75;
+    struct sp_engine_law *law = build(&e);
+    for (double power = 0.0; power < 110e3; power += 900.0) {
+        struct sp_engine_heat h = heat(law, power, 60.0);
+        check_close(h.gas + h.cut, heat(plain, power, 60.0).gas, 1e-12, 0.0);
+    }
+    sp_engine_law_free(law);
+    sp_engine_law_free(plain);
+    e.idle_heat = 9e3; /* given, so not cut though the Willans line knows of less fuel */
+    law = build(&e);
+    check_close(heat(law, 0.0, 14.0).gas, 9e3, 1e-12, 0.0);
+    sp_engine_law_free(law);
+    e.heat_law = SP_HEAT_FUEL; /* fuel that does not pay for the work: no heat rather than less than none */
+    law = build(&e);
+    struct sp_engine_row row = {80e3, 60.0, 1e-3, NAN};
+    check_close(sp_engine_heat(law, &row).gas, 0.0, 0.0, 0.0);
+    check_close(sp_engine_heat(law, &row).cut, 0.3 * 42.6e3, 1e-12, 0.0);
+    sp_engine_law_free(law);
+}
+
+/* One flow measured stands for both; a mixture measured by both moves the gas temperature as the fit does. */
+static void correlation_flows(void **state)
+{
+    (void)state;
+    struct sp_engine e = whole();
+    struct sp_engine_law *law = build(&e);
+    double fuel = sp_engine_fuel_power(&e, 50e3, 50.0) / e.heating_value, air = 14.7 * fuel;
+    struct sp_engine_row rows[] = {{50e3, 50.0, fuel, NAN}, {50e3, 50.0, NAN, air}, {50e3, 50.0, fuel, air}};
+    for (int i = 0; i < 3; ++i) {
+        check_close(sp_engine_heat(law, &rows[i]).gas, heat(law, 50e3, 50.0).gas, 1e-12, 0.0);
+        check_close(sp_engine_heat(law, &rows[i]).per_power, 0.0, 0.0, 0.0);
+    }
+    struct sp_engine_row lean = {50e3, 50.0, fuel, 1.2 * air}, none = {50e3, 50.0, 0.0, 0.0};
+    double share = sp_engine_heat(law, &lean).gas / heat(law, 50e3, 50.0).gas;
+    double flow = pow((1.2 * 14.7 + 1.0) / 15.7, 0.75); /* more air; but a cooler gas */
+    assert_true(share < flow && share > 0.8 * flow);
+    check_close(sp_engine_heat(law, &none).gas, 0.0, 0.0, 0.0);
+    struct sp_engine_row cut = {-20e3, 50.0, 0.0, air}; /* air goes on while the fuel is cut */
+    check_close(sp_engine_heat(law, &cut).gas, 0.0, 0.0, 1e-9);
+    sp_engine_law_free(law);
+}
+
+static void unusable_beyond(void **state)
+{
+    (void)state;
+    struct sp_engine e = whole();
+    e.bore = NAN;
+    refused(&e);
+    e = whole();
+    e.stoichiometric = 0.0;
+    refused(&e);
+    e = whole();
+    e.gas_reference = NAN;
+    refused(&e);
+    e = whole();
+    e.overrun_law = SP_FRICTION_DIESEL;
+    e.stroke = NAN;
+    refused(&e);
+    e = whole();
+    e.heat_law = SP_HEAT_GIVEN;
+    e.heat_given = NAN;
+    refused(&e);
+}
+
 static void gas_factor(void **state)
 {
     (void)state;
@@ -268,6 +391,10 @@ int main(void)
         cmocka_unit_test(bad_tables),
         cmocka_unit_test(flows),
         cmocka_unit_test(unusable),
+        cmocka_unit_test(beyond_the_plain),
+        cmocka_unit_test(cap_tells_what_it_took),
+        cmocka_unit_test(correlation_flows),
+        cmocka_unit_test(unusable_beyond),
         cmocka_unit_test(gas_factor),
         cmocka_unit_test(assumed_speed),
     };

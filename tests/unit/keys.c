@@ -49,7 +49,8 @@ static void rows_say_what_they_are(void **state)
     (void)state;
     EACH_ROW(row)
     {
-        bool group = row->shape == SP_SHAPE_GROUP || row->shape == SP_SHAPE_STEPS;
+        bool group = row->shape == SP_SHAPE_GROUP || row->shape == SP_SHAPE_STEPS ||
+                     row->shape == SP_SHAPE_CHANGES;
         if (!row->meaning || !*row->meaning) fail_msg("%s says nothing", row->path);
         if (!group && !row->basis) fail_msg("%s rests on nothing", row->path);
         if (group && row->fallback) fail_msg("%s is a group with a default", row->path);
@@ -136,22 +137,109 @@ static bool may_share(const struct sp_key *a, const struct sp_key *b)
     return steps || (strstr(a->path, "inlet.lip") && strstr(b->path, "inlet.lip"));
 }
 
+/* What a row's offset counts from. */
+enum base { OF_DESIGN, OF_STEP, OF_CHANGE };
+
+static enum base base_of(const struct sp_key *row)
+{
+    return sp_key_of_step(row) ? OF_STEP : sp_key_of_change(row) ? OF_CHANGE : OF_DESIGN;
+}
+
 /* No two rows write to the same bytes, save those that mean to. */
 static void places_do_not_overlap(void **state)
 {
     (void)state;
+    static const size_t sizes[] = {sizeof(struct sp_design), sizeof(struct sp_step), sizeof(struct sp_planned)};
     for (size_t i = 0; sp_key_row(i); ++i) {
         const struct sp_key *a = sp_key_row(i);
-        size_t size = sp_key_of_step(a) ? sizeof(struct sp_step) : sizeof(struct sp_design);
         if (a->keep == SP_KEEP_NOTHING) continue;
-        assert_true(a->at + width_of(a) <= size);
+        assert_true(a->at + width_of(a) <= sizes[base_of(a)]);
         for (size_t j = i + 1; sp_key_row(j); ++j) {
             const struct sp_key *b = sp_key_row(j);
-            if (b->keep == SP_KEEP_NOTHING || sp_key_of_step(a) != sp_key_of_step(b) || may_share(a, b))
-                continue;
+            if (b->keep == SP_KEEP_NOTHING || base_of(a) != base_of(b) || may_share(a, b)) continue;
             if (a->at < b->at + width_of(b) && b->at < a->at + width_of(a))
                 fail_msg("%s and %s", a->path, b->path);
         }
+    }
+}
+
+/* ---- lists ----------------------------------------------------------------------------------------- */
+
+static void lists_on_the_way(void **state)
+{
+    (void)state;
+    const struct sp_key *lists[SP_KEY_LISTS];
+    bool plural;
+    EACH_ROW(row)
+    {
+        size_t n = sp_key_lists(row->path, lists);
+        if (row->plural && (!n || lists[n - 1] != row)) fail_msg("%s is no list of its own", row->path);
+    }
+    assert_int_equal(sp_key_lists("car.duct.core.width", lists), 2);
+    assert_string_equal(lists[0]->path, "car.duct");
+    assert_string_equal(lists[1]->path, "car.duct.core");
+    assert_int_equal(sp_key_lists("car.duct.exit", lists), 2); /* its own included */
+    assert_string_equal(lists[1]->path, "car.duct.exit");
+    assert_int_equal(sp_key_lists("car.duct.inlet.area", lists), 1);
+    assert_int_equal(sp_key_lists("car.ducts", lists), 0);
+    assert_int_equal(sp_key_lists("drive[].speed", lists), 0);
+    assert_string_equal(sp_key_named("car", "ducts", &plural)->path, "car.duct");
+    assert_true(plural);
+    assert_string_equal(sp_key_named("car.duct", "fan", &plural)->path, "car.duct.fan");
+    assert_false(plural);
+    assert_null(sp_key_named("car.duct", "ducts", &plural));
+    assert_null(sp_key_named("car.duct", "core.width", &plural));
+    assert_string_equal(sp_key_nearest("car.duct", "exitts"), "exits");
+}
+
+static void same(const char *path, size_t outer, size_t inner, const void *place, struct sp_design *d)
+{
+    const struct sp_key *row = sp_key_find(path);
+    assert_non_null(row);
+    if (sp_key_place(row, d, &(struct sp_key_spot){outer, inner}) != place)
+        fail_msg("%s of %zu, %zu", path, outer, inner);
+}
+
+static void elements_have_their_places(void **state)
+{
+    (void)state;
+    static struct sp_design d;
+    struct sp_step steps[3];
+    same("car.duct.core.width", 0, 0, &d.duct[0].core[0].width, &d);
+    same("car.duct.core.width", 1, 0, &d.duct[1].core[0].width, &d);
+    same("car.duct.core.pressure_drop.table", 3, 4, &d.duct[3].core[4].drop_table, &d);
+    same("car.duct.fan", 2, 1, &d.duct[2].fan[1].fitted, &d);
+    same("car.duct.fan.curve.shutoff", 0, 2, &d.duct[0].fan[2].curve.shutoff, &d);
+    same("car.duct.exit.angle", 1, 7, &d.duct[1].exit[7].angle, &d);
+    same("car.duct.inlet.area", 3, 0, &d.duct[3].inlet.area, &d);
+    same("car.tank.cap", 0, 0, &d.tank.cap, &d);
+    d.step = steps;
+    same("drive[].speed", 2, 0, &steps[2].speed, &d);
+    assert_ptr_equal(sp_key_count_place(sp_key_find("car.duct"), &d, &(struct sp_key_spot){0}), &d.ducts);
+    assert_ptr_equal(sp_key_count_place(sp_key_find("car.duct.core"), &d, &(struct sp_key_spot){2, 0}),
+                     &d.duct[2].cores);
+    assert_ptr_equal(sp_key_count_place(sp_key_find("car.duct.exit"), &d, &(struct sp_key_spot){1, 3}),
+                     &d.duct[1].exits);
+    assert_null(sp_key_count_place(sp_key_find("car.duct.fan"), &d, &(struct sp_key_spot){0}));
+}
+
+/* Four ducts of 5 cores, 3 fans and 8 exits: the numbers of the public header. */
+static void rules_see_their_own_element(void **state)
+{
+    (void)state;
+    static struct sp_design d;
+    for (size_t i = 0; i < SP_DUCTS; ++i) {
+        for (size_t k = 0; k < SP_CORES; ++k) {
+            struct sp_core *c = &d.duct[i].core[k];
+            c->width = 0.1 * (double)(i + 1);
+            c->height = 0.4;
+            c->depth = 0.01 * (double)(k + 1);
+            /* 0.13 l per litre of core, and 1.3 l in tanks at 0.4 m */
+            check_close(sp_rule_core_coolant(&d, &(struct sp_key_spot){i, k}),
+                        0.13 * 4e-4 * (double)((i + 1) * (k + 1)) + 1.3e-3, 1e-12, 0.0);
+        }
+        d.duct[i].fan[2].diameter = (double)i;
+        check_close(sp_rule_fan_hub(&d, &(struct sp_key_spot){i, 2}), 0.35 * (double)i, 1e-12, 0.0);
     }
 }
 
@@ -270,6 +358,9 @@ int main(void)
         cmocka_unit_test(tables_have_ranges_for_each_column),
         cmocka_unit_test(words_are_told),
         cmocka_unit_test(places_do_not_overlap),
+        cmocka_unit_test(lists_on_the_way),
+        cmocka_unit_test(elements_have_their_places),
+        cmocka_unit_test(rules_see_their_own_element),
         cmocka_unit_test(distances),
         cmocka_unit_test(nearest_keys),
         cmocka_unit_test(ranges),

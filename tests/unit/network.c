@@ -1,5 +1,6 @@
-/* The network of the air path from the inside: it is the plain duct where that is what it is, it is solved for
- * random ducts with every option at once, its nodes are balanced, and where it starts from does not matter.
+/* The network of the air path from the inside: it is the plain duct where that is what it is, it is solved
+ * for random ducts with every option at once, its nodes are balanced, and where it starts from does not
+ * matter.
  *
  * SP_NETWORKS sets how many random networks (20000); seed N is the same whatever the count.
  * SPDX-License-Identifier: GPL-3.0-or-later */
@@ -31,8 +32,12 @@ static bool chance(gsl_rng *g, double share)
 
 static struct sp_core draw_core(gsl_rng *g)
 {
-    struct sp_core c = {.width = between(g, 0.2, 0.8), .height = between(g, 0.2, 0.6), .coefficient = between(g, 1, 20),
-                        .free_area_ratio = between(g, 0.5, 1.0), .at_temperature = NAN, .heat_factor = 1.0,
+    struct sp_core c = {.width = between(g, 0.2, 0.8),
+                        .height = between(g, 0.2, 0.6),
+                        .coefficient = between(g, 1, 20),
+                        .free_area_ratio = between(g, 0.5, 1.0),
+                        .at_temperature = NAN,
+                        .heat_factor = 1.0,
                         .cells = 10};
     if (chance(g, 0.4)) {
         c.drop_law = SP_DROP_LINEAR;
@@ -73,8 +78,10 @@ static struct sp_fan draw_fan(gsl_rng *g)
 
 static void draw_inlet(gsl_rng *g, struct sp_inlet *i)
 {
-    *i = (struct sp_inlet){.area = between(g, 0.02, 0.3), .recovery = between(g, 0.3, 1.0),
-                           .lip_loss = between(g, 0.0, 1.0), .screen = chance(g, 0.5) ? between(g, 0.0, 1.0) : 0.0};
+    *i = (struct sp_inlet){.area = between(g, 0.02, 0.3),
+                           .recovery = between(g, 0.3, 1.0),
+                           .lip_loss = between(g, 0.0, 1.0),
+                           .screen = chance(g, 0.5) ? between(g, 0.0, 1.0) : 0.0};
     if (chance(g, 0.2)) i->blocked = between(g, 0.0, 0.9);
     if (chance(g, 0.3)) {
         i->recirculated = between(g, 0.0, 0.4);
@@ -133,8 +140,10 @@ static void draw_given(gsl_rng *g, struct sp_duct_inputs *in)
 {
     *in = (struct sp_duct_inputs){.speed = chance(g, 0.15) ? 0.0 : between(g, -20.0, 60.0),
                                   .wake = chance(g, 0.8) ? 1.0 : between(g, 0.0, 1.0),
-                                  .temperature = between(g, 250.0, 320.0), .pressure = between(g, 6e4, 1.03e5),
-                                  .R = SP_R_DRY, .cp = SP_CP_DRY};
+                                  .temperature = between(g, 250.0, 320.0),
+                                  .pressure = between(g, 6e4, 1.03e5),
+                                  .R = SP_R_DRY,
+                                  .cp = SP_CP_DRY};
     for (int i = 0; i < SP_FANS; ++i) in->fan_speed[i] = chance(g, 0.4) ? 0.0 : between(g, 0.0, 1.1);
     for (int i = 0; i < SP_CORES; ++i) in->wall[i] = between(g, 280.0, 400.0);
     if (chance(g, 0.2)) in->cross_wind = between(g, -10.0, 10.0);
@@ -152,8 +161,10 @@ static void draw(gsl_rng *g, struct drawn *r)
     r->d.diffuser.loss = between(g, 0.0, 0.5);
     r->d.exits = 1 + gsl_rng_uniform_int(g, 4);
     for (size_t i = 0; i < r->d.exits; ++i)
-        r->d.exit[i] = (struct sp_exit){.area = between(g, 0.01, 0.2), .loss = between(g, 0.0, 1.7),
-                                        .pressure_coefficient = between(g, -0.5, 0.6), .angle = between(g, 0.0, 2.0)};
+        r->d.exit[i] = (struct sp_exit){.area = between(g, 0.01, 0.2),
+                                        .loss = between(g, 0.0, 1.7),
+                                        .pressure_coefficient = between(g, -0.5, 0.6),
+                                        .angle = between(g, 0.0, 2.0)};
     draw_leak(g, &r->d.past_core);
     draw_leak(g, &r->d.outside);
     draw_given(g, &r->in);
@@ -180,8 +191,9 @@ static bool same_flow(const struct sp_duct_state *a, const struct sp_duct_state 
            fabs(a->bay_temperature - b->bay_temperature) <= 1e-7;
 }
 
-/* Where a creeping flow (0.15 m/s at the face) mixes hot and fresh air in a fan or a plenum the two differ. A fan
- * ahead of the core has two answers near nil flow, as it draws in fresh air or air that the core has warmed. */
+/* Where a creeping flow (0.15 m/s at the face) mixes hot and fresh air in a fan or a plenum the two differ. A
+ * fan ahead of the core has two answers near nil flow, as it draws in fresh air or air that the core has
+ * warmed. */
 static void plain_as_network(void **state)
 {
     (void)state;
@@ -212,7 +224,8 @@ static void plain_as_network(void **state)
         if (same_flow(&a, &b)) continue;
         if (r.d.fan[0].before_core && a.mass_flow * b.mass_flow < 0.0) continue;
         if (++differ < 10)
-            print_error("seed %lu: %.15g %.15g kg/s, %.12g %.12g N\n", seed, a.mass_flow, b.mass_flow, a.drag, b.drag);
+            print_error("seed %lu: %.15g %.15g kg/s, %.12g %.12g N\n", seed, a.mass_flow, b.mass_flow, a.drag,
+                        b.drag);
     }
     gsl_rng_free(g);
     assert_true(compared > 3500);
@@ -229,7 +242,8 @@ static double largest(const struct sp_duct_state *s)
     return fmax(most, fabs(s->mass_flow));
 }
 
-/* Air in at the mouth and from the blower goes through cores and leaks, and what reaches the bay leaves it. */
+/* Air in at the mouth and from the blower goes through cores and leaks, and what reaches the bay leaves it.
+ */
 static bool balanced(const struct drawn *r, const struct sp_duct_state *s)
 {
     double blown = r->in.blower * r->in.pressure / (r->in.R * r->in.temperature), out = 0.0;
@@ -239,6 +253,40 @@ static bool balanced(const struct drawn *r, const struct sp_duct_state *s)
     return fabs(front) <= 1e-10 * largest(s) + 1e-15 && fabs(bay) <= 1e-10 * largest(s) + 1e-15;
 }
 
+/* Air through a shroud creeps, and blurs what the plenum mixes. */
+static bool creeps(const struct drawn *r, const struct sp_duct_state *s)
+{
+    double least = 0.05 * fabs(s->mass_flow) + 0.05;
+    for (int i = 0; i < SP_FANS; ++i)
+        if (r->d.fan[i].fitted && fabs(s->fan_flow[i]) < least) return true;
+    return fabs(s->mass_flow) < 0.3;
+}
+
+/* What goes in and comes out brings the cores' heat along; no bay heat, which a still bay does not take up.
+ */
+static bool keeps_energy(const struct drawn *r, const struct sp_duct_state *s)
+{
+    double cp = r->in.cp, T0 = r->in.temperature, out = 0.0, size = 0.0;
+    if (r->in.bay_heat != 0.0 || creeps(r, s)) return true;
+    out -= s->fresh * ((s->fresh > 0.0 ? s->inlet_temperature : s->front_temperature) - T0);
+    out += s->leak_outside * (s->leak_outside > 0.0 ? s->front_temperature - T0 : 0.0);
+    for (int i = 0; i < SP_EXITS; ++i) out += fmax(s->exit_flow[i], 0.0) * (s->bay_temperature - T0);
+    for (int i = 0; i < s->cores; ++i) size += fabs(s->core[i].heat);
+    return fabs(out * cp - s->heat) <= 1e-8 * size + 1e-4;
+}
+
+/* Total pressure falls along the air unless a fan turns. */
+static bool falls(const struct drawn *r, const struct sp_duct_state *s)
+{
+    double least = 1e-9 * (1.0 + fabs(s->front_pressure));
+    for (int i = 0; i < SP_FANS; ++i)
+        if (r->d.fan[i].fitted && r->in.fan_speed[i] > 0.0) return true;
+    if (s->backwards == 0.0 && s->mass_flow * (s->front_pressure - s->bay_pressure) < -least) return false;
+    for (int i = 0; i < s->cores; ++i)
+        if (s->core[i].drop < 0.0) return false;
+    return (s->front_pressure - s->bay_pressure) * s->leak_past >= -least;
+}
+
 /* A second answer, from another start, that is not the same. */
 static bool elsewhere(const struct sp_duct *d, const struct drawn *r, const struct sp_duct_guess *near,
                       const struct sp_duct_state *s)
@@ -246,7 +294,8 @@ static bool elsewhere(const struct sp_duct *d, const struct drawn *r, const stru
     struct sp_duct_guess guess = *near;
     struct sp_duct_state t;
     if (sp_duct_solve_from(d, &r->in, &guess, &t)) return true;
-    return fabs(t.mass_flow - s->mass_flow) > 1e-8 * largest(s) + 1e-12 || fabs(t.heat - s->heat) > 1e-8 * fabs(s->heat) + 1e-4;
+    return fabs(t.mass_flow - s->mass_flow) > 1e-8 * largest(s) + 1e-12 ||
+           fabs(t.heat - s->heat) > 1e-8 * fabs(s->heat) + 1e-4;
 }
 
 static long wanted(void)
@@ -259,7 +308,7 @@ static void random_networks(void **state)
 {
     (void)state;
     gsl_rng *g = gsl_rng_alloc(gsl_rng_mt19937);
-    long failed = 0, unbalanced = 0, two = 0, solved = 0;
+    long failed = 0, unbalanced = 0, two = 0, solved = 0, lost = 0, rising = 0;
     for (long seed = 1; seed <= wanted(); ++seed) {
         struct drawn r;
         gsl_rng_set(g, (unsigned long)seed);
@@ -276,6 +325,8 @@ static void random_networks(void **state)
             if (++failed < 10) print_error("seed %ld fails\n", seed);
         } else {
             if (!balanced(&r, &s) && ++unbalanced < 10) print_error("seed %ld is not balanced\n", seed);
+            if (!keeps_energy(&r, &s) && ++lost < 10) print_error("seed %ld loses energy\n", seed);
+            if (!falls(&r, &s) && ++rising < 10) print_error("seed %ld: total pressure rises\n", seed);
             if (!sp_duct_solve_from(d, &before, &near, &s)) sp_duct_solve_from(d, &r.in, &guess, &s);
             if (elsewhere(d, &r, &near, &s) && ++two < 10) print_message("seed %ld has two answers\n", seed);
         }
@@ -285,6 +336,8 @@ static void random_networks(void **state)
     print_message("%ld networks, %ld with two answers\n", solved, two);
     assert_int_equal(failed, 0);
     assert_int_equal(unbalanced, 0);
+    assert_int_equal(lost, 0);
+    assert_int_equal(rising, 0);
     assert_true((double)two <= 2e-3 * (double)solved);
 }
 

@@ -188,6 +188,83 @@ static void ledger_is_the_integral(void **state)
     fixture_drop(&r);
 }
 
+/* Tiers in the order they are passed: the alarm is first, the stop is worst, the caution is neither. Times and
+ * amounts as the samples have them. */
+static void failures(void **state)
+{
+    (void)state;
+    struct sp_step s[10];
+    struct sp_design d = busy(s, 10);
+    d.limits.coolant = (struct sp_tiers){357.0, 359.0, 361.0};
+    struct fixture_drive r = run(&d, 0.05, 1e-7);
+    assert_int_equal(r.status, SP_NOT);
+    assert_int_equal(r.result.failures, 3);
+    const struct sp_failure *f = r.result.failure;
+    assert_true(r.result.first == &f[1] && r.result.worst == &f[2]);
+    const double limit[] = {357.0, 359.0, 361.0};
+    for (int i = 0; i < 3; ++i) {
+        double over = 0.0, first = NAN;
+        assert_int_equal(f[i].severity, SP_SEVERITY_CAUTION + i);
+        assert_string_equal(f[i].place, "jacket");
+        for (size_t k = 1; k < r.series.count; ++k) {
+            const double *v = r.series.row[k].value;
+            if (v[SP_CH_ENGINE_OUT] <= limit[i]) continue;
+            over += 0.05;
+            if (isnan(first)) first = v[SP_CH_TIME];
+        }
+        check_close(f[i].time, first, 0, 0.06);
+        check_close(f[i].over, over, 0, 1.0);
+        check_close(f[i].worst, r.result.coolant.value - limit[i], 0, 0.05);
+        check_close(f[i].share, f[i].worst / 10.0, 1e-12, 0);
+    }
+    fixture_drop(&r);
+    d.limits.coolant = (struct sp_tiers){NAN, NAN, 400.0};
+    r = run(&d, 0.0, 0.0);
+    assert_true(r.result.failures == 0 && !r.result.first && !r.result.worst);
+    fixture_drop(&r);
+}
+
+/* A pulsing pump below its target: it stands and runs by the clock, from 4 s on 3 s still, and so on. */
+static void pump_pulses(void **state)
+{
+    (void)state;
+    struct sp_step s[1];
+    struct sp_design d = busy(s, 1);
+    d.pump.electric = true;
+    d.pump.law = SP_PUMP_PULSING;
+    d.pump.rated_voltage = d.electrics.voltage_running;
+    d.pump.target = 450.0;
+    d.pump.pulse_on = 4.0;
+    d.pump.pulse_off = 3.0;
+    s[0].time = 30.0;
+    struct fixture_drive r = run(&d, 0.5, 0.0);
+    for (size_t k = 0; k < r.series.count; ++k) {
+        const double *v = r.series.row[k].value;
+        double phase = fmod(v[SP_CH_TIME], 7.0);
+        if (fmin(fabs(phase - 4.0), fmin(phase, 7.0 - phase)) < 0.1) continue; /* at the very turn */
+        assert_true((v[SP_CH_PUMP_FLOW] > 0.0) == (phase < 4.0));
+    }
+    fixture_drop(&r);
+}
+
+/* What the car does not have is no column: a plain car has the channels up to the drag, and no more. */
+static void only_what_is_fitted(void **state)
+{
+    (void)state;
+    struct sp_step s[2];
+    struct sp_design d = busy(s, 2);
+    struct fixture_drive r = run(&d, 10.0, 0.0);
+    for (int c = SP_CH_OIL; c < SP_CHANNELS; ++c) assert_true(isnan(r.series.row[1].value[c]));
+    fixture_drop(&r);
+    d.pump.npsh = 3.0;
+    d.engine.wetted_area = 0.05;
+    r = run(&d, 10.0, 0.0);
+    assert_true(isfinite(r.series.row[1].value[SP_CH_NPSH_MARGIN]));
+    assert_true(isfinite(r.series.row[1].value[SP_CH_LOCAL_MARGIN]));
+    assert_true(isnan(r.series.row[1].value[SP_CH_OIL]));
+    fixture_drop(&r);
+}
+
 /* The default tolerance is good to 0.05 K against one a thousand times tighter, events and all; a run is the
  * same each time, to the last bit, with and without samples. */
 static void tolerance_and_repeat(void **state)
@@ -348,7 +425,8 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(samples_on_the_grid),
         cmocka_unit_test(lift_follows_the_play),
-        cmocka_unit_test(accounts),
+        cmocka_unit_test(accounts), cmocka_unit_test(failures),
+        cmocka_unit_test(pump_pulses), cmocka_unit_test(only_what_is_fitted),
         cmocka_unit_test(ledger_is_the_integral),
         cmocka_unit_test(tolerance_and_repeat),
         cmocka_unit_test(soak_with_run_on),

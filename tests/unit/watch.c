@@ -12,6 +12,7 @@ struct rig {
     struct sp_inputs in;
     struct sp_modes modes;
     double y[SP_Y_MOST];
+    struct sp_watch_list list;
     struct sp_watched seen;
 };
 
@@ -36,8 +37,9 @@ static const double *look(struct rig *r)
     struct sp_coupling k;
     sp_circuit_signals(&r->c, &r->in, r->y, &s);
     assert_int_equal(sp_circuit_couple(&r->c, &r->in, &r->modes, &s, &guesses, &k), SP_OK);
-    sp_watch(&r->c, &r->in, &r->modes, r->y, &k, &r->seen);
-    for (int i = 0; i < SP_WATCHES; ++i)
+    sp_watch_add(&r->list, &r->c);
+    sp_watch(&r->list, &r->c, &r->in, &r->modes, 0.0, r->y, &k, &r->seen);
+    for (int i = 0; i < r->list.count; ++i)
         assert_true(isfinite(r->seen.g[i]));
     return r->seen.g;
 }
@@ -162,15 +164,123 @@ static void boil_margin(void **state)
     sp_circuit_free(&r.c);
 }
 
+/* Where a watch stands in the list; fails when it is not there. */
+static double value_of(const struct rig *r, enum sp_watch kind, int index, int tier)
+{
+    for (int w = 0; w < r->list.count; ++w)
+        if (r->list.of[w].kind == kind && r->list.of[w].index == index && r->list.of[w].tier == tier)
+            return r->seen.g[w];
+    fail_msg("no watch %d", (int)kind);
+    return NAN;
+}
+
+/* A plain car is watched for no more than what every car has; each further limit brings one watch. */
+static void only_what_applies(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    r.d.limits = only_limits(370.0, NAN, NAN, 10.0);
+    prepare(&r);
+    look(&r);
+    assert_int_equal(r.list.count, SP_WATCHES);
+    r.d.limits.metal.caution = 380.0;
+    r.d.limits.metal.alarm = 385.0;
+    r.d.limits.oil.stop = 400.0; /* of oil that the car does not have */
+    r.d.limits.least_coolant = 330.0;
+    r.d.tank.catch_can = 5e-4;
+    look(&r);
+    assert_int_equal(r.list.count, SP_WATCHES + 4);
+    look(&r); /* added again: nothing new */
+    assert_int_equal(r.list.count, SP_WATCHES + 4);
+    sp_circuit_free(&r.c);
+}
+
+static void tiers_and_failing(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    r.d.limits = only_limits(370.0, NAN, NAN, 10.0);
+    r.d.limits.metal.caution = 380.0;
+    r.d.limits.metal.alarm = 385.0;
+    r.d.limits.least_coolant = 330.0;
+    r.d.tank.catch_can = 5e-4;
+    prepare(&r);
+    r.y[SP_Y_METAL] = 381.0;
+    r.y[SP_Y_LOST] = 7e-4;
+    r.y[SP_Y_JACKET] = 329.0;
+    r.in.in[SP_IN_POWER] = 0.19 * r.d.engine.rated_power; /* not yet a fifth of it */
+    look(&r);
+    check_close(value_of(&r, SP_W_TIER, SP_LIMITED_METAL, 0), 1.0, 1e-12, 0);
+    check_close(value_of(&r, SP_W_TIER, SP_LIMITED_METAL, 1), -4.0, 1e-12, 0);
+    check_close(value_of(&r, SP_W_CAN, 0, 0), 2e-4, 1e-9, 0);
+    assert_true(value_of(&r, SP_W_COLD_COOLANT, 0, 0) < 0.0);
+    assert_true(r.seen.g[SP_W_LOST] > 0.0);
+    r.in.in[SP_IN_POWER] = 0.21 * r.d.engine.rated_power;
+    look(&r);
+    assert_true(value_of(&r, SP_W_COLD_COOLANT, 0, 0) > 0.0);
+    r.d.limits.load = 0.5 * r.d.engine.rated_power;
+    look(&r);
+    assert_true(value_of(&r, SP_W_COLD_COOLANT, 0, 0) < 0.0);
+    sp_circuit_free(&r.c);
+}
+
+/* Amperes of a fan at full speed: its power over its volts; the limit counts for one fan. */
+static void fan_current(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    struct sp_fan *f = &r.d.duct[0].fan[0];
+    f->rated_voltage = r.d.electrics.voltage_running;
+    f->current_limit = 10.0;
+    prepare(&r);
+    r.y[SP_Y_FAN] = 1.0;
+    look(&r);
+    check_close(value_of(&r, SP_W_CURRENT, 0, 0), f->power / f->rated_voltage - 10.0, 1e-12, 0);
+    r.y[SP_Y_FAN] = 0.5;
+    look(&r);
+    check_close(value_of(&r, SP_W_CURRENT, 0, 0), 0.125 * f->power / f->rated_voltage - 10.0, 1e-12, 0);
+    sp_circuit_free(&r.c);
+}
+
+/* Bubbles form at a wall well before the coolant boils: more heat through less of it, sooner. */
+static void local_boiling(void **state)
+{
+    (void)state;
+    struct rig r = {.d = *fixture.base};
+    r.d.engine.wetted_area = 0.1;
+    prepare(&r);
+    r.y[SP_Y_JACKET] = 380.0;
+    double before = INFINITY;
+    for (double metal = 381.0; metal < 460.0; metal += 5.0) {
+        r.y[SP_Y_METAL] = metal;
+        look(&r);
+        assert_true(r.seen.local_margin < before);
+        check_close(value_of(&r, SP_W_LOCAL, 0, 0), -r.seen.local_margin, 1e-12, 0);
+        before = r.seen.local_margin;
+    }
+    assert_true(before < 0.0);
+    sp_circuit_free(&r.c);
+}
+
 static void events_have_texts(void **state)
 {
     (void)state;
-    for (int w = 0; w < SP_WATCHES; ++w) {
+    for (int w = 0; w < SP_WATCH_KINDS; ++w) {
         struct sp_watch_events e = sp_watch_event[w];
-        assert_true((e.rise == SP_EVENT_KINDS) == (e.fall == SP_EVENT_KINDS));
+        if (w != SP_W_LOST) assert_true((e.rise == SP_EVENT_KINDS) == (e.fall == SP_EVENT_KINDS)); /* lost is lost */
         if (e.rise != SP_EVENT_KINDS) assert_true(e.rise != e.fall && strlen(sp_event_text(e.rise)) > 3);
     }
     assert_string_equal(sp_event_text(SP_EVENT_KINDS), "?");
+    for (int k = 0; k < SP_EVENT_KINDS; ++k) {
+        const char *text = sp_event_text((enum sp_event_kind)k);
+        assert_true(text && strlen(text) > 3);
+        for (int j = 0; j < k; ++j)
+            if (k >= SP_EV_LOST) assert_true(strcmp(text, sp_event_text((enum sp_event_kind)j)) || j < SP_EV_TIER);
+    }
+    assert_string_equal(sp_event_text((enum sp_event_kind)(SP_EV_TIER + 6 * SP_LIMITED_OIL + 5)),
+                        "oil back under limit");
+    for (int c = 0; c < SP_CHANNELS; ++c)
+        assert_true(sp_channel_at((enum sp_channel)c)->name && sp_channel_at((enum sp_channel)c)->scale > 0.0);
     assert_null(sp_channel_at(SP_CHANNELS));
 }
 
@@ -192,6 +302,8 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {cmocka_unit_test(fan_switch),   cmocka_unit_test(round_the_play),
                                        cmocka_unit_test(play_watches), cmocka_unit_test(limits),
-                                       cmocka_unit_test(boil_margin),  cmocka_unit_test(events_have_texts)};
+                                       cmocka_unit_test(boil_margin),  cmocka_unit_test(events_have_texts),
+                                       cmocka_unit_test(only_what_applies), cmocka_unit_test(tiers_and_failing),
+                                       cmocka_unit_test(fan_current),  cmocka_unit_test(local_boiling)};
     return cmocka_run_group_tests(tests, begin, end);
 }

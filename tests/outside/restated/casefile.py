@@ -122,8 +122,9 @@ def _duct(duct):
           coolant_volume=0.13 * bulk + 1.3e-3 * core["height"] / 0.4)
     if "tubes" in core:
         tubes = _fill(core["tubes"], wall=0.3e-3, rows=1, passes=1)
-        _fill(core["fins"], thickness=0.1e-3, conductivity=180.0,
-              louvre_length=0.85 * (tubes["pitch"] - tubes["height"]))
+        _fill(core["fins"], thickness=0.1e-3, conductivity=180.0)
+        if core["fins"].get("kind") != "plate":
+            _fill(core["fins"], louvre_length=0.85 * (tubes["pitch"] - tubes["height"]))
     else:
         core.setdefault("drop", {"flow": 0.1 / 60, "drop": 18e3})
     if "fan" in duct:

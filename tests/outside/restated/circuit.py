@@ -12,9 +12,15 @@ class Tubes:
     def __init__(self, core):
         t = core["tubes"]
         wall, self.passes = t["wall"], t["passes"]
-        b, w = t["height"] - 2 * wall, core["depth"] / t["rows"] - 2 * wall
-        self.length = core["width"] * self.passes
-        self.count = max(max(math.floor(core["height"] / t["pitch"] + 1e-9), 1) * t["rows"] / self.passes, 1.0)
+        b, w = t.get("height", 0.0) - 2 * wall, core["depth"] / t["rows"] - 2 * wall
+        if "diameter" in t:
+            b = w = t["diameter"] - 2 * wall
+        along, across = core["width"], core["height"]
+        if core.get("flow") == "down":
+            along, across = across, along
+        self.round = b == w
+        self.length = along * self.passes
+        self.count = max(max(math.floor(across / t["pitch"] + 1e-9), 1) * t["rows"] / self.passes, 1.0)
         self.section = (w - b) * b + math.pi * b * b / 4
         rim = 2 * (w - b) + math.pi * b
         self.bore = 4 * self.section / rim
@@ -22,7 +28,9 @@ class Tubes:
         z = b / w
         self.laminar = 7.541 * (1 - 2.610 * z + 4.970 * z ** 2 - 5.119 * z ** 3 + 2.702 * z ** 4 - 0.548 * z ** 5)
         self.darcy = 96 * (1 - 1.3553 * z + 1.9467 * z ** 2 - 1.7012 * z ** 3 + 0.9564 * z ** 4 - 0.2537 * z ** 5)
-        self.skin = wall / core["fins"]["conductivity"]
+        if self.round:
+            self.darcy = 64.0
+        self.skin = wall / core["fins"]["conductivity"] + core.get("coolant_fouling", 0.0)
         self.heat_factor = core["heat_factor"]
 
     @staticmethod
@@ -31,6 +39,9 @@ class Tubes:
 
     def _nu_laminar(self, re, pr):
         gz = re * pr * self.bore / self.length
+        if self.round:
+            return (3.66 ** 3 + 0.7 ** 3 + (1.615 * gz ** (1 / 3) - 0.7) ** 3
+                    + (math.sqrt(gz) * (2 / (1 + 22 * pr)) ** (1 / 6)) ** 3) ** (1 / 3)
         return self.laminar + 0.03 * gz / (1 + 0.016 * gz ** (2 / 3))
 
     def _nu_turbulent(self, re, pr):

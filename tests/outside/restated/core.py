@@ -42,6 +42,7 @@ class Fins:
         self.fin_length = length / 2 - thick
         self.fin_factor = 2 / (fins["conductivity"] * thick) * (1 + thick / depth)
         self.whole = self.sigma * self.area_ratio * self.face
+        self.fouling = core.get("air_fouling", 0.0)
         self.heat_factor = core["heat_factor"]
 
     def _f_low(self, re):
@@ -88,6 +89,7 @@ class Fins:
         g = flux / self.sigma
         mu, cf, pr = air_film(film)
         h = self.j0 * max(g * self.pitch / mu, 10.0) ** -0.49 * g * cf * pr ** (-2 / 3)
+        h = h / (1 + h * self.fouling)
         x = self.fin_length * math.sqrt(h * self.fin_factor)
         surface = 1 - self.fin_share * (1 - (math.tanh(x) / x if x > 1e-9 else 1.0))
         return surface * h * self.whole * self.heat_factor
@@ -131,6 +133,7 @@ class PowerLaws:
 
     def __init__(self, core, coolant):
         h, self.factor = core["heat"], core["heat_factor"]
+        self.medium = core.get("carries", "coolant")
         self.face = core["width"] * core["height"]
         self.rho = h.get("at_density", 1.2)
         if "rejection" in h:
@@ -139,12 +142,14 @@ class PowerLaws:
             self.air, self.speed, self.a = h["air_conductance"], h["at_face_velocity"], h.get("air_exponent", 0.5)
             self.water, self.flow = h["coolant_conductance"], h["at_coolant_flow"]
             self.b = h.get("coolant_exponent", 0.8)
+            self.nominal = self.water
 
     def _recover(self, core, h, coolant):
         v, m = np.array(h["face_velocity"]), np.array(h["coolant_flow"])
         y, n = np.array(h["rejection"]), int(core["cells"])
         self.speed, self.flow = math.sqrt(v[0] * v[-1]), math.sqrt(m[0] * m[-1])
-        c_c = (m * coolant.capacity(363.15))[None, :]
+        inside = {"engine oil": 2100.0, "gearbox oil": 2100.0, "charge air": 1007.0}
+        c_c = (m * (inside.get(self.medium) or coolant.capacity(363.15)))[None, :]
         c_a = (self.rho * v * self.face * CP_DRY)[:, None]
         free = [True, len(m) > 1, len(v) > 2, len(m) > 2]
 
@@ -165,11 +170,14 @@ class PowerLaws:
         first = [x for x, f in zip((math.log(2 * y[-1, -1]), math.log(8 * y[-1, -1]), 0.5, 0.8), free) if f]
         fit = least_squares(miss, first, xtol=1e-14, ftol=1e-14, gtol=1e-14)
         self.air, self.water, self.a, self.b = unpack(fit.x)
-        self.water /= coolant.film_ratio(363.15, self.b)
+        self.nominal = self.water
+        if self.medium == "coolant":
+            self.water /= coolant.film_ratio(363.15, self.b)
 
     def conductance(self, flux, film):
         return self.factor * self.air * (flux / (self.speed * self.rho)) ** self.a
 
     def inner(self, flow, coolant, temperature):
         x = (flow / self.flow) ** self.b
-        return self.factor * self.water * coolant.film_ratio(temperature, self.b) * (x ** 4 + 0.02 ** 4) ** 0.25
+        films = coolant.film_ratio(temperature, self.b) if self.medium == "coolant" else 1.0
+        return self.factor * self.water * films * (x ** 4 + 0.02 ** 4) ** 0.25

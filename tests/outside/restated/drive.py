@@ -10,11 +10,12 @@ from .merging import merged
 
 # channels of a row, in this order
 SPEED, AIR_SPEED, WAKE, AMBIENT, PRESSURE, GAS, FRICTION, SLOPE, TURNS, POWER = range(10)
+OIL, GEARBOX, CHARGE, HEATING = range(10, 14)  # of a car fitted out
 
 
 class EngineHeat:
-    def __init__(self, engine):
-        self.e, self.heat = engine, engine["heat"]
+    def __init__(self, engine, oil=None):
+        self.e, self.heat, self.oil, self.cap = engine, engine["heat"], oil, engine["heat"].get("energy_cap", 0.75)
         self.rated = engine["rated_power"]
         self.idle_extra = 0.0
         if self.heat["law"] == "rated":
@@ -49,7 +50,27 @@ class EngineHeat:
             return self._bilinear(power, turns)
         n, share = self.heat["exponent"], self._fuel(power, turns) / self.fuel_rated
         slope = n * self.heat_rated * max(share, 0.01) ** (n - 1) / (self.fuel_rated * self.e["indicated_efficiency"])
-        return self.heat_rated * share ** n, slope
+        return self._capped(self.heat_rated * share ** n, slope, power, turns)
+
+    def _capped(self, heat, slope, power, turns):
+        """The energy cap: work and heats come from the fuel."""
+        if not self.cap:
+            return heat, slope
+        room = self.cap * self._fuel(power, turns) - power - self.oil_heat(power, turns)
+        gain = self.cap / self.e["indicated_efficiency"] - 1
+        if room <= 0:
+            return 0.0, gain
+        y = heat / room - 0.95
+        if y <= 0:
+            return heat, slope
+        if y >= 0.1:
+            return room, gain
+        return heat - room * y * y / 0.2, (1 - y / 0.1) * slope + (1.9 * y + y * y) / 0.2 * gain
+
+    def oil_heat(self, power, turns):
+        if not self.oil:
+            return 0.0
+        return self.oil["heat_share"] * max(power, 0.0) + self.oil["friction_share"] * self.motoring(turns)
 
     def _bilinear(self, power, turns):
         s, p = self.speeds, self.powers
@@ -112,8 +133,8 @@ def central(t, v):
 class Segment:
     """A stretch of straight channels from t0 to t1, `a` and `b` at its ends; engine on, fan and pump allowed."""
 
-    def __init__(self, t0, t1, a, b, on):
-        self.t0, self.t1, self.a, self.b, self.on = t0, t1, a, b, on
+    def __init__(self, t0, t1, a, b, on, **more):
+        self.t0, self.t1, self.a, self.b, self.on, self.more = t0, t1, a, b, on, more
         self.fan = self.pump = on
 
     def at(self, t):
@@ -151,9 +172,9 @@ class Schedule:
                 continue
             cuts = sorted({s.t0, s.t1} | {stop + r for r in (fan, pump) if stop is not None and s.t0 < stop + r < s.t1})
             for t0, t1 in zip(cuts, cuts[1:]):
-                piece = Segment(t0, t1, s.at(t0), s.at(t1), False)
-                piece.fan = stop is not None and t0 < stop + fan
-                piece.pump = stop is not None and t0 < stop + pump
+                piece = Segment(t0, t1, s.at(t0), s.at(t1), False, **s.more)
+                piece.fan = s.more.get("key_on", False) or stop is not None and t0 < stop + fan
+                piece.pump = s.more.get("key_on", False) or stop is not None and t0 < stop + pump
                 out.append(piece)
         return out
 
@@ -251,13 +272,13 @@ class Schedule:
             first, j = self.segments[i], i
             while j + 1 < len(self.segments) and self._joins(i, j + 1, slack):
                 j += 1
-            out.append(Segment(first.t0, self.segments[j].t1, first.a, self.segments[j].b, first.on))
+            out.append(Segment(first.t0, self.segments[j].t1, first.a, self.segments[j].b, first.on, **first.more))
             i = j + 1
         return out
 
     def _joins(self, i, j, slack):
         first, last = self.segments[i], self.segments[j]
-        if first.on != last.on or np.any(np.abs(np.array(self.segments[j - 1].b) - last.a) > slack):
+        if first.on != last.on or first.more != last.more or np.any(np.abs(np.array(self.segments[j - 1].b) - last.a) > slack):
             return False
         whole = Segment(first.t0, last.t1, first.a, last.b, first.on)
         return all(np.all(np.abs(np.array(whole.at(s.t0)) - s.a) <= slack) for s in self.segments[i + 1:j + 1])

@@ -12,7 +12,7 @@ class Duct:
     def __init__(self, duct, gas, cp, drops, conductance=None):
         """`drops` and `conductance` are the core's functions for the air."""
         inlet, exit_ = duct["inlet"], duct["exit"]
-        self.inlet, self.lip = inlet["area"], inlet["lip_loss"]
+        self.inlet, self.lip = inlet["area"] * (1 - inlet.get("blocked", 0.0)), inlet["lip_loss"]
         self.recovery, self.exit_cp = inlet["recovery"], exit_["pressure_coefficient"]
         self.screen, self.diffuser = inlet["screen"], duct["diffuser"]["loss"]
         self.exit, self.exit_loss, self.cos = exit_["area"], exit_["loss"], math.cos(exit_["angle"])
