@@ -112,9 +112,14 @@ struct sp_told_change {
 
 struct sp_peak { double value, time, distance; size_t step; const char *mark; };
 
+/* A limit that decides, and how near the drive came to it. */
+enum { SP_ROOM_BOIL = 3, SP_ROOMS = 7 }; /* coolant, gauge, metal, boil margin, oil, gearbox oil, charge air */
+struct sp_room { double limit, came_to, left; }; /* K; NAN: none. Where it was nearest, if a change moved the limit */
+
 struct sp_result {
     bool survives;
     const char *limit;         /* key of the limit that binds: the broken one first in time, else the closest */
+    struct sp_room room[SP_ROOMS];
     struct sp_peak coolant, gauge, metal; /* K */
     struct sp_peak oil, gearbox, charge;  /* K; NAN where not fitted */
     struct sp_peak boil_margin;           /* least, K */
@@ -132,6 +137,7 @@ struct sp_result {
     size_t fan_kinds;
     double liquid_lost;        /* m3 through the cap */
     double tank_left;          /* m3 of coolant that the tank holds at its filling temperature */
+    double pump_head_left;     /* least share of the pump's rise that cavitation left; NAN: not watched */
     struct { double used, left; } battery; /* J drawn with the engine off, share of the charge left; NAN: not watched */
     struct {                   /* against the trace's measured coolant; NAN where there is none */
         double rms, warmup_rms, time_to_85, measured_time_to_85;    /* K, K, s, s */

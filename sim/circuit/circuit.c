@@ -5,6 +5,7 @@
 
 #include "part/cells.h"
 #include "part/charge.h"
+#include "part/effectiveness.h"
 #include "part/engine.h"
 #include "part/oil.h"
 
@@ -270,6 +271,19 @@ static double others(const struct sp_circuit *c, const struct sp_coupling *k, en
 /* What a body of oil gives the rest, W. */
 struct oil_heat { double to_metal, to_coolant, to_air, to_cooler; };
 
+/* Plate cooler [W]: counterflow of the oil at T and what enters the pump; no more than either stream can carry. */
+static double plate_heat(const struct sp_circuit *c, const struct sp_oil *o, double speed, double T,
+                         const struct sp_coupling *k, const double *y)
+{
+    double conductance = sp_oil_plate(o, speed);
+    if (!(conductance > 0.0 && k->mass_pump > 0.0)) return 0.0;
+    double inlet = sp_circuit_pump_inlet(c, y, k);
+    double coolant = k->mass_pump * sp_coolant_cp(&c->design->coolant.fluid, inlet);
+    double oil = sp_oil_flow(o, speed) * sp_oil_density(T) * sp_oil_cp(T);
+    double least = fmin(coolant, oil), ratio = least / fmax(coolant, oil);
+    return least * sp_effectiveness(SP_COUNTERFLOW, conductance / least, ratio) * (T - inlet);
+}
+
 static struct oil_heat oil_rates(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_coupling *k,
                                  bool engine, const double *y, double *dydt)
 {
@@ -280,7 +294,7 @@ static struct oil_heat oil_rates(const struct sp_circuit *c, const struct sp_inp
     double T = y[at], mass = engine ? c->mass_oil : c->mass_gearbox;
     double speed = in->flags & SP_FLAG_ENGINE ? in->in[SP_IN_ENGINE_SPEED] : 0.0;
     q.to_metal = o->block * (T - y[SP_Y_METAL]);
-    q.to_coolant = sp_oil_plate(o, speed) * (T - sp_circuit_pump_inlet(c, y, k));
+    q.to_coolant = plate_heat(c, o, speed, T, k, y);
     q.to_air = skin(in, o->skin_standing, o->skin_moving) * (T - in->in[SP_IN_AMBIENT]);
     q.to_cooler = others(c, k, engine ? SP_CARRIES_OIL : SP_CARRIES_GEARBOX, T, y, dydt);
     double heat = in->in[engine ? SP_IN_OIL_HEAT : SP_IN_GEARBOX_HEAT];

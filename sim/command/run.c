@@ -72,7 +72,8 @@ const struct sp_verb sp_verb_run = {
     "drives a case and tells whether it survives",
     "Drives the case from end to end and says whether the coolant stays within its\n"
     "limits, where and when it was hottest, what happened on the way and what the\n"
-    "cooling cost in drag. Status 0: survives; 1: some limit was broken.\n\n"
+    "cooling cost in drag, and what fails first and worst when anything does.\n"
+    "Status 0: survives; 1: some limit was broken.\n\n"
     "With -o, DIR is made when missing, and what is missing above it; series.csv\n"
     "holds the drive over time.",
     run};

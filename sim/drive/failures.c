@@ -1,4 +1,5 @@
-/* What failed in a run: one entry a watch that was ever beyond its limit. SPDX-License-Identifier: GPL-3.0-or-later */
+/* What failed in a run: one entry a watch that was ever beyond its limit. SPDX-License-Identifier:
+ * GPL-3.0-or-later */
 #include <math.h>
 #include <stdlib.h>
 
@@ -9,8 +10,19 @@ static struct sp_failure entry(const struct sp_run *r, int w)
     const struct sp_spell *s = &r->spell[w];
     const struct sp_schedule *plan = r->schedule;
     struct sp_watch_info i = sp_watch_info(r->circuit, &r->watches.of[w]);
-    struct sp_failure f = {i.events.rise, s->place, i.severity, s->first, 0.0, 0, NULL, s->worst, s->worst_time, i.unit,
-                           i.scale, s->over, i.grave > 0.0 ? s->worst / i.grave : INFINITY};
+    struct sp_failure f = {i.events.rise,
+                           s->place,
+                           i.severity,
+                           s->first,
+                           0.0,
+                           0,
+                           NULL,
+                           s->worst,
+                           s->worst_time,
+                           i.unit,
+                           i.scale,
+                           s->over,
+                           i.grave > 0.0 ? s->worst / i.grave : INFINITY};
     struct sp_inputs in;
     if (r->high[w]) f.over += r->result->duration - s->since;
     sp_schedule_at(plan, s->segment, s->first, &in);
@@ -20,7 +32,8 @@ static struct sp_failure entry(const struct sp_run *r, int w)
     return f;
 }
 
-/* Of one quantity the highest tier that was passed says how bad it was: the lower ones are always further passed. */
+/* Of one quantity the highest tier that was passed says how bad it was: the lower ones are always further
+ * passed. */
 static bool lower_tier(const struct sp_run *r, int w)
 {
     static const int own_stop[] = {SP_W_COOLANT, SP_W_GAUGE, SP_W_METAL};
@@ -38,7 +51,8 @@ static bool lower_tier(const struct sp_run *r, int w)
 static void put_in_order(struct sp_result *out, struct sp_failure f)
 {
     size_t at = out->failures++;
-    for (; at > 0 && out->failure[at - 1].time > f.time; --at) out->failure[at] = out->failure[at - 1];
+    for (; at > 0 && out->failure[at - 1].time > f.time; --at)
+        out->failure[at] = out->failure[at - 1];
     out->failure[at] = f;
 }
 

@@ -140,7 +140,8 @@ static bool open_run(struct sp_run *r, double tolerance, double *start)
     const double nothing = -INFINITY;
     r->coolant.best = r->gauge.best = r->metal.best = r->margin.best = nothing;
     r->oil.best = r->gearbox.best = r->charge.best = nothing;
-    r->pressure.best = r->over_ambient.best = nothing;
+    r->pressure.best = r->over_ambient.best = r->head_lost.best = nothing;
+    for (int i = 0; i < SP_ROOMS; ++i) r->room[i] = (struct sp_room){NAN, NAN, INFINITY};
     r->seen_at = NAN;
     struct sp_inputs in;
     sp_schedule_at(r->schedule, 0, r->schedule->time[0], &in);

@@ -21,6 +21,8 @@ void sp_run_change(struct sp_run *r)
     /* A changed capacity holds another heat at the same temperature: that is no heat from anywhere. */
     r->carried += sp_circuit_heat_held(next, y) - sp_circuit_heat_held(r->circuit, y);
     r->circuit = next;
+    const double wax = y[SP_Y_WAX], play = fmax(next->design->thermostat.hysteresis, 0.0);
+    r->modes.held = fmin(fmax(r->modes.held, wax), wax + play); /* another thermostat may have less play */
     memset(&r->guesses, 0, sizeof r->guesses);
     memset(&r->looking, 0, sizeof r->looking);
     for (; r->variant < now; ++r->variant) {
@@ -40,7 +42,7 @@ static void tell(const struct sp_result *out, size_t from, struct sp_told_change
         const struct sp_event *e = &out->event[i];
         if (e->severity != SP_SEVERITY_STOP) continue;
         bool after = i > from, over = true;
-        for (size_t j = i + 1; !after && over && j <= from; ++j)
+        for (size_t j = i + 1; !after && over && j < out->events && out->event[j].time <= change->time; ++j)
             over = out->event[j].kind != e->kind + 1; /* each kind is followed by the one that ends it */
         if (!over) continue;
         to->to_limit = after ? e->time - change->time : 0.0;

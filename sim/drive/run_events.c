@@ -93,8 +93,9 @@ void sp_run_follow_fan(struct sp_run *r)
  * the old side of it; only where the lift can move does that matter. */
 static bool lift_at_stake(const struct sp_run *r)
 {
-    const struct sp_thermostat *t = &r->drive->design->thermostat;
+    const struct sp_thermostat *t = &r->circuit->design->thermostat;
     double wax = sp_integrator_state(r->integrator)[SP_Y_WAX];
+    if (t->mapped_power > 0.0) return true; /* where its lift can move goes with power */
     return wax + t->hysteresis > t->opens && wax < t->full;
 }
 
@@ -164,7 +165,7 @@ static bool crossed(struct sp_run *r, int w, bool up)
     case SP_W_PULSE: return up && turn_pulse(r, w);
     case SP_W_PLAY:
     case SP_W_PLAY_SHUT:
-        sp_watch_turn_play(&r->drive->design->thermostat, sp_integrator_state(r->integrator)[SP_Y_WAX],
+        sp_watch_turn_play(&r->circuit->design->thermostat, sp_integrator_state(r->integrator)[SP_Y_WAX],
                            w == SP_W_PLAY_SHUT, &r->modes);
         r->high[SP_W_PLAY] = r->modes.play == SP_PLAY_OPENING;
         r->high[SP_W_PLAY_SHUT] = r->modes.play == SP_PLAY_HELD;

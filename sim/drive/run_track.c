@@ -34,6 +34,21 @@ static void track_spells(struct sp_run *r, const double *y)
     }
 }
 
+/* How near each limit is, as it now stands. */
+static void track_rooms(struct sp_run *r, const struct sp_inputs *in, const double *y)
+{
+    const struct sp_layout *l = &r->circuit->layout;
+    double limit[SP_ROOMS];
+    const double now[SP_ROOMS] = {y[SP_Y_JACKET], y[SP_Y_GAUGE] + r->circuit->design->gauge.offset, y[SP_Y_METAL],
+                                  r->seen.boil_margin, l->oil >= 0 ? y[l->oil] : NAN,
+                                  l->gearbox >= 0 ? y[l->gearbox] : NAN, sp_circuit_charge_out(r->circuit, in, y)};
+    sp_run_limits(&r->circuit->design->limits, limit);
+    for (int i = 0; i < SP_ROOMS; ++i) {
+        double left = i == SP_ROOM_BOIL ? now[i] - limit[i] : limit[i] - now[i];
+        if (left < r->room[i].left) r->room[i] = (struct sp_room){limit[i], now[i], left};
+    }
+}
+
 /* The top of the coolant's curve inside the last step, where its slope changes sign. */
 static void track_summit(struct sp_run *r, double from, double slope)
 {
@@ -92,6 +107,8 @@ bool sp_run_track(struct sp_run *r)
     if (l->oil >= 0) track(&r->oil, y[l->oil], t);
     if (l->gearbox >= 0) track(&r->gearbox, y[l->gearbox], t);
     if (r->circuit->design->charge.fitted) track(&r->charge, sp_circuit_charge_out(r->circuit, &in, y), t);
+    if (r->circuit->design->pump.npsh > 0.0) track(&r->head_lost, 1.0 - r->seen.head_left, t);
+    if (r->drive->changes) track_rooms(r, &in, y);
     track_spells(r, y);
     return track_spill(r, &in, y);
 }

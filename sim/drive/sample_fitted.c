@@ -13,7 +13,8 @@ static void fit_ducts(bool *fitted, const struct sp_circuit *c)
         bool past = d->past_core.area > 0.0 || d->past_core.gap > 0.0;
         bool outside = d->outside.area > 0.0 || d->outside.gap > 0.0;
         bool lanes = false;
-        for (int f = 0; f < SP_FANS; ++f) lanes = lanes || (d->fan[f].fitted && d->fan[f].span_to > d->fan[f].span_from);
+        for (int f = 0; f < SP_FANS; ++f)
+            lanes = lanes || (d->fan[f].fitted && d->fan[f].span_to > d->fan[f].span_from);
         fitted[SP_CH_LEAK_PAST] = fitted[SP_CH_LEAK_PAST] || past;
         fitted[SP_CH_LEAK_OUTSIDE] = fitted[SP_CH_LEAK_OUTSIDE] || outside;
         fitted[SP_CH_BACKWARDS] = fitted[SP_CH_BACKWARDS] || lanes;
@@ -25,7 +26,8 @@ static void fit_ducts(bool *fitted, const struct sp_circuit *c)
 void sp_run_fit(bool fitted[SP_CHANNELS], const struct sp_circuit *c)
 {
     const struct sp_design *d = c->design;
-    for (int i = 0; i < SP_CH_OIL; ++i) fitted[i] = true;
+    for (int i = 0; i < SP_CH_OIL; ++i)
+        fitted[i] = true;
     fit_ducts(fitted, c);
     if (c->layout.oil >= 0) fitted[SP_CH_OIL] = true;
     if (c->layout.gearbox >= 0) fitted[SP_CH_GEARBOX] = true;
@@ -42,7 +44,8 @@ void sp_run_fit(bool fitted[SP_CHANNELS], const struct sp_circuit *c)
     if (d->pump.npsh > 0.0) fitted[SP_CH_NPSH_MARGIN] = true;
     if (d->engine.wetted_area > 0.0) fitted[SP_CH_LOCAL_MARGIN] = true;
     if (d->tank.catch_can > 0.0 || d->tank.lost > 0.0) fitted[SP_CH_TANK_LEVEL] = true;
-    for (int i = 0; i < EACH * (c->exchangers - 1); ++i) fitted[OF_CORE + i] = true;
+    for (int i = 0; i < EACH * (c->exchangers - 1); ++i)
+        fitted[OF_CORE + i] = true;
 }
 
 /* Of all ducts together: flows and forces; of the first: its bay. */
@@ -87,7 +90,8 @@ static void stores(const struct sp_run *r, const struct sp_inputs *in, const dou
     v[SP_CH_CHARGE_IN] = sp_circuit_charge_in(c, in);
     v[SP_CH_CHARGE_OUT] = sp_circuit_charge_out(c, in, y);
     v[SP_CH_FAN_CURRENT] = current(c, in, y);
-    v[SP_CH_BATTERY] = l->battery >= 0 ? fmax(1.0 - y[l->battery] / (e->battery * e->voltage_stopped), 0.0) : NAN;
+    v[SP_CH_BATTERY] =
+        l->battery >= 0 ? fmax(1.0 - y[l->battery] / (e->battery * e->voltage_stopped), 0.0) : NAN;
     v[SP_CH_TANK_LEVEL] = fmax(c->design->tank.volume - sp_circuit_tank(c, in, y, &tank).gas, 0.0);
 }
 
@@ -117,7 +121,8 @@ void sp_run_sample_fitted(const struct sp_run *r, const struct sp_inputs *in, co
     double share = d->engine.breathes_bay, ambient = in->in[SP_IN_AMBIENT];
     v[SP_CH_INTAKE] = ambient + share * (v[SP_CH_BAY] - ambient);
     v[SP_CH_NPSH_MARGIN] = k->loop.npsh_available - k->loop.npsh_required;
-    for (int f = 1; f < c->fans; ++f) v[SP_CH_FAN_MORE + f - 1] = y[c->layout.fan[f]];
+    for (int f = 1; f < c->fans; ++f)
+        v[SP_CH_FAN_MORE + f - 1] = y[c->layout.fan[f]];
     for (int i = SP_CH_OIL; i < SP_CHANNELS; ++i)
         if (!r->fitted[i]) v[i] = NAN;
 }

@@ -53,9 +53,6 @@ static void ledger(struct sp_run *r, const double *start, const double *end)
     out->ledger.error = (out->ledger.in - out->ledger.out_air - out->ledger.out_skin - out->ledger.stored) / turned;
 }
 
-/* A limit with its key, the room left to it and when it was first broken. */
-struct limit { const char *key; double left; enum sp_event_kind broken; };
-
 static double first_event(const struct sp_result *r, enum sp_event_kind kind)
 {
     for (size_t i = 0; i < r->events; ++i)
@@ -63,36 +60,66 @@ static double first_event(const struct sp_result *r, enum sp_event_kind kind)
     return INFINITY;
 }
 
-static enum sp_event_kind stop_of(enum sp_limited of)
+/* Keys of the limits that decide, and the events that say they are broken. */
+static const struct { const char *key; int broken; } decides[SP_ROOMS] = {
+    {"limits.coolant", SP_EV_COOLANT_OVER},
+    {"limits.gauge", SP_EV_GAUGE_OVER},
+    {"limits.metal", SP_EV_METAL_OVER},
+    {"limits.boil_margin", SP_EV_BOIL_MARGIN_UNDER},
+    {"limits.oil", SP_EV_TIER + 6 * SP_LIMITED_OIL + 4},
+    {"limits.gearbox", SP_EV_TIER + 6 * SP_LIMITED_GEARBOX + 4},
+    {"limits.charge", SP_EV_TIER + 6 * SP_LIMITED_CHARGE + 4}};
+
+void sp_run_limits(const struct sp_limits *l, double out[SP_ROOMS])
 {
-    return (enum sp_event_kind)(SP_EV_TIER + 6 * (int)of + 4);
+    const double all[SP_ROOMS] = {l->coolant.stop, l->gauge.stop,   l->metal.stop, l->boil_margin,
+                                  l->oil.stop,     l->gearbox.stop, l->charge.stop};
+    for (int i = 0; i < SP_ROOMS; ++i) out[i] = all[i];
+}
+
+static bool limit_moves(const struct sp_design *d, int i, double limit)
+{
+    for (size_t n = 0; n < d->changes; ++n) {
+        double changed[SP_ROOMS];
+        sp_run_limits(&d->change[n].to->limits, changed);
+        if (changed[i] != limit && !(isnan(changed[i]) && isnan(limit))) return true;
+    }
+    return false;
+}
+
+/* Limit less peak; where a change moves the limit, of the nearest moment. */
+static void find_rooms(struct sp_run *r)
+{
+    struct sp_result *out = r->result;
+    double limit[SP_ROOMS];
+    const double peak[SP_ROOMS] = {out->coolant.value, out->gauge.value,   out->metal.value, out->boil_margin.value,
+                                   out->oil.value,     out->gearbox.value, out->charge.value};
+    sp_run_limits(&r->drive->design->limits, limit);
+    for (int i = 0; i < SP_ROOMS; ++i) {
+        double left = i == SP_ROOM_BOIL ? peak[i] - limit[i] : limit[i] - peak[i];
+        out->room[i] = limit_moves(r->drive->design, i, limit[i]) ? r->room[i] : (struct sp_room){limit[i], peak[i], left};
+    }
 }
 
 static void judge(struct sp_run *r)
 {
     struct sp_result *out = r->result;
-    const struct sp_limits *l = &r->drive->design->limits;
-    const struct limit all[] = {{"limits.coolant", l->coolant.stop - out->coolant.value, SP_EV_COOLANT_OVER},
-                                {"limits.gauge", l->gauge.stop - out->gauge.value, SP_EV_GAUGE_OVER},
-                                {"limits.metal", l->metal.stop - out->metal.value, SP_EV_METAL_OVER},
-                                {"limits.boil_margin", out->boil_margin.value - l->boil_margin, SP_EV_BOIL_MARGIN_UNDER},
-                                {"limits.oil", l->oil.stop - out->oil.value, stop_of(SP_LIMITED_OIL)},
-                                {"limits.gearbox", l->gearbox.stop - out->gearbox.value, stop_of(SP_LIMITED_GEARBOX)},
-                                {"limits.charge", l->charge.stop - out->charge.value, stop_of(SP_LIMITED_CHARGE)}};
     double least = INFINITY, earliest = INFINITY;
+    find_rooms(r);
     out->survives = true;
-    for (size_t i = 0; i < sizeof all / sizeof all[0]; ++i) {
-        if (!isfinite(all[i].left)) continue;
-        bool broken = all[i].left < 0.0;
-        double when = broken ? first_event(out, all[i].broken) : INFINITY;
-        if (broken ? (out->survives || when < earliest) : (out->survives && all[i].left < least)) {
-            out->limit = all[i].key;
-            least = all[i].left;
+    for (int i = 0; i < SP_ROOMS; ++i) {
+        double left = out->room[i].left;
+        if (!isfinite(left)) continue;
+        bool broken = left < 0.0;
+        double when = broken ? first_event(out, (enum sp_event_kind)decides[i].broken) : INFINITY;
+        if (broken ? (out->survives || when < earliest) : (out->survives && left < least)) {
+            out->limit = decides[i].key;
+            least = left;
             earliest = when;
         }
         if (broken) out->survives = false;
     }
-    out->margin = all[0].left;
+    out->margin = out->room[0].left;
 }
 
 static int by_time(const void *a, const void *b)
@@ -121,6 +148,7 @@ enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_co
     out->distance = s->distance[s->rows - 1];
     settle_fans(r);
     settle_battery(r, end);
+    out->pump_head_left = isfinite(r->head_lost.best) ? 1.0 - r->head_lost.best : NAN;
     if (r->high[SP_W_COOLANT]) out->time_over_limit += out->duration - r->over_since;
     if (r->high[SP_W_FULL]) out->time_above_band += out->duration - r->full_since;
     out->coolant = place(r, &r->coolant);

@@ -49,17 +49,32 @@ static double fan_watch(const struct sp_circuit *c, const struct sp_modes *m, co
     return f->law == SP_FAN_PROPORTIONAL ? T - f->from : 1.0;
 }
 
-static void play_watch(const struct sp_thermostat *t, const struct sp_modes *m, const double *y, double g[])
+static void play_watch(const struct sp_circuit *c, const struct sp_modes *m, const double *y,
+                       const struct sp_coupling *k, double g[])
 {
+    const struct sp_thermostat *t = &c->design->thermostat;
     g[SP_W_PLAY] = g[SP_W_PLAY_SHUT] = 1.0;
-    if (t->none || !(t->hysteresis > 0.0)) return;
+    if (t->none || t->restrictor > 0.0 || !(t->hysteresis > 0.0)) return;
     double wax = y[SP_Y_WAX];
     if (m->play == SP_PLAY_HELD) {
         g[SP_W_PLAY] = wax - m->held - slack;
         g[SP_W_PLAY_SHUT] = wax - m->held + t->hysteresis + slack;
     } else {
-        g[SP_W_PLAY] = y[SP_Y_JACKET] - wax; /* its sign is the wax's direction */
+        g[SP_W_PLAY] = sp_circuit_wax_sees(c, y, k) - wax; /* its sign is the wax's direction */
     }
+}
+
+/* A thermostat that a map heats opens earlier; a plate in its place does not open. */
+static void lift_watch(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *m, const double *y,
+                       double g[])
+{
+    const struct sp_thermostat *t = &c->design->thermostat;
+    g[SP_W_OPENS] = g[SP_W_FULL] = -1.0;
+    if (t->none || t->restrictor > 0.0) return;
+    double effective = sp_thermostat_effective(t, m->play, y[SP_Y_WAX], m->held) +
+                       sp_thermostat_mapped(t, in->in[SP_IN_POWER]);
+    g[SP_W_OPENS] = effective - t->opens;
+    g[SP_W_FULL] = effective - t->full;
 }
 
 static double over(double value, double limit)
@@ -134,10 +149,8 @@ void sp_watch(const struct sp_watch_list *list, const struct sp_circuit *c, cons
     const struct sp_design *d = c->design;
     double *g = out->g;
     g[SP_W_FAN] = fan_watch(c, modes, y, 0);
-    play_watch(&d->thermostat, modes, y, g);
-    double effective = sp_thermostat_effective(&d->thermostat, modes->play, y[SP_Y_WAX], modes->held);
-    g[SP_W_OPENS] = d->thermostat.none ? -1.0 : effective - d->thermostat.opens;
-    g[SP_W_FULL] = d->thermostat.none ? -1.0 : effective - d->thermostat.full;
+    play_watch(c, modes, y, k, g);
+    lift_watch(c, in, modes, y, g);
     struct sp_tank_inputs tank;
     out->tank_pressure = sp_circuit_tank(c, in, y, &tank).pressure;
     g[SP_W_CAP] = out->tank_pressure - tank.ambient - d->tank.cap;
@@ -149,6 +162,7 @@ void sp_watch(const struct sp_watch_list *list, const struct sp_circuit *c, cons
     g[SP_W_BOIL] = -out->boil_margin;
     g[SP_W_LOST] = y[SP_Y_LOST] - lost_least;
     out->local_margin = list->local && d->engine.wetted_area > 0.0 ? local_margin(c, y, k, out->tank_pressure) : NAN;
+    out->head_left = k->loop.head_factor;
     for (int w = SP_WATCHES; w < list->count; ++w) g[w] = further(&list->of[w], c, in, modes, t, y, k, out);
 }
 

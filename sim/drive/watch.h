@@ -46,6 +46,7 @@ extern const struct sp_watch_events sp_watch_event[SP_WATCH_KINDS];
 struct sp_watched {
     double g[SP_WATCHES_MOST]; /* in the list's order; one that does not apply never changes sign */
     double tank_pressure, boil_margin, local_margin; /* Pa, K, K; local NAN where not judged */
+    double head_left; /* share of the pump's rise that cavitation leaves */
 };
 
 /* All values at once; k needs the coolant's split, and the jacket's conductance where list->local. */

@@ -244,4 +244,5 @@ void sp_case_check(struct sp_reader *r)
     check_ducts(r);
     sp_case_check_loop(r);
     sp_case_check_fitted(r);
+    sp_case_check_engine(r);
 }

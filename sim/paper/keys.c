@@ -7,10 +7,9 @@
 #include <string.h>
 
 /* The order matters: a rule may use what stands in an earlier table. */
-static const struct sp_key *const tables[] = {sp_keys_case,   sp_keys_drive,   sp_keys_body,
-                                              sp_keys_engine, sp_keys_oil,     sp_keys_circuit, sp_keys_duct,
-                                              sp_keys_core,   sp_keys_fan,     sp_keys_tank,
-                                              sp_keys_change};
+static const struct sp_key *const tables[] = {sp_keys_case,    sp_keys_drive, sp_keys_body, sp_keys_engine,
+                                              sp_keys_oil,     sp_keys_circuit, sp_keys_duct, sp_keys_exit,
+                                              sp_keys_core,    sp_keys_fan,   sp_keys_tank, sp_keys_change};
 enum { TABLES = sizeof tables / sizeof *tables };
 
 const struct sp_key *sp_key_row(size_t i)
@@ -63,13 +62,12 @@ static bool leads_to(const char *group, const char *path)
     return !strncmp(group, path, length) && (!path[length] || path[length] == '.');
 }
 
+/* Such a group is the first row of its table: this is asked often. */
 size_t sp_key_lists(const char *path, const struct sp_key *lists[SP_KEY_LISTS])
 {
     size_t n = 0;
-    if (!leads_to(sp_keys_duct->path, path)) return 0; /* all lists are ducts or stand in one: asked often */
     for (size_t t = 0; t < TABLES && n < SP_KEY_LISTS; ++t)
-        for (const struct sp_key *row = tables[t]; row->path; ++row)
-            if (row->plural && n < SP_KEY_LISTS && leads_to(row->path, path)) lists[n++] = row;
+        if (tables[t]->plural && leads_to(tables[t]->path, path)) lists[n++] = tables[t];
     return n;
 }
 

@@ -135,7 +135,7 @@ bool sp_word_value(const struct sp_key *row, const char *text, double *value);
 /* ---- the tables, one a room; ended by a NULL path -------------------------------------------------- */
 
 extern const struct sp_key sp_keys_case[], sp_keys_drive[], sp_keys_body[], sp_keys_engine[],
-    sp_keys_circuit[], sp_keys_duct[], sp_keys_core[], sp_keys_fan[], sp_keys_tank[], sp_keys_change[],
+    sp_keys_circuit[], sp_keys_duct[], sp_keys_exit[], sp_keys_core[], sp_keys_fan[], sp_keys_tank[], sp_keys_change[],
     sp_keys_oil[];
 
 /* ---- defaults worked out from other values: keys_rule.c, keys_rule_engine.c ------------------------ */

@@ -110,7 +110,9 @@ const struct sp_key sp_keys_duct[] = {
      SAYS("share of the heat off the engine's skin that the air in this bay takes up, of all equal ducts together; "
           "it leaves by the exits, and what is drawn back through open cores brings it along"),
      DEFINITION},
+    END_OF_KEYS};
 
+const struct sp_key sp_keys_exit[] = {
     {GROUP("car.duct.exit"), REQUIRED,
      LISTED("exits", sp_exit, SP_EXITS, "side by side, each with an outside pressure of its own"),
      COUNTED(duct[0].exits), SAYS("where the air goes out")},

@@ -105,6 +105,7 @@ static void write_sums(struct sp_writer *w, const struct sp_result *out)
     sp_write_number(w, "on_s", out->fan.on);
     sp_write_number(w, "energy_J", out->fan.energy);
     sp_write_close(w, '}');
+    if (isfinite(out->pump_head_left)) sp_write_number(w, "pump_head_left", out->pump_head_left);
     if (isfinite(out->battery.used)) {
         sp_write_open(w, "battery", '{');
         sp_write_number(w, "used_J", out->battery.used);

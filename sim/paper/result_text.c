@@ -17,22 +17,18 @@ struct judged {
     double limit, came_to, left;
 };
 
-enum { LIMITS = 7, BOIL_MARGIN = 3, ALWAYS = 4 }; /* ALWAYS: these are missing where they are not given */
+enum { LIMITS = SP_ROOMS, BOIL_MARGIN = SP_ROOM_BOIL, ALWAYS = 4 }; /* ALWAYS: these are missing where they are not given */
 
 static void list_limits(const struct sp_report *r, struct judged out[LIMITS])
 {
-    const struct sp_limits *l = &r->design->limits;
-    const struct sp_result *s = r->result;
-    const struct judged all[LIMITS] = {
-        {"limits.coolant", "coolant", l->coolant.stop, s->coolant.value, l->coolant.stop - s->coolant.value},
-        {"limits.gauge", "the gauge", l->gauge.stop, s->gauge.value, l->gauge.stop - s->gauge.value},
-        {"limits.metal", "the metal", l->metal.stop, s->metal.value, l->metal.stop - s->metal.value},
-        {"limits.boil_margin", "boil margin", l->boil_margin, s->boil_margin.value,
-         s->boil_margin.value - l->boil_margin},
-        {"limits.oil", "oil", l->oil.stop, s->oil.value, l->oil.stop - s->oil.value},
-        {"limits.gearbox", "gearbox oil", l->gearbox.stop, s->gearbox.value, l->gearbox.stop - s->gearbox.value},
-        {"limits.charge", "charge air", l->charge.stop, s->charge.value, l->charge.stop - s->charge.value}};
-    memcpy(out, all, sizeof all);
+    static const struct { const char *key, *what; } name[LIMITS] = {
+        {"limits.coolant", "coolant"},          {"limits.gauge", "the gauge"}, {"limits.metal", "the metal"},
+        {"limits.boil_margin", "boil margin"}, {"limits.oil", "oil"},         {"limits.gearbox", "gearbox oil"},
+        {"limits.charge", "charge air"}};
+    for (int i = 0; i < LIMITS; ++i) {
+        const struct sp_room *room = &r->result->room[i];
+        out[i] = (struct judged){name[i].key, name[i].what, room->limit, room->came_to, room->left};
+    }
 }
 
 /* ---- first line ------------------------------------------------------------------------------------ */
@@ -128,6 +124,9 @@ static void say_failure(const struct telling *t, const char *label, const struct
     char beyond[80] = "";
     if (f->worst > 0.0 && f->kind != SP_EV_BOILING)
         snprintf(beyond, sizeof beyond, "; %.*g %s beyond at the worst", t->exact ? 6 : 2, f->worst / f->scale, f->unit);
+    if (f->kind == SP_EV_CAVITATES)
+        snprintf(beyond, sizeof beyond, "; it keeps %.*f %% of its head at the worst", t->exact ? 3 : 0,
+                 100.0 * t->report->result->pump_head_left);
     if (f->kind == SP_EV_LOST)
         snprintf(beyond, sizeof beyond, "; %.*g %s in all", t->exact ? 6 : 2, f->worst / f->scale, f->unit);
     sp_say(t->to, SP_LABEL_WIDTH, label, "%s (%s) %s%s", sp_event_text(f->kind), f->place ? f->place : "car",

@@ -113,6 +113,39 @@ want 0 run case.json "$@"
 says out "no model at all"
 says out '(trace.csv), Top'
 
+# Tiers of a limit: the first to be passed and the worst are named, in text, JSON and events.
+set -- --set 'limits={"coolant_caution": "86 degC", "coolant_alarm": "88 degC", "coolant": "90 degC"}'
+want 1 run case.json --json "$@" -o tiers
+is_json out
+says out '"what": "coolant over caution"'
+says out '"severity": "caution"'
+grep -A3 '"first_failure": {' out | grep -q '"what": "coolant over alarm"' || fail "the alarm is not first"
+grep -A3 '"worst_failure": {' out | grep -q '"what": "coolant over limit"' || fail "the limit is not worst"
+head -n 1 tiers/events.csv | grep -q ',mark,place,severity$' || fail "events end in $(head -n 1 tiers/events.csv)"
+grep -q ',coolant over limit,.*,jacket,stop$' tiers/events.csv || fail "no place and severity in events.csv"
+want 1 run case.json "$@"
+says out "Fails first      coolant over alarm (jacket)"
+says out "Fails worst      coolant over limit (jacket)"
+says out "of common practice"
+awk 'length($0) > 80 { exit 1 }' out || fail "text wider than 80 columns"
+want 0 run case.json
+says_not out "Fails"
+want 0 run case.json --json
+says out '"failures": ['
+says out '"first_failure": null'
+want 2 run case.json --set 'limits.coolant_alarm=130 degC'
+says err "limits.coolant: found"
+want 2 run case.json --set 'limits.oil=130 degC'
+says err "limits.oil: found"
+
+# Columns of what is fitted only.
+want 0 run case.json -o plain
+head -n 1 plain/series.csv | grep -q 'drag \[N\]$' || fail "columns that a plain car does not have"
+want 0 run case.json --set 'car.pump.npsh=3 m' --set 'car.engine.wetted_area=500 cm2' -o more
+head -n 1 more/series.csv | grep -q ',npsh_margin \[m\],local_boil_margin \[K\]$' || fail "no columns of what is fitted"
+cut -d, -f1-33 more/series.csv | head -n 1 >one
+head -n 1 plain/series.csv | cmp -s - one || fail "other columns changed"
+
 # Other drives by --set.
 want 0 run case.json --json --set 'drive[2].repeat=2'
 close "a step repeated" "$(number duration_s)" 750 1e-12

@@ -11,7 +11,9 @@
 static void onset_in_water(void **state)
 {
     (void)state;
-    const struct { double over, flux; } at_two_bar[] = {{2.0, 36.7e3}, {4.0, 160e3}, {6.0, 379e3}, {8.0, 698e3}};
+    const struct {
+        double over, flux;
+    } at_two_bar[] = {{2.0, 36.7e3}, {4.0, 160e3}, {6.0, 379e3}, {8.0, 698e3}};
     for (int i = 0; i < 4; ++i) {
         check_close(sp_boil_onset_flux(2e5, at_two_bar[i].over), at_two_bar[i].flux, 2e-3, 0);
         check_close(sp_boil_onset_excess(2e5, at_two_bar[i].flux), at_two_bar[i].over, 2e-3, 0);
@@ -21,7 +23,8 @@ static void onset_in_water(void **state)
     check_close(sp_boil_onset_flux(1e5, 5.0), 1082.0 * exp(2.16 * log(9.0)), 1e-12, 0);
 }
 
-/* Water of 100 degC at 2 bar absolute, 14 334 W/m2K: the wall boils at the excess where flux and onset meet. */
+/* Water of 100 degC at 2 bar absolute, 14 334 W/m2K: the wall boils at the excess where flux and onset meet.
+ */
 static void onset_where_flux_meets(void **state)
 {
     (void)state;
@@ -37,7 +40,8 @@ static void onset_at_the_ends(void **state)
     (void)state;
     assert_true(sp_boil_onset_flux(2e5, 0.0) == 0.0 && sp_boil_onset_flux(2e5, -3.0) == 0.0);
     assert_true(sp_boil_onset_excess(2e5, 0.0) == 0.0 && sp_boil_onset_excess(2e5, -1e5) == 0.0);
-    check_close(sp_local_boil_margin(2e5, 393.0, 380.0, 0.0), 13.0, 1e-12, 0); /* no flux: it boils where bulk does */
+    check_close(sp_local_boil_margin(2e5, 393.0, 380.0, 0.0), 13.0, 1e-12,
+                0); /* no flux: it boils where bulk does */
     check_close(sp_boil_onset_flux(2e4, 5.0), sp_boil_onset_flux(1e5, 5.0), 1e-12, 0); /* held below 1 bar */
     for (double q = 1.0; q < 1e7; q *= 3.0)
         for (double p = 1e4; p < 2e7; p *= 2.0)
@@ -46,7 +50,8 @@ static void onset_at_the_ends(void **state)
 
 int main(void)
 {
-    const struct CMUnitTest tests[] = {cmocka_unit_test(onset_in_water), cmocka_unit_test(onset_where_flux_meets),
+    const struct CMUnitTest tests[] = {cmocka_unit_test(onset_in_water),
+                                       cmocka_unit_test(onset_where_flux_meets),
                                        cmocka_unit_test(onset_at_the_ends)};
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

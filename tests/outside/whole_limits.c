@@ -100,7 +100,7 @@ static void check_same(const struct sp_design *a, const struct sp_design *b, dou
                     most);
         fail();
     }
-    assert_int_equal(x.result.events, y.result.events);
+    if (give == 0.0) assert_int_equal(x.result.events, y.result.events);
     fixture_drop(&x);
     fixture_drop(&y);
 }
@@ -407,7 +407,8 @@ static void rest(void **state)
     check_close(at.at.value[SP_CH_ENGINE_OUT], fixture_last(&r, SP_CH_ENGINE_OUT), 0, 1e-3);
     check_close(at.at.value[SP_CH_RADIATOR_OUT], fixture_last(&r, SP_CH_RADIATOR_OUT), 0, 1e-3);
     check_close(at.at.value[SP_CH_METAL], fixture_last(&r, SP_CH_METAL), 0, 1e-3);
-    assert_true(at.oil > at.at.value[SP_CH_ENGINE_OUT]);
+    check_close(at.oil, fixture_last(&r, SP_CH_OIL), 0, 1e-3);
+    assert_true(at.oil > d.air.ambient + 10.0);
     sp_complaints_free(&c);
     sp_complaints_free(&cautions);
     fixture_drop(&r);

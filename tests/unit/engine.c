@@ -270,7 +270,7 @@ static void beyond_the_plain(void **state)
         sp_engine_law_oil(law, &oil);
         for (double speed = 0.5; speed < 120.0; speed += 1.7)
             for (double power = -20e3; power < 110e3; power += 700.0) {
-                struct sp_engine_heat a = heat(law, power - 1e-2, speed), b = heat(law, power + 1e-2, speed);
+                struct sp_engine_heat a = heat(law, power - 1e-3, speed), b = heat(law, power + 1e-3, speed);
                 struct sp_engine_heat n = heat(law, power, speed + 1e-6);
                 check_close(a.gas, b.gas, 0.0, 0.3);
                 check_close(a.gas, n.gas, 0.0, 0.3);

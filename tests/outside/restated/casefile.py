@@ -61,7 +61,7 @@ def understood(raw):
         air["altitude"] = standard_altitude(air["pressure"])
     else:
         air["pressure"] = standard_pressure(air.setdefault("altitude", 0.0))
-    _fill(case.setdefault("solver", {}), tolerance=1e-5, merge=0.5)
+    _fill(case.setdefault("solver", {}), tolerance=1e-5, merge=0.3)
     start = _fill(case.setdefault("start", {}), coolant=air["ambient"])
     _fill(start, metal=start["coolant"], radiator=start["coolant"])
     _car(case["car"])

@@ -72,6 +72,11 @@ class EngineHeat:
             return 0.0
         return self.oil["heat_share"] * max(power, 0.0) + self.oil["friction_share"] * self.motoring(turns)
 
+    def burnt(self, power, turns):
+        """Fuel power, faded out as the fuel is cut."""
+        cut = ramp(power / self.rated, 0.0, -0.02) * ramp(turns / self.e["idle_speed"], 1.2, 1.5)
+        return (1 - cut) * self._fuel(power, turns)
+
     def _bilinear(self, power, turns):
         s, p = self.speeds, self.powers
         n = min(max(turns, s[0]), s[-1])
