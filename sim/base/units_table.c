@@ -121,7 +121,6 @@ static const struct sp_spelling spellings[] = {
     {SP_K_FOULING, "m2 K/W", 1.0, 0.0},
     {SP_K_FOULING, "m2.K/W", 1.0, 0.0},
     {SP_K_CHARGE, "A.h", 3600.0, 0.0},
-    {SP_K_CHARGE, "Ah", 3600.0, 0.0},
     {SP_K_TORQUE, "lb-ft", LBF * 0.3048, 0.0},
     {SP_K_TORQUE, "lb.ft", LBF * 0.3048, 0.0},
     {SP_K_TORQUE, "lb ft", LBF * 0.3048, 0.0},

@@ -29,7 +29,8 @@ static bool hold_engine(struct sp_scheduling *b, size_t i, struct sp_row *row, s
     const struct sp_step *step = &d->step[i];
     struct sp_engine_sources s = {.design = d, .law = b->law, .power = SP_POWER_COLUMN, .speed = SP_ENGINE_COLUMN};
     if (!hold_turns(b, i)) return false;
-    bool powerless = d->engine.heat_law == SP_HEAT_GIVEN && d->engine.heat_loss == 0.0 && !sp_road_load_known(&d->body);
+    bool powerless = d->engine.heat_law == SP_HEAT_GIVEN && d->engine.heat_loss == 0.0 &&
+                     !sp_road_load_known(&d->body);
     if (isnan(step->power) && step->speed != 0.0 && !powerless) {
         s.power = SP_POWER_ROAD;
         to->power_from_road = true;

@@ -128,7 +128,8 @@ static void fill_charge(const struct sp_design *d, const struct sp_engine_row *r
 {
     const struct sp_charge *g = &d->charge;
     if (!isnan(row->fuel_flow)) fuel = row->fuel_flow * d->engine.heating_value;
-    double flow = isnan(row->air_flow) ? sp_charge_flow(g, fuel, sp_engine_rated_fuel(&d->engine)) : row->air_flow;
+    double flow =
+        isnan(row->air_flow) ? sp_charge_flow(g, fuel, sp_engine_rated_fuel(&d->engine)) : row->air_flow;
     in[SP_IN_CHARGE_FLOW] = fmax(flow, 0.0);
     in[SP_IN_CHARGE_HEATING] = sp_charge_heating(g, flow);
 }
@@ -140,8 +141,8 @@ static double gearbox_heat(const struct sp_design *d, double power, double speed
     return sp_oil_heat(&d->gearbox, fabs(power), motored ? sp_engine_motoring(&d->engine, speed) : 0.0);
 }
 
-double sp_engine_row_heat(const struct sp_design *d, const struct sp_engine_law *law, const struct sp_engine_row *row,
-                          double measured, double in[SP_INPUTS])
+double sp_engine_row_heat(const struct sp_design *d, const struct sp_engine_law *law,
+                          const struct sp_engine_row *row, double measured, double in[SP_INPUTS])
 {
     struct sp_engine_heat heat = sp_engine_heat(law, row);
     bool given = d->engine.heat_law == SP_HEAT_GIVEN;

@@ -125,15 +125,15 @@ struct sp_wheel_power {
     double rolling, climb, drag, inertia, brakes;
 };
 
-/* Fills power, engine speed, heats and charge air of a row. `wheel` is filled when power comes from the road; may
- * be NULL. Returns what the energy cap took off the heat, W. */
+/* Fills power, engine speed, heats and charge air of a row. `wheel` is filled when power comes from the road;
+ * may be NULL. Returns what the energy cap took off the heat, W. */
 double sp_engine_row_fill(const struct sp_engine_sources *s, const struct sp_moment *at, double in[SP_INPUTS],
                           struct sp_wheel_power *wheel);
 
-/* Heats and charge air from power [W] and speed [rev/s] in `row`, and a heat [W] that was measured (NAN: none).
- * Returns as above. */
-double sp_engine_row_heat(const struct sp_design *d, const struct sp_engine_law *law, const struct sp_engine_row *row,
-                          double heat, double in[SP_INPUTS]);
+/* Heats and charge air from power [W] and speed [rev/s] in `row`, and a heat [W] that was measured (NAN:
+ * none). Returns as above. */
+double sp_engine_row_heat(const struct sp_design *d, const struct sp_engine_law *law,
+                          const struct sp_engine_row *row, double heat, double in[SP_INPUTS]);
 
 /* Engine speed [rev/s] below which the engine is off; with a given heat none. */
 double sp_off_speed(const struct sp_engine *e);

@@ -69,9 +69,11 @@ void sp_schedule_caution_cap(struct sp_scheduling *b, size_t step, double cut)
 {
     char found[128], expected[160];
     if (!(cut > 0.0)) return;
-    snprintf(found, sizeof found, "up to %.4g kW more heat than the fuel has left beside work and oil", cut / 1e3);
+    snprintf(found, sizeof found, "up to %.4g kW more heat than the fuel has left beside work and oil",
+             cut / 1e3);
     snprintf(expected, sizeof expected,
-             "no more than car.engine.heat.energy_cap, %.4g of the fuel's energy, in all; the coolant's heat is cut",
+             "no more than car.engine.heat.energy_cap, %.4g of the fuel's energy, in all; the coolant's heat "
+             "is cut",
              b->design->engine.energy_cap);
     sp_schedule_caution(b, step, found, expected);
 }

@@ -93,7 +93,8 @@ static enum sp_speed_source speed_source(const struct deriving *v)
 static bool heat_told(struct deriving *v)
 {
     const struct sp_engine *e = &v->b->design->engine;
-    if (e->heat_law != SP_HEAT_GIVEN || has(v, SP_COL_HEAT) || e->heat_given > 0.0 || e->heat_loss > 0.0) return true;
+    bool told = has(v, SP_COL_HEAT) || e->heat_given > 0.0 || e->heat_loss > 0.0;
+    if (e->heat_law != SP_HEAT_GIVEN || told) return true;
     sp_schedule_fault(v->b, v->step, "trace", "no heat, with car.engine.heat.law given",
                       "a column heat, or car.engine.heat.given or loss");
     return false;

@@ -109,8 +109,8 @@ static bool said(const struct sp_complaints *list, const struct sp_place *at, co
     return false;
 }
 
-/* What was said of the case as it begins, or of an earlier turn, is not said again. What is no fault of a value
- * that was set follows from the change all the same, and is said of it. */
+/* What was said of the case as it begins, or of an earlier turn, is not said again. What is no fault of a
+ * value that was set follows from the change all the same, and is said of it. */
 static void pass_on(const struct sp_complaints *from, const struct sp_turn *turn, struct sp_complaints *to)
 {
     for (size_t i = 0; i < from->count; ++i) {

@@ -48,7 +48,8 @@ static bool part_there(struct sp_reader *r, const struct sp_setting *s)
     const struct sp_key *group;
     for (size_t i = 0; (group = sp_key_row(i)) != NULL; ++i) {
         char found[120];
-        bool must = group->need == SP_NEED_ALWAYS || (group->need == SP_NEED_DRIVE && r->purpose == SP_FOR_DRIVE);
+        bool must =
+            group->need == SP_NEED_ALWAYS || (group->need == SP_NEED_DRIVE && r->purpose == SP_FOR_DRIVE);
         bool part = group->keep == SP_KEEP_BOOL && !group->or_none;
         if (group->shape != SP_SHAPE_GROUP || !(must || part) || !within(group->path, s->row->path)) continue;
         if (sp_case_given_at(r, group->path, &s->at)) continue;
@@ -63,7 +64,8 @@ bool sp_change_allowed(struct sp_reader *r, const struct sp_setting *s)
 {
     const char *path = s->row->path;
     if (strncmp(path, "car.", 4) && !within("limits", path))
-        return refuse(r, s, "a change of it", "a key of the car or of limits: all else is read once, before the drive");
+        return refuse(r, s, "a change of it",
+                      "a key of the car or of limits: all else is read once, before the drive");
     for (size_t i = 0; i < sizeof fixed / sizeof *fixed; ++i)
         if (within(fixed[i].path, path)) return refuse(r, s, "a change of it", fixed[i].expected);
     if (s->list || s->row->shape == SP_SHAPE_GROUP)
@@ -125,7 +127,8 @@ static bool read_addend(struct sp_reader *r, const struct sp_setting *s, enum sp
 }
 
 /* In the unit of what was added, as its user will know it. */
-static struct sp_json *sum_node(struct sp_reader *r, const struct sp_json *node, enum sp_kind kind, double sum)
+static struct sp_json *sum_node(struct sp_reader *r, const struct sp_json *node, enum sp_kind kind,
+                                double sum)
 {
     double scale = 1.0, offset = 0.0;
     char why[300], text[120];

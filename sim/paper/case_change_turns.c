@@ -50,7 +50,8 @@ static struct sp_planned read_entry(struct sp_reader *r, const struct sp_json *n
     const struct sp_json *every = sp_json_member(node, "every"), *times = sp_json_member(node, "times");
     if (!sp_json_member(node, "at")) fault(r, node, i, "at", "nothing", "a time such as \"12 min\"");
     if (every && !times) fault(r, node, i, "times", "nothing", "a whole number, for every is given");
-    if (times && !every) fault(r, node, i, "every", "nothing", "a time such as \"100 s\", for times is given");
+    if (times && !every)
+        fault(r, node, i, "every", "nothing", "a time such as \"100 s\", for times is given");
     check_values(r, node, i);
     return planned;
 }
@@ -71,7 +72,8 @@ static size_t add_turns(struct sp_turn *turn, size_t have, const struct sp_plann
     bool again = planned->every > 0.0 && planned->times > 1.0;
     size_t n = again ? (size_t)planned->times : 1;
     for (size_t k = 0; k < n && have + k < SP_CHANGES_MAX; ++k)
-        turn[have + k] = (struct sp_turn){planned->at + (k ? (double)k * planned->every : 0.0), i, have + k, node};
+        turn[have + k] =
+            (struct sp_turn){planned->at + (k ? (double)k * planned->every : 0.0), i, have + k, node};
     return n;
 }
 

@@ -205,7 +205,8 @@ static void check_diffuser(struct sp_reader *r, const struct sp_key_spot *at)
     if (kind && sp_case_given_at(r, "car.duct.diffuser.loss", at))
         sp_case_fault_of(r, "car.duct.diffuser.kind", at, "both kind and loss", "one of them", NULL);
     if (length && !kind)
-        sp_case_fault_of(r, "car.duct.diffuser.kind", at, "nothing", "\"conical\", for a length is given", NULL);
+        sp_case_fault_of(r, "car.duct.diffuser.kind", at, "nothing", "\"conical\", for a length is given",
+                         NULL);
     if (!length && kind && r->design->duct[at->outer].diffuser.kind == SP_DIFFUSER_CONICAL)
         sp_case_fault_of(r, "car.duct.diffuser.length", at, "nothing", "a length such as \"320 mm\"", NULL);
 }
@@ -216,7 +217,8 @@ static void check_ducts(struct sp_reader *r)
     static const struct {
         const char *group;
         void (*check)(struct sp_reader *r, const struct sp_key_spot *at);
-    } parts[] = {{"car.duct", check_diffuser}, {"car.duct.fan", check_fan}, {"car.duct.core", sp_case_check_core}};
+    } parts[] = {
+        {"car.duct", check_diffuser}, {"car.duct.fan", check_fan}, {"car.duct.core", sp_case_check_core}};
     for (size_t i = 0; i < sizeof parts / sizeof *parts; ++i) {
         struct sp_key_spot at = {0};
         do

@@ -24,7 +24,7 @@ static void cautions(struct sp_reader *r, const struct finding *list, size_t n)
         if (list[i].holds) sp_case_caution(r, list[i].path, list[i].found, list[i].expected);
 }
 
-#define FAULTS(list) faults(r, list, sizeof(list) / sizeof *(list))
+#define FAULTS(list)   faults(r, list, sizeof(list) / sizeof *(list))
 #define CAUTIONS(list) cautions(r, list, sizeof(list) / sizeof *(list))
 
 /* ---- a heat that is given -------------------------------------------------------------------------- */
@@ -55,7 +55,8 @@ static void check_given(struct sp_reader *r)
         {!heat && !r->changed && !drives_a_trace(d), "car.engine.heat.given", "nothing",
          "a power such as \"2 kW\", or loss, or a trace with a column heat"},
         {!d->pump.electric && sp_case_given(r, "car.pump"), "car.pump.drive",
-         sp_case_given(r, "car.pump.drive") ? NULL : "\"belt\" by default", "\"electric\", for there is no engine"},
+         sp_case_given(r, "car.pump.drive") ? NULL : "\"belt\" by default",
+         "\"electric\", for there is no engine"},
         {d->charge.fitted, "car.charge", "charge air", "none, for there is no engine"},
     };
     FAULTS(list);
@@ -79,7 +80,8 @@ static void check_size(struct sp_reader *r)
     bool known = sp_case_given(r, "car.engine.bore") && sp_case_given(r, "car.engine.stroke");
     char found[100];
     if (!known || !sized(e) || !(fabs(swept / e->displacement - 1.0) > slack)) return;
-    snprintf(found, sizeof found, "%g cylinders of that bore and stroke, which are %.4g l", e->cylinders, 1e3 * swept);
+    snprintf(found, sizeof found, "%g cylinders of that bore and stroke, which are %.4g l", e->cylinders,
+             1e3 * swept);
     sp_case_fault(r, "car.engine.cylinders", found, "displacement, within 3 %", NULL);
 }
 
@@ -105,14 +107,15 @@ static void doubt_heat(struct sp_reader *r)
     const struct finding list[] = {
         {correlation, "car.engine.heat.law", "heat by a correlation",
          "a measured heat, or correlation_constant fitted to one: engines scatter by 20 % and more about it"},
-        {(correlation || given) && sp_case_given(r, "car.engine.heat.fraction"), "car.engine.heat.fraction", NULL,
-         "no fraction with this law; it is not used"},
+        {(correlation || given) && sp_case_given(r, "car.engine.heat.fraction"), "car.engine.heat.fraction",
+         NULL, "no fraction with this law; it is not used"},
         {!given && sp_case_given(r, "car.engine.heat.given"), "car.engine.heat.given", NULL,
          "law \"given\" with it; it is not used"},
         {!given && sp_case_given(r, "car.engine.heat.loss"), "car.engine.heat.loss", NULL,
          "law \"given\" with it; it is not used"},
         {correlation && (e->diesel ? phi > 0.8 || phi < 0.2 : phi > 1.4 || phi < 0.75),
-         "car.engine.heat.air_fuel_ratio", sp_case_given(r, "car.engine.heat.air_fuel_ratio") ? NULL : "14.7 by default",
+         "car.engine.heat.air_fuel_ratio",
+         sp_case_given(r, "car.engine.heat.air_fuel_ratio") ? NULL : "14.7 by default",
          e->diesel ? "1.25 to 5 times stoichiometric: the gas temperature is known there only"
                    : "0.71 to 1.33 times stoichiometric: the gas temperature is known there only"},
         {over_cap(d), "car.engine.heat.fraction", NULL,
@@ -128,8 +131,8 @@ static void doubt_overrun(struct sp_reader *r)
     static const char *const four[] = {"car.engine.overrun.a", "car.engine.overrun.b", "car.engine.overrun.c",
                                        "car.engine.overrun.d"};
     const struct finding list[] = {
-        {law != SP_FRICTION_POLYNOMIAL && sp_case_given(r, "car.engine.overrun_friction"), "car.engine.overrun_friction",
-         NULL, "overrun.formula \"polynomial\" with it; it is not used"},
+        {law != SP_FRICTION_POLYNOMIAL && sp_case_given(r, "car.engine.overrun_friction"),
+         "car.engine.overrun_friction", NULL, "overrun.formula \"polynomial\" with it; it is not used"},
         {law != SP_FRICTION_SI && sp_case_given(r, "car.engine.overrun.oil"), "car.engine.overrun.oil", NULL,
          "formula \"petrol\" with it; it is not used"},
     };

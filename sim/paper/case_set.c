@@ -44,7 +44,8 @@ static bool past_end(struct sp_reader *r, const struct sp_setting *s, size_t ind
     if (n > 1)
         snprintf(expected, sizeof expected, "an index of 0 to %zu, for there are %zu", n - 1, n);
     else
-        snprintf(expected, sizeof expected, n ? "index 0, for there is 1" : "no index, for the list is empty");
+        snprintf(expected, sizeof expected,
+                 n ? "index 0, for there is 1" : "no index, for the list is empty");
     return complain(r, s, found, expected, NULL);
 }
 
@@ -250,7 +251,8 @@ static bool put(struct sp_reader *r, const struct sp_setting *s, struct sp_json 
 bool sp_setting_apply(struct sp_reader *r, struct sp_setting *s)
 {
     if (!sp_setting_resolve(r, s)) return false;
-    struct sp_json *node = r->tree, *value = s->node ? sp_case_copy(s->node) : sp_json_value(s->label, s->text);
+    struct sp_json *node = r->tree,
+                   *value = s->node ? sp_case_copy(s->node) : sp_json_value(s->label, s->text);
     const char *path = s->place;
     struct sp_path_part part;
     bool bad = false;

@@ -30,7 +30,7 @@ void sp_case_path(const struct sp_json *tree, const char *pattern, const struct 
     const size_t index[SP_KEY_LISTS] = {at->outer, at->inner};
     size_t n = sp_key_lists(pattern, lists), done = 0;
     *out = '\0';
-    for (size_t i = 0; i < n; ++i) {
+    for (size_t i = 0; i < n && i < SP_KEY_LISTS; ++i) {
         const char *name = sp_key_name(lists[i]);
         append(out, size, pattern + done, (size_t)(name - lists[i]->path) - done);
         done = strlen(lists[i]->path);

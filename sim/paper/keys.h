@@ -54,7 +54,8 @@ struct sp_key {
     enum sp_need need;
     const char *when;                          /* when it is needed, in words; NULL: as `need` says */
     const char *fallback;                      /* default as text; with `rule`: the rule in words */
-    double (*rule)(const struct sp_design *d, const struct sp_key_spot *at); /* default worked out from others */
+    /* default worked out from other values, for the element at `at` */
+    double (*rule)(const struct sp_design *d, const struct sp_key_spot *at);
     const char *range;           /* "0 m to 3 m", "above 0 m2, at most 10 m2"; the words of a word list */
     const struct sp_word *words; /* ended by a NULL text */
     const struct sp_key_column *columns; /* of a table */
@@ -135,8 +136,8 @@ bool sp_word_value(const struct sp_key *row, const char *text, double *value);
 /* ---- the tables, one a room; ended by a NULL path -------------------------------------------------- */
 
 extern const struct sp_key sp_keys_case[], sp_keys_drive[], sp_keys_body[], sp_keys_engine[],
-    sp_keys_circuit[], sp_keys_duct[], sp_keys_exit[], sp_keys_core[], sp_keys_fan[], sp_keys_tank[], sp_keys_change[],
-    sp_keys_oil[];
+    sp_keys_circuit[], sp_keys_duct[], sp_keys_exit[], sp_keys_core[], sp_keys_fan[], sp_keys_tank[],
+    sp_keys_change[], sp_keys_oil[];
 
 /* ---- defaults worked out from other values: keys_rule.c, keys_rule_engine.c ------------------------ */
 

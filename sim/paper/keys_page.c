@@ -98,33 +98,26 @@ static const char *const opening[] = {
     "the car",
     "may go without `car.`). Setting `air.pressure` drops `air.altitude`, and the reverse.",
     "",
-    "Of ducts, and of cores, fans and exits in a duct, there may be several: then a list stands under the "
-    "plural,",
-    "`\"cores\": [ {...}, {...} ]` in place of `\"core\": {...}`, never both. The first is `cores[0]`: "
-    "`--set duct.cores[1].blocked=\"30 %\"`,",
-    "`--set ducts[0].inlet.area=\"400 cm2\"`; complaints tell elements apart in the same way. A path may say "
-    "`cores[0]`",
-    "where the case has one `core`, or `core` where it has a list of one; of a longer list the index must be "
-    "said.",
-    "`--set duct.cores=[...]` drops `core`, and a list in a car `from` another replaces all that stood there.",
+    "Of ducts, and of cores, fans and exits in a duct, there may be several: then a list stands under the",
+    "plural, `\"cores\": [ {...}, {...} ]` in place of `\"core\": {...}`, never both. The first is `cores[0]`:",
+    "`--set duct.cores[1].blocked=\"30 %\"`, `--set ducts[0].inlet.area=\"400 cm2\"`; complaints tell elements",
+    "apart in the same way. A path may say `cores[0]` where the case has one `core`, or `core` where it has a",
+    "list of one; of a longer list the index must be said. `--set duct.cores=[...]` drops `core`, and a list in",
+    "a car `from` another replaces all that stood there.",
     "",
     "`changes` tells what becomes different during the drive, such as a blocked inlet or a dead fan:",
     "",
-    "    \"changes\": [ { \"at\": \"12 min\", \"set\": { \"duct.inlet.blocked\": \"40 %\", "
-    "\"duct.fan.health\": \"dead\" } },",
-    "                 { \"at\": \"100 s\", \"every\": \"100 s\", \"times\": 9, \"add\": { "
-    "\"duct.core.blocked\": \"1 %\" } } ]",
+    "    \"changes\": [ { \"at\": \"12 min\",",
+    "                   \"set\": { \"duct.inlet.blocked\": \"40 %\", \"duct.fan.health\": \"dead\" } },",
+    "                 { \"at\": \"100 s\", \"every\": \"100 s\", \"times\": 9,",
+    "                   \"add\": { \"duct.core.blocked\": \"1 %\" } } ]",
     "",
-    "Times count from the start of the drive; changes add up, those of one time in the order of the file. `add` "
-    "adds to the",
-    "value that held until then; what it adds to a temperature is a difference, in K. Keys of the car and of "
-    "`limits` may",
-    "change, one by one, except `engine`, `body`, `gauge`, the coolant's kind and mix, and whatever would change "
-    "how many",
-    "ducts, cores and fans there are, what a core carries, its cells or its law of heat: these are laid out "
-    "before the drive",
-    "begins. Defaults by rule follow the changed values. Complaints name the value as "
-    "`changes[0].set.\"duct.inlet.blocked\"`.",
+    "Times count from the start of the drive; changes add up, those of one time in the order of the file.",
+    "`add` adds to the value that held until then; what it adds to a temperature is a difference, in K. Keys of",
+    "the car and of `limits` may change, one by one, except `engine`, `body`, `gauge`, the coolant's kind and",
+    "mix, the battery's size, and whatever would change how many ducts, cores and fans there are, what a core",
+    "carries, its cells or its law of heat: these are laid out before the drive begins. Defaults by rule follow",
+    "the changed values. Complaints name the value as `changes[0].set.\"duct.inlet.blocked\"`.",
     "",
     "The default column holds what is taken when the key is absent; in italics, when the key is needed. The "
     "basis",

@@ -1,5 +1,6 @@
 /* Defaults that follow from other values. Each takes a design in which earlier rows are filled, and the
- * element it is for; what it lacks is NAN there, and so is the answer. Figures: common practice unless said otherwise.
+ * element it is for; what it lacks is NAN there, and so is the answer. Figures: common practice unless said
+ * otherwise.
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "keys.h"
 

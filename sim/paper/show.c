@@ -196,6 +196,66 @@ static bool of_absent_part(const struct sp_design *d, const char *path, const st
             !strncmp(path + 14, "heat.", 5));
 }
 
+static bool path_of_duct(const char *path)
+{
+    return !strncmp(path, "car.duct.", 9);
+}
+
+/* Defaults that nothing in this car uses: keys that begin so, and whether what they belong to is there. */
+static bool unused(const struct sp_design *d, const char *path, const struct sp_key_spot *at)
+{
+    const struct sp_duct_design *duct = &d->duct[path_of_duct(path) ? at->outer : 0];
+    const struct sp_fan *fan = &duct->fan[!strncmp(path, "car.duct.fan.", 13) ? at->inner : 0];
+    const struct sp_pump *pump = &d->pump;
+    const struct sp_thermostat *t = &d->thermostat;
+    const struct sp_engine *e = &d->engine;
+    bool shape = e->heat_law == SP_HEAT_CORRELATION || e->overrun_law != SP_FRICTION_POLYNOMIAL;
+    const struct {
+        const char *begins;
+        bool used;
+    } parts[] = {
+        {"car.oil.", d->oil.fitted},
+        {"car.gearbox.", d->gearbox.fitted},
+        {"car.charge.", d->charge.fitted},
+        {"car.hoses.heater.", d->hoses.heater.flow > 0.0},
+        {"car.pump.ratio", !pump->electric},
+        {"car.pump.power", pump->electric},
+        {"car.pump.rated_voltage", pump->electric},
+        {"car.pump.run_on", pump->electric},
+        {"car.pump.control", pump->electric},
+        {"car.pump.least", pump->electric && pump->law != SP_PUMP_FIXED && pump->law != SP_PUMP_PULSING},
+        {"car.pump.full_at", pump->electric && pump->law == SP_PUMP_OVER_SPEED},
+        {"car.pump.temperature.", pump->electric && pump->law == SP_PUMP_OVER_TEMPERATURE},
+        {"car.pump.pulse.", pump->electric && pump->law == SP_PUMP_PULSING},
+        {"car.pump.suction.", pump->npsh > 0.0},
+        {"car.engine.bore", shape},
+        {"car.engine.stroke", shape},
+        {"car.engine.cylinders", shape},
+        {"car.engine.compression", shape},
+        {"car.engine.heat.correlation_constant", e->heat_law == SP_HEAT_CORRELATION},
+        {"car.engine.heat.stoichiometric", e->heat_law == SP_HEAT_CORRELATION},
+        {"car.engine.heat.diesel", e->heat_law == SP_HEAT_CORRELATION},
+        {"car.engine.overrun.intake", e->overrun_law == SP_FRICTION_SI},
+        {"car.engine.overrun.oil", e->overrun_law == SP_FRICTION_SI},
+        {"car.engine.overrun.a", e->overrun_law == SP_FRICTION_CHEN_FLYNN},
+        {"car.engine.overrun.b", e->overrun_law == SP_FRICTION_CHEN_FLYNN},
+        {"car.engine.overrun.c", e->overrun_law == SP_FRICTION_CHEN_FLYNN},
+        {"car.engine.overrun.d", e->overrun_law == SP_FRICTION_CHEN_FLYNN},
+        {"car.thermostat.mapped.", t->mapped_power > 0.0},
+        {"car.duct.fan.switch.", fan->law == SP_FAN_SWITCHED},
+        {"car.duct.fan.proportional.", fan->law == SP_FAN_PROPORTIONAL},
+        {"car.duct.fan.locked_loss", fan->health == SP_FAN_LOCKED},
+        {"car.duct.fan.flap_loss", fan->flap_area > 0.0},
+        {"car.duct.leak.past_core.", duct->past_core.area > 0.0 || duct->past_core.gap > 0.0},
+        {"car.duct.leak.outside.", duct->outside.area > 0.0 || duct->outside.gap > 0.0},
+        {"car.duct.inlet.recirculation_ends", duct->inlet.recirculated > 0.0},
+        {"car.duct.inlet.lip_suction", duct->inlet.spill},
+    };
+    for (size_t i = 0; i < sizeof parts / sizeof *parts; ++i)
+        if (!parts[i].used && !strncmp(path, parts[i].begins, strlen(parts[i].begins))) return true;
+    return false;
+}
+
 static bool of_other_step(const struct sp_step *step, const char *key)
 {
     bool trace = !strcmp(key, "smooth") || !strncmp(key, "layout.", 7);
@@ -250,6 +310,7 @@ static void show_element(struct shower *s, const struct sp_key *row, const struc
         return;
     }
     struct entry e = {row, sp_case_node(s->reader->tree, path), path, sp_key_place(row, d, at)};
+    if (!e.node && unused(d, row->path, at)) return;
     if (worth_showing(&e) && !of_absent_part(d, row->path, at)) put_entry(s, &e);
 }
 
@@ -259,7 +320,8 @@ static void show_change(struct shower *s, const struct sp_turn *turn, const stru
     char path[60];
     const bool json = s->json;
     snprintf(path, sizeof path, "changes[%zu]", turn->entry);
-    fprintf(s->to, json ? "%s\n  {\"path\": \"%s\", \"text\": \"" : "%s%-44s ", s->first || !json ? "" : ",", path);
+    fprintf(s->to, json ? "%s\n  {\"path\": \"%s\", \"text\": \"" : "%s%-44s ", s->first || !json ? "" : ",",
+            path);
     sp_written_text(s->to, change->text, json);
     fputs(json ? "\", \"si\": " : " = ", s->to);
     put_number(s->to, change->at);

@@ -126,7 +126,8 @@ struct sp_engine_heat sp_engine_heat(const struct sp_engine_law *law, const stru
     out.gas = fired * at.heat;
     out.friction = cut * e->overrun_share * sp_engine_motoring(e, speed);
     out.per_power = fired * at.slope;
-    out.fuel = by_power ? fired * sp_engine_fuel_power(e, fmax(power, 0.0), speed) : fired * flow * e->heating_value;
+    out.fuel =
+        by_power ? fired * sp_engine_fuel_power(e, fmax(power, 0.0), speed) : fired * flow * e->heating_value;
     out.oil = sp_engine_law_oil_heat(law, power, speed);
     out.cut = fired * at.cut;
     return out;

@@ -16,7 +16,9 @@ double sp_engine_rated_fuel(const struct sp_engine *e);
 double sp_engine_motoring(const struct sp_engine *e, double speed);
 
 /* What one row of a trace tells of the engine; NAN where not known. */
-struct sp_engine_row { double power, speed, fuel_flow, air_flow; };
+struct sp_engine_row {
+    double power, speed, fuel_flow, air_flow;
+};
 
 struct sp_engine_heat {
     double gas;       /* W from the gas side, metal at gas_reference */

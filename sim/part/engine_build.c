@@ -1,4 +1,5 @@
-/* Making a heat law ready: is the engine usable, the table's grid. SPDX-License-Identifier: GPL-3.0-or-later */
+/* Making a heat law ready: is the engine usable, the table's grid. SPDX-License-Identifier: GPL-3.0-or-later
+ */
 #include "part/engine_law.h"
 
 #include <gsl/gsl_errno.h>
@@ -32,7 +33,8 @@ static const char *flow_unusable(const struct sp_engine *e)
 {
     bool correlation = e->heat_law == SP_HEAT_CORRELATION;
     if (!above_zero(e->heating_value)) return "a share of the fuel's power and a heating value";
-    if (!correlation && !no_less_than_zero(e->fuel_share)) return "a share of the fuel's power and a heating value";
+    if (!correlation && !no_less_than_zero(e->fuel_share))
+        return "a share of the fuel's power and a heating value";
     if (e->heat_law != SP_HEAT_FUEL && !above_zero(e->air_fuel_ratio)) return "an air-fuel ratio";
     if (!correlation) return NULL;
     if (!above_zero(e->cylinders) || !above_zero(e->bore)) return "cylinders and a bore";
@@ -43,10 +45,12 @@ static const char *flow_unusable(const struct sp_engine *e)
 
 static const char *unusable(const struct sp_engine *e)
 {
-    bool table = e->heat_law == SP_HEAT_TABLE, flow = e->heat_law == SP_HEAT_FUEL || e->heat_law == SP_HEAT_AIR;
+    bool table = e->heat_law == SP_HEAT_TABLE,
+         flow = e->heat_law == SP_HEAT_FUEL || e->heat_law == SP_HEAT_AIR;
     bool correlation = e->heat_law == SP_HEAT_CORRELATION;
     if (e->heat_law == SP_HEAT_GIVEN)
-        return no_less_than_zero(e->heat_given) && no_less_than_zero(e->heat_loss) ? NULL : "a heat that is given";
+        return no_less_than_zero(e->heat_given) && no_less_than_zero(e->heat_loss) ? NULL
+                                                                                   : "a heat that is given";
     if (!above_zero(e->displacement)) return "a displacement";
     if (!above_zero(e->rated_power) || !above_zero(e->rated_speed)) return "a rated power and speed";
     if (!above_zero(e->idle_speed)) return "an idle speed";

@@ -115,7 +115,8 @@ static struct sp_engine_at lesser(struct sp_engine_at at, double room, double ro
     return (struct sp_engine_at){at.heat - cut, by_heat * at.slope + by_room * room_slope, cut};
 }
 
-/* Work, oil's heat and coolant's heat come from the fuel. The slope leaves the oil out: a share of a share. */
+/* Work, oil's heat and coolant's heat come from the fuel. The slope leaves the oil out: a share of a share.
+ */
 static struct sp_engine_at capped(const struct sp_engine_law *law, struct sp_engine_at at, double fuel_power,
                                   double power, double speed)
 {
@@ -153,7 +154,8 @@ struct sp_engine_at sp_engine_law_by_flow(const struct sp_engine_law *law, const
     const struct sp_engine *e = &law->engine;
     struct sp_engine_at at = {.heat = e->fuel_share * fuel * e->heating_value};
     if (e->heat_law == SP_HEAT_CORRELATION)
-        at.heat = correlation(e, fuel, isnan(row->air_flow) ? fuel * e->air_fuel_ratio : fmax(row->air_flow, 0.0));
+        at.heat =
+            correlation(e, fuel, isnan(row->air_flow) ? fuel * e->air_fuel_ratio : fmax(row->air_flow, 0.0));
     at = capped(law, at, fuel * e->heating_value, fmax(power, 0.0), speed);
     at.slope = 0.0;
     return at;

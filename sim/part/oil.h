@@ -5,14 +5,16 @@
 
 #include "swirlpot/part.h"
 
-/* Density [kg/m3], heat capacity [J/kgK] and enthalpy [J/kg, from 0 degC] of lubricating oil at T [K]. From memory:
- * 870 kg/m3 at 15 degC falling by 7e-4/K; 1900 J/kgK at 20 degC to 2200 at 100 degC, a straight line. */
+/* Density [kg/m3], heat capacity [J/kgK] and enthalpy [J/kg, from 0 degC] of lubricating oil at T [K]. From
+ * memory: 870 kg/m3 at 15 degC falling by 7e-4/K; 1900 J/kgK at 20 degC to 2200 at 100 degC, a straight line.
+ */
 double sp_oil_density(double T);
 double sp_oil_cp(double T);
 double sp_oil_enthalpy(double T);
 
-/* Heat [W] that work and friction put into it: heat_share of the power [W] and friction_share of what motoring
- * the engine takes [W] at its speed. Power counts by its size for a gearbox, fired only for an engine. */
+/* Heat [W] that work and friction put into it: heat_share of the power [W] and friction_share of what
+ * motoring the engine takes [W] at its speed. Power counts by its size for a gearbox, fired only for an
+ * engine. */
 double sp_oil_heat(const struct sp_oil *o, double power, double motoring);
 
 /* Volume flow [m3/s] that the oil pump sends round at an engine speed [rev/s]. */

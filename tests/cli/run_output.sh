@@ -138,6 +138,20 @@ says err "limits.coolant: found"
 want 2 run case.json --set 'limits.oil=130 degC'
 says err "limits.oil: found"
 
+# What changes on the way: seconds until the limit, in text and JSON.
+set -- --set 'changes=[{"at": "10 s", "set": {"limits.coolant": "20 degC"}}, {"at": "9 d", "set": {"pump.failed": true}}]'
+want 1 run case.json --json "$@"
+is_json out
+grep -A4 '"changes": \[' out | grep -q '"time_s": 10' || fail "no time of the change"
+grep -A5 '"changes": \[' out | grep -q '"to_limit_s": 0' || fail "no seconds until the limit"
+says out '"limit": "coolant over limit"'
+says out '"set": "limits.coolant=20 degC"'
+says out '"time_s": null'
+want 1 run case.json "$@"
+says out "changes: limits.coolant=20 degC; already"
+want 0 run case.json --json
+says out '"changes": []'
+
 # Columns of what is fitted only.
 want 0 run case.json -o plain
 head -n 1 plain/series.csv | grep -q 'drag \[N\]$' || fail "columns that a plain car does not have"

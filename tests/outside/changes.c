@@ -297,7 +297,6 @@ static void play_follows_the_wax(void **state)
             double as_fallen =
                 fmin(fmax((wax + play - d.thermostat.opens) / (d.thermostat.full - d.thermostat.opens), 0.0), 1.0);
             /* never outside the two */
-            if (!(v[SP_CH_LIFT] > as_risen - 1e-3 && v[SP_CH_LIFT] < as_fallen + 1e-3)) fprintf(stderr, "%d %g wax %g lift %g %g %g\n", k, v[0], wax, v[SP_CH_LIFT], as_risen, as_fallen);
             assert_true(v[SP_CH_LIFT] > as_risen - 1e-3 && v[SP_CH_LIFT] < as_fallen + 1e-3);
             if (as_fallen > as_risen + 0.1) {
                 risen += fabs(v[SP_CH_LIFT] - as_risen) < 1e-3;

@@ -79,6 +79,45 @@ def compare_drive(tally, program, name, raw, folder):
                     f"{ledger[key]:.9g}, twin {value:.9g}")
 
 
+def compare_point(point, path, air, heat):
+    """Relative differences of one point of `swirlpot duct --json`."""
+    fans = [1.0 if point["fan_on"] else 0.0] * len(path.duct["fans"])
+    s = path.network.solve(point["air_speed_m_s"], 1.0, air["ambient"], air["pressure"], fans, {}, heat)
+    m = max(abs(s["m"]), abs(s["m1"]), 1e-3)
+    v = abs(point["air_speed_m_s"]) + abs(point["exit_velocity_m_s"] or 0.0)
+    yield "mass flow", point["mass_flow_kg_s"], s["m"], m
+    yield "face velocity", point["face_velocity_m_s"], s["face"], m / path.network.face
+    yield "drag", point["internal_drag_N"], s["drag"], 1e-3 + m * v + abs(s["drag"])
+    if s["m"] > 0 and s["t3"] and all(f > 0 for f in s["exits"]):
+        yield "temperature ratio", point["temperature_ratio"], s["t3"] / s["t"][0], 1.0
+
+
+def compare_ducts(tally, program, name, raw, folder):
+    case = wholefile.understood(raw)
+    air, path = case["air"], os.path.join(folder, "duct.json")
+    gas, cp = moist_air(air["ambient"], air["pressure"], air["humidity"])
+    mine = airpath.AirPath(case["car"]["ducts"][0], gas, cp)
+    with open(path, "w", encoding="utf-8") as f:
+        json.dump(raw, f)
+    worst, count = {}, 0
+    for wind, heat, speeds in ((0.0, 0.0, (0, 3, 12, 30)), (-12.0, 0.0, (0, 5, 20)), (0.0, 12e3, (8, 20, 40))):
+        for fan in ("off", "on"):
+            arguments = [a for v in speeds for a in ("--speed", f"{v} m/s")]
+            if heat > 0:
+                arguments += ["--heat", f"{heat:g} W"]
+            told = json.loads(command(program, "duct", path, *arguments, "--fan", fan, "--json",
+                                      "--set", f"air.wind={wind} m/s"))
+            for point in told["points"]:
+                count += 1
+                for what, theirs, here, size in compare_point(point, mine, air, heat):
+                    gap = abs(theirs - here) / size
+                    note = f"{theirs:.9g}, twin {here:.9g} at {point['speed_m_s']} m/s, wind {wind}, {fan}, {heat:g} W"
+                    if not gap <= worst.get(what, (0.0,))[0]:
+                        worst[what] = (gap, note)
+    for what, (gap, note) in worst.items():
+        tally.check(f"{name}: {what}, {count} points", gap, 1e-8, note)
+
+
 def wanted(name):
     words = [w for w in os.environ.get("SP_TWIN_CASES", "").split(",") if w]
     return not words or any(w in name for w in words)
@@ -90,6 +129,9 @@ def main(arguments):
         return 2
     tally = Tally()
     with tempfile.TemporaryDirectory() as folder:
+        for name, raw in wholecases.ducts():
+            if wanted(name):
+                compare_ducts(tally, arguments[0], name, raw, folder)
         for name, raw in wholecases.drives():
             if wanted(name):
                 compare_drive(tally, arguments[0], name, raw, folder)
@@ -108,7 +150,8 @@ except ImportError:
     sys.exit(0)
 sys.dont_write_bytecode = True
 sys.path.insert(0, HERE)
-from restated import wholecases, wholemarch  # noqa: E402
+from restated import airpath, wholecases, wholefile, wholemarch  # noqa: E402
+from restated.fluids import moist_air  # noqa: E402
 
 if __name__ == "__main__":
     sys.exit(main(sys.argv[1:]))

@@ -17,18 +17,19 @@ static int end(void **state)
     return 0;
 }
 
-#define FAN     "\"fan\": {\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}}"
-#define CORES   "\"cores\": [" CORE_BODY ", " CORE_BODY "]"
-#define CORE_BODY                                                                                            \
-    "{\"width\": \"480 mm\", \"height\": \"340 mm\", \"depth\": \"42 mm\", " COEFFICIENT "}"
-#define CAR_OF  "\"car\": {\"tank\": {\"cap\": \"1.2 bar\"}, \"duct\": {" INLET ", " CORES ", " FAN ", " EXIT "}}"
-#define CHANGES(list) "{" AIR ",\n" CAR_OF ",\n\"changes\": [" list "]}"
-#define CHANGES_START "{" AIR ", " CAR_OF ", \"changes\": [{\"at\": \"1 s\", \"set\": {"
+#define FAN       "\"fan\": {\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}}"
+#define CORES     "\"cores\": [" CORE_BODY ", " CORE_BODY "]"
+#define CORE_BODY "{\"width\": \"480 mm\", \"height\": \"340 mm\", \"depth\": \"42 mm\", " COEFFICIENT "}"
+#define CAR_OF                                                                                               \
+    "\"car\": {\"tank\": {\"cap\": \"1.2 bar\"}, \"duct\": {" INLET ", " CORES ", " FAN ", " EXIT "}}"
+#define CHANGES(list)  "{" AIR ",\n" CAR_OF ",\n\"changes\": [" list "]}"
+#define CHANGES_START  "{" AIR ", " CAR_OF ", \"changes\": [{\"at\": \"1 s\", \"set\": {"
 #define AT(time, rest) "{\"at\": \"" time "\", " rest "}"
-#define SET(values) "\"set\": {" values "}"
-#define ADD(values) "\"add\": {" values "}"
+#define SET(values)    "\"set\": {" values "}"
+#define ADD(values)    "\"add\": {" values "}"
 
-static void one_complaint(const char *text, const char *path, const char *found, const char *expected, int source)
+static void one_complaint(const char *text, const char *path, const char *found, const char *expected,
+                          int source)
 {
     struct result r = parse_set(text, SP_FOR_DUCT, NULL, 0);
     if (r.complaints.count != 1 || !has(&r.complaints, "dir/c.json", 0, path, found, expected)) {
@@ -51,10 +52,12 @@ static void one_complaint(const char *text, const char *path, const char *found,
 static void changes_add_up(void **state)
 {
     (void)state;
-    struct result r = must(CHANGES(AT("12 min", SET("\"duct.inlet.blocked\": \"40 %\", \"duct.fan.health\": \"dead\"")) ", "
-                                   AT("2 min", SET("\"duct.cores[1].blocked\": 0.25")) ", "
-                                   AT("20 min", SET("\"car.duct.inlet.blocked\": 0, \"limits.coolant\": \"99 degC\""))),
-                           SP_FOR_DUCT);
+    struct result r = must(
+        CHANGES(AT("12 min", SET("\"duct.inlet.blocked\": \"40 %\", \"duct.fan.health\": \"dead\"")) ", " AT(
+            "2 min", SET("\"duct.cores[1].blocked\": 0.25")) ", " AT("20 min",
+                                                                     SET("\"car.duct.inlet.blocked\": 0, "
+                                                                         "\"limits.coolant\": \"99 degC\""))),
+        SP_FOR_DUCT);
     const struct sp_design *d = r.design;
     assert_int_equal(d->changes, 3);
     const struct sp_change *c = d->change;
@@ -86,9 +89,11 @@ static void changes_add_up(void **state)
 static void order_of_the_file(void **state)
 {
     (void)state;
-    struct result r = must(CHANGES(AT("1 min", SET("\"tank.cap\": \"1 bar\"")) ", " AT("60 s", SET("\"tank.cap\": \"2 bar\"")) ", "
-                                   AT("0 s", SET("\"tank.cap\": \"3 bar\"")) ", " AT("1 min", SET("\"tank.cap\": \"4 bar\""))),
-                           SP_FOR_DUCT);
+    struct result r =
+        must(CHANGES(AT("1 min", SET("\"tank.cap\": \"1 bar\"")) ", " AT("60 s", SET("\"tank.cap\": \"2 "
+                                                                                     "bar\"")) ", " AT(
+                 "0 s", SET("\"tank.cap\": \"3 bar\"")) ", " AT("1 min", SET("\"tank.cap\": \"4 bar\""))),
+             SP_FOR_DUCT);
     static const double cap[] = {3e5, 1e5, 2e5, 4e5};
     for (size_t i = 0; i < 4; ++i)
         check_close(r.design->change[i].to->tank.cap, cap[i], 1e-14, 0.0);
@@ -98,15 +103,23 @@ static void order_of_the_file(void **state)
 static void values_grow(void **state)
 {
     (void)state;
-    struct result r = must(CHANGES(AT("100 s", "\"every\": \"100 s\", \"times\": 9, " ADD("\"duct.cores[0].blocked\": \"1 %\"")) ", "
-                                   AT("450 s", SET("\"duct.cores[0].blocked\": \"50 %\""))),
-                           SP_FOR_DUCT);
+    struct result r = must(
+        CHANGES(AT(
+            "100 s",
+            "\"every\": \"100 s\", \"times\": 9, " ADD(
+                "\"duct.cores[0].blocked\": \"1 %\"")) ", " AT("450 s",
+                                                               SET("\"duct.cores[0].blocked\": \"50 %\""))),
+        SP_FOR_DUCT);
     const struct sp_change *c = r.design->change;
     assert_int_equal(r.design->changes, 10);
     for (size_t i = 0; i < 10; ++i) {
         double blocked = i < 4 ? 0.01 * (double)(i + 1) : 0.5 + 0.01 * (double)(i - 4);
         check_close(c[i].to->duct[0].core[0].blocked, blocked, 1e-12, 0.0);
-        check_close(c[i].at, i < 4 ? 100.0 * (double)(i + 1) : i == 4 ? 450.0 : 100.0 * (double)i, 1e-12, 0.0);
+        check_close(c[i].at,
+                    i < 4    ? 100.0 * (double)(i + 1)
+                    : i == 4 ? 450.0
+                             : 100.0 * (double)i,
+                    1e-12, 0.0);
     }
     assert_string_equal(c[2].text, "duct.cores[0].blocked=3 %");
     assert_string_equal(c[9].text, "duct.cores[0].blocked=55 %");
@@ -117,11 +130,12 @@ static void values_grow(void **state)
 static void values_grow_from_what_holds(void **state)
 {
     (void)state;
-    struct result r = must(CHANGES(AT("1 s", "\"every\": \"1 s\", \"times\": 2, "
-                                             ADD("\"thermostat.opens\": \"2 K\", \"tank.cap\": \"0.1 bar\", "
-                                                 "\"duct.cores[0].metal_capacity\": \"1 kJ/K\", "
-                                                 "\"duct.inlet.lip_loss\": -0.1, \"tank.filled_at\": \"9 degR\""))),
-                           SP_FOR_DUCT);
+    struct result r =
+        must(CHANGES(AT("1 s", "\"every\": \"1 s\", \"times\": 2, " ADD(
+                                   "\"thermostat.opens\": \"2 K\", \"tank.cap\": \"0.1 bar\", "
+                                   "\"duct.cores[0].metal_capacity\": \"1 kJ/K\", "
+                                   "\"duct.inlet.lip_loss\": -0.1, \"tank.filled_at\": \"9 degR\""))),
+             SP_FOR_DUCT);
     for (size_t i = 0; i < 2; ++i) {
         const struct sp_design *to = r.design->change[i].to;
         double n = (double)(i + 1);
@@ -129,7 +143,8 @@ static void values_grow_from_what_holds(void **state)
         check_close(to->thermostat.full - to->thermostat.opens, 12.0, 1e-9, 0.0); /* a rule: follows */
         check_close(to->tank.cap, 1.2e5 + 1e4 * n, 1e-11, 0.0);
         check_close(to->tank.fill_temperature, 293.15 + 5.0 * n, 1e-11, 0.0);
-        check_close(to->duct[0].core[0].metal_capacity, r.design->duct[0].core[0].metal_capacity + 1e3 * n, 1e-11, 0.0);
+        check_close(to->duct[0].core[0].metal_capacity, r.design->duct[0].core[0].metal_capacity + 1e3 * n,
+                    1e-11, 0.0);
         check_close(to->duct[0].core[1].metal_capacity, r.design->duct[0].core[1].metal_capacity, 0.0, 0.0);
         check_close(to->duct[0].inlet.lip_loss, 1.0 - 0.1 * n, 1e-11, 0.0);
     }
@@ -140,10 +155,11 @@ static void settings_reach_changes(void **state)
 {
     (void)state;
     const char *text = CHANGES(AT("1 min", SET("\"tank.cap\": \"1 bar\"")));
-    struct result r = must_set(text, SP_FOR_DUCT,
-                               (char *const[]){(char[]){"changes[0].at=2 min"},
-                                               (char[]){"changes[0].set.\"tank.cap\"=2 bar"}, (char[]){"tank.bleed=1 %"}},
-                               3);
+    struct result r =
+        must_set(text, SP_FOR_DUCT,
+                 (char *const[]){(char[]){"changes[0].at=2 min"},
+                                 (char[]){"changes[0].set.\"tank.cap\"=2 bar"}, (char[]){"tank.bleed=1 %"}},
+                 3);
     check_close(r.design->change[0].at, 120.0, 0.0, 0.0);
     check_close(r.design->change[0].to->tank.cap, 2e5, 1e-14, 0.0);
     check_close(r.design->change[0].to->tank.bleed, 0.01, 1e-14, 0.0);
@@ -153,8 +169,8 @@ static void settings_reach_changes(void **state)
     drop(&r);
     r = parse_set(text, SP_FOR_DUCT, (char *const[]){(char[]){"changes[0].set={\"tank.cap\": \"1 kg\"}"}}, 1);
     assert_int_equal(r.complaints.count, 1);
-    assert_true(has(&r.complaints, "--set changes[0].set={\"tank.cap\": \"1 kg\"}", 0, "changes[0].set.\"tank.cap\"",
-                    "1 kg", "a gauge pressure"));
+    assert_true(has(&r.complaints, "--set changes[0].set={\"tank.cap\": \"1 kg\"}", 0,
+                    "changes[0].set.\"tank.cap\"", "1 kg", "a gauge pressure"));
     drop(&r);
     r = parse_set(text, SP_FOR_DUCT, (char *const[]){(char[]){"changes[1].at=1 s"}}, 1);
     assert_true(has(&r.complaints, NULL, 0, "changes[1].at", "index 1", "there is 1"));
@@ -165,9 +181,11 @@ static void settings_reach_changes(void **state)
 static void a_drive_with_changes(void **state)
 {
     (void)state;
-    const char *text = "{" AIR ", \"car\": " CAR ", \"changes\": ["
-                       AT("1 min", SET("\"pump.curve.shutoff\": \"60 kPa\", \"duct.core.fins.pitch\": \"2.1 mm\"")) ", "
-                       AT("2 min", SET("\"pump.curve\": [[\"0 l/min\", \"90 kPa\"], [\"200 l/min\", \"0 kPa\"]]")) "]" REST;
+    const char *text =
+        "{" AIR ", \"car\": " CAR
+        ", \"changes\": [" AT("1 min", SET("\"pump.curve.shutoff\": \"60 kPa\", \"duct.core.fins.pitch\": "
+                                           "\"2.1 mm\"")) ", " AT(
+            "2 min", SET("\"pump.curve\": [[\"0 l/min\", \"90 kPa\"], [\"200 l/min\", \"0 kPa\"]]")) "]" REST;
     struct result r = must(text, SP_FOR_DRIVE);
     const struct sp_change *c = r.design->change;
     assert_int_equal(r.design->steps, 4);
@@ -191,15 +209,18 @@ static void entries_that_will_not_do(void **state)
     refused("{\"at\": \"1 s\"}", "changes[0]", "neither", "one of them");
     refused(AT("1 s", "\"set\": {}"), "changes[0].set", "nothing in it", NULL);
     refused(AT("1 s", "\"set\": 3"), "changes[0].set", "3", "an object");
-    refused(AT("1 s", "\"time\": 3, " SET("\"tank.cap\": \"1 bar\"")), "changes[0].time", "an unknown key", NULL);
-    refused(AT("1 s", "\"every\": \"1 s\", " SET("\"tank.cap\": \"1 bar\"")), "changes[0].times", "nothing", NULL);
+    refused(AT("1 s", "\"time\": 3, " SET("\"tank.cap\": \"1 bar\"")), "changes[0].time", "an unknown key",
+            NULL);
+    refused(AT("1 s", "\"every\": \"1 s\", " SET("\"tank.cap\": \"1 bar\"")), "changes[0].times", "nothing",
+            NULL);
     refused(AT("1 s", "\"times\": 2, " SET("\"tank.cap\": \"1 bar\"")), "changes[0].every", "nothing", NULL);
-    refused(AT("1 s", "\"every\": \"1 s\", \"times\": 1.5, " SET("\"tank.cap\": \"1 bar\"")), "changes[0].times",
-            "1.5", "whole");
-    refused(AT("1 s", "\"every\": \"1 s\", \"times\": 150, " ADD("\"tank.filled_at\": \"0.1 K\"")) ", "
-            AT("1 s", "\"every\": \"1 s\", \"times\": 51, " ADD("\"tank.filled_at\": \"0.1 K\"")), "changes",
-            "201 changes", "at most 200");
-    one_complaint("{" AIR ", " CAR_OF ", \"changes\": {}}", "changes", "an object", "a list of changes", __LINE__);
+    refused(AT("1 s", "\"every\": \"1 s\", \"times\": 1.5, " SET("\"tank.cap\": \"1 bar\"")),
+            "changes[0].times", "1.5", "whole");
+    refused(AT("1 s", "\"every\": \"1 s\", \"times\": 150, " ADD("\"tank.filled_at\": \"0.1 K\"")) ", " AT(
+                "1 s", "\"every\": \"1 s\", \"times\": 51, " ADD("\"tank.filled_at\": \"0.1 K\"")),
+            "changes", "201 changes", "at most 200");
+    one_complaint("{" AIR ", " CAR_OF ", \"changes\": {}}", "changes", "an object", "a list of changes",
+                  __LINE__);
 }
 
 static void keys_that_stay(void **state)
@@ -211,8 +232,9 @@ static void keys_that_stay(void **state)
     set_refused("gauge.lag", "\"3 s\"", "a change", "no change");
     set_refused("coolant.kind", "\"water\"", "a change", "filled");
     set_refused("coolant.glycol", "\"3 %\"", "a change", "filled");
-    static const char *const laid_out[] = {"duct.cores[0].cells", "duct.cores[1].carries", "duct.cores[0].feed",
-                                           "duct.count", "duct.coolant", "duct.fan.count"};
+    static const char *const laid_out[] = {"duct.cores[0].cells", "duct.cores[1].carries",
+                                           "duct.cores[0].feed",  "duct.count",
+                                           "duct.coolant",        "duct.fan.count"};
     for (size_t i = 0; i < sizeof laid_out / sizeof *laid_out; ++i) {
         char text[1500], path[100];
         snprintf(text, sizeof text, "%s\"%s\": 1}}]}", CHANGES_START, laid_out[i]);
@@ -235,13 +257,15 @@ static void keys_that_stay(void **state)
     set_refused("duct.cores[2].blocked", "0", "index 2", "0 to 1, for there are 2");
     set_refused("duct.fans[1].health", "\"dead\"", "index 1", "there is 1");
     set_refused("a..b", "3", NULL, NULL);
-    one_complaint("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}, \"changes\": ["
-                  AT("1 s", SET("\"duct.fan.health\": \"dead\"")) "]}",
-                  "changes[0].set.\"duct.fan.health\"", "no fan from the start", "one that is there", __LINE__);
-    one_complaint("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}, \"changes\": ["
-                  AT("1 s", SET("\"duct.core.heat.face_velocity\": [\"1 m/s\"], \"duct.core.heat.coolant_flow\": "
-                                "[\"1 kg/s\"], \"duct.core.heat.rejection\": [[\"1 kW/K\"]]")) "]}",
-                  NULL, "another law", "from the start", __LINE__);
+    one_complaint("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}, \"changes\": [" AT(
+                      "1 s", SET("\"duct.fan.health\": \"dead\"")) "]}",
+                  "changes[0].set.\"duct.fan.health\"", "no fan from the start", "one that is there",
+                  __LINE__);
+    one_complaint(
+        "{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}, \"changes\": [" AT(
+            "1 s", SET("\"duct.core.heat.face_velocity\": [\"1 m/s\"], \"duct.core.heat.coolant_flow\": "
+                       "[\"1 kg/s\"], \"duct.core.heat.rejection\": [[\"1 kW/K\"]]")) "]}",
+        NULL, "another law", "from the start", __LINE__);
 }
 
 static void values_that_will_not_do(void **state)
@@ -261,10 +285,10 @@ static void values_that_will_not_do(void **state)
     add_refused("thermostat.opens", "\"1 degC\"", "1 degC", "a temperature difference");
     add_refused("duct.cores[7].blocked", "1", "index 7", "there are 2");
     add_refused("duct.inlet.blocked", "2", "2", "0 to 0.99");
-    refused(AT("1 s", SET("\"tank.cap\": \"1 bar\", \"car.tank.cap\": \"2 bar\"")), "changes[0].set.\"car.tank.cap\"",
-            "the same key again", NULL);
-    refused(AT("1 s", SET("\"tank.cap\": \"1 bar\"") ", " ADD("\"tank.cap\": \"2 bar\"")), "changes[0].add.\"tank.cap\"",
-            "the same key again", NULL);
+    refused(AT("1 s", SET("\"tank.cap\": \"1 bar\", \"car.tank.cap\": \"2 bar\"")),
+            "changes[0].set.\"car.tank.cap\"", "the same key again", NULL);
+    refused(AT("1 s", SET("\"tank.cap\": \"1 bar\"") ", " ADD("\"tank.cap\": \"2 bar\"")),
+            "changes[0].add.\"tank.cap\"", "the same key again", NULL);
     /* Said once, though it stays wrong from then on; each new number of a growth is another fault. */
     refused(AT("1 s", SET("\"duct.inlet.blocked\": 3")) ", " AT("2 s", SET("\"tank.cap\": \"1 bar\"")),
             "changes[0].set.\"duct.inlet.blocked\"", "3", NULL);
@@ -288,14 +312,17 @@ static void a_hundred_faults(void **state)
         fprintf(f, "%s{" INLET ", \"exits\": [", i ? "," : "");
         fputs("{\"area\": \"1 kg\"},{\"area\": \"600 cm2\", \"loss\": -1}],\n\"cores\": [", f);
         for (int k = 0; k < 4; ++k)
-            fprintf(f, "%s{\"width\": \"480 mm\", \"height\": \"340 mm\", \"depth\": \"%d m\", " "\"pressure_drop\": "
-                       "{\"coefficient\": 8}}", k ? "," : "", k + 1);
+            fprintf(f,
+                    "%s{\"width\": \"480 mm\", \"height\": \"340 mm\", \"depth\": \"%d m\", "
+                    "\"pressure_drop\": "
+                    "{\"coefficient\": 8}}",
+                    k ? "," : "", k + 1);
         fputs("]}", f);
     }
     fputs("]},\n\"changes\": [", f);
     for (int i = 0; i < 46; ++i)
-        fprintf(f, "%s\n{\"at\": \"%d s\", \"set\": {\"ducts[%d].cores[%d].blocked\": %d}}", i ? "," : "", 46 - i, i % 4,
-                i % 3, i + 1);
+        fprintf(f, "%s\n{\"at\": \"%d s\", \"set\": {\"ducts[%d].cores[%d].blocked\": %d}}", i ? "," : "",
+                46 - i, i % 4, i % 3, i + 1);
     fputs("]}", f);
     fclose(f);
     struct result r = parse_set(text, SP_FOR_DUCT, NULL, 0);
@@ -318,11 +345,16 @@ static void a_hundred_faults(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(changes_add_up),           cmocka_unit_test(order_of_the_file),
-        cmocka_unit_test(values_grow),              cmocka_unit_test(values_grow_from_what_holds),
-        cmocka_unit_test(settings_reach_changes),   cmocka_unit_test(a_drive_with_changes),
-        cmocka_unit_test(entries_that_will_not_do), cmocka_unit_test(keys_that_stay),
-        cmocka_unit_test(values_that_will_not_do),  cmocka_unit_test(a_hundred_faults),
+        cmocka_unit_test(changes_add_up),
+        cmocka_unit_test(order_of_the_file),
+        cmocka_unit_test(values_grow),
+        cmocka_unit_test(values_grow_from_what_holds),
+        cmocka_unit_test(settings_reach_changes),
+        cmocka_unit_test(a_drive_with_changes),
+        cmocka_unit_test(entries_that_will_not_do),
+        cmocka_unit_test(keys_that_stay),
+        cmocka_unit_test(values_that_will_not_do),
+        cmocka_unit_test(a_hundred_faults),
     };
     return cmocka_run_group_tests(tests, begin, end);
 }

@@ -5,16 +5,18 @@
 #include "paper/case.h"
 
 /* A motor and its inverter: no displacement, no rated power, an electric pump. */
-#define PUMP "\"pump\": {\"drive\": \"electric\", \"curve\": {\"shutoff\": \"30 kPa\", \"free_flow\": \"30 l/min\"}}, "
+#define PUMP                                                                                                 \
+    "\"pump\": {\"drive\": \"electric\", \"curve\": {\"shutoff\": \"30 kPa\", \"free_flow\": \"30 "          \
+    "l/min\"}}, "
 #define SIZES                                                                                                \
     "\"metal_capacity\": \"20 kJ/K\", \"coolant_volume\": \"1.5 l\", \"conductance\": \"600 W/K\", "         \
     "\"conductance_flow\": \"12 l/min\""
 #define ELECTRIC_CAR(heat, sizes, pump)                                                                      \
     "{" AIR ", \"car\": {\"body\": {\"frontal_area\": \"2 m2\"}, \"engine\": {\"heat\": {" heat "}, " sizes  \
-    "}, " pump DUCT_OF(FINS) "}"
-#define GIVEN   "\"law\": \"given\", \"given\": \"1 kW\", \"loss\": 0.08"
-#define NO_TRACE                                                                                             \
-    ", \"drive\": [{\"idle\": \"5 min\"}], \"limits\": {\"coolant\": \"65 degC\"}}"
+    "}, " pump                                                                                               \
+    DUCT_OF(FINS) "}"
+#define GIVEN    "\"law\": \"given\", \"given\": \"1 kW\", \"loss\": 0.08"
+#define NO_TRACE ", \"drive\": [{\"idle\": \"5 min\"}], \"limits\": {\"coolant\": \"65 degC\"}}"
 
 struct opened {
     struct sp_complaints complaints, cautions;
@@ -28,8 +30,11 @@ struct opened {
 static struct opened look(const char *text, const char *first, const char *second, const char *third)
 {
     struct opened o = {.complaints = {0}};
-    struct sp_reader r = {.units = units, .name = "case", .purpose = SP_FOR_DRIVE,
-                          .complaints = &o.complaints, .cautions = &o.cautions};
+    struct sp_reader r = {.units = units,
+                          .name = "case",
+                          .purpose = SP_FOR_DRIVE,
+                          .complaints = &o.complaints,
+                          .cautions = &o.cautions};
     char *set[] = {(char *)(size_t)first, (char *)(size_t)second, (char *)(size_t)third};
     sp_case_open(&r, text, strlen(text), set, third ? 3 : second ? 2 : first ? 1 : 0);
     if (r.design) {
@@ -58,7 +63,8 @@ static bool said(const struct sp_complaints *c, const char *path)
     return false;
 }
 
-static void refused(const char *text, const char *first, const char *second, const char *third, const char *path)
+static void refused(const char *text, const char *first, const char *second, const char *third,
+                    const char *path)
 {
     struct opened o = look(text, first, second, third);
     if (!said(&o.complaints, path)) {
@@ -105,11 +111,14 @@ static void given_faults(void **state)
 {
     (void)state;
     const char *const plain = ELECTRIC_CAR(GIVEN, SIZES, PUMP) REST;
-    refused(ELECTRIC_CAR("\"law\": \"given\"", SIZES, PUMP) NO_TRACE, NULL, NULL, NULL, "car.engine.heat.given");
+    refused(ELECTRIC_CAR("\"law\": \"given\"", SIZES, PUMP) NO_TRACE, NULL, NULL, NULL,
+            "car.engine.heat.given");
     refused(plain, "pump.drive=belt", "pump.speed=6000 rpm", NULL, "car.pump.drive");
     refused(plain, "charge={\"pressure_ratio\": 2}", NULL, NULL, "car.charge");
-    refused(ELECTRIC_CAR(GIVEN, "\"metal_capacity\": \"20 kJ/K\"", PUMP) REST, NULL, NULL, NULL, "car.engine.conductance");
-    refused(ELECTRIC_CAR(GIVEN, "\"conductance\": \"1 kW/K\"", PUMP) REST, NULL, NULL, NULL, "car.engine.metal_capacity");
+    refused(ELECTRIC_CAR(GIVEN, "\"metal_capacity\": \"20 kJ/K\"", PUMP) REST, NULL, NULL, NULL,
+            "car.engine.conductance");
+    refused(ELECTRIC_CAR(GIVEN, "\"conductance\": \"1 kW/K\"", PUMP) REST, NULL, NULL, NULL,
+            "car.engine.metal_capacity");
     /* an engine has to have its size */
     refused(ELECTRIC_CAR("\"fraction\": 0.5", SIZES, PUMP) REST, NULL, NULL, NULL, "car.engine.displacement");
     refused(ELECTRIC_CAR("\"law\": 3", SIZES, PUMP) REST, NULL, NULL, NULL, "car.engine.rated_power");
@@ -126,7 +135,8 @@ static void faults(void **state)
     refused(DRIVE_CASE, "gearbox={\"full\": \"90 degC\"}", NULL, NULL, "car.gearbox.opens");
     refused(DRIVE_CASE, "charge={\"efficiency\": 0.7}", NULL, NULL, "car.charge.pressure_ratio");
     refused(DRIVE_CASE, "engine.heat.law=correlations", NULL, NULL, "car.engine.heat.law");
-    struct opened o = accepted(DRIVE_CASE, "engine.bore=86 mm", "engine.stroke=100 mm", NULL); /* nothing uses them */
+    struct opened o =
+        accepted(DRIVE_CASE, "engine.bore=86 mm", "engine.stroke=100 mm", NULL); /* nothing uses them */
     forget(&o);
     o = accepted(DRIVE_CASE, "engine.bore=86 mm", "engine.stroke=86 mm", "engine.overrun.formula=petrol");
     forget(&o);
@@ -143,8 +153,8 @@ static void doubts(void **state)
     doubted("engine.heat.fraction=1.9", NULL, NULL, "car.engine.heat.fraction");
     doubted("engine.overrun.a=0.4 bar", NULL, NULL, "car.engine.overrun.a");
     doubted("engine.overrun.oil=20 degC", NULL, NULL, "car.engine.overrun.oil");
-    doubted("engine.overrun.formula=diesel", "engine.overrun_friction=[\"1 bar\", \"0.1 bar\", \"0.1 bar\"]", NULL,
-            "car.engine.overrun_friction");
+    doubted("engine.overrun.formula=diesel", "engine.overrun_friction=[\"1 bar\", \"0.1 bar\", \"0.1 bar\"]",
+            NULL, "car.engine.overrun_friction");
     struct opened o = accepted(DRIVE_CASE, NULL, NULL, NULL);
     assert_false(said(&o.cautions, "car.engine.heat.law") || said(&o.cautions, "car.engine.heat.fraction"));
     forget(&o);
@@ -152,7 +162,8 @@ static void doubts(void **state)
 
 /* ---- defaults -------------------------------------------------------------------------------------- */
 
-/* Two litres in four square cylinders: (4 x 0.5e-3/pi)^(1/3) = 86.025 mm; at 81 mm bore 97.03 mm of stroke. */
+/* Two litres in four square cylinders: (4 x 0.5e-3/pi)^(1/3) = 86.025 mm; at 81 mm bore 97.03 mm of stroke.
+ */
 static void sizes(void **state)
 {
     (void)state;
@@ -177,8 +188,8 @@ static void sizes(void **state)
     forget(&o);
 }
 
-/* Barnes-Moss at 7000/min is 0.97 + 1.05 + 2.45 = 4.47 bar, 52.15 kW of 2 l; 0.12 of it is 6.258 kW or 0.03294 of
- * 190 kW, which leaves 0.05706 of the 0.09. */
+/* Barnes-Moss at 7000/min is 0.97 + 1.05 + 2.45 = 4.47 bar, 52.15 kW of 2 l; 0.12 of it is 6.258 kW or
+ * 0.03294 of 190 kW, which leaves 0.05706 of the 0.09. */
 static void oils(void **state)
 {
     (void)state;
@@ -197,8 +208,8 @@ static void oils(void **state)
     forget(&o);
 }
 
-/* By the Willans line: friction 1.55 + 0.046 x 49 = 3.804 bar, 44.38 kW; fuel (190 + 44.38)/0.4 = 585.95 kW, at 42.6 MJ/kg
- * 13.755 g/s, with 14.7 of air 0.2022 kg/s. */
+/* By the Willans line: friction 1.55 + 0.046 x 49 = 3.804 bar, 44.38 kW; fuel (190 + 44.38)/0.4 = 585.95 kW,
+ * at 42.6 MJ/kg 13.755 g/s, with 14.7 of air 0.2022 kg/s. */
 static void charge_and_battery(void **state)
 {
     (void)state;
@@ -229,9 +240,12 @@ static int close_units(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(given_needs_no_engine), cmocka_unit_test(given_faults),
-        cmocka_unit_test(faults),                cmocka_unit_test(doubts),
-        cmocka_unit_test(sizes),                 cmocka_unit_test(oils),
+        cmocka_unit_test(given_needs_no_engine),
+        cmocka_unit_test(given_faults),
+        cmocka_unit_test(faults),
+        cmocka_unit_test(doubts),
+        cmocka_unit_test(sizes),
+        cmocka_unit_test(oils),
         cmocka_unit_test(charge_and_battery),
     };
     return cmocka_run_group_tests(tests, open_units, close_units);

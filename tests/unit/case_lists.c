@@ -16,11 +16,13 @@ static int end(void **state)
     return 0;
 }
 
-#define CORE      "{\"width\": \"480 mm\", \"height\": \"340 mm\", \"depth\": \"42 mm\", " COEFFICIENT "}"
-#define THIN      "{\"width\": \"300 mm\", \"height\": \"200 mm\", \"depth\": \"21 mm\", \"pressure_drop\": " \
-                  "{\"linear\": \"60 Pa.s/m\", \"quadratic\": \"12 Pa.s2/m2\"}}"
-#define FAN       "{\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}, \"diameter\": \"300 mm\"}"
-#define BIG_FAN   "{\"curve\": [[\"0 m3/s\", \"160 Pa\"], [\"0.63 m3/s\", \"0 Pa\"]], \"diameter\": \"400 mm\"}"
+#define CORE "{\"width\": \"480 mm\", \"height\": \"340 mm\", \"depth\": \"42 mm\", " COEFFICIENT "}"
+#define THIN                                                                                                 \
+    "{\"width\": \"300 mm\", \"height\": \"200 mm\", \"depth\": \"21 mm\", \"pressure_drop\": "              \
+    "{\"linear\": \"60 Pa.s/m\", \"quadratic\": \"12 Pa.s2/m2\"}}"
+#define FAN       "{\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}, " WIDE("300")
+#define WIDE(mm)  "\"diameter\": \"" mm " mm\"}"
+#define BIG_FAN   "{\"curve\": [[\"0 m3/s\", \"160 Pa\"], [\"0.63 m3/s\", \"0 Pa\"]], " WIDE("400")
 #define EXIT_OF   "{\"area\": \"600 cm2\"}"
 #define CASE(car) "{" AIR ", \"car\": {" car "}}"
 /* A duct with these in it. */
@@ -33,8 +35,8 @@ static int end(void **state)
 
 #define SET(text) ((char *const[]){(char *)(size_t)(text)})
 
-static void one_complaint(const char *text, char *const *set, size_t sets, const char *path, const char *found,
-                          const char *expected, int source)
+static void one_complaint(const char *text, char *const *set, size_t sets, const char *path,
+                          const char *found, const char *expected, int source)
 {
     struct result r = parse_set(text, SP_FOR_DUCT, set, sets);
     if (r.complaints.count != 1 || !has(&r.complaints, NULL, 0, path, found, expected)) {
@@ -143,7 +145,8 @@ static void settings_find_elements(void **state)
     check_close(set_area(TWO, "car.ducts[0].exits[1].area=1 m2"), 1.0, 0.0, 0.0);
     check_close(set_area(TWO, "ducts[1].exit.area=1 m2"), 10.0, 0.0, 0.0);
     check_close(set_area(TWO, "ducts[1].exits[0].area=1 m2"), 10.0, 0.0, 0.0); /* the file says `exit` */
-    check_close(set_area(TWO, "ducts[1].exits=[{\"area\": \"1 cm2\"}, {\"area\": \"1 m2\"}]"), 11.0, 0.0, 0.0);
+    check_close(set_area(TWO, "ducts[1].exits=[{\"area\": \"1 cm2\"}, {\"area\": \"1 m2\"}]"), 11.0, 0.0,
+                0.0);
     check_close(set_area(TWO, "ducts[1].exits[0]={\"area\": \"1 m2\"}"), 10.0, 0.0, 0.0);
     check_close(set_area(CASE("\"duct\": " ONE), "duct.exits[0].area=1 m2"), 0.0, 0.0, 0.0);
     check_close(set_area(CASE("\"duct\": " LIST), "duct.exit.area=1 m2"), 0.0, 0.0, 0.0);
@@ -165,7 +168,8 @@ static void settings_that_find_none(void **state)
     set_refused(TWO, "ducts[0].cores[0].aera=1", "ducts[0].cores[0].aera", "an unknown key", NULL);
     set_refused(TWO, "ducts[99999999].inlet.area=1 m2", NULL, "index 99999999", "0 to 1");
     set_refused(DUCT_CASE, "duct.fans[0].count=2", "duct.fans[0].count", "index 0", "no fans");
-    set_refused(DUCT_CASE, "duct.cores[1].width=1 m", "duct.cores[1].width", "index 1", "there is 1, as \"core\"");
+    set_refused(DUCT_CASE, "duct.cores[1].width=1 m", "duct.cores[1].width", "index 1",
+                "there is 1, as \"core\"");
     set_refused(TWO, "ducts[0].cores[1].width=1 kg", "ducts[0].cores[1].width", "1 kg", "a length");
     struct result r = parse_set(TWO, SP_FOR_DUCT, SET("duct[0].exit.area=1 m2"), 1);
     assert_string_equal(r.complaints.list[0].hint, "the list is \"ducts\"");
@@ -186,7 +190,8 @@ static void lists_that_will_not_do(void **state)
     refused(DUCT("\"cores\": [" CORE "," CORE "," CORE "," CORE "," CORE "," CORE "]"), "car.duct.cores",
             "more than 5", "a list of 1 to 5 objects");
     refused(DUCT("\"cores\": [" CORE ", 3]"), "car.duct.cores[1]", "3", "an object");
-    refused(DUCT("\"cores\": [" CORE "], \"core\": " CORE), "car.duct.core", "both core and cores", "one of them");
+    refused(DUCT("\"cores\": [" CORE "], \"core\": " CORE), "car.duct.core", "both core and cores",
+            "one of them");
     refused(DUCT("\"core\": [" CORE "]"), "car.duct.core", "an array", "an object");
     refused(CASE("\"ducts\": []"), "car.ducts", "an empty list", "a list of 1 to 4 objects");
     refused("{" AIR ", \"ducts\": [], \"car\": {" DUCT_OF(COEFFICIENT) "}}", "ducts", "an unknown key", NULL);
@@ -210,7 +215,8 @@ static void faults_of_elements(void **state)
     assert_true(has(&r.complaints, NULL, 7, "car.ducts[1].fans[2].curve.shutoff", "1 kg", "a pressure"));
     assert_true(has(&r.complaints, NULL, 7, "car.ducts[1].fans[2].diameter", "nothing", "static"));
     assert_true(has(&r.complaints, NULL, 8, "car.ducts[1].fans[2].switch.on", "60 degC", "off"));
-    assert_true(has(&r.complaints, NULL, 10, "car.ducts[1].cores[1].pressure_drop", "nothing", "coefficient"));
+    assert_true(
+        has(&r.complaints, NULL, 10, "car.ducts[1].cores[1].pressure_drop", "nothing", "coefficient"));
     assert_true(has(&r.complaints, NULL, 11, "car.ducts[1].cores[2].height", "7 m", "at most 5 m"));
     assert_true(has(&r.complaints, NULL, 11, "car.ducts[1].cores[2].pressure_drop", "no law", NULL));
     bool depth = has(&r.complaints, NULL, 10, "car.ducts[1].cores[1].depth", NULL, NULL);
@@ -222,10 +228,10 @@ static void faults_of_elements(void **state)
 static void doubts_of_elements(void **state)
 {
     (void)state;
-    struct result r = must_set(TWO, SP_FOR_DUCT,
-                               (char *const[]){(char[]){"ducts[1].inlet.area=10 cm2"},
-                                               (char[]){"ducts[0].fans[1].diameter=2 m"}},
-                               2);
+    struct result r = must_set(
+        TWO, SP_FOR_DUCT,
+        (char *const[]){(char[]){"ducts[1].inlet.area=10 cm2"}, (char[]){"ducts[0].fans[1].diameter=2 m"}},
+        2);
     assert_int_equal(r.cautions.count, 2);
     assert_true(has(&r.cautions, NULL, 0, "ducts[1].inlet.area", "10 cm2", NULL));
     assert_true(has(&r.cautions, NULL, 0, "ducts[0].fans[1].diameter", "2 m", "fits"));

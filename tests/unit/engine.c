@@ -253,8 +253,8 @@ static struct sp_engine whole(void)
     return e;
 }
 
-/* Laws and formulas beyond the plain ones, the cap in the way of all: no jump, nothing below zero or no number, and
- * the slope is the derivative. */
+/* Laws and formulas beyond the plain ones, the cap in the way of all: no jump, nothing below zero or no
+ * number, and the slope is the derivative. */
 static void beyond_the_plain(void **state)
 {
     (void)state;
@@ -276,7 +276,8 @@ static void beyond_the_plain(void **state)
                 check_close(a.gas, n.gas, 0.0, 0.3);
                 check_close(a.friction, b.friction, 0.0, 0.3);
                 check_close(a.fuel, b.fuel, 0.0, 0.3);
-                assert_true(a.gas >= 0.0 && a.friction >= 0.0 && a.fuel >= 0.0 && a.oil >= 0.0 && a.cut >= 0.0);
+                assert_true(a.gas >= 0.0 && a.friction >= 0.0 && a.fuel >= 0.0 && a.oil >= 0.0 &&
+                            a.cut >= 0.0);
             }
         for (double power = 500.0; power < 110e3; power += 1.3e3) {
             double up = heat(law, power + 1.0, 60.0).gas, down = heat(law, power - 1.0, 60.0).gas;

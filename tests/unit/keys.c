@@ -149,7 +149,8 @@ static enum base base_of(const struct sp_key *row)
 static void places_do_not_overlap(void **state)
 {
     (void)state;
-    static const size_t sizes[] = {sizeof(struct sp_design), sizeof(struct sp_step), sizeof(struct sp_planned)};
+    static const size_t sizes[] = {sizeof(struct sp_design), sizeof(struct sp_step),
+                                   sizeof(struct sp_planned)};
     for (size_t i = 0; sp_key_row(i); ++i) {
         const struct sp_key *a = sp_key_row(i);
         if (a->keep == SP_KEEP_NOTHING) continue;

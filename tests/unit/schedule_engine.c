@@ -1,5 +1,5 @@
-/* What the schedule makes of engines beyond the plain one: given heat, correlation, oils, charge air, the cap.
- * SPDX-License-Identifier: GPL-3.0-or-later */
+/* What the schedule makes of engines beyond the plain one: given heat, correlation, oils, charge air, the
+ * cap. SPDX-License-Identifier: GPL-3.0-or-later */
 #include "schedule_drive.h"
 
 #include "part/charge.h"
@@ -15,10 +15,17 @@ static double row(const struct drive *d, enum sp_channel_in c, size_t k)
 static void motor(struct drive *d)
 {
     begin(d);
-    d->design.engine = (struct sp_engine){.heat_law = SP_HEAT_GIVEN, .heat_given = 1e3, .heat_loss = 0.1,
-                                          .displacement = NAN, .rated_power = NAN, .rated_speed = NAN,
-                                          .idle_speed = 14.0, .idle_heat = NAN, .heat_fraction = NAN,
-                                          .heating_value = 42.6e6, .air_fuel_ratio = 14.7};
+    d->design.engine = (struct sp_engine){.heat_law = SP_HEAT_GIVEN,
+                                          .heat_given = 1e3,
+                                          .heat_loss = 0.1,
+                                          .displacement = NAN,
+                                          .rated_power = NAN,
+                                          .rated_speed = NAN,
+                                          .idle_speed = 14.0,
+                                          .idle_heat = NAN,
+                                          .heat_fraction = NAN,
+                                          .heating_value = 42.6e6,
+                                          .air_fuel_ratio = 14.7};
 }
 
 /* ---- given ----------------------------------------------------------------------------------------- */
@@ -57,6 +64,7 @@ static void given_from_column(void **state)
     check_close(row(&d, SP_IN_HEAT_GAS, 1), 6.5e3, 1e-12, 0.0);
     check_close(row(&d, SP_IN_HEAT_GAS, 2), 0.0, 0.0, 0.0);
     check_close(row(&d, SP_IN_POWER, 1) + row(&d, SP_IN_ENGINE_SPEED, 1), 0.0, 0.0, 0.0);
+    assert_int_equal(d.cautions.count, 0);
     end(&d);
 }
 
@@ -66,7 +74,9 @@ static void column_of_an_engine(void **state)
     (void)state;
     struct drive d, e;
     begin(&d);
-    add_text(&d, "time [s],speed [m/s],power [kW],engine_speed [rpm],heat [kW]\n0,20,40,3000,1\n10,20,40,3000,1\n");
+    add_text(
+        &d,
+        "time [s],speed [m/s],power [kW],engine_speed [rpm],heat [kW]\n0,20,40,3000,1\n10,20,40,3000,1\n");
     build(&d);
     begin(&e);
     add_text(&e, "time [s],speed [m/s],power [kW],engine_speed [rpm]\n0,20,40,3000\n10,20,40,3000\n");
@@ -148,8 +158,10 @@ static void oils_and_charge(void **state)
     double ratio = 1.0 + flow / 0.15 * flow / 0.15;
     check_close(row(&d, SP_IN_CHARGE_HEATING, 0), (pow(ratio, 0.4 / 1.4) - 1.0) / 0.7, 1e-12, 0.0);
     check_close(row(&d, SP_IN_CHARGE_FLOW, 1), 0.0, 0.0, 1e-15); /* the fuel is cut */
-    const enum sp_channel_in dead[] = {SP_IN_OIL_HEAT, SP_IN_GEARBOX_HEAT, SP_IN_CHARGE_FLOW, SP_IN_CHARGE_HEATING};
-    for (size_t i = 0; i < 4; ++i) check_close(row(&d, dead[i], d.s.rows - 1), 0.0, 0.0, 0.0);
+    const enum sp_channel_in dead[] = {SP_IN_OIL_HEAT, SP_IN_GEARBOX_HEAT, SP_IN_CHARGE_FLOW,
+                                       SP_IN_CHARGE_HEATING};
+    for (size_t i = 0; i < 4; ++i)
+        check_close(row(&d, dead[i], d.s.rows - 1), 0.0, 0.0, 0.0);
     end(&d);
 }
 
@@ -159,14 +171,16 @@ static void charge_from_flows(void **state)
     (void)state;
     struct drive d;
     fit_all(&d);
-    add_text(&d, "time [s],speed [m/s],power [kW],engine_speed [rpm],air_flow [kg/s]\n0,20,40,3000,0.15\n10,20,40,3000,0.3\n");
+    add_text(&d, "time [s],speed [m/s],power [kW],engine_speed [rpm],air_flow "
+                 "[kg/s]\n0,20,40,3000,0.15\n10,20,40,3000,0.3\n");
     build(&d);
     check_close(row(&d, SP_IN_CHARGE_FLOW, 0), 0.15, 1e-12, 0.0);
     check_close(row(&d, SP_IN_CHARGE_FLOW, 1), 0.3, 1e-12, 0.0);
     check_close(row(&d, SP_IN_CHARGE_HEATING, 1), row(&d, SP_IN_CHARGE_HEATING, 0), 1e-12, 0.0);
     end(&d);
     fit_all(&d);
-    add_text(&d, "time [s],speed [m/s],power [kW],engine_speed [rpm],fuel_flow [kg/s]\n0,20,40,3000,0.003\n10,20,40,3000,0.003\n");
+    add_text(&d, "time [s],speed [m/s],power [kW],engine_speed [rpm],fuel_flow "
+                 "[kg/s]\n0,20,40,3000,0.003\n10,20,40,3000,0.003\n");
     build(&d);
     double share = 0.003 * 42.6e6 / sp_engine_rated_fuel(&d.design.engine);
     check_close(row(&d, SP_IN_CHARGE_FLOW, 0), 0.15 * share, 1e-12, 0.0);
@@ -228,8 +242,10 @@ static void cap_is_told(void **state)
         add_text(&d, "time [s],speed [m/s],power [kW],engine_speed [rpm]\n0,20,90,6000\n10,20,90,6000\n");
         build(&d);
         double fuel = sp_engine_fuel_power(&d.design.engine, 90e3, 100.0), heat = row(&d, SP_IN_HEAT_GAS, 0);
-        if (capped) check_close(heat, 0.75 * fuel - 90e3, 1e-12, 0.0);
-        else assert_true(heat > 0.75 * fuel - 90e3);
+        if (capped)
+            check_close(heat, 0.75 * fuel - 90e3, 1e-12, 0.0);
+        else
+            assert_true(heat > 0.75 * fuel - 90e3);
         assert_int_equal(d.cautions.count, capped);
         end(&d);
     }
@@ -238,10 +254,10 @@ static void cap_is_told(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(given_from_power),   cmocka_unit_test(given_from_column),
-        cmocka_unit_test(column_of_an_engine), cmocka_unit_test(given_nowhere),
-        cmocka_unit_test(given_on_the_road),  cmocka_unit_test(oils_and_charge),
-        cmocka_unit_test(charge_from_flows),  cmocka_unit_test(plain_has_none),
+        cmocka_unit_test(given_from_power),         cmocka_unit_test(given_from_column),
+        cmocka_unit_test(column_of_an_engine),      cmocka_unit_test(given_nowhere),
+        cmocka_unit_test(given_on_the_road),        cmocka_unit_test(oils_and_charge),
+        cmocka_unit_test(charge_from_flows),        cmocka_unit_test(plain_has_none),
         cmocka_unit_test(correlation_from_columns), cmocka_unit_test(cap_is_told),
     };
     return cmocka_run_group_tests(tests, set_up, tear_down);

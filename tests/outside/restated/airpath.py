@@ -50,7 +50,7 @@ class AirPath:
         if not self.plain or bonnet or blower > 0 or self.duct["inlet"]["spill"] or self.duct.get("interference"):
             return self.network.solve(v_air, wake, t_air, pressure, fans, walls, 0.0, bonnet, blower, skin)
         s = self.plain.solve(v_air, wake, t_air, pressure, fans[0] if fans else 0.0, walls.get(0))
-        return {"m": s["m"], "drag": s["drag"], "warm": {0: s["warm"]}, "t_in": {0: t_air}}
+        return {"m": s["m"], "drag": s["drag"], "warm": {0: s["warm"]}, "t_in": {0: t_air}, "loads": {}}
 
 
 def plain(duct):

@@ -281,7 +281,7 @@ class Network:
         self.exits, self.leak_pressure = self._outside(bonnet)
         self.p0, self.m0 = self.q + 50.0, 0.3 * self.rho * self.face * math.sqrt(2 * (self.q + 50) / self.rho) / 4
         found = self._search()
-        return self._told(found)
+        return self._told(found, heat)
 
     def _given(self, heat):
         if heat <= 0:
@@ -317,7 +317,7 @@ class Network:
                 return found.x
         raise RuntimeError("no balance of the air found")
 
-    def _told(self, x):
+    def _told(self, x, heat):
         self._residual(x)
         g, n = self.got, self.duct["count"]
         t = g["t"]
@@ -328,7 +328,7 @@ class Network:
         if g["m1"] < 0:
             drag += g["m1"] ** 2 / (g["rho"][F] * g["open"])
         if self.duct["inlet"]["spill"] and self.v > 0:
-            v1 = max(g["m1"] / (self.rho * g["open"]), 0.0)
+            v1 = max(g["m1"] * self.gas * g["t1"] / (self.p * g["open"]), 0.0)
             if v1 < self.v:
                 drag += (1 - self.duct["inlet"]["lip_suction"]) * self.q * g["open"] * (1 - v1 / self.v) ** 2
         drag += math.copysign(self.q, self.v) * self.duct.get("interference", 0.0) / n if self.v else 0.0
@@ -336,9 +336,18 @@ class Network:
         for core, r, t_in in g["gave"]:
             warm[core] = warm.get(core, 0.0) + r
             weighted[core] = weighted.get(core, 0.0) + r * t_in
+        weighted_load = {}  # a load's air comes in at one temperature in the cases made here
+        for core, _, t in g["gave"]:
+            weighted_load.setdefault(core, t)
         t_in = {c: weighted[c] / warm[c] if warm[c] > 0 else self.t_air for c in warm}
         m = sum(f for f, _, _ in g["lanes"])
         taken = sum(f for f, _, _ in g["lanes"] if f > 0)
         t3 = sum(f * out for f, _, out in g["lanes"] if f > 0) / taken if taken > 0 else None
-        return {"m": m, "drag": drag, "warm": warm, "t_in": t_in, "t1": g["t1"], "t": t, "t3": t3, "m1": g["m1"],
+        flows = {}
+        for lane, (f, _, _) in zip(self.lanes, g["lanes"]):
+            for c in lane.cores:
+                flows[c] = flows.get(c, 0.0) + abs(f)
+        loads = {c: flows[c] * self.cp * rise(q, flows[c] * self.cp, self.most - (weighted_load[c] - self.t_air))
+                 for c, q in self.loads.items()} if self.loads and not heat else {}
+        return {"m": m, "loads": loads, "drag": drag, "warm": warm, "t_in": t_in, "t1": g["t1"], "t": t, "t3": t3, "m1": g["m1"],
                 "exits": g["exits"], "p": g["p"], "face": m / (g["rho"][F] * self.face)}

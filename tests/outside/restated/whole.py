@@ -289,12 +289,12 @@ class WholePlant(Plant):
             / (self.m_jacket * cap[0])
         d[TANK] = (m_t * (h[0] - h[1]) - skin_tank) / (self.m_tank * cap[1])
         self._small(y, d, ch, s, loop, switched, enters)
-        loads = sum(c["heat_load"] * path.duct["count"] for path, n, _ in self.runs[:1] for c in [])
+        loads = sum(n * sum(a["loads"].values()) for a, (_, n, _) in zip(air, self.runs))
         warm = sum(n * sum(a["warm"].get(x.index, 0.0) * (float(np.mean(y[x.wall])) - a["t_in"][x.index])
                            for x in self.cores if x.run == i) for i, (a, (_, n, _)) in enumerate(zip(air, self.runs)))
         free = ch[PRESSURE] / (self.gas * amb)
         drag = sum(n * a["drag"] for a, (_, n, _) in zip(air, self.runs))
-        d[self.sums:] = (heat + oil_in + charged, warm + loads, skin_metal, skin_hoses.sum() + heater + oil_skin,
+        d[self.sums:] = (heat + oil_in + charged + loads, warm + loads, skin_metal, skin_hoses.sum() + heater + oil_skin,
                          skin_tank, power, drag * ch[SPEED], free * ch[AIR_SPEED] ** 2 / 2 * ch[SPEED])
         return d
 
@@ -353,7 +353,7 @@ class WholePlant(Plant):
             last = cells[-1]
         return flow * cp * (t1 - last)
 
-    charge_cp = CP_DRY
+    charge_cp = 1007.0
 
     def compressed(self, ch):
         return (ch[AMBIENT] + self.car["charge"]["intake_rise"]) * (1 + ch[HEATING])

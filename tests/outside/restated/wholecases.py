@@ -3,12 +3,19 @@
 import copy
 
 
-def core(width=0.45, height=0.35, ua=2600, water=9000, **more):
-    return {"width": f"{width} m", "height": f"{height} m", "depth": "40 mm", "cells": 3, "metal_capacity": "4 kJ/K",
+def core(width=0.45, height=0.35, ua=2600, water=9000, cells=3, **more):
+    return {"width": f"{width} m", "height": f"{height} m", "depth": "40 mm", "cells": cells, "metal_capacity": "4 kJ/K",
             "coolant_volume": "1.8 l", "drop": {"flow": "100 l/min", "drop": "20 kPa"},
             "pressure_drop": {"linear": "14 Pa.s/m", "quadratic": "4.1 Pa.s2/m2", "at_temperature": "20 degC"},
             "heat": {"air_conductance": f"{ua} W/K", "at_face_velocity": "8 m/s", "air_exponent": 0.45,
                      "coolant_conductance": f"{water} W/K", "at_coolant_flow": "1.6 kg/s"}, **more}
+
+
+def condenser(heat, width, height, **more):
+    c = core(width, height, carries="heat load", heat_load=heat, **more)
+    for key in ("heat", "drop", "cells", "metal_capacity", "coolant_volume"):
+        del c[key]
+    return c
 
 
 def duct(**more):
@@ -105,6 +112,47 @@ def pulsing():
     return c
 
 
+def leaking():
+    """Leaks, half a shroud with flaps, two exits, recirculation, warm bay, then the bonnet up and a blower."""
+    c = base()
+    d = c["car"]["duct"]
+    d["leak"] = {"past_core": {"gap": "4 mm", "length": "1.5 m"}, "outside": {"area": "10 cm2"}}
+    d["inlet"].update(recirculated=0.2, preheat_standing="6 K", preheat_moving="1 K", spill=True)
+    d["fan"].update(span_from=0, span_to=0.55, flap_area="50 cm2", diameter="300 mm")
+    d["bay"] = {"engine_skin": 0.6}
+    del d["exit"]
+    d["exits"] = EXITS
+    c["drive"] = [{"hold": "40 s", "speed": "80 km/h", "power": "60 kW", "engine_speed": "4500 rpm"}, {"idle": "25 s"},
+                  {"idle": "15 s", "bonnet_up": True, "blower": "0.3 m3/s"}, {"soak": "20 s"}]
+    return c
+
+
+def oils():
+    """Oil, gearbox and charge air cooled in one duct ahead of the radiator, beside a condenser."""
+    c = base()
+    d, car = c["car"]["duct"], c["car"]
+
+    def small(medium, flow, lo, hi, **heat):
+        x = core(0.15, 0.3, 500, 900, carries=medium, span_from=lo, span_to=hi, coolant_volume="0.6 l",
+                 metal_capacity="1.5 kJ/K", cells=2)
+        x["heat"]["at_coolant_flow"] = flow
+        x["heat"].update(heat)
+        del x["drop"]
+        return x
+
+    radiator = d.pop("core")
+    d["cores"] = [small("engine oil", "0.3 kg/s", 0, 0.3), small("gearbox oil", "0.1 kg/s", 0.3, 0.5),
+                  small("charge air", "0.15 kg/s", 0.5, 0.8, coolant_exponent=0.7), condenser("3 kW", 0.1, 0.3,
+                                                                                           span_from=0.8, span_to=1),
+                  radiator]
+    car["oil"] = {"heat_share": 0.06, "plate": "200 W/K", "opens": "85 degC", "volume": "5 l"}
+    car["gearbox"] = {"friction_share": 0.02, "block": "8 W/K"}
+    car["charge"] = {"pressure_ratio": 1.8, "air_flow": "0.16 kg/s"}
+    c["start"].update(oil="86 degC", gearbox="80 degC")
+    c["drive"] = [dict(c["drive"][0], hold="15 s"), dict(c["drive"][1], hold="8 s"), {"idle": "4 s"}]
+    return c
+
+
 def drives():
     yield "plain", base()
     yield "side by side", side_by_side()
@@ -113,6 +161,69 @@ def drives():
     yield "traffic and changes", traffic()
     yield "cavitating", cavitating()
     yield "pulsing", pulsing()
+    yield "leaking", leaking()
+    yield "oils and charge air", oils()
 
 
-assert copy
+# ---- networks of air -----------------------------------------------------------------------------------------
+
+
+def _air(**more):
+    d = duct(**more)
+    d["inlet"] = dict(d["inlet"], **more.pop("more_inlet", {}))
+    d.pop("more_inlet", None)
+    return {"air": {"ambient": "28 degC", "altitude": "300 m"}, "car": {"duct": d}}
+
+
+FANS = [{"curve": {"shutoff": "230 Pa", "free_flow": "0.45 m3/s"}, "power": "150 W", "span_from": 0, "span_to": 0.5,
+         "diameter": "300 mm"},
+        {"curve": [["0 m3/s", "190 Pa"], ["0.1 m3/s", "170 Pa"], ["0.3 m3/s", "60 Pa"], ["0.4 m3/s", "0 Pa"]],
+         "power": "110 W", "span_from": 0.6, "span_to": 1, "basis": "static", "diameter": "280 mm", "health": "sound"}]
+EXITS = [{"area": "400 cm2", "loss": 0.5, "pressure_coefficient": -0.15},
+         {"area": "300 cm2", "loss": 1.2, "pressure_coefficient": 0.1, "angle": "90 deg"}]
+
+
+def several(key, *parts):
+    """A duct with a list in place of one."""
+    c = _air()
+    del c["car"]["duct"][key[:-1]]
+    c["car"]["duct"][key] = list(parts)
+    return c
+
+
+def ducts():
+    leak = {"past_core": {"gap": "5 mm", "length": "1.5 m"}}
+    outside = {"outside": {"area": "20 cm2", "coefficient": 1.5, "pressure_coefficient": -0.2}}
+    yield "leak past the core", _air(leak=leak)
+    yield "leak to outside", _air(leak=outside)
+    half = _air()
+    half["car"]["duct"]["fan"].update(span_from=0, span_to=0.6)
+    yield "half a shroud", half
+    flaps = copy.deepcopy(half)
+    flaps["car"]["duct"]["fan"].update(flap_area="60 cm2", flap_loss=1.8)
+    yield "half a shroud with flaps", flaps
+    yield "two fans", several("fans", *FANS)
+    ahead = several("fans", *(dict(f, before="core") for f in FANS))
+    yield "two fans ahead of the core", ahead
+    yield "two exits", several("exits", *EXITS)
+    small = core(0.25, 0.3, 900, 3000, carries="engine oil", span_from=0.1, span_to=0.6)
+    yield "oil cooler ahead", several("cores", small, core())
+    yield "condenser ahead", several("cores", condenser("3 kW", 0.4, 0.3), core())
+    stack = several("cores", core(0.3, 0.35, 1500, 5000, span_from=0, span_to=0.5),
+                    core(0.2, 0.35, 900, 3000, span_from=0.5, span_to=1, blocked="20 %"), core(angle="30 deg"))
+    yield "two beside each other ahead of a third", stack
+    yield "preheat and recirculation", _air(more_inlet={"recirculated": 0.2, "preheat_standing": "8 K",
+                                                        "preheat_moving": "2 K"})
+    yield "spill and interference", _air(more_inlet={"spill": True, "lip_suction": 0.4}, interference="0.02 m2")
+    table = _air(leak=leak, diffuser={"kind": "conical", "length": "200 mm"})
+    table["car"]["duct"]["inlet"] = {"area": "300 cm2", "recovery_table": [[0.2, 0.5], [0.4, 0.7], [0.7, 0.8], [1, 0.6]]}
+    yield "table of recovery, diffuser and leak", table
+    everything = copy.deepcopy(stack)
+    d = everything["car"]["duct"]
+    d["inlet"].update(recirculated=0.15, preheat_standing="4 K", blocked="10 %", screen=0.6)
+    d["leak"] = dict(leak, **outside)
+    del d["fan"], d["exit"]
+    d["fans"], d["exits"] = copy.deepcopy(FANS), EXITS
+    d["fans"][0].update(flap_area="40 cm2")
+    d["cores"][1] = condenser("2 kW", 0.2, 0.35, span_from=0.5, span_to=1, blocked="20 %")
+    yield "all at once", everything

@@ -97,6 +97,8 @@ def _fitted(car):
         oil = _fill(car[name], volume=volume, flow=flow, flow_speed=4000 / 60, plate=0.0, opens=None, still=0.1,
                     block=75.0 if name == "oil" else 0.0)
         _fill(oil, flow_most=oil["flow"], full=(oil["opens"] or 0) + 10)
+        if name == "gearbox":
+            _fill(oil, heat_share=0.025)
         _fill(oil.setdefault("skin", {}), standing=skin[0], moving=skin[1])
         _fill(oil, friction_share=0.12 if name == "oil" else 0.0)
     if "charge" in car:
