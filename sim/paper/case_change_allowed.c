@@ -8,7 +8,7 @@
 
 static const char asked[] = "no change: what is asked of the engine is worked out before the drive";
 static const char laid_out[] = "no change: how the parts are joined is laid out before the drive";
-static const char filled[] = "no change: the coolant is filled in before the drive";
+static const char filled[] = "no change: coolant and oil are filled in before the drive";
 
 /* Keys, or all keys of a group, that stay as they are. */
 static const struct {
@@ -27,6 +27,13 @@ static const struct {
     {"car.duct.core.feed", laid_out},
     {"car.duct.fan.count", laid_out},
     {"car.electrics.battery", laid_out},
+    {"car.oil.volume", filled},
+    {"car.oil.heat_share", asked},
+    {"car.oil.friction_share", asked},
+    {"car.gearbox.volume", filled},
+    {"car.gearbox.heat_share", asked},
+    {"car.gearbox.friction_share", asked},
+    {"car.charge", asked},
 };
 
 static bool within(const char *group, const char *path)
