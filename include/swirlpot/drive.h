@@ -113,8 +113,9 @@ struct sp_told_change {
 struct sp_peak { double value, time, distance; size_t step; const char *mark; };
 
 /* A limit that decides, and how near the drive came to it. */
-enum { SP_ROOM_BOIL = 3, SP_ROOMS = 7 }; /* coolant, gauge, metal, boil margin, oil, gearbox oil, charge air */
-struct sp_room { double limit, came_to, left; }; /* K; NAN: none. Where it was nearest, if a change moved the limit */
+enum { SP_ROOM_BOIL = 3, SP_ROOMS = 7 }; /* coolant, gauge, metal, boil margin, oil, gearbox, charge */
+/* K; NAN: none. Where a change moved the limit: when it was nearest. */
+struct sp_room { double limit, came_to, left; };
 
 struct sp_result {
     bool survives;
@@ -138,7 +139,7 @@ struct sp_result {
     double liquid_lost;        /* m3 through the cap */
     double tank_left;          /* m3 of coolant that the tank holds at its filling temperature */
     double pump_head_left;     /* least share of the pump's rise that cavitation left; NAN: not watched */
-    struct { double used, left; } battery; /* J drawn with the engine off, share of the charge left; NAN: not watched */
+    struct { double used, left; } battery; /* J drawn with the engine off, share left; NAN: not watched */
     struct {                   /* against the trace's measured coolant; NAN where there is none */
         double rms, warmup_rms, time_to_85, measured_time_to_85;    /* K, K, s, s */
         double none_rms, none_warmup_rms; /* of no model at all: straight line to the set point, then constant */

@@ -50,7 +50,7 @@ struct sp_run {
     struct sp_measured measured;
     struct sp_result *result;
     struct sp_tracked coolant, gauge, metal, oil, gearbox, charge, margin, pressure, over_ambient, head_lost;
-    struct sp_room room[SP_ROOMS]; /* nearest so far to each limit as it then was; followed where the car changes */
+    struct sp_room room[SP_ROOMS]; /* nearest so far to each limit as it then was; where the car changes */
     struct { double time, power, thrust; } spill; /* W taken and given, as last looked at; only where it is counted */
     size_t event_room;
     bool lost_event;             /* no memory for one */
@@ -128,7 +128,7 @@ bool sp_run_failures(struct sp_run *r);
 /* The limits that decide, in the order of sp_room; NAN: none. */
 void sp_run_limits(const struct sp_limits *l, double out[SP_ROOMS]);
 
-/* Tells of each change when a limit was broken after it, once the events are in order. False without memory. */
+/* Tells of each change when a limit was broken after it. False without memory. */
 bool sp_run_tell_changes(struct sp_run *r);
 
 /* Closes the books: ledger, margins, verdict. SP_NUMERICS when the ledger does not close. */

@@ -39,9 +39,13 @@ static void track_rooms(struct sp_run *r, const struct sp_inputs *in, const doub
 {
     const struct sp_layout *l = &r->circuit->layout;
     double limit[SP_ROOMS];
-    const double now[SP_ROOMS] = {y[SP_Y_JACKET], y[SP_Y_GAUGE] + r->circuit->design->gauge.offset, y[SP_Y_METAL],
-                                  r->seen.boil_margin, l->oil >= 0 ? y[l->oil] : NAN,
-                                  l->gearbox >= 0 ? y[l->gearbox] : NAN, sp_circuit_charge_out(r->circuit, in, y)};
+    const double now[SP_ROOMS] = {y[SP_Y_JACKET],
+                                  y[SP_Y_GAUGE] + r->circuit->design->gauge.offset,
+                                  y[SP_Y_METAL],
+                                  r->seen.boil_margin,
+                                  l->oil >= 0 ? y[l->oil] : NAN,
+                                  l->gearbox >= 0 ? y[l->gearbox] : NAN,
+                                  sp_circuit_charge_out(r->circuit, in, y)};
     sp_run_limits(&r->circuit->design->limits, limit);
     for (int i = 0; i < SP_ROOMS; ++i) {
         double left = i == SP_ROOM_BOIL ? now[i] - limit[i] : limit[i] - now[i];

@@ -92,12 +92,14 @@ static void find_rooms(struct sp_run *r)
 {
     struct sp_result *out = r->result;
     double limit[SP_ROOMS];
-    const double peak[SP_ROOMS] = {out->coolant.value, out->gauge.value,   out->metal.value, out->boil_margin.value,
-                                   out->oil.value,     out->gearbox.value, out->charge.value};
+    const double peak[SP_ROOMS] = {out->coolant.value,     out->gauge.value, out->metal.value,
+                                   out->boil_margin.value, out->oil.value,   out->gearbox.value,
+                                   out->charge.value};
     sp_run_limits(&r->drive->design->limits, limit);
     for (int i = 0; i < SP_ROOMS; ++i) {
         double left = i == SP_ROOM_BOIL ? peak[i] - limit[i] : limit[i] - peak[i];
-        out->room[i] = limit_moves(r->drive->design, i, limit[i]) ? r->room[i] : (struct sp_room){limit[i], peak[i], left};
+        bool moves = limit_moves(r->drive->design, i, limit[i]);
+        out->room[i] = moves ? r->room[i] : (struct sp_room){limit[i], peak[i], left};
     }
 }
 

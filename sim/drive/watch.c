@@ -65,8 +65,8 @@ static void play_watch(const struct sp_circuit *c, const struct sp_modes *m, con
 }
 
 /* A thermostat that a map heats opens earlier; a plate in its place does not open. */
-static void lift_watch(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *m, const double *y,
-                       double g[])
+static void lift_watch(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *m,
+                       const double *y, double g[])
 {
     const struct sp_thermostat *t = &c->design->thermostat;
     g[SP_W_OPENS] = g[SP_W_FULL] = -1.0;

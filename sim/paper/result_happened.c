@@ -118,8 +118,8 @@ static struct sp_words change_text(const struct sp_result *r, size_t i, bool exa
     const struct sp_told_change *c = &r->change[n];
     size_t used = strlen(w.text);
     if (c->to_limit > 0.0)
-        snprintf(w.text + used, sizeof w.text - used, "; %.40s later %.40s", sp_words_time(c->to_limit, exact).text,
-                 sp_event_text(c->broken));
+        snprintf(w.text + used, sizeof w.text - used, "; %.40s later %.40s",
+                 sp_words_time(c->to_limit, exact).text, sp_event_text(c->broken));
     else
         snprintf(w.text + used, sizeof w.text - used, "; already %.40s", sp_event_text(c->broken));
     return w;

@@ -1,5 +1,5 @@
-/* What a change of the car starts, what a standing car uses, and what a tank remembers: against the samples of the
- * same drive and closed forms. SPDX-License-Identifier: GPL-3.0-or-later */
+/* What a change of the car starts, what a standing car uses, and what a tank remembers: against the samples
+ * of the same drive and closed forms. SPDX-License-Identifier: GPL-3.0-or-later */
 #include "fixture.h"
 
 static struct fixture fixture;
@@ -48,7 +48,8 @@ static void seconds_to_the_limit(void **state)
     d.step = step;
     d.steps = 1;
     d.limits = only_limits(380.0, NAN, NAN, NAN);
-    for (int i = 0; i < 3; ++i) to[i] = d;
+    for (int i = 0; i < 3; ++i)
+        to[i] = d;
     to[0].duct[0].inlet.blocked = 0.90;
     to[1].duct[0].inlet.blocked = to[2].duct[0].inlet.blocked = 0.95;
     struct sp_change change[3] = {{100.0, blocked, &to[0]}, {400.0, more, &to[1]}, {700.0, never, &to[2]}};
@@ -72,8 +73,8 @@ static void seconds_to_the_limit(void **state)
     fixture_drop(&r);
 }
 
-/* A limit that a change lowers below where the car stands is broken there and then; one that it lifts decides from
- * then on, and what was broken before stays so. */
+/* A limit that a change lowers below where the car stands is broken there and then; one that it lifts decides
+ * from then on, and what was broken before stays so. */
 static void limits_that_move(void **state)
 {
     (void)state;
@@ -108,7 +109,8 @@ static void limits_that_move(void **state)
     fixture_drop(&r);
 }
 
-/* Coolant that a change takes out is gone from the tank at that instant: by its volume, and not from elsewhere. */
+/* Coolant that a change takes out is gone from the tank at that instant: by its volume, and not from
+ * elsewhere. */
 static void water_lost(void **state)
 {
     (void)state;
@@ -138,7 +140,8 @@ static void water_lost(void **state)
 static void battery_runs_flat(void **state)
 {
     (void)state;
-    struct sp_step step[3] = {fixture_hold(60.0, 30.0, 40e3, 60.0), soak(600.0), fixture_hold(30.0, 30.0, 40e3, 60.0)};
+    struct sp_step step[3] = {fixture_hold(60.0, 30.0, 40e3, 60.0), soak(600.0),
+                              fixture_hold(30.0, 30.0, 40e3, 60.0)};
     struct sp_design d = *fixture.base;
     d.step = step;
     d.steps = 3;
@@ -171,12 +174,13 @@ static void battery_runs_flat(void **state)
     fixture_drop(&r);
 }
 
-/* Two drives with minutes between: the engine stops and starts again, the second begins with what the first and the
- * pause have left, and a pause in two parts is the same pause. */
+/* Two drives with minutes between: the engine stops and starts again, the second begins with what the first
+ * and the pause have left, and a pause in two parts is the same pause. */
 static void two_drives(void **state)
 {
     (void)state;
-    struct sp_step step[4] = {fixture_hold(240.0, 30.0, 70e3, 80.0), soak(400.0), fixture_hold(240.0, 30.0, 70e3, 80.0)};
+    struct sp_step step[4] = {fixture_hold(240.0, 30.0, 70e3, 80.0), soak(400.0),
+                              fixture_hold(240.0, 30.0, 70e3, 80.0)};
     struct sp_design d = *fixture.base;
     d.step = step;
     d.steps = 3;
@@ -199,13 +203,14 @@ static void two_drives(void **state)
     struct fixture_drive parts = drive(&d, 5.0);
     assert_int_equal(whole.series.count, parts.series.count);
     for (size_t i = 0; i < whole.series.count; ++i)
-        check_close(parts.series.row[i].value[SP_CH_ENGINE_OUT], whole.series.row[i].value[SP_CH_ENGINE_OUT], 0, 1e-3);
+        check_close(parts.series.row[i].value[SP_CH_ENGINE_OUT], whole.series.row[i].value[SP_CH_ENGINE_OUT],
+                    0, 1e-3);
     fixture_drop(&whole);
     fixture_drop(&parts);
 }
 
-/* What went through the cap does not come back: cold again, the tank lacks it, and stands at a lower pressure than
- * one that kept it. */
+/* What went through the cap does not come back: cold again, the tank lacks it, and stands at a lower pressure
+ * than one that kept it. */
 static void tank_remembers(void **state)
 {
     (void)state;
@@ -237,12 +242,44 @@ static void tank_remembers(void **state)
     fixture_drop(&sealed);
 }
 
-/* ---- the thermostat's events and play ------------------------------------------------------------------- */
+/* What cavitation takes of the pump's head: nothing asked, nothing told; the more it needs, the less is left.
+ */
+static void head_that_cavitation_costs(void **state)
+{
+    (void)state;
+    struct sp_step step[1] = {fixture_hold(300.0, 20.0, 80e3, 120.0)};
+    struct sp_design d = *fixture.base;
+    d.step = step;
+    d.steps = 1;
+    d.tank.cap = 0.0;
+    struct fixture_drive r = drive(&d, 0.0);
+    assert_true(isnan(r.result.pump_head_left));
+    fixture_drop(&r);
+    double before = 1.0;
+    for (double needs = 0.1; needs < 30.0; needs *= 4.0) {
+        d.pump.npsh = needs;
+        r = drive(&d, 1.0);
+        assert_true(needs < 1.0 ? r.result.pump_head_left > 0.97 : r.result.pump_head_left < before);
+        double least =
+            INFINITY; /* by definition 3 % of the head are gone where there is just what it needs */
+        for (size_t i = 0; i < r.series.count; ++i)
+            least = fmin(least, r.series.row[i].value[SP_CH_NPSH_MARGIN]);
+        assert_true((least < 0.0) == (r.result.pump_head_left < 0.97 - 1e-6) || fabs(least) < 0.05);
+        assert_true((event_of(&r, SP_EV_CAVITATES, 0.0) != NULL) == (least < 0.0) || fabs(least) < 0.05);
+        before = r.result.pump_head_left;
+        fixture_drop(&r);
+    }
+    assert_true(before < 0.9);
+}
+
+/* ---- the thermostat's events and play -------------------------------------------------------------------
+ */
 
 static struct sp_design pulsating(struct sp_step *step)
 {
     struct sp_design d = *fixture.base;
-    for (int i = 0; i < 6; ++i) step[i] = fixture_hold(80.0, 30.0, i % 2 ? 8e3 : 70e3, 80.0);
+    for (int i = 0; i < 6; ++i)
+        step[i] = fixture_hold(80.0, 30.0, i % 2 ? 8e3 : 70e3, 80.0);
     d.step = step;
     d.steps = 6;
     d.start.coolant = 345.0;
@@ -260,7 +297,8 @@ static void events_are_the_lifts(void **state)
         if (k == 1) d.thermostat.mapped_shift = 8.0, d.thermostat.mapped_power = 30e3;
         if (k == 2) d.thermostat.inlet_side = true;
         to = d;
-        if (k == 3) to.thermostat.opens = 349.0, to.thermostat.full = 355.0, d.change = &change, d.changes = 1;
+        if (k == 3)
+            to.thermostat.opens = 349.0, to.thermostat.full = 355.0, d.change = &change, d.changes = 1;
         struct fixture_drive r = drive(&d, 0.05);
         double opens = rises(&r, SP_CH_LIFT, 0.0, 0.0), full = rises(&r, SP_CH_LIFT, 1.0 - 1e-9, 0.0);
         assert_true(isfinite(opens));
@@ -272,8 +310,8 @@ static void events_are_the_lifts(void **state)
     }
 }
 
-/* With play, a wax that has risen by more than the play opens as without it, one that has fallen by more shuts that
- * much later; on the inlet side it is the mix there that decides which way it moves. */
+/* With play, a wax that has risen by more than the play opens as without it, one that has fallen by more
+ * shuts that much later; on the inlet side it is the mix there that decides which way it moves. */
 static void play_follows_the_wax(void **state)
 {
     (void)state;
@@ -293,9 +331,10 @@ static void play_follows_the_wax(void **state)
             const double *v = r.series.row[i].value;
             double wax = v[SP_CH_WAX];
             if (v[SP_CH_TIME] < 101.0) continue;
-            double as_risen = fmin(fmax((wax - d.thermostat.opens) / (d.thermostat.full - d.thermostat.opens), 0.0), 1.0);
-            double as_fallen =
-                fmin(fmax((wax + play - d.thermostat.opens) / (d.thermostat.full - d.thermostat.opens), 0.0), 1.0);
+            double as_risen =
+                fmin(fmax((wax - d.thermostat.opens) / (d.thermostat.full - d.thermostat.opens), 0.0), 1.0);
+            double as_fallen = fmin(
+                fmax((wax + play - d.thermostat.opens) / (d.thermostat.full - d.thermostat.opens), 0.0), 1.0);
             /* never outside the two */
             assert_true(v[SP_CH_LIFT] > as_risen - 1e-3 && v[SP_CH_LIFT] < as_fallen + 1e-3);
             if (as_fallen > as_risen + 0.1) {
@@ -325,10 +364,15 @@ static int end(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(seconds_to_the_limit), cmocka_unit_test(limits_that_move),
-        cmocka_unit_test(water_lost),           cmocka_unit_test(battery_runs_flat),
-        cmocka_unit_test(two_drives),           cmocka_unit_test(tank_remembers),
-        cmocka_unit_test(events_are_the_lifts), cmocka_unit_test(play_follows_the_wax),
+        cmocka_unit_test(seconds_to_the_limit),
+        cmocka_unit_test(limits_that_move),
+        cmocka_unit_test(water_lost),
+        cmocka_unit_test(battery_runs_flat),
+        cmocka_unit_test(two_drives),
+        cmocka_unit_test(tank_remembers),
+        cmocka_unit_test(head_that_cavitation_costs),
+        cmocka_unit_test(events_are_the_lifts),
+        cmocka_unit_test(play_follows_the_wax),
     };
     return cmocka_run_group_tests(tests, begin, end);
 }

@@ -18,7 +18,7 @@ import time
 
 HERE = os.path.dirname(os.path.abspath(__file__))
 KELVIN = ("coolant_engine_out", "coolant_radiator_in", "coolant_radiator_out", "metal", "coolant_tank",
-          "thermostat_wax", "gauge", "oil", "gearbox", "charge", "boil_margin", "coolant_pump_in")
+          "thermostat_wax", "gauge", "oil", "oil_gearbox", "charge_in", "charge_out", "boil_margin", "coolant_pump_in")
 SHARES = ("coolant_flow", "coolant_flow_radiator", "coolant_flow_bypass", "tank_pressure", "air_mass_flow", "drag",
           "fan_power")
 RTOL = 1e-9

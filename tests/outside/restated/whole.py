@@ -396,9 +396,10 @@ class WholePlant(Plant):
         if "oil" in self.oils:
             out["oil"] = y[self.oils["oil"][0]] - c
         if "gearbox" in self.oils:
-            out["gearbox"] = y[self.oils["gearbox"][0]] - c
+            out["oil_gearbox"] = y[self.oils["gearbox"][0]] - c
         if self.charge:
-            out["charge"] = y[self.charge[-1].fluid][-1] - c
+            out["charge_out"] = y[self.charge[-1].fluid][-1] - c
+            out["charge_in"] = self.compressed(ch) - c
         return out
 
 
