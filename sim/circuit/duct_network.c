@@ -1,5 +1,5 @@
-/* What the pieces of the network do at given unknowns, and the residuals. SPDX-License-Identifier:
- * GPL-3.0-or-later */
+/* What the pieces of the network do at given unknowns, and the residuals.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "circuit/duct_network.h"
 
 #include <math.h>

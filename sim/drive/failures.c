@@ -1,5 +1,5 @@
-/* What failed in a run: one entry a watch that was ever beyond its limit. SPDX-License-Identifier:
- * GPL-3.0-or-later */
+/* What failed in a run: one entry a watch that was ever beyond its limit.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #include <math.h>
 #include <stdlib.h>
 

@@ -1,5 +1,5 @@
-/* A hold on its way to rest: what is kept of it, and whether it swings. SPDX-License-Identifier:
- * GPL-3.0-or-later */
+/* A hold on its way to rest: what is kept of it, and whether it swings.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #include <math.h>
 #include <stdlib.h>
 

@@ -1,5 +1,5 @@
-/* Which conditions a car gives reason to watch, and what is to be said of each. SPDX-License-Identifier:
- * GPL-3.0-or-later */
+/* Which conditions a car gives reason to watch, and what is to be said of each.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #include <math.h>
 
 #include "drive/watch.h"

@@ -1,6 +1,6 @@
 /* The coolant loop as a network: strings of cores, heater, bleed, restrictor plate, and a pump that
- * cavitates, against closed forms, published coefficients and the trade's figures. SPDX-License-Identifier:
- * GPL-3.0-or-later */
+ * cavitates, against closed forms, published coefficients and the trade's figures.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "check.h"
 
 #include <stdlib.h>

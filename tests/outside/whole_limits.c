@@ -1,6 +1,6 @@
 /* Limiting cases of fitted-out cars on whole drives: what is split and put together again, what is fitted but
- * does nothing, and what is said twice, must leave the drive as it was. SPDX-License-Identifier:
- * GPL-3.0-or-later */
+ * does nothing, and what is said twice, must leave the drive as it was.
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "fixture.h"
 
 #include "swirlpot/hold.h"

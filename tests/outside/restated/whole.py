@@ -9,7 +9,7 @@ from .circuit import Tank
 from .drive import (AIR_SPEED, AMBIENT, CHARGE, FRICTION, GAS, GEARBOX, HEATING, OIL, POWER, PRESSURE, SLOPE, SPEED,
                     TURNS, WAKE)
 from .fitted import FittedLoop
-from .fluids import CP_DRY, Coolant, moist_air, ramp
+from .fluids import Coolant, moist_air
 from .plant import AIR, BACK, CORE, FAN, GAUGE, JACKET, LOST, METAL, OUT, TANK, WAX, Plant, weight
 
 KELVIN = 273.15
@@ -26,6 +26,18 @@ def oil_enthalpy(temperature):
 
 def oil_capacity(temperature):
     return 1825 + 3.75 * (temperature - KELVIN)
+
+
+def counterflow(conductance, one, other):
+    """W/K that pass between two streams of capacities one and other."""
+    least, most = min(one, other), max(one, other)
+    if least <= 0 or conductance <= 0:
+        return 0.0
+    ntu, ratio = conductance / least, least / most
+    if abs(1 - ratio) < 1e-9:
+        return least * ntu / (1 + ntu)
+    fall = math.exp(-ntu * (1 - ratio))
+    return least * (1 - fall) / (1 - ratio * fall)
 
 
 class Exchanger:
@@ -281,7 +293,7 @@ class WholePlant(Plant):
         power = sum(self.fan_powers(y, s))
         heat = self.heat(t_metal, power, ch, s, self.pump_speed(ch[TURNS], s, y))
         enters = float(self.entering(y, loop))
-        to_metal, to_coolant, oil_in, oil_skin = self._oils(y, d, ch, air, enters)
+        to_metal, to_coolant, oil_in, oil_skin = self._oils(y, d, ch, air, enters, loop)
         charged = self._charge(y, d, ch, air)
         heater = self._heater(loop, t_jacket, amb)
         d[METAL] = (heat - k * (t_metal - t_jacket) - skin_metal + to_metal) / e["metal_capacity"]
@@ -315,7 +327,7 @@ class WholePlant(Plant):
             total += q * h_in
         return total / sum(loop["q"]) if loop["r"] > 0 else 0.0
 
-    def _oils(self, y, d, ch, air, enters):
+    def _oils(self, y, d, ch, air, enters, loop):
         """Oil's sump and coolers: heat to metal and to coolant, what it takes in, and what its skin loses."""
         to_metal = to_coolant = taken = lost = 0.0
         for name, (at, cores, channel) in self.oils.items():
@@ -332,7 +344,9 @@ class WholePlant(Plant):
                          e.inner(flow / e.copies, None, mean))
                 e.rates(y, d, flow / e.copies, last, props, air[e.run]["warm"][e.index], air[e.run]["t_in"][e.index])
                 last, h_in = cells[-1], h[-1]
-            block, plate = o["block"] * (t - y[METAL]), o["plate"] * pumped / o["flow_most"] * (t - enters)
+            block = o["block"] * (t - y[METAL])
+            plate = counterflow(o["plate"] * pumped / o["flow_most"], pumped * oil_density(t) * oil_capacity(t),
+                                loop["p"] * loop["rho"] * self.coolant.capacity(enters)) * (t - enters)
             skin = self.skin(o["skin"], ch) * (t - ch[AMBIENT])
             through = flow * (oil_enthalpy(t) - h_in) if cores else 0.0
             d[at] = (ch[channel] - block - plate - skin - through) \
@@ -402,5 +416,3 @@ class WholePlant(Plant):
             out["charge_in"] = self.compressed(ch) - c
         return out
 
-
-assert ramp

@@ -153,6 +153,27 @@ def oils():
     return c
 
 
+def dirty():
+    """Geometry on both cores, the second fed by the first: louvres down and uneven, plates behind; all of it dirty."""
+    c = base()
+    d = c["car"]["duct"]
+    louvred = core(0.4, 0.35, depth="30 mm", unevenness=0.25, blocked="5 %", air_fouling="2e-4 m2K/W",
+                   coolant_fouling="1e-4 m2K/W", flow="down", heat_factor=0.95)
+    louvred.update(fins={"pitch": "1.3 mm", "louvre_pitch": "1.1 mm", "louvre_angle": "26 deg"},
+                   tubes={"pitch": "9.5 mm", "height": "2 mm"})
+    plates = core(0.35, 0.35, depth="44 mm", feed="after the one before", angle="40 deg", air_fouling="1e-4 m2K/W")
+    plates.update(fins={"kind": "plate", "pitch": "1.8 mm", "thickness": "0.12 mm"},
+                  tubes={"diameter": "9.5 mm", "pitch": "25 mm", "pitch_along": "22 mm", "rows": 2, "passes": 2})
+    for x in (louvred, plates):
+        for key in ("pressure_drop", "heat", "drop"):
+            del x[key]
+    del d["core"]
+    d["cores"] = [louvred, plates]
+    c["car"]["pump"].update(drive="electric", power="250 W", control="engine speed", full_at="5000 rpm")
+    c["drive"][2] = {"idle": "10 s"}
+    return c
+
+
 def drives():
     yield "plain", base()
     yield "side by side", side_by_side()
@@ -162,6 +183,7 @@ def drives():
     yield "cavitating", cavitating()
     yield "pulsing", pulsing()
     yield "leaking", leaking()
+    yield "dirty", dirty()
     yield "oils and charge air", oils()
 
 

@@ -3,9 +3,12 @@
 import copy
 import math
 
+import numpy as np
+
+from .casefile import quantity
 from .drive import EngineHeat, Schedule, Segment
 from .march import Drive
-from .plant import JACKET, WAX
+from .plant import AIR, LOST, WAX
 from .whole import WholePlant
 from .wholefile import understood
 
@@ -111,10 +114,9 @@ class WholeDrive(Drive):
         case = understood(raw)
         self.case, self.rtol, self.method, self.every = case, rtol, method, every
         self.plant, self.schedule = WholePlant(case), WholeSchedule(case)
-        self.changes = sorted(((quantity_of(c["at"]), c["set"]) for c in raw.get("changes", [])), key=lambda c: c[0])
+        self.changes = sorted(((quantity(c["at"]), c["set"]) for c in raw.get("changes", [])), key=lambda c: c[0])
         self.raw = copy.deepcopy(raw)
         self.fan, self.stat = None, self.plant.stat
-        import numpy as np
         self.atol = np.full(self.plant.size, 10 * rtol)
         self.samples, self.events, self.fan_on_s, self.evaluations = [], [], 0.0, 0
         self.peak, self.full_s = (-math.inf, 0.0), 0.0
@@ -136,7 +138,6 @@ class WholeDrive(Drive):
         return self
 
     def _tolerances(self, y):
-        from .plant import AIR, LOST
         self.atol[AIR], self.atol[LOST] = self.rtol * (y[AIR] + 1e-3), 1e-3 * self.rtol
         self.atol[self.plant.sums:] = 1e6 * self.rtol
 
@@ -198,16 +199,7 @@ class WholeDrive(Drive):
         self.samples.append((t, y.copy(), s, self.mode, self.held, self.plant))
 
     def series(self):
-        import numpy as np
         rows = [p.report(y, s.at(min(t, s.t1)), s, mode, held) for t, y, s, mode, held, p in self.samples]
         out = {k: np.array([r[k] for r in rows]) for k in rows[0]}
         out["time"] = np.array([r[0] for r in self.samples])
         return out
-
-
-def quantity_of(text):
-    from .casefile import quantity
-    return quantity(text)
-
-
-assert JACKET
