@@ -104,6 +104,7 @@ struct sp_core {
     double metal_capacity, coolant_volume;    /* J/K, m3 */
     struct sp_resistance drop;                /* coolant side; flow NAN: from tubes */
     double cells;                             /* number of cells along the coolant path */
+    char *name;                               /* owned by the design; NULL: none */
 };
 
 enum sp_place_of { SP_AT_ENGINE_OUT, SP_AT_RADIATOR_OUT };
@@ -140,6 +141,7 @@ struct sp_exit {
     double area, loss;           /* m2; k on exit head */
     double pressure_coefficient; /* Cp */
     double angle;                /* rad to the stream */
+    char *place;                 /* where it is, in words; owned by the design; NULL: not said */
 };
 
 enum { SP_DUCTS = 4, SP_CORES = 5, SP_FANS = 3, SP_EXITS = 8 }; /* at most, in a car or a duct */

@@ -95,6 +95,7 @@ struct sp_electrics {
 struct sp_oil {
     bool fitted;
     double volume;                   /* m3 */
+    double metal_capacity;           /* J/K of sump, bearings and housing that warm with it */
     double heat_share;               /* of brake power (gearbox: of the power through it) that heats it */
     double friction_share;           /* of motoring power at the engine's speed that heats it, fired or not */
     double block;                    /* W/K to the engine's metal */

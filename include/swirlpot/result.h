@@ -63,6 +63,7 @@ struct sp_duct_point {
     struct sp_duct_state state;
     struct sp_station station[SP_STATIONS];
     struct sp_duct_losses losses;
+    const struct sp_duct_design *design; /* for the names of its cores and exits; NULL: they have numbers */
 };
 
 /* Solves the duct of a design for one road speed, with the design's air and wind; `heat` W to the air of one duct and

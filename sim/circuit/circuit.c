@@ -10,6 +10,9 @@
 #include "part/oil.h"
 
 static const double quickest_gauge = 0.05; /* s: a lag of nil would be no ODE */
+static const double coolest_boiling = 350.0; /* K: no coolant boils below it in a car's range of pressures */
+/* m3/s of liquid out of a tank that boils over: two litres in ten seconds, common practice. */
+static const double boil_over_flow = 2e-4;
 static const double full_skin_speed = 100.0 / 3.6; /* m/s at which the moving skin loss is reached */
 
 /* ---- places and controllers ------------------------------------------------------------------------ */
@@ -51,20 +54,27 @@ double sp_circuit_wax_sees(const struct sp_circuit *c, const double *y, const st
     return c->design->thermostat.inlet_side ? sp_circuit_pump_inlet(c, y, k) : y[SP_Y_JACKET];
 }
 
-double sp_circuit_charge_in(const struct sp_circuit *c, const struct sp_inputs *in)
+double sp_circuit_intake(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_coupling *k)
+{
+    double ambient = in->in[SP_IN_AMBIENT], share = c->design->engine.breathes_bay;
+    return k && share > 0.0 ? ambient + share * (k->duct[0].bay_temperature - ambient) : ambient;
+}
+
+double sp_circuit_charge_in(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_coupling *k)
 {
     const struct sp_charge *g = &c->design->charge;
     if (!g->fitted) return NAN;
-    return (in->in[SP_IN_AMBIENT] + g->intake_rise) * (1.0 + in->in[SP_IN_CHARGE_HEATING]);
+    return (sp_circuit_intake(c, in, k) + g->intake_rise) * (1.0 + in->in[SP_IN_CHARGE_HEATING]);
 }
 
 double sp_circuit_charge_out(const struct sp_circuit *c, const struct sp_inputs *in, const double *y)
 {
+    if (c->design->charge.fitted && !(in->flags & SP_FLAG_ENGINE)) return in->in[SP_IN_AMBIENT];
     for (int e = c->exchangers - 1; e >= 0; --e) {
         const struct sp_cells_at *at = &c->layout.exchanger[e];
         if (c->exchanger[e].carries == SP_CARRIES_CHARGE) return y[at->fluid + at->cells - 1];
     }
-    return sp_circuit_charge_in(c, in);
+    return sp_circuit_charge_in(c, in, NULL);
 }
 
 double sp_circuit_fan_wish(const struct sp_circuit *c, int kind, const struct sp_inputs *in,
@@ -160,7 +170,19 @@ struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp
     return s;
 }
 
-static void tank_rates(const struct sp_circuit *c, const struct sp_inputs *in, const double *y, double *dydt)
+/* Liquid [m3/s] that bulk boiling at the jacket's outlet drives out of the tank: steam takes its place. Full once the
+ * vapour's pressure stands a fifteenth (2 K) over that of the coolant. */
+static double boil_over(const struct sp_circuit *c, const double *y, const struct sp_coupling *k, double tank,
+                        double held)
+{
+    double T = y[SP_Y_JACKET], pressure = tank + k->loop.rise - k->loop.jacket_drop;
+    if (T < coolest_boiling || !(held > 0.0)) return 0.0;
+    double excess = sp_coolant_vapour_pressure(&c->design->coolant.fluid, T) / pressure - 1.0;
+    return boil_over_flow * fmin(fmax(15.0 * excess, 0.0), 1.0) * held / (held + SP_TANK_LAST_GAS);
+}
+
+static void tank_rates(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                       const struct sp_coupling *k, double *dydt)
 {
     struct sp_tank_inputs inputs;
     struct sp_tank_state s = sp_circuit_tank(c, in, y, &inputs);
@@ -168,7 +190,7 @@ static void tank_rates(const struct sp_circuit *c, const struct sp_inputs *in, c
                   c->design->tank.lost;
     struct sp_tank_vent vent = sp_tank_vent(&c->design->tank, &inputs, &s, held);
     dydt[SP_Y_AIR] = -vent.air;
-    dydt[SP_Y_LOST] = vent.liquid;
+    dydt[SP_Y_LOST] = vent.liquid + boil_over(c, y, k, s.pressure, held);
 }
 
 /* ---- cells ----------------------------------------------------------------------------------------- */
@@ -298,7 +320,7 @@ static struct oil_heat oil_rates(const struct sp_circuit *c, const struct sp_inp
     q.to_air = skin(in, o->skin_standing, o->skin_moving) * (T - in->in[SP_IN_AMBIENT]);
     q.to_cooler = others(c, k, engine ? SP_CARRIES_OIL : SP_CARRIES_GEARBOX, T, y, dydt);
     double heat = in->in[engine ? SP_IN_OIL_HEAT : SP_IN_GEARBOX_HEAT];
-    dydt[at] = (heat - q.to_metal - q.to_coolant - q.to_air - q.to_cooler) / (mass * sp_oil_cp(T));
+    dydt[at] = (heat - q.to_metal - q.to_coolant - q.to_air - q.to_cooler) / (mass * sp_oil_cp(T) + o->metal_capacity);
     return q;
 }
 
@@ -376,9 +398,9 @@ void sp_circuit_rates(const struct sp_circuit *c, const struct sp_inputs *in, co
                         (c->mass_jacket * jacket.cp);
 
     follow(c, in, modes, y, k, dydt);
-    tank_rates(c, in, y, dydt);
+    tank_rates(c, in, y, k, dydt);
 
-    double charge = d->charge.fitted ? others(c, k, SP_CARRIES_CHARGE, sp_circuit_charge_in(c, in), y, dydt) : 0.0;
+    double charge = d->charge.fitted ? others(c, k, SP_CARRIES_CHARGE, sp_circuit_charge_in(c, in, k), y, dydt) : 0.0;
     dydt[SP_Y_HEAT_AIR] = to_air(c, k, &loads);
     dydt[SP_Y_HEAT_IN] = heat + loads + charge + (c->layout.oil >= 0 ? in->in[SP_IN_OIL_HEAT] : 0.0) +
                          (c->layout.gearbox >= 0 ? in->in[SP_IN_GEARBOX_HEAT] : 0.0);

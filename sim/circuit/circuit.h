@@ -160,9 +160,14 @@ double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const 
 /* Temperature [K] that the thermostat's wax follows: the jacket's outlet, or the mix entering the pump. */
 double sp_circuit_wax_sees(const struct sp_circuit *c, const double *y, const struct sp_coupling *k);
 
-/* Temperature [K] of the charge air as it leaves the compressor, and its coolers; NAN without charge air. */
-double sp_circuit_charge_in(const struct sp_circuit *c, const struct sp_inputs *in);
+/* Temperature [K] of the charge air as it leaves the compressor, and its coolers, the ambient's with the
+ * engine off; NAN without charge air. Without a cooler the bay's share in what is breathed is left out of the latter. */
+double sp_circuit_charge_in(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_coupling *k);
 double sp_circuit_charge_out(const struct sp_circuit *c, const struct sp_inputs *in, const double *y);
+
+/* Temperature [K] of the air that the engine breathes, ahead of any compressor: ambient, and its share of the first
+ * duct's bay. With k NULL the bay counts as ambient. */
+double sp_circuit_intake(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_coupling *k);
 
 /* Heat [W] that a heater or auxiliary branch takes, and the temperature [K] at which its coolant returns. */
 double sp_circuit_heater(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,

@@ -125,6 +125,11 @@ static double held_in_core(const struct sp_circuit *c, int e, const double *y)
     return x->copies * sum;
 }
 
+static double held_in_oil(const struct sp_oil *o, double mass, double T)
+{
+    return mass * sp_oil_enthalpy(T) + o->metal_capacity * (T - SP_ZERO_C);
+}
+
 double sp_circuit_heat_held(const struct sp_circuit *c, const double *y)
 {
     const struct sp_layout *l = &c->layout;
@@ -136,8 +141,8 @@ double sp_circuit_heat_held(const struct sp_circuit *c, const double *y)
         sum += (c->mass_out * sp_coolant_enthalpy(f, y[l->out + i]) +
                 c->mass_back * sp_coolant_enthalpy(f, y[l->back + i])) / SP_HOSE_CELLS;
     for (int e = 0; e < c->exchangers; ++e) sum += held_in_core(c, e, y);
-    if (l->oil >= 0) sum += c->mass_oil * sp_oil_enthalpy(y[l->oil]);
-    if (l->gearbox >= 0) sum += c->mass_gearbox * sp_oil_enthalpy(y[l->gearbox]);
+    if (l->oil >= 0) sum += held_in_oil(&c->design->oil, c->mass_oil, y[l->oil]);
+    if (l->gearbox >= 0) sum += held_in_oil(&c->design->gearbox, c->mass_gearbox, y[l->gearbox]);
     return sum;
 }
 

@@ -104,7 +104,7 @@ struct sp_network sp_network_pose(const struct sp_duct *d, const struct sp_duct_
     n.recirculated = recirculated(&d->design.inlet, in->speed);
     n.blown = fmax(in->blower, 0.0) * n.p.density;
     n.small = n.p.density * d->section * hardly;
-    n.most_rise = in->heat_given ? most_by_given * in->temperature : most_by_load;
+    n.most_rise = in->heat_given && in->heat > 0.0 ? most_by_given * in->temperature : most_by_load;
     n.most_in_bay = most_by_load;
     if (in->heat_given && in->heat > 0.0) share_given_heat(&n);
     return n;

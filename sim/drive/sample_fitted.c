@@ -79,7 +79,8 @@ static double current(const struct sp_circuit *c, const struct sp_inputs *in, co
     return most;
 }
 
-static void stores(const struct sp_run *r, const struct sp_inputs *in, const double *y, double *v)
+static void stores(const struct sp_run *r, const struct sp_inputs *in, const double *y, const struct sp_coupling *k,
+                   double *v)
 {
     const struct sp_circuit *c = r->circuit;
     const struct sp_electrics *e = &c->design->electrics;
@@ -87,7 +88,7 @@ static void stores(const struct sp_run *r, const struct sp_inputs *in, const dou
     struct sp_tank_inputs tank;
     v[SP_CH_OIL] = l->oil >= 0 ? y[l->oil] : NAN;
     v[SP_CH_GEARBOX] = l->gearbox >= 0 ? y[l->gearbox] : NAN;
-    v[SP_CH_CHARGE_IN] = sp_circuit_charge_in(c, in);
+    v[SP_CH_CHARGE_IN] = sp_circuit_charge_in(c, in, k);
     v[SP_CH_CHARGE_OUT] = sp_circuit_charge_out(c, in, y);
     v[SP_CH_FAN_CURRENT] = current(c, in, y);
     v[SP_CH_BATTERY] =
@@ -116,10 +117,9 @@ void sp_run_sample_fitted(const struct sp_run *r, const struct sp_inputs *in, co
     const struct sp_circuit *c = r->circuit;
     const struct sp_design *d = c->design;
     air(r, k, v);
-    stores(r, in, y, v);
+    stores(r, in, y, k, v);
     cores(r, y, k, v);
-    double share = d->engine.breathes_bay, ambient = in->in[SP_IN_AMBIENT];
-    v[SP_CH_INTAKE] = ambient + share * (v[SP_CH_BAY] - ambient);
+    v[SP_CH_INTAKE] = sp_circuit_intake(c, in, k);
     v[SP_CH_NPSH_MARGIN] = k->loop.npsh_available - k->loop.npsh_required;
     for (int f = 1; f < c->fans; ++f)
         v[SP_CH_FAN_MORE + f - 1] = y[c->layout.fan[f]];

@@ -10,6 +10,8 @@ static const char asked[] = "no change: what is asked of the engine is worked ou
 static const char laid_out[] = "no change: how the parts are joined is laid out before the drive";
 static const char filled[] = "no change: coolant and oil are filled in before the drive";
 
+static const char named[] = "no change: a name is read once";
+
 /* Keys, or all keys of a group, that stay as they are. */
 static const struct {
     const char *path, *expected;
@@ -25,9 +27,13 @@ static const struct {
     {"car.duct.core.cells", laid_out},
     {"car.duct.core.carries", laid_out},
     {"car.duct.core.feed", laid_out},
+    {"car.duct.core.name", named},
+    {"car.duct.exit.place", named},
     {"car.duct.fan.count", laid_out},
     {"car.electrics.battery", laid_out},
     {"car.oil.volume", filled},
+    {"car.oil.metal_capacity", filled},
+    {"car.gearbox.metal_capacity", filled},
     {"car.oil.heat_share", asked},
     {"car.oil.friction_share", asked},
     {"car.gearbox.volume", filled},
@@ -76,7 +82,7 @@ bool sp_change_allowed(struct sp_reader *r, const struct sp_setting *s)
     for (size_t i = 0; i < sizeof fixed / sizeof *fixed; ++i)
         if (within(fixed[i].path, path)) return refuse(r, s, "a change of it", fixed[i].expected);
     if (s->list || s->row->shape == SP_SHAPE_GROUP)
-        return refuse(r, s, "a change of all in it", "its keys one by one, such as duct.inlet.blocked");
+        return refuse(r, s, "all of a group at once", "its keys one by one, such as duct.inlet.blocked");
     return part_there(r, s);
 }
 

@@ -146,5 +146,6 @@ bool sp_setting_look_up(struct sp_reader *r, const char *path, const struct sp_p
         if (out->inside) continue; /* within a table's rows, or a trace's columns */
         if (part.is_index ? !take_index(&w, part.index) : !take_name(&w, part.name)) return false;
     }
+    if (!bad && !out->row) return complain(&w, "an empty path", "a key such as duct.inlet.blocked", NULL);
     return !bad || complain(&w, "no path", "keys with points between, such as duct.exit.area", NULL);
 }

@@ -152,6 +152,8 @@ double sp_rule_stroke(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_overrun_share(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_gas_temperature(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_oil_share(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_oil_metal(const struct sp_design *d, const struct sp_key_spot *at);
+double sp_rule_gearbox_metal(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_oil_most(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_gearbox_most(const struct sp_design *d, const struct sp_key_spot *at);
 double sp_rule_oil_full(const struct sp_design *d, const struct sp_key_spot *at);

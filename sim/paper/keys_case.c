@@ -32,6 +32,8 @@ const struct sp_key sp_keys_case[] = {
      RANGE("25 kPa to 115 kPa"), SAYS("static pressure of the free stream"), OWN},
     {QUANTITY("air.humidity", NUMBER, air.humidity), DEFAULT("0 %"), RANGE("0 % to 100 %"),
      SAYS("relative humidity"), DEFINITION},
+    {QUANTITY("air.cross_wind", SPEED, air.cross_wind), DEFAULT("0 m/s"), RANGE("-40 m/s to 40 m/s"),
+     SAYS("wind across the car, from either side"), DEFINITION},
     {QUANTITY("air.wind", SPEED, air.wind), DEFAULT("0 m/s"), RANGE("-40 m/s to 40 m/s"),
      SAYS("head wind; negative from behind"), DEFINITION},
 

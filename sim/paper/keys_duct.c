@@ -129,4 +129,6 @@ const struct sp_key sp_keys_exit[] = {
      DEFINITION},
     {QUANTITY("car.duct.exit.angle", ANGLE, duct[0].exit[0].angle), DEFAULT("0 deg"), RANGE("0 deg to 180 deg"),
      SAYS("of the jet to the stream, 0 rearwards"), DEFINITION},
+    {.path = "car.duct.exit.place", .shape = SP_SHAPE_TEXT, AT(duct[0].exit[0].place), OPTIONAL,
+     SAYS("where it is, such as wheel arch; shown instead of its number"), OWN},
     END_OF_KEYS};

@@ -29,6 +29,14 @@
             SAYS("its thermostat begins to open the air cooler; 80 degC to 95 degC"), OWN                    \
     }
 
+/* From the time constants of the trade: some 500 s for oil without an air cooler, 1100 s for a gearbox. */
+#define METAL_ROW(g, rule_)                                                                                  \
+    {                                                                                                        \
+        QUANTITY("car." #g ".metal_capacity", CAPACITY, g.metal_capacity),                                   \
+            RULE(rule_, "7 kJ/K for each litre of it"), RANGE("0 kJ/K to 1000 kJ/K"),                        \
+            SAYS("metal that warms with it: sump, bearings, housing"), PRACTICE                              \
+    }
+
 #define THERMOSTAT_ROWS(g, full_)                                                                            \
     {QUANTITY("car." #g ".full", TEMPERATURE, g.full), RULE(full_, "10 K above opens"),                      \
      RANGE("0 degC to 200 degC"), SAYS("its thermostat is open; straight in between, without lag"),          \
@@ -57,6 +65,7 @@ const struct sp_key sp_keys_oil[] = {
      SAYS("heat into it over motoring power at the engine's speed, fired or not"), PRACTICE},
     {QUANTITY("car.oil.block", CONDUCTANCE, oil.block), DEFAULT("75 W/K"), RANGE("0 W/K to 20 kW/K"),
      SAYS("from it to the engine's metal; 50 W/K to 100 W/K"), PRACTICE},
+    METAL_ROW(oil, sp_rule_oil_metal),
     COOLER_ROWS(oil, "25 l/min", sp_rule_oil_most),
     THERMOSTAT_ROWS(oil, sp_rule_oil_full),
     SKIN_ROWS(oil, "3 W/K", "12 W/K"),
@@ -75,6 +84,7 @@ const struct sp_key sp_keys_oil[] = {
      PRACTICE},
     {QUANTITY("car.gearbox.block", CONDUCTANCE, gearbox.block), DEFAULT("0 W/K"), RANGE("0 W/K to 20 kW/K"),
      SAYS("from it to the engine's metal"), PRACTICE},
+    METAL_ROW(gearbox, sp_rule_gearbox_metal),
     COOLER_ROWS(gearbox, "8 l/min", sp_rule_gearbox_most),
     THERMOSTAT_ROWS(gearbox, sp_rule_gearbox_full),
     SKIN_ROWS(gearbox, "4 W/K", "15 W/K"),

@@ -167,7 +167,7 @@ double sp_rule_core_coolant(const struct sp_design *d, const struct sp_key_spot 
 
 static bool tubes_known(const struct sp_core *c)
 {
-    return c->tube_pitch > 0.0 && c->tube_height > 0.0;
+    return c->tube_pitch > 0.0 && (c->tube_height > 0.0 || c->tube_diameter > 0.0);
 }
 
 double sp_rule_core_drop_flow(const struct sp_design *d, const struct sp_key_spot *at)

@@ -55,6 +55,20 @@ double sp_rule_oil_share(const struct sp_design *d, const struct sp_key_spot *at
     return isnan(friction) ? all : fmax(all - friction, 0.0);
 }
 
+static const double metal_of_oil = 7e6; /* J/K for each m3 of oil */
+
+double sp_rule_oil_metal(const struct sp_design *d, const struct sp_key_spot *at)
+{
+    (void)at;
+    return metal_of_oil * d->oil.volume;
+}
+
+double sp_rule_gearbox_metal(const struct sp_design *d, const struct sp_key_spot *at)
+{
+    (void)at;
+    return metal_of_oil * d->gearbox.volume;
+}
+
 double sp_rule_oil_most(const struct sp_design *d, const struct sp_key_spot *at)
 {
     (void)at;

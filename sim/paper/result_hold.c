@@ -84,7 +84,8 @@ static void say_verdict(const struct sp_hold_point *p, FILE *to)
     if (p->limit[SP_HOLD_BOIL_MARGIN].value < 0.0)
         sp_say(
             to, 0, "",
-            "It boils. Past boiling the heat balance of the liquid goes on: such temperatures say no more.");
+            "It boils. Past boiling the heat balance of the liquid goes on: read such "
+            "temperatures as \"it boils\", not as degrees.");
 }
 
 static void say_coolant(const struct sp_hold_point *p, FILE *to)

@@ -53,7 +53,7 @@ double sp_cone_loss(double area_ratio, double angle, double darcy)
 static bool possible(const struct sp_diffuser *d)
 {
     return d->inlet_area > 0.0 && d->outlet_area >= d->inlet_area && isfinite(d->outlet_area) &&
-           d->length >= 0.0 && isfinite(d->length) && d->darcy >= 0.0 && isfinite(d->darcy) &&
+           (d->kind == SP_DIFFUSER_STEP || (d->length >= 0.0 && isfinite(d->length))) && d->darcy >= 0.0 && isfinite(d->darcy) &&
            (d->kind != SP_DIFFUSER_PLANE || (d->inlet_height > 0.0 && isfinite(d->inlet_height)));
 }
 

@@ -283,7 +283,9 @@ class Schedule:
 
     def _joins(self, i, j, slack):
         first, last = self.segments[i], self.segments[j]
-        if first.on != last.on or first.more != last.more or np.any(np.abs(np.array(self.segments[j - 1].b) - last.a) > slack):
+        if first.on != last.on or first.more != last.more:
+            return False
+        if np.any(np.abs(np.array(self.segments[j - 1].b) - last.a) > slack):
             return False
         whole = Segment(first.t0, last.t1, first.a, last.b, first.on)
         return all(np.all(np.abs(np.array(whole.at(s.t0)) - s.a) <= slack) for s in self.segments[i + 1:j + 1])

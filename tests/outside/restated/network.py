@@ -264,7 +264,8 @@ class Network:
         k = fan["flap_loss"] * (1.0 if drop >= 0 else 1e10)
         floor = self.floor * self.rho * fan["flap_area"]
         x = abs(drop) * 2 * rho * fan["flap_area"] ** 2 / k
-        return math.copysign(math.sqrt(2 * x * x / (floor ** 2 + math.sqrt(floor ** 4 + 4 * x * x)) if x else 0.0), drop)
+        squared = 2 * x * x / (floor ** 2 + math.sqrt(floor ** 4 + 4 * x * x)) if x else 0.0
+        return math.copysign(math.sqrt(squared), drop)
 
     def solve(self, v_air, wake, t_air, pressure, turns, walls, heat=0.0, bonnet=False, blower=0.0, skin=0.0):
         inlet = self.duct["inlet"]
@@ -317,13 +318,16 @@ class Network:
 
     def _chord(self):
         """From the last answer with the last slopes: enough while little has changed."""
-        x = self.last
+        x, gap = self.last, 1.0
         if self.slopes is None or len(x) != len(self.slopes):
             return None
         for _ in range(12):
             r = self._residual(x)
-            if np.max(np.abs(r)) < 1e-12:
+            before, gap = gap, float(np.max(np.abs(r)))
+            if gap < 1e-12:
                 return x
+            if not gap < 0.5 * before:
+                return None
             x = x - self.slopes @ r
         return None
 
@@ -368,9 +372,9 @@ class Network:
         for core, r, t_in in g["gave"]:
             warm[core] = warm.get(core, 0.0) + r
             weighted[core] = weighted.get(core, 0.0) + r * t_in
-        weighted_load = {}  # a load's air comes in at one temperature in the cases made here
-        for core, _, t in g["gave"]:
-            weighted_load.setdefault(core, t)
+        before = {}  # a load's air comes in at one temperature in the cases made here
+        for core, _, at in g["gave"]:
+            before.setdefault(core, at)
         t_in = {c: weighted[c] / warm[c] if warm[c] > 0 else self.t_air for c in warm}
         m = sum(f for f, _, _ in g["lanes"])
         taken = sum(f for f, _, _ in g["lanes"] if f > 0)
@@ -379,7 +383,7 @@ class Network:
         for lane, (f, _, _) in zip(self.lanes, g["lanes"]):
             for c in lane.cores:
                 flows[c] = flows.get(c, 0.0) + abs(f)
-        loads = {c: flows[c] * self.cp * rise(q, flows[c] * self.cp, self.most - (weighted_load[c] - self.t_air))
+        loads = {c: flows[c] * self.cp * rise(q, flows[c] * self.cp, self.most - (before[c] - self.t_air))
                  for c, q in self.loads.items()} if self.loads and not heat else {}
-        return {"m": m, "loads": loads, "drag": drag, "warm": warm, "t_in": t_in, "t1": g["t1"], "t": t, "t3": t3, "m1": g["m1"],
-                "exits": g["exits"], "p": g["p"], "face": m / (g["rho"][F] * self.face)}
+        return {"m": m, "loads": loads, "drag": drag, "warm": warm, "t_in": t_in, "t": t, "t3": t3, "m1": g["m1"],
+                "exits": g["exits"], "face": m / (g["rho"][F] * self.face)}

@@ -53,7 +53,7 @@ class Exchanger:
         return first + 2 * self.n
 
     def rates(self, y, d, flow, enters, props, warm, t_air):
-        """Cells of one of the equal cores; `props`: mass, capacities, enthalpies, capacity at the mean. Returns h out."""
+        """Cells of one of the equal cores; `props`: mass, capacities, enthalpies, theirs ahead, mean capacity, B."""
         mass, cap, h, h_in, c_mean, b = props
         n, cells, walls = self.n, y[self.fluid], y[self.wall]
         w = weight(b / n / (flow * c_mean)) if flow > 0 else 0.0
@@ -280,7 +280,7 @@ class WholePlant(Plant):
         d, amb, e = np.zeros(self.size), ch[AMBIENT], self.engine
         skin_metal, skin_hoses, skin_tank = self.skins(y, ch)
         air = self.air(y, ch, s, skin_metal)
-        rho, t_metal, t_jacket, t_tank = loop["rho"], float(y[METAL]), float(y[JACKET]), float(y[TANK])
+        rho, t_metal, t_jacket = loop["rho"], float(y[METAL]), float(y[JACKET])
         m_r, m_t = loop["r"] * rho, loop["t"] * rho
         cap, h = self.coolant.capacities(y[[JACKET, TANK, *range(OUT, CORE)]])
         back = self._strings(y, d, loop, air, h[4])
@@ -306,8 +306,9 @@ class WholePlant(Plant):
                            for x in self.cores if x.run == i) for i, (a, (_, n, _)) in enumerate(zip(air, self.runs)))
         free = ch[PRESSURE] / (self.gas * amb)
         drag = sum(n * a["drag"] for a, (_, n, _) in zip(air, self.runs))
-        d[self.sums:] = (heat + oil_in + charged + loads, warm + loads, skin_metal, skin_hoses.sum() + heater + oil_skin,
-                         skin_tank, power, drag * ch[SPEED], free * ch[AIR_SPEED] ** 2 / 2 * ch[SPEED])
+        d[self.sums:] = (heat + oil_in + charged + loads, warm + loads, skin_metal,
+                         skin_hoses.sum() + heater + oil_skin, skin_tank, power, drag * ch[SPEED],
+                         free * ch[AIR_SPEED] ** 2 / 2 * ch[SPEED])
         return d
 
     def _strings(self, y, d, loop, air, h_hot):
@@ -404,7 +405,7 @@ class WholePlant(Plant):
                "gauge": y[GAUGE] - c + self.car["gauge"]["offset"], "thermostat_lift": lift,
                "coolant_flow": loop["p"] * 6e4, "coolant_flow_radiator": loop["r"] * 6e4,
                "coolant_flow_bypass": loop["b"] * 6e4, "tank_pressure": p / 1e3, "boil_margin": margin,
-               "air_mass_flow": sum(n * a["m"] for a, (_, n, _) in zip(air, self.runs)),
+               "air_mass_flow": air[0]["m"],
                "drag": sum(n * a["drag"] for a, (_, n, _) in zip(air, self.runs)),
                "fan_power": sum(self.fan_powers(y, s)), "coolant_radiator_out": self.place(y, "radiator out") - c}
         if "oil" in self.oils:

@@ -4,8 +4,8 @@ import copy
 
 
 def core(width=0.45, height=0.35, ua=2600, water=9000, cells=3, **more):
-    return {"width": f"{width} m", "height": f"{height} m", "depth": "40 mm", "cells": cells, "metal_capacity": "4 kJ/K",
-            "coolant_volume": "1.8 l", "drop": {"flow": "100 l/min", "drop": "20 kPa"},
+    return {"width": f"{width} m", "height": f"{height} m", "depth": "40 mm", "cells": cells,
+            "metal_capacity": "4 kJ/K", "coolant_volume": "1.8 l", "drop": {"flow": "100 l/min", "drop": "20 kPa"},
             "pressure_drop": {"linear": "14 Pa.s/m", "quadratic": "4.1 Pa.s2/m2", "at_temperature": "20 degC"},
             "heat": {"air_conductance": f"{ua} W/K", "at_face_velocity": "8 m/s", "air_exponent": 0.45,
                      "coolant_conductance": f"{water} W/K", "at_coolant_flow": "1.6 kg/s"}, **more}
@@ -22,8 +22,8 @@ def duct(**more):
     return {"inlet": {"area": "500 cm2", "recovery": 0.9}, "exit": {"area": "800 cm2", "loss": 0.4,
                                                                    "pressure_coefficient": -0.1},
             "core": core(),
-            "fan": {"curve": {"shutoff": "230 Pa", "free_flow": "0.75 m3/s"}, "power": "210 W", "control": "proportional",
-                    "proportional": {"from": "84 degC", "to": "96 degC"}}, **more}
+            "fan": {"curve": {"shutoff": "230 Pa", "free_flow": "0.75 m3/s"}, "power": "210 W",
+                    "control": "proportional", "proportional": {"from": "84 degC", "to": "96 degC"}}, **more}
 
 
 def base(**car):
@@ -83,8 +83,8 @@ def traffic():
     car = c["car"]
     car["thermostat"] = {"mapped": {"power": "60 kW", "shift": "8 K"}}
     car["duct"]["fan"].update(control="switch", wiring_drop="1.2 V", switch={"on": "84 degC", "off": "80 degC"})
-    c["drive"] = [{"hold": "30 s", "speed": "90 km/h", "power": "40 kW", "engine_speed": "3500 rpm", "following": "15 m"},
-                  {"hold": "40 s", "speed": "70 km/h", "power": "64 kW", "engine_speed": "5000 rpm", "following": "30 m"},
+    c["drive"] = [dict(c["drive"][0], hold="30 s", power="40 kW", following="15 m"),
+                  dict(c["drive"][1], power="64 kW", following="30 m"),
                   {"soak": "40 s", "key_on": True}]
     c["changes"] = [{"at": "20 s", "set": {"duct.inlet.blocked": "40 %"}},
                     {"at": "50 s", "set": {"duct.core.blocked": "30 %", "duct.fan.health": "locked"}},
@@ -238,8 +238,12 @@ def ducts():
                                                         "preheat_moving": "2 K"})
     yield "spill and interference", _air(more_inlet={"spill": True, "lip_suction": 0.4}, interference="0.02 m2")
     table = _air(leak=leak, diffuser={"kind": "conical", "length": "200 mm"})
-    table["car"]["duct"]["inlet"] = {"area": "300 cm2", "recovery_table": [[0.2, 0.5], [0.4, 0.7], [0.7, 0.8], [1, 0.6]]}
+    rows = [[0.2, 0.5], [0.4, 0.7], [0.7, 0.8], [1, 0.6]]
+    table["car"]["duct"]["inlet"] = {"area": "300 cm2", "recovery_table": rows}
     yield "table of recovery, diffuser and leak", table
+    sudden = _air(diffuser={"kind": "sudden", "jet_share": 0.35})
+    sudden["car"]["duct"]["inlet"]["area"] = "300 cm2"
+    yield "step with a jet", sudden
     everything = copy.deepcopy(stack)
     d = everything["car"]["duct"]
     d["inlet"].update(recirculated=0.15, preheat_standing="4 K", blocked="10 %", screen=0.6)

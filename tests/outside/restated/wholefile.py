@@ -1,7 +1,6 @@
 # SPDX-License-Identifier: GPL-3.0-or-later
 """The whole car's case in SI units, with the defaults of what may be fitted (docs/case-file.md)."""
 import copy
-import math
 
 from . import casefile
 from .casefile import _fill, quantity
@@ -91,7 +90,8 @@ def _fitted(car):
     _fill(car["hoses"].setdefault("heater", {}), flow=0.0, drop=30e3, conductance=0.0, air=None, off=False)
     _fill(car["tank"], bleed_bore=0.0, lost=0.0)
     _fill(car["electrics"], idle_load=0.0)
-    for name, volume, flow, skin in (("oil", 4.5e-3, 25e-3 / 60, (3.0, 12.0)), ("gearbox", 2e-3, 8e-3 / 60, (4.0, 15.0))):
+    for name, volume, flow, skin in (("oil", 4.5e-3, 25e-3 / 60, (3.0, 12.0)),
+                                     ("gearbox", 2e-3, 8e-3 / 60, (4.0, 15.0))):
         if name not in car:
             continue
         oil = _fill(car[name], volume=volume, flow=flow, flow_speed=4000 / 60, plate=0.0, opens=None, still=0.1,

@@ -53,14 +53,14 @@ class WholeSchedule(Schedule):
                     s.more = {k: step[k] for k in self.FLAGS if k in step}
         self.segments = self._run_on(self.segments)
         self._pulses()
-        self._cut([c["at"] + k * c.get("every", 0.0) for c in case.get("changes", []) for k in range(c.get("times", 1))])
+        self._cut([c["at"] for c in case.get("changes", [])])
 
     def _run_on(self, segments):
         longest = max([f["run_on"] for d in self.car["ducts"] for f in d["fans"]] or [0.0])
         self.car["duct"].setdefault("fan", {})["run_on"] = longest
         return super()._run_on(segments)
 
-    def _cut(self, times, mark=None):
+    def _cut(self, times):
         for t in times:
             out = []
             for s in self.segments:
