@@ -115,7 +115,6 @@ void sp_run_sample_fitted(const struct sp_run *r, const struct sp_inputs *in, co
                           const struct sp_coupling *k, double *v)
 {
     const struct sp_circuit *c = r->circuit;
-    const struct sp_design *d = c->design;
     air(r, k, v);
     stores(r, in, y, k, v);
     cores(r, y, k, v);
