@@ -178,8 +178,10 @@ static inline void draw_exits(gsl_rng *g, struct sp_duct_design *d)
 {
     d->exits = 1 + (chance(g, 0.4) ? gsl_rng_uniform_int(g, SP_EXITS) : 0);
     for (size_t i = 1; i < d->exits; ++i)
-        d->exit[i] = (struct sp_exit){spread(g, 1e-3, 0.1), between(g, 0.0, 2.0), between(g, -0.6, 0.5),
-                                      between(g, 0.0, 3.1)};
+        d->exit[i] = (struct sp_exit){.area = spread(g, 1e-3, 0.1),
+                                      .loss = between(g, 0.0, 2.0),
+                                      .pressure_coefficient = between(g, -0.6, 0.5),
+                                      .angle = between(g, 0.0, 3.1)};
 }
 
 static inline struct sp_leak draw_leak(gsl_rng *g)
@@ -247,6 +249,7 @@ static inline struct sp_oil draw_oil(gsl_rng *g, double rated_speed)
                        .opens = NAN,
                        .full = NAN,
                        .still = chance(g, 0.5) ? 0.0 : between(g, 0.0, 0.3)};
+    o.metal_capacity = chance(g, 0.5) ? 0.0 : spread(g, 500.0, 20e3);
     o.skin_moving = o.skin_standing + between(g, 0.0, 30.0);
     o.flow_most = o.flow * between(g, 0.6, 1.5);
     if (chance(g, 0.5)) {
@@ -311,6 +314,12 @@ static inline void draw_more_engine(gsl_rng *g, struct sp_design *d)
     e->bore = cbrt(e->displacement / acos(-1.0));
     e->stroke = e->bore;
     e->compression = between(g, 8.0, 13.0);
+    double x = gsl_rng_uniform(g);
+    e->heat_law = x < 0.6 ? SP_HEAT_RATED : x < 0.8 ? SP_HEAT_CORRELATION : SP_HEAT_GIVEN;
+    e->heat_given = chance(g, 0.5) ? 0.0 : spread(g, 100.0, 10e3);
+    e->heat_loss = between(g, 0.0, 0.3);
+    e->energy_cap = chance(g, 0.3) ? 0.0 : between(g, 0.6, 1.0);
+    e->overrun_law = (enum sp_friction_law)gsl_rng_uniform_int(g, 4);
     e->wetted_area = chance(g, 0.4) ? spread(g, 0.02, 0.5) : 0.0;
     e->breathes_bay = chance(g, 0.3) ? gsl_rng_uniform(g) : 0.0;
     d->air.cross_wind = chance(g, 0.3) ? between(g, -10.0, 10.0) : 0.0;
@@ -370,7 +379,7 @@ static inline void draw_changes(gsl_rng *g, struct whole *w)
         w->to[i] = i ? w->to[i - 1] : w->d;
         draw_change(g, &w->to[i]);
         at += chance(g, 0.2) ? 20.0 : between(g, 0.0, 35.0);
-        w->change[i] = (struct sp_change){at, text, &w->to[i]};
+        w->change[i] = (struct sp_change){.at = at, .text = text, .to = &w->to[i]};
     }
     w->d.change = n ? w->change : NULL;
     w->d.changes = n;

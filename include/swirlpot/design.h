@@ -59,6 +59,9 @@ struct sp_change {
     double at;            /* s from the start of the drive */
     char *text;           /* what is set, for events: "duct.inlet.blocked=40 %" */
     struct sp_design *to; /* the whole design from then on, owned; its own `change` is empty */
+    size_t entry;         /* which of the case's `changes` it is of ... */
+    char *file;           /* ... and where that stands, owned */
+    long line;            /* 0: not known */
 };
 
 /* The whole design. Build with sp_case_read (paper.h), free with sp_design_free. */

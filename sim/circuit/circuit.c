@@ -170,12 +170,12 @@ struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp
     return s;
 }
 
-/* Liquid [m3/s] that bulk boiling at the jacket's outlet drives out of the tank: steam takes its place. Full once the
- * vapour's pressure stands a fifteenth (2 K) over that of the coolant. */
-static double boil_over(const struct sp_circuit *c, const double *y, const struct sp_coupling *k, double tank,
+/* Liquid [m3/s] that bulk boiling at the jacket's outlet drives out of the tank: steam takes its place, once its
+ * pressure lifts the cap. Full when the vapour's pressure stands a fifteenth (2 K) over what the cap holds. */
+static double boil_over(const struct sp_circuit *c, const double *y, const struct sp_coupling *k, double cap,
                         double held)
 {
-    double T = y[SP_Y_JACKET], pressure = tank + k->loop.rise - k->loop.jacket_drop;
+    double T = y[SP_Y_JACKET], pressure = cap + k->loop.rise - k->loop.jacket_drop;
     if (T < coolest_boiling || !(held > 0.0)) return 0.0;
     double excess = sp_coolant_vapour_pressure(&c->design->coolant.fluid, T) / pressure - 1.0;
     return boil_over_flow * fmin(fmax(15.0 * excess, 0.0), 1.0) * held / (held + SP_TANK_LAST_GAS);
@@ -190,7 +190,7 @@ static void tank_rates(const struct sp_circuit *c, const struct sp_inputs *in, c
                   c->design->tank.lost;
     struct sp_tank_vent vent = sp_tank_vent(&c->design->tank, &inputs, &s, held);
     dydt[SP_Y_AIR] = -vent.air;
-    dydt[SP_Y_LOST] = vent.liquid + boil_over(c, y, k, s.pressure, held);
+    dydt[SP_Y_LOST] = vent.liquid + boil_over(c, y, k, in->in[SP_IN_PRESSURE] + c->design->tank.cap, held);
 }
 
 /* ---- cells ----------------------------------------------------------------------------------------- */

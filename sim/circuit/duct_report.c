@@ -186,6 +186,14 @@ static void tell_pressures(const struct sp_network *n, const struct sp_net_state
                                        : x->pressure[SP_NODE_BAY] - x->pressure[shroud];
 }
 
+/* The first core that carries coolant, whose face velocity the duct is judged by; the first of all without one. */
+static int radiator(const struct sp_duct *d)
+{
+    for (int i = 0; i < d->cores; ++i)
+        if (d->design.core[i].carries == SP_CARRIES_COOLANT) return i;
+    return 0;
+}
+
 void sp_network_report(const struct sp_network *n, const struct sp_net_state *x,
                        const struct sp_net_look *look, struct sp_duct_state *out)
 {
@@ -202,8 +210,7 @@ void sp_network_report(const struct sp_network *n, const struct sp_net_state *x,
     out->inlet_temperature = x->temperature[SP_INLET_AIR];
     out->front_temperature = x->temperature[SP_NODE_FRONT];
     out->bay_temperature = x->temperature[SP_NODE_BAY];
-    double T = x->temperature[out->mass_flow >= 0.0 ? SP_NODE_FRONT : SP_NODE_BAY];
-    out->face_velocity = out->mass_flow / (sp_network_density(n, T) * d->section);
+    out->face_velocity = out->core[radiator(d)].face_velocity;
     out->diffuser_stalled = d->diffuser_stalled && out->fresh > 0.0;
 }
 

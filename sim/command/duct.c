@@ -112,6 +112,7 @@ static enum sp_status solve(const struct ducts *u, struct question *q, size_t sp
                                                 q->heat * u->share[duct], q->fan ? 1.0 : 0.0, point);
     point->duct = u->count > 1 ? (int)duct + 1 : 0;
     point->copies = copies_of(&u->design->duct[duct]);
+    point->design = &u->design->duct[duct];
     if (status == SP_OK) {
         doubt(q, point);
         return SP_OK;

@@ -30,7 +30,8 @@ static void flows(const struct sp_run *r, const struct sp_inputs *in, const doub
     v[SP_CH_PUMP_FLOW] = k->loop.pump;
     v[SP_CH_RADIATOR_FLOW] = k->loop.radiator;
     v[SP_CH_BYPASS_FLOW] = k->loop.bypass;
-    v[SP_CH_AIR_FLOW] = k->duct[0].mass_flow;
+    v[SP_CH_AIR_FLOW] = 0.0;
+    for (int i = 0; i < r->circuit->runs; ++i) v[SP_CH_AIR_FLOW] += r->circuit->run[i].copies * k->duct[i].mass_flow;
     v[SP_CH_FACE_VELOCITY] = k->duct[0].face_velocity;
     v[SP_CH_EXIT_VELOCITY] = k->duct[0].exit_velocity;
     v[SP_CH_AIR_OUT] = in->in[SP_IN_AMBIENT] * k->duct[0].temperature_ratio;

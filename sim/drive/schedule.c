@@ -192,6 +192,7 @@ static void finish(struct sp_scheduling *b)
                     NULL);
     } else {
         sp_schedule_check_work(b);
+        sp_schedule_caution_changes(b);
     }
 }
 

@@ -2,6 +2,8 @@
  * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "drive/schedule_parts.h"
 
+#include <math.h>
+#include <stdio.h>
 #include <stdlib.h>
 
 static const double slack = 1e-9; /* s: a change so close to a row is at that row */
@@ -53,4 +55,48 @@ bool sp_schedule_changes(struct sp_rows *r, const struct sp_design *d)
         s->variant[k] = (unsigned short)(jump && k > 0 ? s->variant[k - 1] : happened(d, s->time[k]));
     }
     return true;
+}
+
+/* ---- changes that never happen --------------------------------------------------------------------- */
+
+/* "14 min 30.5 s" */
+static void write_time(double seconds, char *out, size_t size)
+{
+    double minutes = floor(seconds / 60.0 + 1e-9), rest = fmax(seconds - 60.0 * minutes, 0.0);
+    if (seconds < 60.0)
+        snprintf(out, size, "%.6g s", seconds);
+    else if (rest < 1e-3)
+        snprintf(out, size, "%.0f min", minutes);
+    else
+        snprintf(out, size, "%.0f min %.3g s", minutes, rest);
+}
+
+static bool entry_said(const struct sp_design *d, size_t i, double end)
+{
+    for (size_t k = 0; k < i; ++k)
+        if (d->change[k].entry == d->change[i].entry && d->change[k].at >= end - slack) return true;
+    return false;
+}
+
+static void caution_late(struct sp_complaints *to, const struct sp_design *d, size_t i, double end)
+{
+    const struct sp_change *c = &d->change[i];
+    char path[60], found[60], over[60], expected[160];
+    struct sp_place at = {.file = c->file ? c->file : d->file, .line = c->line, .path = path};
+    snprintf(path, sizeof path, "changes[%zu].at", c->entry);
+    write_time(c->at, found, sizeof found);
+    write_time(end, over, sizeof over);
+    for (size_t k = 0; k < i; ++k)
+        if (d->change[k].entry == c->entry) snprintf(path, sizeof path, "changes[%zu].times", c->entry);
+    snprintf(expected, sizeof expected, "a time within the drive, which ends at %s; it never comes to pass", over);
+    sp_complain(to, &at, found, expected, NULL);
+}
+
+void sp_schedule_caution_changes(struct sp_scheduling *b)
+{
+    const struct sp_schedule *s = &b->rows.table;
+    double end = s->time[s->rows - 1];
+    for (size_t i = 0; i < b->design->changes; ++i)
+        if (b->design->change[i].at >= end - slack && !entry_said(b->design, i, end))
+            caution_late(b->cautions, b->design, i, end);
 }

@@ -197,6 +197,8 @@ void sp_schedule_step_air(const struct sp_step *step, bool ambient_told, double 
 
 /* A jump at each change of the design, and which variant holds where; the last of all. False: no memory. */
 bool sp_schedule_changes(struct sp_rows *r, const struct sp_design *d);
+/* A caution for each entry of which a change lies at the drive's end or past it. */
+void sp_schedule_caution_changes(struct sp_scheduling *b);
 
 /* Sets the flags of pump and fan over the whole drive. False: no memory. */
 bool sp_schedule_run_on(struct sp_rows *r, const struct sp_design *d);

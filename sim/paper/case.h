@@ -131,6 +131,8 @@ void sp_case_fault_of(struct sp_reader *r, const char *pattern, const struct sp_
                       const char *found, const char *expected, const char *hint);
 void sp_case_caution_of(struct sp_reader *r, const char *pattern, const struct sp_key_spot *at,
                         const char *found, const char *expected);
+/* How much a user has to do with the value there: nothing, in a file, on the command line, by a change. */
+int sp_case_weight(const struct sp_reader *r, const char *pattern, const struct sp_key_spot *at);
 /* How many elements a list has in the tree, 1 where the singular stands or nothing. */
 size_t sp_case_elements(const struct sp_json *tree, const struct sp_key *list, const struct sp_key_spot *at);
 /* Goes on to the next element that a row is read into; false past the last. Starts from zeroes. */

@@ -79,12 +79,21 @@ static void take_value(struct changing *c, const struct sp_json *value, const ch
     sp_json_free(grown);
 }
 
+/* The same key written twice was said when the file was read. */
+static bool doubled(const struct sp_json *values, const struct sp_json *value)
+{
+    const struct sp_json *v = values->child;
+    while (v != value && strcmp(v->key, value->key)) v = v->next;
+    return v != value;
+}
+
 static void take_values(struct changing *c, const struct sp_turn *turn, const char *group)
 {
     const struct sp_json *values = sp_json_member(turn->node, group);
     if (!values || values->type != SP_JSON_OBJECT) return;
     for (const struct sp_json *v = values->child; v; v = v->next) {
         char source[SP_PATH_MAX];
+        if (doubled(values, v)) continue;
         snprintf(source, sizeof source, "changes[%zu].%s.\"%.180s\"", turn->entry, group, v->key);
         take_value(c, v, source, !strcmp(group, "add"));
     }
@@ -160,6 +169,10 @@ static char *change_tree(struct changing *c, const struct sp_turn *turn)
 static void take_turn(struct changing *c, const struct sp_turn *turn, struct sp_change *out)
 {
     out->at = turn->at;
+    out->entry = turn->entry;
+    out->line = turn->node->line;
+    out->file = strdup(turn->node->file ? turn->node->file : c->inner.name);
+    if (!out->file) c->inner.no_memory = true;
     out->text = change_tree(c, turn);
     out->to = calloc(1, sizeof *out->to);
     c->inner.design = out->to;

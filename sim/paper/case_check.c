@@ -32,7 +32,7 @@ static void in_words(const struct sp_reader *r, const char *path, const struct s
 }
 
 /* How much a user has to do with a value: nothing, in a file, on the command line, by a change. */
-static int weight(const struct sp_reader *r, const char *pattern, const struct sp_key_spot *at)
+int sp_case_weight(const struct sp_reader *r, const char *pattern, const struct sp_key_spot *at)
 {
     char path[SP_PATH_MAX], source[2 * SP_PATH_MAX];
     sp_case_path(r->tree, pattern, at, path, sizeof path);
@@ -46,7 +46,7 @@ static int weight(const struct sp_reader *r, const char *pattern, const struct s
 static void check_order(struct sp_reader *r, const struct order *o)
 {
     if (isnan(o->below) || isnan(o->above) || o->below < o->above) return;
-    bool low = weight(r, o->low, &o->at) >= weight(r, o->high, &o->at);
+    bool low = sp_case_weight(r, o->low, &o->at) >= sp_case_weight(r, o->high, &o->at);
     const char *blamed = low ? o->low : o->high, *other = low ? o->high : o->low;
     char bound[120], found[120], expected[260];
     in_words(r, other, &o->at, low ? o->above : o->below, bound, sizeof bound);

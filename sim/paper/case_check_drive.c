@@ -18,7 +18,11 @@ static void check_limits(struct sp_reader *r)
     if (r->purpose != SP_FOR_DRIVE || !limits || limits->type != SP_JSON_OBJECT) return;
     for (size_t i = 0; i < sizeof deciding / sizeof *deciding; ++i)
         if (sp_json_member(limits, deciding[i])) return;
-    sp_case_fault(r, "limits", "no limit", "at least one of coolant, gauge, metal, boil_margin", NULL);
+    const struct sp_design *d = r->design;
+    char expected[120];
+    snprintf(expected, sizeof expected, "at least one of coolant, gauge, metal, boil_margin%s%s%s",
+             d->oil.fitted ? ", oil" : "", d->gearbox.fitted ? ", gearbox" : "", d->charge.fitted ? ", charge" : "");
+    sp_case_fault(r, "limits", "no limit", expected, NULL);
 }
 
 /* One quantity's tiers: each below the next, and only for what the car has. */

@@ -131,11 +131,12 @@ static void check_core(struct sp_reader *r, const struct sp_key_spot *at)
 
 static void check_recovery(struct sp_reader *r, const struct sp_key_spot *at, const struct sp_table *t)
 {
-    bool rising = true;
+    bool rising = true, by_table = sp_case_weight(r, INLET ".recovery_table", at) > sp_case_weight(r, INLET ".recovery", at);
     for (size_t i = 1; i < t->rows; ++i)
         rising = rising && t->cell[2 * i] > t->cell[2 * i - 2];
     const struct rule rules[] = {
-        {t->rows && sp_case_given_at(r, INLET ".recovery", at), INLET ".recovery", "recovery and its table",
+        {t->rows && sp_case_given_at(r, INLET ".recovery", at), by_table ? INLET ".recovery_table" : INLET ".recovery",
+         "recovery and its table",
          "one of them"},
         {t->rows && sp_case_given_at(r, INLET ".layer_thickness", at), INLET ".layer_thickness", NULL,
          "no layer besides recovery_table, which has it in it"},
@@ -211,11 +212,31 @@ static void check_bay(struct sp_reader *r, const struct sp_key_spot *at)
     JUDGE(rules);
 }
 
+/* The same span, or none in common: fans of one span share a shroud. */
+static bool shrouds_go(const struct sp_fan *a, const struct sp_fan *b)
+{
+    const double same = 1e-9;
+    double from = a->span_from, to = a->span_to == 0.0 ? 1.0 : a->span_to; /* 0 to 0: all of it */
+    double other = b->span_from, end = b->span_to == 0.0 ? 1.0 : b->span_to;
+    if (a->before_core != b->before_core || (fabs(from - other) < same && fabs(to - end) < same)) return true;
+    return !(from < end - same && other < to - same);
+}
+
+static bool shroud_over_another(const struct sp_reader *r, const struct sp_key_spot *at)
+{
+    const struct sp_duct_design *d = &r->design->duct[at->outer];
+    for (size_t i = 0; i < at->inner; ++i)
+        if (d->fan[i].fitted && !shrouds_go(&d->fan[i], &d->fan[at->inner])) return true;
+    return false;
+}
+
 static void check_fan(struct sp_reader *r, const struct sp_key_spot *at)
 {
     const struct sp_fan *f = &r->design->duct[at->outer].fan[at->inner];
     const struct rule rules[] = {
         {bad_span(f->span_from, f->span_to), "car.duct.fan.span_to", NULL, "a share above span_from"},
+        {f->fitted && shroud_over_another(r, at), "car.duct.fan.span_from", "a shroud over part of another fan's",
+         "a span that is another's, or has nothing in common with it"},
         {f->current_limit > 0.0 && f->power == 0.0, "car.duct.fan.power", NULL,
          "a power above 0, for a current is watched"},
     };

@@ -55,6 +55,7 @@ void sp_design_free(struct sp_design *d)
         if (!sp_key_of_step(row) && !sp_key_of_change(row)) free_elements(row, d);
     for (size_t i = 0; i < d->changes; ++i) {
         free(d->change[i].text);
+        free(d->change[i].file);
         sp_design_free(d->change[i].to);
     }
     free(d->change);

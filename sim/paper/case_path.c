@@ -121,11 +121,24 @@ static bool take_name(struct way *w, const char *name)
     return true;
 }
 
+/* What a change sets has points in its name: changes[0].set.duct.exit.area is changes[0].set."duct.exit.area". */
+static bool into_change(const char *path, char *out, size_t size)
+{
+    const char *entry = "changes[", *p = path + strlen(entry);
+    if (strncmp(path, entry, strlen(entry))) return false;
+    p += strspn(p, "0123456789");
+    if (strncmp(p, "].set.", 6) && strncmp(p, "].add.", 6)) return false;
+    p += 6;
+    if (!*p || strchr(p, '"')) return false;
+    return snprintf(out, size, "%.*s\"%s\"", (int)(p - path), path, p) < (int)size;
+}
+
 /* Puts "car." before a key of the car. */
 static void from_the_top(const char *path, char *out, size_t size)
 {
     char first[SP_PATH_MAX];
     bool plural;
+    if (into_change(path, out, size)) return;
     snprintf(first, sizeof first, "%.*s", (int)strcspn(path, ".["), path);
     bool of_car = !sp_key_named("", first, &plural) && sp_key_named("car", first, &plural);
     snprintf(out, size, "%s%s", of_car ? "car." : "", path);

@@ -117,7 +117,8 @@ static const char *const opening[] = {
     "the car and of `limits` may change, one by one, except `engine`, `body`, `gauge`, the coolant's kind and",
     "mix, the battery's size, and whatever would change how many ducts, cores and fans there are, what a core",
     "carries, its cells or its law of heat: these are laid out before the drive begins. Defaults by rule follow",
-    "the changed values. Complaints name the value as `changes[0].set.\"duct.inlet.blocked\"`.",
+    "the changed values. Complaints name the value as `changes[0].set.\"duct.inlet.blocked\"`; on the command line",
+    "`--set changes[0].set.duct.inlet.blocked=\"50 %\"` changes it, and `--set changes[0].at=\"8 min\"` its time.",
     "",
     "The default column holds what is taken when the key is absent; in italics, when the key is needed. The "
     "basis",

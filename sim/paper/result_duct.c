@@ -140,7 +140,10 @@ void sp_duct_point_text(const struct sp_duct_point *p, FILE *to)
     fprintf(to, "%.6g m/s (%.6g km/h)", p->speed, p->speed * 3.6);
     if (p->in.speed != p->speed) fprintf(to, ", %.6g m/s through the air", p->in.speed);
     fputs(p->in.fan_speed[0] > 0.0 ? ", fan on" : ", fan off", to);
-    if (p->in.heat > 0.0)
+    if (p->in.heat > 0.0 && copies(p) > 1.0)
+        fprintf(to, ", %.6g kW to the air: %.6g kW in each of %.0f ducts\n\n", copies(p) * p->in.heat / 1e3,
+                p->in.heat / 1e3, copies(p));
+    else if (p->in.heat > 0.0)
         fprintf(to, ", %.6g kW to the air\n\n", p->in.heat / 1e3);
     else
         fputs(", core cold\n\n", to);
@@ -173,7 +176,7 @@ void sp_duct_point_write(struct sp_writer *w, const struct sp_duct_point *p)
     if (p->duct) sp_write_number(w, "duct", p->duct);
     sp_write_number(w, "speed_m_s", p->speed);
     sp_write_number(w, "air_speed_m_s", p->in.speed);
-    sp_write_number(w, "heat_W", p->in.heat);
+    sp_write_number(w, "heat_W", copies(p) * p->in.heat);
     sp_write_bool(w, "fan_on", p->in.fan_speed[0] > 0.0);
     sp_write_number(w, "mass_flow_kg_s", copies(p) * p->state.mass_flow);
     sp_write_number(w, "face_velocity_m_s", p->state.face_velocity);

@@ -193,7 +193,9 @@ static void say_ducts(const struct sp_hold_point *p, FILE *to)
         const struct sp_hold_duct *d = &p->duct[i];
         struct sp_duct_point point = duct_point(p, d);
         fputc('\n', to);
-        if (p->ducts > 1 || d->copies > 1.0) fprintf(to, "Duct %zu, one of %.0f\n", i + 1, d->copies);
+        if (p->ducts > 1 || d->copies > 1.0) fprintf(to, "Duct %zu", i + 1);
+        if (d->copies > 1.0) fprintf(to, ", one of %.0f equal ones", d->copies);
+        if (p->ducts > 1 || d->copies > 1.0) fputc('\n', to);
         sp_duct_point_text(&point, to);
     }
 }

@@ -117,18 +117,20 @@ static void say_limits(const struct telling *t)
     if (*missing) sp_say(t->to, SP_LABEL_WIDTH, label, "none given for %s", missing);
 }
 
-/* First and worst of what failed, in a line each; one where they are the same. */
+/* First and worst of what failed, in a line each; one where they are the same. A mere alarm fails nothing. */
 static void say_failure(const struct telling *t, const char *label, const struct sp_failure *f)
 {
     const struct sp_peak at = {0.0, f->time, f->distance, f->step, f->mark};
     char beyond[80] = "";
     if (f->worst > 0.0 && f->kind != SP_EV_BOILING)
-        snprintf(beyond, sizeof beyond, "; %.*g %s beyond at the worst", t->exact ? 6 : 2, f->worst / f->scale, f->unit);
+        snprintf(beyond, sizeof beyond, "; %.40s %s beyond at the worst",
+                 sp_words_amount(f->worst / f->scale, t->exact).text, f->unit);
     if (f->kind == SP_EV_CAVITATES)
         snprintf(beyond, sizeof beyond, "; it keeps %.*f %% of its head at the worst", t->exact ? 3 : 0,
                  100.0 * t->report->result->pump_head_left);
     if (f->kind == SP_EV_LOST)
-        snprintf(beyond, sizeof beyond, "; %.*g %s in all", t->exact ? 6 : 2, f->worst / f->scale, f->unit);
+        snprintf(beyond, sizeof beyond, "; %.40s %s in all", sp_words_amount(f->worst / f->scale, t->exact).text,
+                 f->unit);
     sp_say(t->to, SP_LABEL_WIDTH, label, "%s (%s) %s%s", sp_event_text(f->kind), f->place ? f->place : "car",
            sp_words_place(t->report->design, &at, t->exact).text, beyond);
 }
@@ -136,9 +138,12 @@ static void say_failure(const struct telling *t, const char *label, const struct
 static void say_failures(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
+    const struct sp_failure *breaks = sp_first_break(out);
     if (!out->first) return;
-    say_failure(t, "Fails first", out->first);
-    if (out->worst && out->worst != out->first) say_failure(t, "Fails worst", out->worst);
+    if (sp_mere_alarm(out->first)) say_failure(t, "First alarm", out->first);
+    if (breaks) say_failure(t, "Fails first", breaks);
+    if (out->worst && out->worst != out->first && out->worst != breaks)
+        say_failure(t, sp_mere_alarm(out->worst) ? "Worst alarm" : "Fails worst", out->worst);
 }
 
 static void say_boiling(const struct telling *t)
@@ -177,20 +182,51 @@ static void say_temperatures(const struct telling *t)
 
 /* ---- sums ------------------------------------------------------------------------------------------ */
 
+/* Times that a fan began to run; `place` NULL: that any did, where none ran before. */
+static size_t times_on(const struct sp_result *r, const char *place)
+{
+    size_t times = 0, running = 0;
+    for (size_t i = 0; i < r->events; ++i) {
+        const struct sp_event *e = &r->event[i];
+        if (e->kind != SP_EV_FAN_ON && e->kind != SP_EV_FAN_OFF) continue;
+        bool on = e->kind == SP_EV_FAN_ON, same = place && e->place && !strcmp(e->place, place);
+        times += on && (place ? same : running == 0);
+        if (on) ++running;
+        else if (running) --running;
+    }
+    return times;
+}
+
+/* Kinds of fans one by one. */
+static void say_each_fan(const struct telling *t)
+{
+    const struct sp_result *out = t->report->result;
+    for (size_t i = 0; i < out->fan_kinds; ++i) {
+        const char *place = out->each_fan[i].place, *label = i ? "" : "Fans";
+        size_t times = place ? times_on(out, place) : 0;
+        if (!place) continue;
+        if (!times)
+            sp_say(t->to, SP_LABEL_WIDTH, label, "%s never ran", place);
+        else
+            sp_say(t->to, SP_LABEL_WIDTH, label, "%s ran %zu time%s, %s in all", place, times, times == 1 ? "" : "s",
+                   sp_words_time(out->each_fan[i].on, t->exact).text);
+    }
+}
+
 static void say_fan(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
-    size_t times = 0;
-    for (size_t i = 0; i < out->events; ++i)
-        times += out->event[i].kind == SP_EV_FAN_ON;
+    size_t times = times_on(out, NULL);
+    bool several = out->fan_kinds > 1;
+    if (several && times) say_each_fan(t);
     if (!out->fan_kinds)
         sp_say(t->to, SP_LABEL_WIDTH, "Fan", "none");
     else if (!times)
-        sp_say(t->to, SP_LABEL_WIDTH, "Fan", "never ran");
+        sp_say(t->to, SP_LABEL_WIDTH, several ? "Fans" : "Fan", "never ran");
     else
-        sp_say(t->to, SP_LABEL_WIDTH, "Fan", "ran %zu time%s, %s in all, %s of electricity", times,
-               times == 1 ? "" : "s", sp_words_time(out->fan.on, t->exact).text,
-               sp_words_energy(out->fan.energy, t->exact).text);
+        sp_say(t->to, SP_LABEL_WIDTH, several ? "" : "Fan", "%s %zu time%s, %s in all, %s of electricity",
+               several ? "one or more of them" : "ran", times, times == 1 ? "" : "s",
+               sp_words_time(out->fan.on, t->exact).text, sp_words_energy(out->fan.energy, t->exact).text);
 }
 
 static void say_battery(const struct telling *t)
@@ -201,15 +237,25 @@ static void say_battery(const struct telling *t)
            sp_words_energy(out->battery.used, t->exact).text, t->exact ? 3 : 0, 100.0 * out->battery.left);
 }
 
+static size_t cores_of(const struct sp_design *d)
+{
+    size_t n = 0;
+    for (size_t i = 0; i == 0 || i < d->ducts; ++i) {
+        const struct sp_duct_design *duct = &d->duct[i];
+        n += (duct->cores ? duct->cores : 1) * (duct->count > 1.0 ? 2 : 1); /* one or several is all that counts */
+    }
+    return n;
+}
+
 static void say_heat(const struct telling *t)
 {
     const struct sp_result *out = t->report->result;
-    sp_say(t->to, SP_LABEL_WIDTH, "Heat",
-           "%s in, %s out by the core, %s by skin, %s stored; ledger closes to %.1g",
-           sp_words_energy(out->ledger.in, t->exact).text,
-           sp_words_energy(out->ledger.out_air, t->exact).text,
-           sp_words_energy(out->ledger.out_skin, t->exact).text,
-           sp_words_energy(out->ledger.stored, t->exact).text, fabs(out->ledger.error));
+    const struct sp_design *d = t->report->design;
+    sp_say(t->to, SP_LABEL_WIDTH, "Heat", "%s in, %s out by the core%s, %s by skin%s, %s stored; ledger closes to %.1g",
+           sp_words_energy(out->ledger.in, t->exact).text, sp_words_energy(out->ledger.out_air, t->exact).text,
+           cores_of(d) > 1 ? "s" : "", sp_words_energy(out->ledger.out_skin, t->exact).text,
+           d->hoses.heater.flow > 0.0 ? " and heater" : "", sp_words_energy(out->ledger.stored, t->exact).text,
+           fabs(out->ledger.error));
 }
 
 static void say_drag(const struct telling *t)
@@ -223,9 +269,11 @@ static void say_drag(const struct telling *t)
     sp_say(t->to, SP_LABEL_WIDTH, "Cooling drag", "mean coefficient %.*f on %.3g m2, %s over the drive",
            t->exact ? 6 : 4, c, t->report->design->body.frontal_area,
            sp_words_energy(out->drag.energy, t->exact).text);
-    if (out->drag.spill != 0.0 || out->drag.thrust != 0.0)
-        sp_say(t->to, SP_LABEL_WIDTH, "", "%s of it by spilled air, after %s given back by the heat's thrust",
-               sp_words_energy(out->drag.spill, t->exact).text, sp_words_energy(out->drag.thrust, t->exact).text);
+    if (out->drag.spill != 0.0)
+        sp_say(t->to, SP_LABEL_WIDTH, "", "spilled air %s of it", sp_words_energy(out->drag.spill, t->exact).text);
+    if (out->drag.thrust != 0.0)
+        sp_say(t->to, SP_LABEL_WIDTH, "", "the heat's thrust gives back %s, taken off already",
+               sp_words_energy(out->drag.thrust, t->exact).text);
 }
 
 static void say_work(const struct telling *t)

@@ -72,6 +72,24 @@ struct sp_words sp_words_energy(double joules, bool exact)
     return amount < 999.5e6 ? words("%.*g MJ", digits, joules / 1e6) : words("%.*g GJ", digits, joules / 1e9);
 }
 
+struct sp_words sp_words_amount(double amount, bool exact)
+{
+    if (exact) return words("%.6f", amount);
+    return words("%.*f", fabs(amount) < 0.995 ? 2 : fabs(amount) < 9.95 ? 1 : 0, amount);
+}
+
+bool sp_mere_alarm(const struct sp_failure *f)
+{
+    return f->kind >= SP_EV_TIER && f->severity == SP_SEVERITY_ALARM;
+}
+
+const struct sp_failure *sp_first_break(const struct sp_result *r)
+{
+    for (size_t i = 0; i < r->failures; ++i)
+        if (r->failure[i].severity >= SP_SEVERITY_ALARM && !sp_mere_alarm(&r->failure[i])) return &r->failure[i];
+    return NULL;
+}
+
 static const char *base_name(const char *path)
 {
     const char *slash = strrchr(path, '/');

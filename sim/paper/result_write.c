@@ -114,6 +114,11 @@ static size_t columns_of(const char *text, size_t n)
     return columns;
 }
 
+size_t sp_columns(const char *text)
+{
+    return columns_of(text, strlen(text));
+}
+
 static void wrap(FILE *to, const char *text, size_t at, size_t indent)
 {
     bool first = true;

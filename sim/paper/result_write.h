@@ -41,6 +41,8 @@ void sp_number_digits(char text[SP_NUMBER_ROOM], double x, int digits);
 
 enum { SP_LINE_WIDTH = 80, SP_LABEL_WIDTH = 17 };
 
+size_t sp_columns(const char *text); /* characters of it */
+
 /* A label, then text wrapped at blanks; it begins, and goes on in further lines, at column `indent`. */
 void sp_say(FILE *to, int indent, const char *label, const char *format, ...)
     __attribute__((format(printf, 4, 5)));

@@ -209,6 +209,9 @@ static bool unused(const struct sp_design *d, const char *path, const struct sp_
     const struct sp_pump *pump = &d->pump;
     const struct sp_thermostat *t = &d->thermostat;
     const struct sp_engine *e = &d->engine;
+    const struct sp_core *core = &duct->core[!strncmp(path, "car.duct.core.", 14) ? at->inner : 0];
+    bool fins = core->drop_law == SP_DROP_FINS || core->heat_law == SP_CORE_FINS;
+    bool tubes = fins || (core->tube_pitch > 0.0 && !(core->drop.flow > 0.0)); /* the coolant's drop goes by them */
     bool shape = e->heat_law == SP_HEAT_CORRELATION || e->overrun_law != SP_FRICTION_POLYNOMIAL;
     const struct {
         const char *begins;
@@ -242,6 +245,11 @@ static bool unused(const struct sp_design *d, const char *path, const struct sp_
         {"car.engine.overrun.c", e->overrun_law == SP_FRICTION_CHEN_FLYNN},
         {"car.engine.overrun.d", e->overrun_law == SP_FRICTION_CHEN_FLYNN},
         {"car.thermostat.mapped.", t->mapped_power > 0.0},
+        {"car.duct.core.fins.kind", tubes},
+        {"car.duct.core.fins.thickness", fins},
+        {"car.duct.core.fins.conductivity", fins},
+        {"car.duct.core.fins.louvre_length", fins && core->fin_kind != SP_FINS_PLATE},
+        {"car.duct.core.tubes.", tubes},
         {"car.duct.fan.switch.", fan->law == SP_FAN_SWITCHED},
         {"car.duct.fan.proportional.", fan->law == SP_FAN_PROPORTIONAL},
         {"car.duct.fan.locked_loss", fan->health == SP_FAN_LOCKED},
@@ -323,7 +331,7 @@ static void show_change(struct shower *s, const struct sp_turn *turn, const stru
     fprintf(s->to, json ? "%s\n  {\"path\": \"%s\", \"text\": \"" : "%s%-44s ", s->first || !json ? "" : ",",
             path);
     sp_written_text(s->to, change->text, json);
-    fputs(json ? "\", \"si\": " : " = ", s->to);
+    fputs(json ? "\", \"si\": " : " at ", s->to);
     put_number(s->to, change->at);
     fputs(json ? ", \"unit\": \"s\", \"basis\": \"" : " s  (", s->to);
     sp_written_text(s->to, turn->node->file ? turn->node->file : "", json);

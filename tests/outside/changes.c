@@ -52,7 +52,9 @@ static void seconds_to_the_limit(void **state)
         to[i] = d;
     to[0].duct[0].inlet.blocked = 0.90;
     to[1].duct[0].inlet.blocked = to[2].duct[0].inlet.blocked = 0.95;
-    struct sp_change change[3] = {{100.0, blocked, &to[0]}, {400.0, more, &to[1]}, {700.0, never, &to[2]}};
+    struct sp_change change[3] = {{.at = 100.0, .text = blocked, .to = &to[0]},
+                                  {.at = 400.0, .text = more, .to = &to[1]},
+                                  {.at = 700.0, .text = never, .to = &to[2]}};
     d.change = change;
     d.changes = 3;
     struct fixture_drive r = drive(&d, 0.5);
@@ -88,7 +90,7 @@ static void limits_that_move(void **state)
     low = high = d;
     low.limits.coolant.stop = stands - 3.0;
     high.limits.coolant.stop = 420.0;
-    struct sp_change change[2] = {{300.0, never, &low}, {310.0, never, &high}};
+    struct sp_change change[2] = {{.at = 300.0, .text = never, .to = &low}, {.at = 310.0, .text = never, .to = &high}};
     d.change = change;
     d.changes = 2;
     struct fixture_drive r = drive(&d, 1.0);
@@ -120,7 +122,7 @@ static void water_lost(void **state)
     d.steps = 1;
     to = d;
     to.tank.lost = 0.3e-3;
-    struct sp_change change = {60.0, never, &to};
+    struct sp_change change = {.at = 60.0, .text = never, .to = &to};
     d.change = &change;
     d.changes = 1;
     struct fixture_drive r = drive(&d, 0.01);
@@ -293,7 +295,7 @@ static void events_are_the_lifts(void **state)
     for (int k = 0; k < 4; ++k) {
         struct sp_step step[6];
         struct sp_design d = pulsating(step), to;
-        struct sp_change change = {30.0, never, &to};
+        struct sp_change change = {.at = 30.0, .text = never, .to = &to};
         if (k == 1) d.thermostat.mapped_shift = 8.0, d.thermostat.mapped_power = 30e3;
         if (k == 2) d.thermostat.inlet_side = true;
         to = d;
@@ -318,7 +320,7 @@ static void play_follows_the_wax(void **state)
     for (int k = 0; k < 3; ++k) {
         struct sp_step step[6];
         struct sp_design d = pulsating(step), to;
-        struct sp_change change = {100.0, never, &to};
+        struct sp_change change = {.at = 100.0, .text = never, .to = &to};
         const double play = 2.0;
         d.thermostat.hysteresis = play;
         if (k == 1) d.thermostat.inlet_side = true;

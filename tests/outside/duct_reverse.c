@@ -34,7 +34,7 @@ static struct rig rig(double speed, double recovery, double back)
                                 .cells = 10};
     r.d.inlet = (struct sp_inlet){.area = inlet, .recovery = recovery, .lip_loss = 0.5, .screen = screen};
     r.d.diffuser.loss = diffuser;
-    r.d.exit[0] = (struct sp_exit){outlet, exit_loss, back, 0.0};
+    r.d.exit[0] = (struct sp_exit){.area = outlet, .loss = exit_loss, .pressure_coefficient = back, .angle = 0.0};
     r.in = (struct sp_duct_inputs){
         .speed = speed, .wake = 1.0, .temperature = 300.0, .R = SP_R_DRY, .cp = SP_CP_DRY};
     r.in.pressure = rho * r.in.R * r.in.temperature;

@@ -77,7 +77,7 @@ static struct sp_design with_sink(double metal, double coolant, double between, 
     c->drop = (struct sp_resistance){6.0, 100.0};
     d.duct[0].inlet = (struct sp_inlet){.area = 2000.0, .recovery = 1.0, .lip_loss = 0.0, .screen = 0.0};
     d.duct[0].diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
-    d.duct[0].exit[0] = (struct sp_exit){2000.0, 0.0, 0.0, 0.0};
+    d.duct[0].exit[0] = (struct sp_exit){.area = 2000.0, .loss = 0.0, .pressure_coefficient = 0.0, .angle = 0.0};
     return d;
 }
 

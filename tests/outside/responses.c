@@ -256,7 +256,7 @@ static struct fixture_drive along(const char *rows, double wind, double interval
     double face = d.duct[0].core[0].width * d.duct[0].core[0].height;
     d.duct[0].inlet = (struct sp_inlet){.area = face, .recovery = 1.0, .lip_loss = 0.0, .screen = 0.0};
     d.duct[0].diffuser = (struct sp_diffuser_design){.kind = SP_DIFFUSER_GIVEN};
-    d.duct[0].exit[0] = (struct sp_exit){0.5 * face, 0.0, -0.1, 0.0};
+    d.duct[0].exit[0] = (struct sp_exit){.area = 0.5 * face, .loss = 0.0, .pressure_coefficient = -0.1, .angle = 0.0};
     struct sp_step s = {.kind = SP_STEP_TRACE, .trace = path, .repeat = 1.0};
     struct fixture_drive r = try_drive(&d, &s, 1, interval);
     remove(path);

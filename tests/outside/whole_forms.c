@@ -222,7 +222,7 @@ static void charge_cooler(void **state)
     fit_charge(&r, 10.0, 600.0);
     int e = r.c.exchangers - 1;
     double T1 = (298.15 + 8.0) * 1.25, Ta = 298.15;
-    check_close(sp_circuit_charge_in(&r.c, &r.in), T1, 1e-14, 0);
+    check_close(sp_circuit_charge_in(&r.c, &r.in, NULL), T1, 1e-14, 0);
     check_close(leaves(&r, e), T1 - share(&r, e) * (T1 - Ta), 0, 1e-6);
     check_close(sp_circuit_charge_out(&r.c, &r.in, r.y), leaves(&r, e), 0, 0);
     sp_circuit_free(&r.c);
@@ -257,8 +257,8 @@ static void oil_between_metal_and_air(void **state)
     sp_circuit_free(&r.c);
 }
 
-/* Through a plate cooler into what enters the pump; its conductance goes with the oil's flow over the most.
- */
+/* Through a plate cooler into what enters the pump: counterflow, eps = (1 - E)/(1 - Cr E), E = exp(-NTU (1 -
+ * Cr)) (Kays & London 1984); its conductance goes with the oil's flow over the most. */
 static void plate_cooler(void **state)
 {
     (void)state;
@@ -272,7 +272,11 @@ static void plate_cooler(void **state)
     double plate = 300.0 * 40.0 / 60.0; /* at the speed of `flow` */
     double back = r.y[r.c.layout.back + SP_HOSE_CELLS - 1], bleed = r.k.mass_bleed / r.k.mass_pump;
     double in = (1.0 - bleed) * back + bleed * r.y[SP_Y_JACKET];
-    check_close(r.y[r.c.layout.oil], in + 6e3 / plate, 0, 1e-6);
+    double T = r.y[r.c.layout.oil], coolant = r.k.mass_pump * 3551.0;
+    double warm = 40.0 / 60e3 * 870.0 / (1.0 + 7e-4 * (T - 288.15)) * (1825.0 + 3.75 * (T - 273.15));
+    double low = fmin(warm, coolant), ratio = low / fmax(warm, coolant),
+           E = exp(-plate / low * (1.0 - ratio));
+    check_close((1.0 - E) / (1.0 - ratio * E) * low * (T - in), 6e3, 1e-6, 0);
     check_close(r.k.duct[0].heat, 46e3, 1e-6, 0);
     /* the engine's coolant rises by its own heat and the oil's */
     double rate = r.k.mass_radiator * 3551.0;

@@ -327,7 +327,7 @@ static void change_of_nothing(void **state)
     struct sp_step step[4];
     static char text[] = "duct.inlet.blocked=0";
     struct sp_design plain = car(step), same = plain, d = plain;
-    struct sp_change change[2] = {{17.0, text, &same}, {130.0, text, &same}};
+    struct sp_change change[2] = {{.at = 17.0, .text = text, .to = &same}, {.at = 130.0, .text = text, .to = &same}};
     d.change = change;
     d.changes = 2;
     struct fixture_drive a = drive(&plain, 1e-10), b = drive(&d, 1e-10);
@@ -352,7 +352,7 @@ static void change_lasts(void **state)
     blocked = plain;
     blocked.duct[0].inlet.blocked = 0.6;
     struct sp_design d = plain;
-    struct sp_change change = {3000.0, text, &blocked};
+    struct sp_change change = {.at = 3000.0, .text = text, .to = &blocked};
     d.change = &change;
     d.changes = 1;
     struct fixture_drive a = fixture_run(&fixture, &plain, 1000.0, fine);

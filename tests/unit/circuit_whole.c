@@ -157,7 +157,7 @@ static void all_fluids(struct rig *r)
     d[0].inlet.recirculated = 0.1;
     d[0].inlet.recirculation_ends = 14.0;
     d[0].exits = 2;
-    d[0].exit[1] = (struct sp_exit){0.02, 1.7, -0.2, 1.0};
+    d[0].exit[1] = (struct sp_exit){.area = 0.02, .loss = 1.7, .pressure_coefficient = -0.2, .angle = 1.0};
     r->d.ducts = 3;
     d[1] = d[0];
     d[1].cores = d[1].exits = 1;

@@ -405,7 +405,7 @@ class WholePlant(Plant):
                "gauge": y[GAUGE] - c + self.car["gauge"]["offset"], "thermostat_lift": lift,
                "coolant_flow": loop["p"] * 6e4, "coolant_flow_radiator": loop["r"] * 6e4,
                "coolant_flow_bypass": loop["b"] * 6e4, "tank_pressure": p / 1e3, "boil_margin": margin,
-               "air_mass_flow": air[0]["m"],
+               "air_mass_flow": sum(n * a["m"] for a, (_, n, _) in zip(air, self.runs)),
                "drag": sum(n * a["drag"] for a, (_, n, _) in zip(air, self.runs)),
                "fan_power": sum(self.fan_powers(y, s)), "coolant_radiator_out": self.place(y, "radiator out") - c}
         if "oil" in self.oils:
