@@ -118,6 +118,14 @@ static bool said(const struct sp_complaints *list, const struct sp_place *at, co
     return false;
 }
 
+/* What follows from a change goes on while it holds: whichever change comes next, it is said once. */
+static bool said_of_another(const struct sp_complaints *list, const char *found, const char *expected)
+{
+    for (size_t i = 0; i < list->count; ++i)
+        if (same_text(list->list[i].found, found) && same_text(list->list[i].expected, expected)) return true;
+    return false;
+}
+
 /* What was said of the case as it begins, or of an earlier turn, is not said again. What is no fault of a
  * value that was set follows from the change all the same, and is said of it. */
 static void pass_on(const struct sp_complaints *from, const struct sp_turn *turn, struct sp_complaints *to)
@@ -132,6 +140,7 @@ static void pass_on(const struct sp_complaints *from, const struct sp_turn *turn
             snprintf(path, sizeof path, "changes[%zu]", turn->entry);
             snprintf(found, sizeof found, "%.200s as %.250s", c->path, c->found);
             at = (struct sp_place){turn->node->file, turn->node->line, path, turn->node->named_by};
+            if (said_of_another(to, found, c->expected)) continue;
         }
         if (!said(to, &at, found, c->expected)) sp_complain(to, &at, found, c->expected, c->hint);
     }

@@ -145,4 +145,25 @@ want 0 duct fan.json --speed "10 m/s" --heat "20 kW" --fan on
 awk 'length($0) > 80 { exit 1 }' out || fail "text wider than 80 columns"
 says out "share of q"
 says out "core face"
+
+# Equal ducts: heat and flow of all of them, in the text and in the JSON; each one's share of what is asked for.
+write_case
+want 0 duct case.json --speed "30 m/s" --heat "60 kW" --set duct.count=2
+head -n 1 out | grep -q "60 kW to the air: 30 kW in each of 2 ducts" || fail "heat of two ducts: $(head -n 1 out)"
+want 0 duct case.json --speed "30 m/s" --heat "30 kW" --json
+m=$(number mass_flow_kg_s)
+want 0 duct case.json --speed "30 m/s" --heat "60 kW" --json --set duct.count=2
+close "heat of two ducts" "$(number heat_W)" 60000 1e-12
+close "flow of two ducts" "$(number mass_flow_kg_s)" "$(awk -v m="$m" 'BEGIN { printf "%.15g", 2 * m }')" 1e-9
+
+# Cores and exits with names of their own, and such without.
+set -- --set 'duct.exits=[{"area": "400 cm2", "place": "wheel arch"}, {"area": "300 cm2"}]' --set duct.core.name=radiator
+want 0 duct case.json --speed "30 m/s" "$@"
+grep -q "^  exit wheel arch  *[0-9.]* kg/s" out || fail "no place of the exit"
+grep -q "^  exit 2  *[0-9.]* kg/s" out || fail "no number of the exit"
+grep -q "^  radiator  *[0-9.]* kg/s" out || fail "no name of the core"
+want 0 duct case.json --speed "30 m/s" --json "$@"
+is_json out
+says out '"name": "radiator"'
+says out '"wheel arch"'
 finish

@@ -124,8 +124,11 @@ grep -A3 '"worst_failure": {' out | grep -q '"what": "coolant over limit"' || fa
 head -n 1 tiers/events.csv | grep -q ',mark,place,severity$' || fail "events end in $(head -n 1 tiers/events.csv)"
 grep -q ',coolant over limit,.*,jacket,stop$' tiers/events.csv || fail "no place and severity in events.csv"
 want 1 run case.json "$@"
-says out "Fails first      coolant over alarm (jacket)"
-says out "Fails worst      coolant over limit (jacket)"
+says out "First alarm      coolant over alarm (jacket)"
+says out "Fails first      coolant over limit (jacket)"
+want 0 run case.json --set 'limits={"coolant_alarm": "88 degC", "coolant": "110 degC"}'
+says out "First alarm      coolant over alarm (jacket)"
+says_not out "Fails"
 says out "of common practice"
 awk 'length($0) > 80 { exit 1 }' out || fail "text wider than 80 columns"
 want 0 run case.json
@@ -151,6 +154,80 @@ want 1 run case.json "$@"
 says out "changes: limits.coolant=20 degC; already"
 want 0 run case.json --json
 says out '"changes": []'
+
+# A change after the end of the drive, with its place; one of a row of them.
+sed 's/  "start": {/"changes": [ { "at": "500 min", "set": { "duct.inlet.blocked": "20 %" } },\
+ { "at": "8 min", "every": "20 s", "times": 3, "add": { "duct.core.blocked": "1 %" } } ], &/' case.json >late.json
+want 0 run late.json
+says err "late.json, line 18, changes[0].at: found 500 min; expected a time within the drive, which ends at 8 min 30 s"
+says err "late.json, line 19, changes[1].times: found 8 min 40 s"
+[ "$(wc -l <err)" -eq 2 ] || fail "not two cautions: $(cat err)"
+want 0 run case.json --set 'changes=[{"at": "510 s", "set": {"duct.inlet.blocked": "20 %"}}]'
+says err "changes[0].at: found 8 min 30 s"
+want 0 run case.json --set 'changes=[{"at": "509.9 s", "set": {"duct.inlet.blocked": "20 %"}}]'
+says_not err "changes"
+
+# Changes of the same keys make one line; the one before the failure stands whatever else is left out.
+many='{"at": "5 s", "every": "2 s", "times": 100, "add": {"duct.core.blocked": "0.01 %"}}'
+for t in 11 21 31 41 51 61 71 81 101 111 121 131; do
+    many="$many, {\"at\": \"$t s\", \"set\": {\"duct.core.heat_factor\": 0.9$t, \"tank.bleed\": 0.0$t}}"
+    many="$many, {\"at\": \"$t.5 s\", \"set\": {\"duct.inlet.lip_loss\": 0.$t, \"tank.cap\": \"1.$t bar\"}}"
+done
+want 1 run case.json --set "changes=[$many, {\"at\": \"3 min\", \"set\": {\"limits.coolant\": \"60 degC\"}}]"
+says out "changes: limits.coolant=60 degC; already"
+[ "$(grep -c "changes, 100 times: duct.core.blocked" out)" -eq 1 ] || fail "no line for a hundred changes"
+[ "$(grep -c "changes, 12 times:" out)" -eq 2 ] || fail "no lines for twelve changes"
+# All of other keys, more than there is room for.
+many=
+i=0
+for key in inlet.area inlet.recovery inlet.lip_loss inlet.screen inlet.blocked diffuser.loss core.heat_factor \
+    core.blocked exit.loss exit.pressure_coefficient fan.health core.air_fouling core.coolant_fouling; do
+    i=$((i + 1))
+    value=0.1
+    [ $key = inlet.area ] && value='"480 cm2"'
+    [ $key = fan.health ] && value='"sound"'
+    [ $key = inlet.recovery ] || [ $key = core.heat_factor ] && value=0.9
+    case $key in *fouling) value='"0.00001 m2.K/W"' ;; esac
+    many="$many{\"at\": \"$((10 * i)) s\", \"set\": {\"duct.$key\": $value}}, "
+done
+want 1 run case.json --set "changes=[$many{\"at\": \"150 s\", \"set\": {\"limits.coolant\": \"60 degC\"}}]"
+says out "changes: limits.coolant=60 degC; already"
+says out "all events are in events.csv"
+
+# Fans of several kinds, each with its own on-times, which are the same wherever they stand.
+fan='"curve": {"shutoff": "170 Pa", "free_flow": "0.25 m3/s"}, "power": "140 W", "run_on": "3 min"'
+want 0 run case.json --exact --set "duct.fans=[{$fan, \"switch\": {\"on\": \"88 degC\", \"off\": \"86 degC\"}},
+    {$fan, \"switch\": {\"on\": \"90 degC\", \"off\": \"87 degC\"}}, {$fan, \"control\": \"never\"}]"
+tr '\n' ' ' <out | tr -s ' ' >flat
+for n in 1 2; do
+    sum=$(grep -o "duct 1, fan $n ran [0-9]* times\{0,1\}, [0-9.]* s in all" flat | awk '{ print $(NF - 3) }')
+    line=$(grep -o "fan runs (duct 1, fan $n)[^a-z]*[a-z]* *[a-z]*,* *[0-9.]* s" flat | awk '{ print $(NF - 1) }')
+    [ -n "$sum" ] && [ "$sum" = "$line" ] || fail "fan $n ran '$sum' s and '$line' s: $(grep -n fan out)"
+done
+says out "duct 1, fan 3 never ran"
+
+# Numbers without exponents; what adds and what takes away apart; what heat leaves by.
+want 1 run case.json --set 'limits.coolant=1 degC' --set 'drive[1].power=100 kW' --set 'drive[1].hold=20 min' \
+    --set 'duct.exit.area=80 cm2' --set duct.inlet.spill=true --set hoses.heater.flow='6 l/min' --set duct.count=2
+says_not out "e+0"
+grep -E -q 'Fails first +coolant over limit \(jacket\)' out || fail "no first failure"
+tr '\n' ' ' <out | tr -s ' ' | grep -E -q '; [1-9][0-9][0-9] K beyond' || fail "no plain number: $(grep -A1 'Fails' out)"
+grep -E -q '^ +spilled air [0-9.]+ [kM]?J of it$' out || fail "no line of spilled air"
+grep -E -q '^ +the heat.s thrust gives back [0-9.]+ [kM]?J' out || fail "no line of thrust"
+says out "out by the cores"
+tr '\n' ' ' <out | tr -s ' ' | grep -q "by skin and heater" || fail "the heater is no skin"
+
+# Defaults that nothing uses are not shown; the time of a change is no value.
+want 0 show case.json --set 'changes=[{"at": "8 min", "set": {"duct.inlet.blocked": "30 %"}}]' \
+    --set 'duct.core={"width": "480 mm", "height": "340 mm", "depth": "40 mm", "pressure_drop": {"coefficient": 8},
+    "heat": {"air_conductance": "3 kW/K", "at_face_velocity": "8 m/s", "coolant_conductance": "9 kW/K",
+    "at_coolant_flow": "1.6 kg/s"}}'
+says out "duct.inlet.blocked=30 % at 480 s"
+says_not out "core.fins."
+says_not out "core.tubes."
+want 0 show case.json
+says out "core.fins.thickness"
+says out "core.tubes.wall"
 
 # Columns of what is fitted only.
 want 0 run case.json -o plain

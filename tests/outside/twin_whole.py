@@ -92,7 +92,7 @@ def compare_point(point, path, air, heat):
     yield "mass flow", point["mass_flow_kg_s"], s["m"], m
     yield "face velocity", point["face_velocity_m_s"], s["face"], m / path.network.face
     yield "drag", point["internal_drag_N"], s["drag"], 1e-3 + m * v + abs(s["drag"])
-    if s["m"] > 0 and s["t3"] and all(f > 0 for f in s["exits"]):
+    if s["m"] > 1e-6 and s["t3"] and all(f > 0 for f in s["exits"]):
         yield "temperature ratio", point["temperature_ratio"], s["t3"] / s["t"][0], 1.0
 
 

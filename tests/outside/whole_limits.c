@@ -327,7 +327,8 @@ static void change_of_nothing(void **state)
     struct sp_step step[4];
     static char text[] = "duct.inlet.blocked=0";
     struct sp_design plain = car(step), same = plain, d = plain;
-    struct sp_change change[2] = {{.at = 17.0, .text = text, .to = &same}, {.at = 130.0, .text = text, .to = &same}};
+    struct sp_change change[2] = {{.at = 17.0, .text = text, .to = &same},
+                                  {.at = 130.0, .text = text, .to = &same}};
     d.change = change;
     d.changes = 2;
     struct fixture_drive a = drive(&plain, 1e-10), b = drive(&d, 1e-10);

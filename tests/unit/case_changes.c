@@ -223,6 +223,36 @@ static void entries_that_will_not_do(void **state)
                   __LINE__);
 }
 
+/* Set by a path with or without quotes: the points of what a change sets are no levels of the file. */
+static void settings_without_quotes(void **state)
+{
+    (void)state;
+    static const char *const forms[] = {"changes[0].set.duct.cores[1].blocked=50 %",
+                                        "changes[0].set.\"duct.cores[1].blocked\"=50 %"};
+    for (size_t i = 0; i < 2; ++i) {
+        char text[100];
+        snprintf(text, sizeof text, "%s", forms[i]);
+        struct result r = must_set(CHANGES(AT("1 s", SET("\"duct.cores[1].blocked\": 0.25"))), SP_FOR_DUCT,
+                                   (char *const[]){text}, 1);
+        assert_int_equal(r.design->changes, 1);
+        check_close(r.design->change[0].to->duct[0].core[1].blocked, 0.5, 1e-14, 0.0);
+        assert_int_equal(r.design->change[0].entry, 0);
+        assert_int_equal(r.design->change[0].line, 3);
+        assert_string_equal(r.design->change[0].file, "dir/c.json");
+        drop(&r);
+    }
+    static const char *const empty[] = {"changes[0].set.=50 %", "changes[0].set={\"\": \"20 %\"}",
+                                        "changes[0].add.\"\"=1", "changes=[{\"at\": \"1 s\", \"set\": {\"\": 1}}]"};
+    for (size_t i = 0; i < 4; ++i) {
+        char text[100];
+        snprintf(text, sizeof text, "%s", empty[i]);
+        struct result r = parse_set(CHANGES(AT("1 s", SET("\"duct.cores[1].blocked\": 0.25"))), SP_FOR_DUCT,
+                                    (char *const[]){text}, 1);
+        assert_int_equal(r.complaints.count, 1);
+        drop(&r);
+    }
+}
+
 static void keys_that_stay(void **state)
 {
     (void)state;
@@ -246,17 +276,21 @@ static void keys_that_stay(void **state)
     set_refused("changes[0].at", "\"3 s\"", "a change", "read once");
     set_refused("title", "\"3\"", "a change", "read once");
     set_refused("car.from", "\"3\"", "a change", "read once");
-    set_refused("duct", "{}", "all in it", "one by one");
-    set_refused("duct.exit", "{}", "all in it", "one by one");
-    set_refused("duct.cores", "[]", "all in it", "one by one");
-    set_refused("thermostat", "\"none\"", "all in it", "one by one");
-    set_refused("limits", "{}", "all in it", "one by one");
+    set_refused("duct", "{}", "all of a group", "one by one");
+    set_refused("duct.exit", "{}", "all of a group", "one by one");
+    set_refused("duct.cores", "[]", "all of a group", "one by one");
+    set_refused("thermostat", "\"none\"", "all of a group", "one by one");
+    set_refused("limits", "{}", "all of a group", "one by one");
     set_refused("duct.inlet.aera", "3", "an unknown key", NULL);
     set_refused("duct.exits[1].area", "\"3 m2\"", "index 1", "there is 1");
     set_refused("duct.core.blocked", "0", "alone", "list of 2");
     set_refused("duct.cores[2].blocked", "0", "index 2", "0 to 1, for there are 2");
     set_refused("duct.fans[1].health", "\"dead\"", "index 1", "there is 1");
     set_refused("a..b", "3", NULL, NULL);
+    set_refused("", "\"20 %\"", "an empty path", "a key");
+    add_refused("", "\"20 %\"", "an empty path", "a key");
+    set_refused("duct.cores[0].name", "\"cooler\"", "a change", "read once");
+    set_refused("duct.exit.place", "\"arch\"", "a change", "read once");
     one_complaint("{" AIR ", \"car\": {" DUCT_OF(COEFFICIENT) "}, \"changes\": [" AT(
                       "1 s", SET("\"duct.fan.health\": \"dead\"")) "]}",
                   "changes[0].set.\"duct.fan.health\"", "no fan from the start", "one that is there",
@@ -289,10 +323,15 @@ static void values_that_will_not_do(void **state)
             "changes[0].set.\"car.tank.cap\"", "the same key again", NULL);
     refused(AT("1 s", SET("\"tank.cap\": \"1 bar\"") ", " ADD("\"tank.cap\": \"2 bar\"")),
             "changes[0].add.\"tank.cap\"", "the same key again", NULL);
+    /* Said by the reader of JSON, and not again. */
+    refused(AT("1 s", SET("\"tank.cap\": \"1 bar\", \"tank.cap\": \"2 bar\"")), "changes[0].set.tank.cap",
+            "again, first on line", "once");
     /* Said once, though it stays wrong from then on; each new number of a growth is another fault. */
     refused(AT("1 s", SET("\"duct.inlet.blocked\": 3")) ", " AT("2 s", SET("\"tank.cap\": \"1 bar\"")),
             "changes[0].set.\"duct.inlet.blocked\"", "3", NULL);
-    /* No value of a change is at fault, but what follows from it. */
+    /* No value of a change is at fault, but what follows from it; that is no fault of the change after it. */
+    refused(AT("1 s", SET("\"tank.air_space\": \"150 l\"")) ", " AT("2 s", SET("\"tank.cap\": \"1 bar\"")), NULL,
+            NULL, NULL);
     refused(AT("1 s", SET("\"tank.air_space\": \"150 l\"")), NULL, NULL, NULL);
 }
 
@@ -353,6 +392,7 @@ int main(void)
         cmocka_unit_test(a_drive_with_changes),
         cmocka_unit_test(entries_that_will_not_do),
         cmocka_unit_test(keys_that_stay),
+        cmocka_unit_test(settings_without_quotes),
         cmocka_unit_test(values_that_will_not_do),
         cmocka_unit_test(a_hundred_faults),
     };

@@ -16,6 +16,10 @@ static int end(void **state)
     return 0;
 }
 
+#define PART_FAN(from, to)                                                                                   \
+    "{\"curve\": {\"shutoff\": \"100 Pa\", \"free_flow\": \"1 m3/s\"}, \"span_from\": " from ", \"span_to\": " to \
+    "}"
+
 static void refused_at(const char *set, const char *more, const char *path, const char *found,
                        const char *expected, int source)
 {
@@ -143,6 +147,10 @@ static void bad_inlets(void **state)
             "steeper", "several flows");
     refused2("duct.inlet.recovery_table=[[0, 0.6], [0.5, 0.9]]", "duct.inlet.recovery=0.8",
              "duct.inlet.recovery", "recovery and its table", "one");
+    refused2("duct.inlet.recovery=0.8", "duct.fans=[" PART_FAN("0", "0.5") ", " PART_FAN("0.4", "1") "]",
+             "duct.fans[1].span_from", "a shroud over part", "another");
+    refused2("duct.inlet.recovery=0.8", "duct.fans=[" PART_FAN("0", "0.5") ", " PART_FAN("0", "0") "]",
+             "duct.fans[1].span_from", "a shroud over part", "another");
     refused("duct.diffuser={\"kind\": \"one plane\", \"length\": \"0.3 m\"}", "duct.diffuser.height",
             "nothing", "a length");
     refused("duct.diffuser={\"loss\": 0.3, \"jet_share\": 0.4}", "duct.diffuser.jet_share", "0.4", "kind");

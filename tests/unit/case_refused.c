@@ -300,7 +300,11 @@ static void steps_that_will_not_do(void **state)
                 "drive[1].columns.speed.unit", "kW", "speed");
     set_refused("drive[1].columns={\"speed\": {\"unit\": \"km/h\"}}", "drive[1].columns.speed", "no name",
                 NULL);
-    set_refused("limits={}", "limits", "no limit", "at least one");
+    set_refused("limits={}", "limits", "no limit", "coolant, gauge, metal, boil_margin");
+    struct result r = parse_set(DRIVE_CASE, SP_FOR_DRIVE,
+                                (char *const[]){(char[]){"limits={}"}, (char[]){"oil={}"}, (char[]){"gearbox={}"}}, 3);
+    assert_true(has(&r.complaints, NULL, 0, "limits", "no limit", "boil_margin, oil, gearbox"));
+    drop(&r);
 }
 
 int main(void)

@@ -122,7 +122,7 @@ class Network:
         return t + e * (wall - t), abs(m) * self.cp * e
 
     def _lane(self, lane, m, t, flows):
-        """Loss with its sign, temperature behind, and what each core gave: (core, R, T in)."""
+        """Loss with its sign, temperature behind, and what each core gave: (core, R, T in, flow)."""
         order = range(len(lane.cores)) if m >= 0 else range(len(lane.cores) - 1, -1, -1)
         loss, gave, ahead = 0.0, [], None
         for k in order:
@@ -136,7 +136,7 @@ class Network:
             if taken > 0:
                 a, b = self.standing[core].drops(taken, t, rho, out, self.p / (self.gas * out))
                 loss += (a + b) * flux / taken
-            gave.append((core, r, t))
+            gave.append((core, r, t, m))
             t, ahead = out, area
         return math.copysign(loss, m), t, gave
 
@@ -353,6 +353,13 @@ class Network:
                 return found.x
         raise RuntimeError("no balance of the air found")
 
+    def _face(self, gave):
+        """Mean velocity at the front of the first core that carries coolant, else of the first."""
+        cores = self.duct["cores"]
+        first = next((i for i, c in enumerate(cores) if c.get("carries", "coolant") == "coolant"), 0)
+        volume = sum(m * t * self.gas / self.p for core, _, t, m in gave if core == first)
+        return volume / (cores[first]["width"] * cores[first]["height"])
+
     def _told(self, x, heat):
         self._residual(x)
         g, n = self.got, self.duct["count"]
@@ -369,11 +376,11 @@ class Network:
                 drag += (1 - self.duct["inlet"]["lip_suction"]) * self.q * g["open"] * (1 - v1 / self.v) ** 2
         drag += math.copysign(self.q, self.v) * self.duct.get("interference", 0.0) / n if self.v else 0.0
         warm, weighted = {}, {}
-        for core, r, t_in in g["gave"]:
+        for core, r, t_in, _ in g["gave"]:
             warm[core] = warm.get(core, 0.0) + r
             weighted[core] = weighted.get(core, 0.0) + r * t_in
         before = {}  # a load's air comes in at one temperature in the cases made here
-        for core, _, at in g["gave"]:
+        for core, _, at, _ in g["gave"]:
             before.setdefault(core, at)
         t_in = {c: weighted[c] / warm[c] if warm[c] > 0 else self.t_air for c in warm}
         m = sum(f for f, _, _ in g["lanes"])
@@ -386,4 +393,4 @@ class Network:
         loads = {c: flows[c] * self.cp * rise(q, flows[c] * self.cp, self.most - (before[c] - self.t_air))
                  for c, q in self.loads.items()} if self.loads and not heat else {}
         return {"m": m, "loads": loads, "drag": drag, "warm": warm, "t_in": t_in, "t": t, "t3": t3, "m1": g["m1"],
-                "exits": g["exits"], "face": m / (g["rho"][F] * self.face)}
+                "exits": g["exits"], "face": self._face(g["gave"])}

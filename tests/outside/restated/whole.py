@@ -351,7 +351,7 @@ class WholePlant(Plant):
             skin = self.skin(o["skin"], ch) * (t - ch[AMBIENT])
             through = flow * (oil_enthalpy(t) - h_in) if cores else 0.0
             d[at] = (ch[channel] - block - plate - skin - through) \
-                / (o["volume"] * oil_density(293.15) * oil_capacity(t))
+                / (o["volume"] * oil_density(293.15) * oil_capacity(t) + o["metal_capacity"])
             to_metal, to_coolant = to_metal + block, to_coolant + plate
             taken, lost = taken + ch[channel], lost + skin
         return to_metal, to_coolant, taken, lost

@@ -96,6 +96,7 @@ def _fitted(car):
             continue
         oil = _fill(car[name], volume=volume, flow=flow, flow_speed=4000 / 60, plate=0.0, opens=None, still=0.1,
                     block=75.0 if name == "oil" else 0.0)
+        _fill(oil, metal_capacity=7e6 * oil["volume"])
         _fill(oil, flow_most=oil["flow"], full=(oil["opens"] or 0) + 10)
         if name == "gearbox":
             _fill(oil, heat_share=0.025)
