@@ -74,4 +74,12 @@ sed 's/"mass": "800 kg", //' case.json >light.json
 want 2 hold light.json --speed "60 km/h"
 says err "road load"
 want 0 hold light.json --speed "60 km/h" --power "10 kW"
+
+# Ducts by their number, and how many are equal.
+part='"inlet": {"area": "300 cm2"}, "core": {"width": "300 mm", "height": "300 mm", "depth": "42 mm",
+    "fins": {"pitch": "1.9 mm", "louvre_pitch": "1.4 mm", "louvre_angle": "23 deg"},
+    "tubes": {"pitch": "10 mm", "height": "2 mm", "rows": 2}}, "exit": {"area": "500 cm2"}'
+"$command" hold case.json --speed "110 km/h" --power "20 kW" --set "ducts=[{$part, \"count\": 2}, {$part}]" >out 2>err
+grep -q "^Duct 1, one of 2 equal ones$" out || fail "no two equal ducts"
+grep -q "^Duct 2$" out || fail "the second duct is one alone: $(grep Duct out)"
 finish
