@@ -39,6 +39,7 @@ tally_script cppcheck sh tests/lint.sh cppcheck "$out/release"
 if [ -x "$out/release/tests/test_invariants" ]; then
     say "Invariants over $drives random drives"
     SP_DRIVES=$drives TALLY_TIMEOUT=20000 tally_cmocka "invariants, $drives drives" "$out/release/tests/test_invariants"
+    SP_DRIVES=$drives TALLY_TIMEOUT=20000 tally_cmocka "whole cars, $drives drives" "$out/release/tests/test_whole_car"
 fi
 
 say "Planted faults: each must turn an outside test red"
@@ -56,7 +57,7 @@ memcheck "a bad value" 2 run docs/examples/harrowmoor.json --set duct.exit.area=
 memcheck "no such case" 2 run docs/examples/none.json
 memcheck "no such trace" 2 run docs/examples/harrowmoor.json --set 'drive[1].trace=none.csv'
 for program in "$out"/release/tests/test_*; do
-    case $program in */test_number | */test_invariants | */test_logs) continue ;; esac # hours under valgrind
+    case $program in */test_number | */test_invariants | */test_whole_car | */test_logs) continue ;; esac # hours under valgrind
     tally_status "valgrind $(basename "$program")" 0 valgrind -q --error-exitcode=99 --leak-check=full \
         --errors-for-leak-kinds=definite --suppressions=tests/valgrind.supp "$program"
 done

@@ -205,8 +205,10 @@ static inline void draw_duct(gsl_rng *g, struct drawn *x)
     d->diffuser.loss = gsl_rng_uniform(g);
     d->diffuser.length = between(g, 0.05, 0.8);
     d->diffuser.core_damping = chance(g, 0.5);
-    d->exit[0] = (struct sp_exit){.area = face * spread(g, 0.1, 1.5), .loss = between(g, 0.0, 2.0),
-                                  .pressure_coefficient = between(g, -0.6, 0.5), .angle = between(g, 0.0, 1.6)};
+    d->exit[0] = (struct sp_exit){.area = face * spread(g, 0.1, 1.5),
+                                  .loss = between(g, 0.0, 2.0),
+                                  .pressure_coefficient = between(g, -0.6, 0.5),
+                                  .angle = between(g, 0.0, 1.6)};
     draw_fan(g, x);
 }
 

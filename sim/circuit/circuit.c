@@ -10,6 +10,7 @@
 #include "part/oil.h"
 
 static const double quickest_gauge = 0.05; /* s: a lag of nil would be no ODE */
+static const double trickle = 1e-4;          /* kg/s of the pump, that counts as hardly any */
 static const double coolest_boiling = 350.0; /* K: no coolant boils below it in a car's range of pressures */
 /* m3/s of liquid out of a tank that boils over: two litres in ten seconds, common practice. */
 static const double boil_over_flow = 2e-4;
@@ -42,16 +43,23 @@ double sp_circuit_heater(const struct sp_circuit *c, const struct sp_inputs *in,
     return heat;
 }
 
-double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const struct sp_coupling *k)
+double sp_circuit_pump_inlet(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                             const struct sp_coupling *k)
 {
     if (!(k->mass_pump > 0.0)) return y[SP_Y_JACKET];
-    return (k->mass_radiator * returning(c, y) + (k->mass_bypass + k->mass_heater) * y[SP_Y_JACKET] +
+    double heater = y[SP_Y_JACKET];
+    if (k->mass_heater > 0.0) sp_circuit_heater(c, in, y, k, &heater);
+    return (k->mass_radiator * returning(c, y) + k->mass_bypass * y[SP_Y_JACKET] + k->mass_heater * heater +
             k->mass_bleed * y[SP_Y_TANK]) / k->mass_pump;
 }
 
-double sp_circuit_wax_sees(const struct sp_circuit *c, const double *y, const struct sp_coupling *k)
+/* As the flow dies the mix is one of vanishing streams: the wax then sees the jacket, as it does when nothing flows. */
+double sp_circuit_wax_sees(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                           const struct sp_coupling *k)
 {
-    return c->design->thermostat.inlet_side ? sp_circuit_pump_inlet(c, y, k) : y[SP_Y_JACKET];
+    if (!c->design->thermostat.inlet_side) return y[SP_Y_JACKET];
+    double flow = k->mass_pump * k->mass_pump, share = flow / (flow + trickle * trickle);
+    return y[SP_Y_JACKET] + share * (sp_circuit_pump_inlet(c, in, y, k) - y[SP_Y_JACKET]);
 }
 
 double sp_circuit_intake(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_coupling *k)
@@ -161,13 +169,23 @@ struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp
     }
     liquid += c->mass_out / sp_coolant_density(f, sp_circuit_mean(y + l->out, SP_HOSE_CELLS));
     liquid += c->mass_back / sp_coolant_density(f, sp_circuit_mean(y + l->back, SP_HOSE_CELLS));
-    *inputs = (struct sp_tank_inputs){.air = y[SP_Y_AIR], .liquid = liquid - y[SP_Y_LOST] - c->design->tank.lost,
+    *inputs = (struct sp_tank_inputs){.air = y[SP_Y_AIR], .liquid = liquid - sp_circuit_missing(c, y),
                                       .system = c->system_volume, .temperature = y[SP_Y_TANK],
                                       .ambient = in->in[SP_IN_PRESSURE],
                                       .vapour = sp_coolant_vapour_pressure(f, y[SP_Y_TANK])};
     struct sp_tank_state s = sp_tank_state(&c->design->tank, inputs);
     s.pressure = fmin(s.pressure, sp_tank_most(&c->design->tank, inputs->ambient));
     return s;
+}
+
+double sp_circuit_missing(const struct sp_circuit *c, const double *y)
+{
+    return y[SP_Y_LOST] + c->design->tank.lost;
+}
+
+double sp_circuit_in_tank(const struct sp_circuit *c, const double *y)
+{
+    return c->mass_tank / sp_coolant_density(&c->design->coolant.fluid, y[SP_Y_TANK]);
 }
 
 /* Liquid [m3/s] that bulk boiling at the jacket's outlet drives out of the tank: steam takes its place, once its
@@ -186,8 +204,7 @@ static void tank_rates(const struct sp_circuit *c, const struct sp_inputs *in, c
 {
     struct sp_tank_inputs inputs;
     struct sp_tank_state s = sp_circuit_tank(c, in, y, &inputs);
-    double held = c->mass_tank / sp_coolant_density(&c->design->coolant.fluid, y[SP_Y_TANK]) - y[SP_Y_LOST] -
-                  c->design->tank.lost;
+    double held = sp_circuit_in_tank(c, y) - sp_circuit_missing(c, y);
     struct sp_tank_vent vent = sp_tank_vent(&c->design->tank, &inputs, &s, held);
     dydt[SP_Y_AIR] = -vent.air;
     dydt[SP_Y_LOST] = vent.liquid + boil_over(c, y, k, in->in[SP_IN_PRESSURE] + c->design->tank.cap, held);
@@ -294,12 +311,12 @@ static double others(const struct sp_circuit *c, const struct sp_coupling *k, en
 struct oil_heat { double to_metal, to_coolant, to_air, to_cooler; };
 
 /* Plate cooler [W]: counterflow of the oil at T and what enters the pump; no more than either stream can carry. */
-static double plate_heat(const struct sp_circuit *c, const struct sp_oil *o, double speed, double T,
-                         const struct sp_coupling *k, const double *y)
+static double plate_heat(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_oil *o, double speed,
+                         double T, const struct sp_coupling *k, const double *y)
 {
     double conductance = sp_oil_plate(o, speed);
     if (!(conductance > 0.0 && k->mass_pump > 0.0)) return 0.0;
-    double inlet = sp_circuit_pump_inlet(c, y, k);
+    double inlet = sp_circuit_pump_inlet(c, in, y, k);
     double coolant = k->mass_pump * sp_coolant_cp(&c->design->coolant.fluid, inlet);
     double oil = sp_oil_flow(o, speed) * sp_oil_density(T) * sp_oil_cp(T);
     double least = fmin(coolant, oil), ratio = least / fmax(coolant, oil);
@@ -316,7 +333,7 @@ static struct oil_heat oil_rates(const struct sp_circuit *c, const struct sp_inp
     double T = y[at], mass = engine ? c->mass_oil : c->mass_gearbox;
     double speed = in->flags & SP_FLAG_ENGINE ? in->in[SP_IN_ENGINE_SPEED] : 0.0;
     q.to_metal = o->block * (T - y[SP_Y_METAL]);
-    q.to_coolant = plate_heat(c, o, speed, T, k, y);
+    q.to_coolant = plate_heat(c, in, o, speed, T, k, y);
     q.to_air = skin(in, o->skin_standing, o->skin_moving) * (T - in->in[SP_IN_AMBIENT]);
     q.to_cooler = others(c, k, engine ? SP_CARRIES_OIL : SP_CARRIES_GEARBOX, T, y, dydt);
     double heat = in->in[engine ? SP_IN_OIL_HEAT : SP_IN_GEARBOX_HEAT];
@@ -351,7 +368,7 @@ static void follow(const struct sp_circuit *c, const struct sp_inputs *in, const
                    const double *y, const struct sp_coupling *k, double *dydt)
 {
     const struct sp_design *d = c->design;
-    dydt[SP_Y_WAX] = (sp_circuit_wax_sees(c, y, k) - y[SP_Y_WAX]) *
+    dydt[SP_Y_WAX] = (sp_circuit_wax_sees(c, in, y, k) - y[SP_Y_WAX]) *
                      sp_thermostat_rate(&d->thermostat, k->loop.pump, c->reference_flow);
     dydt[SP_Y_FAN] = 0.0;
     for (int f = 0; f < c->fans; ++f) {

@@ -155,10 +155,12 @@ double sp_circuit_pump_power(const struct sp_circuit *c, const struct sp_inputs 
 double sp_circuit_place(const struct sp_circuit *c, enum sp_place_of place, const double *y);
 
 /* Temperature [K] of what enters the pump: the mix of radiator, bypass and tank; the jacket's when it stands. */
-double sp_circuit_pump_inlet(const struct sp_circuit *c, const double *y, const struct sp_coupling *k);
+double sp_circuit_pump_inlet(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                             const struct sp_coupling *k);
 
 /* Temperature [K] that the thermostat's wax follows: the jacket's outlet, or the mix entering the pump. */
-double sp_circuit_wax_sees(const struct sp_circuit *c, const double *y, const struct sp_coupling *k);
+double sp_circuit_wax_sees(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                           const struct sp_coupling *k);
 
 /* Temperature [K] of the charge air as it leaves the compressor, and its coolers, the ambient's with the
  * engine off; NAN without charge air. Without a cooler the bay's share in what is breathed is left out of the latter. */
@@ -183,6 +185,10 @@ double sp_circuit_skin(const struct sp_circuit *c, const struct sp_inputs *in, d
 struct sp_tank_state sp_circuit_tank(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
                                      struct sp_tank_inputs *inputs);
 
+/* Coolant [m3] that has gone or was never filled in, and what the tank holds when none is missing. */
+double sp_circuit_missing(const struct sp_circuit *c, const double *y);
+double sp_circuit_in_tank(const struct sp_circuit *c, const double *y);
+
 /* Heat [W] that the engine gives its metal, the alternator's load by fans and electric pump included. */
 double sp_circuit_engine_heat(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
                               const double *y);
@@ -201,8 +207,8 @@ enum sp_status sp_circuit_jacobian(const struct sp_circuit *c, const struct sp_i
 double sp_circuit_heat_held(const struct sp_circuit *c, const double *y);
 
 /* Least distance to boiling [K] over the jacket outlet (at its pressure) and the pump inlet. */
-double sp_circuit_boil_margin(const struct sp_circuit *c, const double *y, const struct sp_coupling *k,
-                              double tank_pressure);
+double sp_circuit_boil_margin(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                              const struct sp_coupling *k, double tank_pressure);
 
 /* State at the start: temperatures from `start`, tank filled cold and brought to temperature, vented through
  * the cap where it would have been. */

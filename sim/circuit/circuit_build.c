@@ -153,9 +153,10 @@ static double boiling(const struct sp_coolant *f, double pressure)
     return sp_coolant_boiling(f, fmin(fmax(pressure, 1.0e3), 4.99e6));
 }
 
-double sp_circuit_boil_margin(const struct sp_circuit *c, const double *y, const struct sp_coupling *k, double tank)
+double sp_circuit_boil_margin(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                              const struct sp_coupling *k, double tank)
 {
     const struct sp_coolant *f = &c->design->coolant.fluid;
     double outlet = boiling(f, tank + k->loop.rise - k->loop.jacket_drop) - y[SP_Y_JACKET];
-    return fmin(outlet, boiling(f, tank) - sp_circuit_pump_inlet(c, y, k));
+    return fmin(outlet, boiling(f, tank) - sp_circuit_pump_inlet(c, in, y, k));
 }

@@ -48,7 +48,7 @@ struct sp_duct_inputs sp_circuit_duct_inputs(const struct sp_circuit *c, const s
     for (int i = 0; i < SP_FANS; ++i)
         if (run->fan[i] >= 0) air.fan_speed[i] = s->fan[run->fan[i]];
     if (run->design->bay_skin > 0.0)
-        air.bay_heat = run->design->bay_skin * sp_circuit_skin(c, in, s->metal) / run->copies;
+        air.bay_heat = run->design->bay_skin * sp_circuit_skin(c, in, s->metal) / fmax(run->design->count, 1.0);
     return air;
 }
 

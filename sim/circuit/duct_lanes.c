@@ -54,11 +54,14 @@ double sp_shroud_face(const struct sp_duct *d, int fan)
 {
     double sum = 0.0;
     bool first = d->design.fan[fan].before_core;
+    double own = d->design.fan[fan].count, all = 0.0;
+    for (int f = 0; f < d->fans; ++f)
+        if (d->design.fan[f].fitted && d->shroud[f] == d->shroud[fan]) all += d->design.fan[f].count;
     for (int i = 0; i < d->lanes; ++i) {
         const struct sp_lane *l = &d->lane[i];
         if ((first ? l->from : l->to) == d->shroud[fan]) sum += sp_lane_face(d, l, first ? 0 : l->cores - 1);
     }
-    return sum;
+    return all > own ? sum * own / all : sum;
 }
 
 /* ---- shrouds --------------------------------------------------------------------------------------- */

@@ -123,11 +123,25 @@ static void core_path(const struct sp_circuit *c, const struct sp_duct_run *run,
     else snprintf(out, size, "%s.core.heat", at);
 }
 
+/* Is this run the next of equal ducts in series? */
+static bool again(const struct sp_circuit *c, int run)
+{
+    return run > 0 && c->run[run].duct == c->run[run - 1].duct;
+}
+
 /* A string goes on with cores fed by the one before, and with the next of equal ducts in series. */
 static bool goes_on(const struct sp_circuit *c, int run, const struct sp_core *core, int strings)
 {
-    bool again = run > 0 && c->run[run].duct == c->run[run - 1].duct;
-    return strings > 0 && (core->in_series || again);
+    return strings > 0 && (core->in_series || again(c, run));
+}
+
+/* Strings that begin in a run. */
+static int strings_of(const struct sp_circuit *c, int run)
+{
+    int n = 0;
+    for (int e = 0; e < c->exchangers; ++e)
+        n += c->exchanger[e].run == run && c->exchanger[e].string >= 0 && c->exchanger[e].first;
+    return n;
 }
 
 static void plan_core(struct planning *p, int run, int slot, int *strings)
@@ -147,6 +161,9 @@ static void plan_core(struct planning *p, int run, int slot, int *strings)
     bool before = c->exchangers > 0 && x[-1].carries == core->carries;
     x->first = !before;
     if (core->carries == SP_CARRIES_COOLANT) {
+        if (again(c, run) && strings_of(c, run - 1) > 1)
+            refuse(p, path, "cores side by side on the coolant, in equal ducts one after the other",
+                   "coolant \"parallel\", or cores fed by the one before");
         x->first = !goes_on(c, run, core, *strings);
         if (x->first) ++*strings;
         x->string = *strings - 1;

@@ -7,6 +7,9 @@
 #include <stdlib.h>
 #include <string.h>
 
+/* Restarts of the integrator in a drive, and for each second of it, beyond which something switches to and fro without
+ * end: a drive that would crawl on for hours is a failure of the numerics. */
+static const double restless = 10000.0, restless_rate = 100.0;
 static const double shortest = 1e-9;                   /* s: rows closer than this are one instant */
 static const double coldest = 150.0, hottest = 5000.0; /* K: outside no trial value is worth a solve */
 
@@ -83,6 +86,7 @@ static enum sp_status run_segment(struct sp_run *r)
         r->ended = r->hook && r->hook->step(r->hook->context, r, from);
         if (r->ended) return SP_OK;
         if (how == SP_ADV_CROSSED && sp_run_take_crossings(r, sign) && !restart(r)) return SP_NUMERICS;
+        if ((double)r->result->work.restarts > restless + restless_rate * r->time) return SP_NUMERICS;
     }
     return SP_OK;
 }

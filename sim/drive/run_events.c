@@ -5,6 +5,8 @@
 
 #include "drive/run.h"
 
+static const double instant = 1e-6; /* s: a turn of the pulse clock so near is now */
+
 void sp_run_list(struct sp_run *r)
 {
     const struct sp_drive *d = r->drive;
@@ -95,8 +97,8 @@ static bool lift_at_stake(const struct sp_run *r)
 {
     const struct sp_thermostat *t = &r->circuit->design->thermostat;
     double wax = sp_integrator_state(r->integrator)[SP_Y_WAX];
-    if (t->mapped_power > 0.0) return true; /* where its lift can move goes with power */
-    return wax + t->hysteresis > t->opens && wax < t->full;
+    double shift = t->mapped_power > 0.0 ? t->mapped_shift : 0.0; /* at most, with power */
+    return wax + t->hysteresis + shift > t->opens && wax < t->full;
 }
 
 /* Where it boils, of the two places that are looked at. */
@@ -109,7 +111,7 @@ static const char *boils_at(struct sp_run *r)
     sp_schedule_at(r->schedule, r->segment, r->time, &in);
     sp_circuit_signals(r->circuit, &in, y, &s);
     if (sp_circuit_split(r->circuit, &in, &r->modes, &s, &r->looking.loop, &k)) return "jacket";
-    return sp_watch_boils_at_pump(r->circuit, y, &k, &r->seen) ? "pump inlet" : "jacket";
+    return sp_watch_boils_at_pump(r->circuit, &in, y, &k, &r->seen) ? "pump inlet" : "jacket";
 }
 
 static void keep_spell(struct sp_run *r, int w, bool up, const char *place)
@@ -138,8 +140,10 @@ static void tell(struct sp_run *r, int w, bool up)
 static bool turn_pulse(struct sp_run *r, int w)
 {
     const struct sp_pump *p = &r->circuit->design->pump;
-    r->modes.pulse_off = !r->modes.pulse_off;
-    r->modes.pulse_until = r->time + fmax(r->modes.pulse_off ? p->pulse_off : p->pulse_on, 0.1);
+    double on = fmax(p->pulse_on, 0.1), period = on + fmax(p->pulse_off, 0.1);
+    double turn = floor((r->time + instant) / period) * period; /* the clock runs from the start of the drive */
+    r->modes.pulse_off = r->time + instant >= turn + on;
+    r->modes.pulse_until = turn + (r->modes.pulse_off ? period : on);
     r->high[w] = false;
     return true;
 }

@@ -10,7 +10,8 @@ enum sp_status sp_run_couple(struct sp_run *r, const struct sp_inputs *in, const
     return sp_circuit_couple(r->circuit, in, &r->modes, &s, &r->looking, k);
 }
 
-static void temperatures(const struct sp_run *r, const double *y, const struct sp_coupling *k, double *v)
+static void temperatures(const struct sp_run *r, const struct sp_inputs *in, const double *y,
+                         const struct sp_coupling *k, double *v)
 {
     const struct sp_layout *l = &r->circuit->layout;
     v[SP_CH_ENGINE_OUT] = y[SP_Y_JACKET];
@@ -20,7 +21,7 @@ static void temperatures(const struct sp_run *r, const double *y, const struct s
     v[SP_CH_TANK] = y[SP_Y_TANK];
     v[SP_CH_WAX] = y[SP_Y_WAX];
     v[SP_CH_GAUGE] = y[SP_Y_GAUGE] + r->drive->design->gauge.offset;
-    v[SP_CH_PUMP_IN] = sp_circuit_pump_inlet(r->circuit, y, k);
+    v[SP_CH_PUMP_IN] = sp_circuit_pump_inlet(r->circuit, in, y, k);
 }
 
 static void flows(const struct sp_run *r, const struct sp_inputs *in, const double *y, const struct sp_coupling *k,
@@ -60,7 +61,7 @@ enum sp_status sp_run_sample(struct sp_run *r, size_t k, double t, const double 
     v[SP_CH_ENGINE_SPEED] = in.in[SP_IN_ENGINE_SPEED];
     v[SP_CH_AMBIENT] = in.in[SP_IN_AMBIENT];
     v[SP_CH_MEASURED] = in.in[SP_IN_MEASURED];
-    temperatures(r, y, &coupling, v);
+    temperatures(r, &in, y, &coupling, v);
     flows(r, &in, y, &coupling, v);
     v[SP_CH_TANK_PRESSURE] = seen.tank_pressure;
     v[SP_CH_BOIL_MARGIN] = seen.boil_margin;

@@ -14,6 +14,8 @@ static const double lost_least = 1e-6;
 
 static const double watts_a_kelvin = 1e3; /* makes a load and a temperature comparable; where it crosses nil is the same */
 
+static const double nearly_all = 0.95; /* of the tank's liquid gone: empty; what is left only drips away */
+
 const struct sp_watch_events sp_watch_event[SP_WATCH_KINDS] = {
     [SP_W_FAN] = {SP_EVENT_KINDS, SP_EVENT_KINDS},
     [SP_W_PLAY] = {SP_EVENT_KINDS, SP_EVENT_KINDS},
@@ -31,6 +33,7 @@ const struct sp_watch_events sp_watch_event[SP_WATCH_KINDS] = {
     [SP_W_COLD_COOLANT] = {SP_EV_COLD_COOLANT, SP_EV_COLD_COOLANT_ENDS},
     [SP_W_COLD_OIL] = {SP_EV_COLD_OIL, SP_EV_COLD_OIL_ENDS},
     [SP_W_LOCAL] = {SP_EV_LOCAL, SP_EV_LOCAL_ENDS},
+    [SP_W_EMPTY] = {SP_EV_EMPTY, SP_EV_EMPTY_BACK},
     [SP_W_CAN] = {SP_EV_CAN, SP_EV_CAN_BACK},
     [SP_W_CAVITATES] = {SP_EV_CAVITATES, SP_EV_CAVITATION_ENDS},
     [SP_W_CURRENT] = {SP_EV_CURRENT, SP_EV_CURRENT_BACK},
@@ -49,7 +52,7 @@ static double fan_watch(const struct sp_circuit *c, const struct sp_modes *m, co
     return f->law == SP_FAN_PROPORTIONAL ? T - f->from : 1.0;
 }
 
-static void play_watch(const struct sp_circuit *c, const struct sp_modes *m, const double *y,
+static void play_watch(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *m, const double *y,
                        const struct sp_coupling *k, double g[])
 {
     const struct sp_thermostat *t = &c->design->thermostat;
@@ -60,7 +63,7 @@ static void play_watch(const struct sp_circuit *c, const struct sp_modes *m, con
         g[SP_W_PLAY] = wax - m->held - slack;
         g[SP_W_PLAY_SHUT] = wax - m->held + t->hysteresis + slack;
     } else {
-        g[SP_W_PLAY] = sp_circuit_wax_sees(c, y, k) - wax; /* its sign is the wax's direction */
+        g[SP_W_PLAY] = sp_circuit_wax_sees(c, in, y, k) - wax; /* its sign is the wax's direction */
     }
 }
 
@@ -138,7 +141,8 @@ static double further(const struct sp_watch_one *w, const struct sp_circuit *c, 
         return sp_fan_current(f, y[c->layout.fan[w->index]], sp_circuit_volts(c, in)) - f->current_limit;
     }
     case SP_W_FLAT: return y[c->layout.battery] - d->electrics.battery * d->electrics.voltage_stopped;
-    default: return t - modes->pulse_until;
+    default: /* the pulses of a pump, where it may run and is cool enough to pulse */
+        return in->flags & SP_FLAG_PUMP && y[SP_Y_JACKET] < d->pump.target ? t - modes->pulse_until : -1.0;
     }
 }
 
@@ -149,7 +153,7 @@ void sp_watch(const struct sp_watch_list *list, const struct sp_circuit *c, cons
     const struct sp_design *d = c->design;
     double *g = out->g;
     g[SP_W_FAN] = fan_watch(c, modes, y, 0);
-    play_watch(c, modes, y, k, g);
+    play_watch(c, in, modes, y, k, g);
     lift_watch(c, in, modes, y, g);
     struct sp_tank_inputs tank;
     out->tank_pressure = sp_circuit_tank(c, in, y, &tank).pressure;
@@ -157,10 +161,11 @@ void sp_watch(const struct sp_watch_list *list, const struct sp_circuit *c, cons
     g[SP_W_COOLANT] = over(y[SP_Y_JACKET], d->limits.coolant.stop);
     g[SP_W_GAUGE] = over(y[SP_Y_GAUGE] + d->gauge.offset, d->limits.gauge.stop);
     g[SP_W_METAL] = over(y[SP_Y_METAL], d->limits.metal.stop);
-    out->boil_margin = sp_circuit_boil_margin(c, y, k, out->tank_pressure);
+    out->boil_margin = sp_circuit_boil_margin(c, in, y, k, out->tank_pressure);
     g[SP_W_MARGIN] = isfinite(d->limits.boil_margin) ? d->limits.boil_margin - out->boil_margin : -1.0;
     g[SP_W_BOIL] = -out->boil_margin;
     g[SP_W_LOST] = y[SP_Y_LOST] - lost_least;
+    g[SP_W_EMPTY] = sp_circuit_missing(c, y) - nearly_all * sp_circuit_in_tank(c, y);
     out->local_margin = list->local && d->engine.wetted_area > 0.0 ? local_margin(c, y, k, out->tank_pressure) : NAN;
     out->head_left = k->loop.head_factor;
     for (int w = SP_WATCHES; w < list->count; ++w) g[w] = further(&list->of[w], c, in, modes, t, y, k, out);

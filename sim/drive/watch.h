@@ -15,6 +15,7 @@ enum sp_watch {
     SP_W_PLAY_SHUT,  /* the wax meets the shutting side of the play */
     SP_W_OPENS, SP_W_FULL, SP_W_CAP, SP_W_COOLANT, SP_W_GAUGE, SP_W_METAL, SP_W_MARGIN, SP_W_BOIL,
     SP_W_LOST,       /* liquid gone through the cap */
+    SP_W_EMPTY,      /* hardly any left in the tank */
     SP_WATCHES,
     SP_W_TIER = SP_WATCHES, /* index: sp_limited; tier */
     SP_W_COLD_COOLANT, SP_W_COLD_OIL, /* loaded before it is warm */
@@ -69,8 +70,8 @@ struct sp_watch_info sp_watch_info(const struct sp_circuit *c, const struct sp_w
 double sp_watch_excess(const struct sp_circuit *c, const struct sp_watch_one *w, const double *y, double g);
 
 /* Whether the boil margin is that of the pump's inlet, not of the jacket. */
-bool sp_watch_boils_at_pump(const struct sp_circuit *c, const double *y, const struct sp_coupling *k,
-                            const struct sp_watched *seen);
+bool sp_watch_boils_at_pump(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                            const struct sp_coupling *k, const struct sp_watched *seen);
 
 /* "duct 2, fan 1" of a kind of fan. */
 const char *sp_watch_fan_place(const struct sp_circuit *c, int kind);

@@ -131,6 +131,10 @@ struct sp_watch_info sp_watch_info(const struct sp_circuit *c, const struct sp_w
         i = (struct sp_watch_info){
             i.events, SP_SEVERITY_ALARM, "tank", "l", 1e-3, d->tank.volume - d->tank.air_space};
         break;
+    case SP_W_EMPTY:
+        i = (struct sp_watch_info){
+            i.events, SP_SEVERITY_ALARM, "tank", "l", 1e-3, d->tank.volume - d->tank.air_space};
+        break;
     case SP_W_CAN:
         i = (struct sp_watch_info){i.events, SP_SEVERITY_ALARM, "catch can", "l", 1e-3, d->tank.catch_can};
         break;
@@ -164,10 +168,10 @@ double sp_watch_excess(const struct sp_circuit *c, const struct sp_watch_one *w,
     return w->kind == SP_W_LOST ? y[SP_Y_LOST] : g;
 }
 
-bool sp_watch_boils_at_pump(const struct sp_circuit *c, const double *y, const struct sp_coupling *k,
-                            const struct sp_watched *seen)
+bool sp_watch_boils_at_pump(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
+                            const struct sp_coupling *k, const struct sp_watched *seen)
 {
     double pressure = fmin(fmax(seen->tank_pressure, 1.0e3), 4.99e6); /* of the vapour curve */
-    double margin = sp_coolant_boiling(&c->design->coolant.fluid, pressure) - sp_circuit_pump_inlet(c, y, k);
+    double margin = sp_coolant_boiling(&c->design->coolant.fluid, pressure) - sp_circuit_pump_inlet(c, in, y, k);
     return margin <= seen->boil_margin + 1e-9;
 }

@@ -39,7 +39,8 @@ static void check_thermostat(struct sp_reader *r)
     const struct fault list[] = {
         {t->restrictor > 0.0 && t->restrictor >= r->design->hoses.bore_out, "car.thermostat.restrictor", NULL,
          "a bore below that of the hose to the radiator, hoses.out.bore"},
-        {!(t->mapped_power > 0.0) && sp_case_given(r, "car.thermostat.mapped"), "car.thermostat.mapped.power",
+        {!(t->mapped_power > 0.0) && sp_case_given(r, "car.thermostat.mapped") &&
+             !sp_case_given(r, "car.thermostat.mapped.power"), "car.thermostat.mapped.power",
          found(r, "car.thermostat.mapped.power", "nothing"), "a power above 0, for a mapped thermostat"},
     };
     say(r, list, sizeof list / sizeof *list);

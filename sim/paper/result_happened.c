@@ -42,6 +42,7 @@ static const struct span span[] = {
     {SP_EV_ENGINE_STARTS, SP_EV_ENGINE_STOPS, "engine runs", 5, false},
     {SP_EV_THERMOSTAT_OPENS, SP_EV_THERMOSTAT_SHUT, "thermostat is open", 6, false},
     {SP_EV_LOST, SP_EVENT_KINDS, "coolant is lost through the cap", 1, false},
+    {SP_EV_EMPTY, SP_EV_EMPTY_BACK, "tank is empty", 1, false},
     {SP_EV_CAN, SP_EV_CAN_BACK, "catch can is overfilled", 1, false},
     {SP_EV_CAVITATES, SP_EV_CAVITATION_ENDS, "pump cavitates", 1, false},
     {SP_EV_CURRENT, SP_EV_CURRENT_BACK, "a fan is over its current", 1, true},

@@ -192,14 +192,14 @@ static void say_speed(const struct sp_result *r, double seconds)
            (double)r->work.jacobians / minutes, (double)r->work.restarts / minutes);
 }
 
-static void say_shares(const struct sp_drive *drive)
+static void say_shares(const struct sp_drive *drive, double seconds)
 {
-    enum { TIMES = 50 };
+    const int times = seconds < 0.03 ? 50 : (int)fmax(1.5 / seconds, 2.0);
     watched.on = true;
     memset(watched.seconds, 0, sizeof watched.seconds);
     memset(watched.calls, 0, sizeof watched.calls);
     double began = now();
-    for (int i = 0; i < TIMES; ++i) {
+    for (int i = 0; i < times; ++i) {
         struct sp_result r = run(drive, 0.0, NULL);
         sp_result_free(&r);
     }
@@ -263,8 +263,9 @@ static void bench(struct sp_units *u, const char *file)
     if (!drive) give_up("the case cannot be read", &c);
     printf("%s\n  read and built in             %.2f ms\n", file, 1e3 * (now() - began));
     struct sp_result r = run(drive, 0.0, NULL);
-    say_speed(&r, pace(drive));
-    say_shares(drive);
+    double seconds = pace(drive);
+    say_speed(&r, seconds);
+    say_shares(drive, seconds);
     say_allocations(drive, r.duration);
     say_deviation(drive, d->solver.tolerance, r.duration);
     sp_result_free(&r);

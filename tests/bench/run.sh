@@ -14,7 +14,8 @@ trap 'rm -rf "$work"' EXIT
 
 sed -n 's/^model name[^:]*: /machine: /p' /proc/cpuinfo 2>/dev/null | head -n 1
 "$build/swirlpot" --version
-"$build/tests/bench_drive" "$root/docs/examples/harrowmoor.json" "$root/docs/examples/nedc.json" >"$work/drive" || exit 1
+"$build/tests/bench_drive" "$root/docs/examples/harrowmoor.json" "$root/docs/examples/nedc.json" \
+    "$root/docs/examples/stonemere-race.json" >"$work/drive" || exit 1
 cat "$work/drive"
 
 # The restatement in SciPy at about the same accuracy, on the same drive.

@@ -188,6 +188,23 @@ static void stonemere_is_three_laps(void **state)
     sp_trace_free(&t);
 }
 
+/* A lap to be driven over and over: it ends in the row it begins with, and is as long as one of the three. */
+static void stonemere_lap_closes(void **state)
+{
+    (void)state;
+    struct sp_trace t = read_trace(own, "stonemere-lap.csv", NULL);
+    struct sp_trace three = read_trace(own, "stonemere.csv", NULL);
+    const enum sp_column all[] = {SP_COL_SPEED, SP_COL_POWER, SP_COL_ENGINE_SPEED};
+    size_t last = t.rows - 1;
+    for (size_t i = 0; i < sizeof all / sizeof *all; i++)
+        check_close(t.column[all[i]][last], t.column[all[i]][0], 0, 0);
+    check_close(t.column[SP_COL_TIME][last], 104.6, 0, 0.05);
+    check_close(distance(&t, 0, last), 4355, 0.002, 0);
+    check_close(distance(&t, 0, last), distance(&three, 0, three.rows - 1) / 3.0, 0.01, 0);
+    sp_trace_free(&t);
+    sp_trace_free(&three);
+}
+
 static int open_units(void **state)
 {
     (void)state;
@@ -210,6 +227,7 @@ int main(void)
         cmocka_unit_test(nedc_against_another_table),
         cmocka_unit_test(harrowmoor_is_a_hill_climb),
         cmocka_unit_test(stonemere_is_three_laps),
+        cmocka_unit_test(stonemere_lap_closes),
     };
     return cmocka_run_group_tests(tests, open_units, close_units);
 }

@@ -91,13 +91,13 @@ class Steady:
         return 100 * (three_cars.solve(car, leaks)["out"] - before["out"]) / before["itd"]
 
 
-def wake_trace(folder, car, left):
-    """The hold as a trace, behind another car."""
+def wake_trace(folder, car, left, ambient):
+    """The hold as a trace, behind another car whose warmth is left out: the trace tells the air itself."""
     path = os.path.join(folder, f"wake{left}.csv")
     with open(path, "w", encoding="utf-8") as f:
-        f.write("time [s],speed [km/h],power [kW],engine_speed [rpm],wake\n")
+        f.write("time [s],speed [km/h],power [kW],engine_speed [rpm],wake,ambient [degC]\n")
         for t in range(0, 2401, 20):
-            f.write(f"{t},{car[0]},{car[1]},{car[2]},{left}\n")
+            f.write(f"{t},{car[0]},{car[1]},{car[2]},{left},{ambient!r}\n")
     return path
 
 
@@ -149,7 +149,7 @@ def main():
             steady = Steady(sys.argv[1], name)
             said = [ambient(tally, steady)] + [judge(tally, steady, e) for e in EFFECTS]
             for left, low, high in WAKES:
-                drive = ['drive=[{"trace": "%s"}]' % wake_trace(folder, steady.car, left)]
+                drive = ['drive=[{"trace": "%s"}]' % wake_trace(folder, steady.car, left, steady.ambient)]
                 effect = (f"{left} of the dynamic head", lambda c, d=drive: d, times("speed", left ** 0.5), low, high)
                 said.append(judge(tally, steady, effect))
             print(f"{name}, inlet difference {steady.difference:.1f} K; % of it (for leaks) [band]: " + "; ".join(said))

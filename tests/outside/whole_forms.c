@@ -227,6 +227,20 @@ static void charge_cooler(void **state)
     check_close(sp_circuit_charge_out(&r.c, &r.in, r.y), leaves(&r, e), 0, 0);
     sp_circuit_free(&r.c);
 
+    /* two equal coolers side by side: half the flow in each, and together they give what the charge loses */
+    begin_car(&r);
+    r.d.charge = (struct sp_charge){true, 2.0, 0.7, 8.0, 0.3};
+    r.d.ducts = 2;
+    r.d.duct[1] = r.d.duct[0];
+    r.d.duct[1].core[0] = core(SP_CARRIES_CHARGE, 900.0, 600.0, 0.2);
+    r.d.duct[1].count = 2.0;
+    r.in.in[SP_IN_CHARGE_FLOW] = 0.25;
+    r.in.in[SP_IN_CHARGE_HEATING] = 0.25;
+    build(&r);
+    settle(&r);
+    check_close(2.0 * r.k.duct[1].heat, 0.25 * 1007.0 * (T1 - leaves(&r, r.c.exchangers - 1)), 1e-6, 0);
+    sp_circuit_free(&r.c);
+
     fit_charge(&r, 50.0, 1e6);
     const struct sp_core_air *air = &r.k.duct[1].core[0];
     double C = 0.25 * 1007.0, c = air->mass_flow * r.c.air.cp, low = fmin(C, c), ratio = low / fmax(C, c);

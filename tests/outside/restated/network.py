@@ -69,8 +69,9 @@ class Network:
                 self.annulus.append(fan["count"] * math.pi / 4 * (fan["diameter"] ** 2 - fan["hub"] ** 2))
             else:
                 node, before = self.shroud_of[i], fan["before"] == "core"
+                same = sum(f["count"] for j, f in enumerate(fans) if self.shroud_of[j] == node)
                 self.annulus.append(sum(w.faces[0] if before else w.faces[-1] for w in self.lanes
-                                        if (w.start if before else w.end) == node))
+                                        if (w.start if before else w.end) == node) * fan["count"] / same)
 
     def coefficient(self):
         """K_c of the diffuser."""

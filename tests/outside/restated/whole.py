@@ -248,12 +248,15 @@ class WholePlant(Plant):
     def _liquid(self, y):
         return self.tank.liquid(self.parts(y)) - float(y[LOST]) - self.car["tank"]["lost"]
 
-    def entering(self, y, loop):
+    def entering(self, y, loop, amb):
         """T_p: what enters the pump."""
         if loop["p"] <= 0:
             return float(y[JACKET])
-        hot = loop["p"] - loop["r"] - loop["t"]
-        return (loop["r"] * y[CORE - 1] + hot * y[JACKET] + loop["t"] * y[TANK]) / loop["p"]
+        hot = loop["p"] - loop["r"] - loop["t"] - loop["h"]
+        back = y[JACKET]
+        if loop["h"] > 0:
+            back -= self._heater(loop, y[JACKET], amb) / (loop["h"] * loop["rho"] * self.coolant.capacity(y[JACKET]))
+        return (loop["r"] * y[CORE - 1] + hot * y[JACKET] + loop["h"] * back + loop["t"] * y[TANK]) / loop["p"]
 
     def heat(self, t_metal, fan_power, ch, s, pump=0.0):
         e, z = self.engine, 1.0
@@ -292,7 +295,7 @@ class WholePlant(Plant):
             * (self.coolant.density(t_jacket) / 1030.95) ** 0.8 * (x ** 4 + e["conductance_still"] ** 4) ** 0.25
         power = sum(self.fan_powers(y, s))
         heat = self.heat(t_metal, power, ch, s, self.pump_speed(ch[TURNS], s, y))
-        enters = float(self.entering(y, loop))
+        enters = float(self.entering(y, loop, ch[AMBIENT]))
         to_metal, to_coolant, oil_in, oil_skin = self._oils(y, d, ch, air, enters, loop)
         charged = self._charge(y, d, ch, air)
         heater = self._heater(loop, t_jacket, amb)
@@ -397,7 +400,7 @@ class WholePlant(Plant):
         lift, loop, p = self.flows(y, ch, s, mode, held)
         skin_metal, _, _ = self.skins(y, ch)
         air = self.air(y, ch, s, skin_metal)
-        boil, mix = self.coolant.boiling_point, float(self.entering(y, loop))
+        boil, mix = self.coolant.boiling_point, float(self.entering(y, loop, ch[AMBIENT]))
         margin = min(boil(p + loop["rise"] - loop["jacket"]) - y[JACKET], boil(p) - mix)
         c = KELVIN
         out = {"coolant_engine_out": y[JACKET] - c, "coolant_radiator_in": y[BACK - 1] - c, "coolant_pump_in": mix - c,

@@ -8,7 +8,7 @@ import numpy as np
 from .casefile import quantity
 from .drive import EngineHeat, Schedule, Segment
 from .march import Drive
-from .plant import AIR, LOST, WAX
+from .plant import AIR, AMBIENT, LOST, WAX
 from .whole import WholePlant
 from .wholefile import understood
 
@@ -175,8 +175,9 @@ class WholeDrive(Drive):
 
     def _enters(self, t, y):
         s = self.now
-        _, loop, _ = self.plant.flows(y, s.at(t), s, self.mode, self.held)
-        return self.plant.entering(y, loop)
+        ch = s.at(t)
+        _, loop, _ = self.plant.flows(y, ch, s, self.mode, self.held)
+        return self.plant.entering(y, loop, ch[AMBIENT])
 
     def _happen(self, name, t, y):
         if name.startswith("fan "):
