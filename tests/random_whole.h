@@ -102,7 +102,7 @@ static inline void draw_cores(gsl_rng *g, struct whole *w, int duct, int runs)
         if (m != SP_CARRIES_LOAD && w->left.exchangers < runs) m = SP_CARRIES_LOAD;
         if (m != SP_CARRIES_LOAD) w->left.exchangers -= runs;
         draw_any_core(g, m, &w->part[duct][d->cores], c);
-        c->in_series = coolant && m == SP_CARRIES_COOLANT && chance(g, 0.5);
+        c->in_series = coolant && m == SP_CARRIES_COOLANT && (chance(g, 0.5) || d->in_series);
         coolant = coolant || m == SP_CARRIES_COOLANT;
     }
     span_cores(g, d);

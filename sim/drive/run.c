@@ -122,6 +122,20 @@ static enum sp_status run_all(struct sp_run *r)
 
 /* ---- opening and closing ----------------------------------------------------------------------------------- */
 
+/* Charge air has next to no mass and the metal of its cooler follows it in seconds: they swing with every pedal, and
+ * are held to tenths and hundredths of a kelvin, or their steps would be those of the whole drive. */
+static void charge_tolerances(const struct sp_circuit *c, double tolerance, double *absolute)
+{
+    for (int e = 0; e < c->exchangers; ++e) {
+        const struct sp_cells_at *at = &c->layout.exchanger[e];
+        if (c->exchanger[e].carries != SP_CARRIES_CHARGE) continue;
+        for (int i = 0; i < at->cells; ++i) {
+            absolute[at->fluid + i] = 3e4 * tolerance;
+            absolute[at->wall + i] = 5e3 * tolerance;
+        }
+    }
+}
+
 static void set_tolerances(const struct sp_run *r, double tolerance, const double *y, double *absolute)
 {
     const struct sp_layout *l = &r->circuit->layout;
@@ -131,6 +145,7 @@ static void set_tolerances(const struct sp_run *r, double tolerance, const doubl
     absolute[SP_Y_LOST] = 1e-3 * tolerance;
     for (int i = SP_Y_HEAT_IN; i <= SP_Y_HEAD_WORK; ++i) absolute[i] = 1e6 * tolerance;
     if (l->battery >= 0) absolute[l->battery] = 1e6 * tolerance;
+    charge_tolerances(r->circuit, tolerance, absolute);
 }
 
 static bool open_run(struct sp_run *r, double tolerance, double *start)

@@ -71,13 +71,17 @@ static void track_summit(struct sp_run *r, double from, double slope)
     track(&r->over_ambient, r->scratch[SP_Y_JACKET] - in.in[SP_IN_AMBIENT], low);
 }
 
-/* Work of spilled air and of the heat's thrust, by trapezoid over the steps: nothing feeds back from them, and
+static const double spill_step = 0.5; /* s */
+
+/* Work of spilled air and of the heat's thrust, by trapezoid over rows, or half seconds where they are longer: nothing feeds back from them, and
  * the drag itself, which holds both, is integrated with the state. */
 static bool track_spill(struct sp_run *r, const struct sp_inputs *in, const double *y)
 {
     struct sp_coupling k;
     double power = 0.0, thrust = 0.0, half = 0.5 * (r->time - r->spill.time);
     if (!r->fitted[SP_CH_SPILL]) return true;
+    bool ends = r->time >= r->schedule->time[r->segment + 1];
+    if (r->time - r->spill.time < spill_step && !ends) return true;
     if (sp_run_couple(r, in, y, &k)) return false;
     for (int i = 0; i < r->circuit->runs; ++i) {
         power += r->circuit->run[i].copies * k.duct[i].spill_drag * in->in[SP_IN_SPEED];

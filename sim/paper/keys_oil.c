@@ -49,8 +49,8 @@
 const struct sp_key sp_keys_oil[] = {
     {FITTED_GROUP("car.oil", oil.fitted), OPTIONAL,
      SAYS("the engine's oil with a temperature of its own; absent: its heat goes with the coolant's, and "
-          "`heat.fraction` "
-          "holds it. Its air coolers are cores that carry it")},
+          "`heat.fraction` holds it. With it, take the oil's part off `heat.fraction`: it comes on top. Its air "
+          "coolers are cores that carry it")},
     {QUANTITY("car.oil.volume", VOLUME, oil.volume), DEFAULT("4.5 l"), RANGE("0.1 l to 200 l"),
      SAYS("in all, without its coolers; road 3.5 l to 6.5 l, dry sump 6 l to 12 l"), PRACTICE},
     {QUANTITY("car.oil.heat_share", NUMBER, oil.heat_share),
