@@ -46,7 +46,8 @@ static int jacobian(double t, const double *y, struct sp_arrow *out, void *conte
     if (!sensible(r, y)) return 1;
     sp_schedule_at(r->schedule, r->segment, t, &in);
     double **mean = r->column + r->circuit->layout.count;
-    if (sp_circuit_jacobian(r->circuit, &in, &r->modes, y, &r->guesses, r->column, mean, r->scratch)) return 1; /* as for the rates */
+    if (sp_circuit_jacobian(r->circuit, &in, &r->modes, y, &r->guesses, r->column, mean, r->scratch))
+        return 1; /* a smaller step may do */
     sp_arrow_fill(out, r->column, mean);
     return 0;
 }

@@ -73,8 +73,8 @@ static void track_summit(struct sp_run *r, double from, double slope)
 
 static const double spill_step = 0.5; /* s */
 
-/* Work of spilled air and of the heat's thrust, by trapezoid over rows, or half seconds where they are longer: nothing feeds back from them, and
- * the drag itself, which holds both, is integrated with the state. */
+/* Work of spilled air and of the heat's thrust, by trapezoid over rows, or half seconds where they are longer:
+ * nothing feeds back from them, and the drag itself, which holds both, is integrated with the state. */
 static bool track_spill(struct sp_run *r, const struct sp_inputs *in, const double *y)
 {
     struct sp_coupling k;

@@ -111,6 +111,26 @@ static void doubt_fins(struct sp_reader *r, const struct sp_key_spot *at)
                        "fins such as those measured; expect more than 15 % off");
 }
 
+/* Section [m2] of the duct that a core speaks of: its face over its share of it. */
+static double section_of(const struct sp_core *c)
+{
+    double share = c->span_to - c->span_from;
+    return c->width * c->height / (share > 0.0 ? share : 1.0);
+}
+
+/* Cores of one duct stand in one section. */
+static void doubt_span(struct sp_reader *r, const struct sp_key_spot *at)
+{
+    const double most = 1.6; /* plenums open and close somewhat */
+    const struct sp_duct_design *d = &r->design->duct[at->outer];
+    double own = section_of(&d->core[at->inner]), first = section_of(&d->core[0]);
+    char found[120];
+    if (!at->inner || !(own > 0.0 && first > 0.0) || (own < most * first && first < most * own)) return;
+    snprintf(found, sizeof found, "a face and span that make a section of %.3g m2, while the first core's make %.3g m2", own,
+             first);
+    sp_case_caution_of(r, "car.duct.core.width", at, found, "cores of one duct that stand in one section: see span_to");
+}
+
 static void doubt_each(struct sp_reader *r, const char *group,
                        void (*doubt)(struct sp_reader *r, const struct sp_key_spot *at))
 {
@@ -123,6 +143,7 @@ static void doubt_each(struct sp_reader *r, const char *group,
 void sp_case_doubt(struct sp_reader *r)
 {
     doubt_each(r, "car.duct.core", doubt_fins);
+    doubt_each(r, "car.duct.core", doubt_span);
     doubt_each(r, "car.duct", doubt_duct);
     doubt_each(r, "car.duct.fan", doubt_fan);
     doubt_engine(r);
