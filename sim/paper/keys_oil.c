@@ -71,7 +71,7 @@ const struct sp_key sp_keys_oil[] = {
     SKIN_ROWS(oil, "3 W/K", "12 W/K"),
 
     {FITTED_GROUP("car.gearbox", gearbox.fitted), OPTIONAL,
-     SAYS("the oil of gearbox or final drive; absent: not reckoned")},
+     SAYS("the oil of gearbox or final drive; absent: left out")},
     {QUANTITY("car.gearbox.volume", VOLUME, gearbox.volume), DEFAULT("2 l"), RANGE("0.1 l to 200 l"),
      SAYS("in all; add 0.4 l for each kilogram of gears and shafts that warms with it, half the housing too"),
      PRACTICE},
