@@ -11,6 +11,21 @@
 #include <stdio.h>
 #include <cmocka.h>
 
+/* How often a test repeats a random draw: a share of `full` under the sanitizers, which take ten times as long. */
+#if defined(__has_feature)
+#if __has_feature(address_sanitizer)
+#define SP_TESTS_SANITIZED 1
+#endif
+#endif
+#if defined(__SANITIZE_ADDRESS__) && !defined(SP_TESTS_SANITIZED)
+#define SP_TESTS_SANITIZED 1
+#endif
+#ifdef SP_TESTS_SANITIZED
+enum { SP_TESTS_SHARE = 5 };
+#else
+enum { SP_TESTS_SHARE = 1 };
+#endif
+
 static inline void check_close_at(double got, double want, double rtol, double atol, const char *what,
                                   const char *file, int line)
 {
