@@ -178,6 +178,9 @@ double sp_circuit_heater(const struct sp_circuit *c, const struct sp_inputs *in,
 /* Drag [N] of all ducts. */
 double sp_circuit_drag(const struct sp_circuit *c, const struct sp_coupling *k);
 
+/* Conductance of a skin [W/K], between standing and 100 km/h through the air. */
+double sp_circuit_skin_conductance(const struct sp_inputs *in, double standing, double moving);
+
 /* Heat [W] from the engine's skin to the air. */
 double sp_circuit_skin(const struct sp_circuit *c, const struct sp_inputs *in, double metal);
 

@@ -6,13 +6,6 @@
 #include "part/charge.h"
 #include "part/oil.h"
 
-double sp_circuit_mean(const double *y, int n)
-{
-    double sum = 0.0;
-    for (int i = 0; i < n; ++i) sum += y[i];
-    return sum / n;
-}
-
 void sp_circuit_signals(const struct sp_circuit *c, const struct sp_inputs *in, const double *y,
                         struct sp_signals *out)
 {
@@ -73,21 +66,6 @@ static double jacket_conductance(const struct sp_design *d, double flow, double 
     double denser = sp_coolant_density(&d->coolant.fluid, T) / SP_COOLANT_REFERENCE;
     double ratio = sp_coolant_film_ratio(&d->coolant.fluid, T, 0.8) * pow(denser, 0.8);
     return e->conductance * ratio * sqrt(sqrt(m2 * m2 + s2 * s2));
-}
-
-double sp_circuit_volts(const struct sp_circuit *c, const struct sp_inputs *in)
-{
-    const struct sp_electrics *e = &c->design->electrics;
-    return in->flags & SP_FLAG_ENGINE ? e->voltage_running : e->voltage_stopped;
-}
-
-double sp_circuit_pump_speed(const struct sp_circuit *c, const struct sp_inputs *in, const struct sp_modes *modes,
-                             double coolant)
-{
-    struct sp_pump_wish wish = {.engine_speed = in->in[SP_IN_ENGINE_SPEED], .engine_on = in->flags & SP_FLAG_ENGINE,
-                                .allowed = in->flags & SP_FLAG_PUMP, .volts = sp_circuit_volts(c, in),
-                                .coolant = coolant, .pulse_off = modes->pulse_off};
-    return sp_pump_speed(c->design, &wish);
 }
 
 enum sp_status sp_circuit_split(const struct sp_circuit *c, const struct sp_inputs *in,

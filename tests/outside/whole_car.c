@@ -1,8 +1,9 @@
 /* Cars with every option at once, on random drives with fixed seeds: no option may break the ledger, lose
  * mass, give NaN, or stop the numerics.
  *
- * SP_DRIVES sets how many drives (500, a fifth under the sanitizers); the drive of seed N is the same whatever the count. SP_FIRST is the
- * first seed (1). SPDX-License-Identifier: GPL-3.0-or-later */
+ * SP_DRIVES sets how many drives (500, a fifth under the sanitizers); the drive of seed N is the same whatever the
+ * count. SP_FIRST is the first seed (1).
+ * SPDX-License-Identifier: GPL-3.0-or-later */
 #include "random_whole.h"
 
 static struct fixture fixture;
