@@ -213,8 +213,8 @@ static enum sp_status tell(const struct sp_network *n, const struct sp_net_state
     return isfinite(out->mass_flow) && isfinite(out->heat) && isfinite(out->drag) ? SP_OK : SP_NUMERICS;
 }
 
-enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_inputs *in,
-                                struct sp_duct_guess *guess, struct sp_duct_state *out)
+static enum sp_status solve_once(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                                 struct sp_duct_guess *guess, struct sp_duct_state *out)
 {
     struct sp_network n = sp_network_pose(d, in);
     struct sp_net_state x;
@@ -224,6 +224,33 @@ enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_in
         return tell(&n, &x, &look, guess, out);
     guess->known = false;
     return SP_NUMERICS;
+}
+
+static bool pushed(const struct sp_duct *d, const struct sp_duct_inputs *in)
+{
+    bool runs = in->speed != 0.0 || in->blower > 0.0;
+    for (int i = 0; i < d->fans; ++i) runs = runs || in->fan_speed[i] > 0.0;
+    return runs;
+}
+
+/* A duct that is driven and yet passes nothing may have been led there by where the search began: air that goes round
+ * in a hot closed loop answers the equations too. From nowhere the flow that goes through is found, if there is one. */
+enum sp_status sp_network_solve(const struct sp_duct *d, const struct sp_duct_inputs *in,
+                                struct sp_duct_guess *guess, struct sp_duct_state *out)
+{
+    const double nothing = 1e-6; /* m/s of face velocity */
+    bool led = guess->known;
+    enum sp_status status = solve_once(d, in, guess, out);
+    double still = nothing * d->section * in->pressure / (in->R * in->temperature);
+    if (!led || (status == SP_OK && fabs(out->mass_flow) > still) || !pushed(d, in)) return status;
+    struct sp_duct_guess anew;
+    struct sp_duct_state other;
+    memset(&anew, 0, sizeof anew);
+    if (solve_once(d, in, &anew, &other) || (status == SP_OK && fabs(other.mass_flow) <= fabs(out->mass_flow)))
+        return status;
+    *guess = anew;
+    *out = other;
+    return SP_OK;
 }
 
 /* Only from where the guess is. */
