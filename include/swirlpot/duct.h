@@ -52,7 +52,7 @@ struct sp_diffuser_design {
     double loss;       /* on inlet head, when given */
     double length;     /* m */
     double height;     /* m of the inlet, in the plane that opens (one plane) */
-    bool core_damping; /* the core's resistance damps the stall (DA 3.4 proposal) */
+    bool core_damping; /* the core's resistance damps the stall; a proposal without published coefficients */
     double jet_share;  /* share of the face that a stalled diffuser blows upon; 0: the jet is spread evenly */
 };
 

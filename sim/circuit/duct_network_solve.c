@@ -145,16 +145,21 @@ static bool warm_up(const struct sp_network *n, struct sp_net_state *x, struct s
 }
 
 /* Flows and temperatures in turn. The last resort, for air that circles with next to nothing coming in: its
- * temperature is then only as good as that many turns make it; flows and pressures are balanced. */
+ * temperature is at worst as good as that many turns make it; flows and pressures are balanced. */
 static bool in_turn(const struct sp_network *n, struct sp_net_state *x, struct sp_net_look *look)
 {
-    enum { TURNS = 50 };
+    enum { TURNS = 300, TRY = 10 }; /* both at once is tried again after so many */
     struct sp_network frozen = *n;
     frozen.frozen = true;
     for (int i = 0; i < TURNS; ++i) {
         warm(n, 0.5, x, look);
         if (!sp_network_newton(&frozen, x, look) && !find_flows(n, x, look)) return false;
+        struct sp_net_state both = *x;
+        if (i % TRY != TRY - 1 || !sp_network_newton(n, &both, look)) continue;
+        *x = both;
+        return true;
     }
+    sp_network_look(n, x, look);
     return true;
 }
 

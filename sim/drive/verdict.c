@@ -163,7 +163,7 @@ enum sp_status sp_run_settle(struct sp_run *r, const double *start, struct sp_co
     out->boil_margin = place(r, &r->margin);
     out->boil_margin.value = -out->boil_margin.value;
     out->over_ambient = r->over_ambient.best;
-    out->fan.energy = end[SP_Y_FAN_ENERGY];
+    out->fan.energy = fmax(end[SP_Y_FAN_ENERGY], 0.0); /* an integral of nil may round below it */
     out->drag.energy = end[SP_Y_DRAG_WORK];
     out->drag.mean_coefficient = end[SP_Y_HEAD_WORK] > 0.0
         ? end[SP_Y_DRAG_WORK] / (r->drive->design->body.frontal_area * end[SP_Y_HEAD_WORK]) : NAN;

@@ -83,7 +83,7 @@ static void check_result(const struct whole *w, const struct fixture_drive *r)
                isfinite(s->boil_margin.value) && isfinite(s->tank_pressure.value) &&
                isfinite(s->over_ambient),
            "peaks");
-    expect(w, s->fan.energy > -1e-3 && isfinite(s->drag.energy), "fan %g J", s->fan.energy); /* an integral's rounding */
+    expect(w, s->fan.energy > -1e-9 && isfinite(s->drag.energy), "fan %g J", s->fan.energy);
     for (size_t i = 1; i < s->events; ++i)
         expect(w, s->event[i].time >= s->event[i - 1].time, "order of events %zu", i);
 }
